@@ -1,0 +1,42 @@
+import { resolve } from 'node:path'
+
+/** How the program runs; read once at start, from the environment. */
+export interface Config {
+  /** folder of the database and the files beside it */
+  dataDir: string
+  host: string
+  port: number
+  /** `demo` makes the demo workplace when the database is empty and shows its sign-ins; `workplace` starts empty */
+  mode: 'demo' | 'workplace'
+  /** where people reach the program: links in mails begin with it */
+  baseUrl: string
+  /** SMTP server as a URL, or null for the local fake transport */
+  smtpUrl: string | null
+  mailFrom: string
+  /** cookies only over TLS, HSTS: when the base URL is https */
+  secure: boolean
+}
+
+const oneOf = <T extends string>(name: string, value: string, allowed: readonly T[]): T => {
+  if (!allowed.includes(value as T)) throw new Error(`${name} is "${value}"; it takes ${allowed.join(' or ')}.`)
+  return value as T
+}
+
+/** @throws Error naming the variable that cannot be used, and what it takes */
+export function readConfig(env: NodeJS.ProcessEnv): Config {
+  const port = Number(env.DETENT_PORT ?? 4870)
+  if (!Number.isInteger(port) || port < 0 || port > 65535) throw new Error(`DETENT_PORT is "${env.DETENT_PORT}"; it takes a port number from 0 to 65535.`)
+  const host = env.DETENT_HOST ?? '127.0.0.1'
+  const baseUrl = (env.DETENT_BASE_URL ?? `http://${host}:${port}`).replace(/\/$/, '')
+  if (!/^https?:\/\/[^/\s]+/.test(baseUrl)) throw new Error(`DETENT_BASE_URL is "${baseUrl}"; it takes an http or https address.`)
+  return {
+    dataDir: resolve(env.DETENT_DATA ?? '.data'),
+    host,
+    port,
+    mode: oneOf('DETENT_MODE', env.DETENT_MODE ?? 'demo', ['demo', 'workplace']),
+    baseUrl,
+    smtpUrl: env.DETENT_SMTP_URL ?? null,
+    mailFrom: env.DETENT_MAIL_FROM ?? 'Detent <detent@localhost>',
+    secure: baseUrl.startsWith('https:'),
+  }
+}

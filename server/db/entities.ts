@@ -1,0 +1,32 @@
+import { Receipt } from '../http/receipt.entity.ts'
+import { ChangeEvent } from '../modules/changes/change-event.entity.ts'
+import { Change } from '../modules/changes/change.entity.ts'
+import { DraftPoint } from '../modules/changes/draft-point.entity.ts'
+import { CheckReport } from '../modules/checks/check-report.entity.ts'
+import { FirmwareLine } from '../modules/firmware/firmware-line.entity.ts'
+import { FirmwareVersion } from '../modules/firmware/firmware-version.entity.ts'
+import { LedgerEntry } from '../modules/ledger/ledger-entry.entity.ts'
+import { Bus } from '../modules/machines/bus.entity.ts'
+import { DriveTrain } from '../modules/machines/drive-train.entity.ts'
+import { Family } from '../modules/machines/family.entity.ts'
+import { Joint } from '../modules/machines/joint.entity.ts'
+import { Machine } from '../modules/machines/machine.entity.ts'
+import { Mail } from '../modules/mail/mail.entity.ts'
+import { Link } from '../modules/people/link.entity.ts'
+import { Person } from '../modules/people/person.entity.ts'
+import { RoleGrant } from '../modules/people/role-grant.entity.ts'
+import { SessionRecord } from '../modules/people/session.entity.ts'
+import { PolicyVersion } from '../modules/policy/policy-version.entity.ts'
+import { ReleaseJoint } from '../modules/releases/release-joint.entity.ts'
+import { Release } from '../modules/releases/release.entity.ts'
+import { Revision } from '../modules/releases/revision.entity.ts'
+import { Withdrawal } from '../modules/releases/withdrawal.entity.ts'
+import { Signature } from '../modules/reviews/signature.entity.ts'
+
+export const entities = [
+  Bus, Change, ChangeEvent, CheckReport, DraftPoint, DriveTrain, Family, FirmwareLine, FirmwareVersion, Joint, LedgerEntry, Link, Machine, Mail,
+  Person, PolicyVersion, Receipt, Release, ReleaseJoint, Revision, RoleGrant, SessionRecord, Signature, Withdrawal,
+]
+
+/** Rows of these are written once: a flush that alters one is refused, and so is SQL that goes around the flush (triggers). */
+export const immutable = [ChangeEvent, CheckReport, DraftPoint, DriveTrain, LedgerEntry, Release, ReleaseJoint, Revision, Signature, Withdrawal]

@@ -1,0 +1,167 @@
+import { createHash } from 'node:crypto'
+import type { EntityManager } from '@mikro-orm/core'
+import type { Static, TSchema } from '@sinclair/typebox'
+import canonicalize from 'canonicalize'
+import type { Request, Response, Router } from 'express'
+import { appendEntry } from '../modules/ledger/append-entry.ts'
+import type { LedgerSubject } from '../modules/ledger/ledger-entry.entity.ts'
+import { heldRoles } from '../modules/people/held-roles.ts'
+import { may, type Act, type HeldRole } from '../modules/people/permissions.ts'
+import type { Person } from '../modules/people/person.entity.ts'
+import { DomainError } from './errors.ts'
+import { Receipt } from './receipt.entity.ts'
+import type { Services } from './services.ts'
+import { validBody } from './validate.ts'
+
+/** Where a request points: the machine it belongs to (null: none), and what was found on the way. */
+export interface Place {
+  machine: string | null
+  subject: LedgerSubject
+}
+
+/** The answer of a route: JSON, or bytes with a name. */
+export type Answer =
+  | { status?: number; body: unknown; etag?: number; headers?: Record<string, string> }
+  | { status?: number; bytes: Uint8Array; type: string; fileName: string; headers?: Record<string, string> }
+
+export interface Call<B, P extends Place> {
+  services: Services
+  em: EntityManager
+  person: Person
+  held: HeldRole[]
+  place: P
+  params: Record<string, string>
+  query: Record<string, string>
+  body: B
+  /** revision that the writer saw, from If-Match; only on routes that ask for it */
+  ifMatch: number
+  now: Date
+  session: Request['session']
+  /** Runs an act in one transaction and keeps its answer for a repeat of the same request. */
+  act(work: (em: EntityManager) => Promise<Answer>): Promise<Answer>
+}
+
+export interface RouteSpec<B extends TSchema = TSchema, P extends Place = Place> {
+  method: 'get' | 'post' | 'patch' | 'put' | 'delete'
+  path: string
+  /** what it does, in words */
+  summary: string
+  /** the act of the matrix it takes; `signed-in` for what everybody may do on their own behalf */
+  access: Act | 'signed-in'
+  /** finds what the path names; a place that the person may not read is not found */
+  place?: (em: EntityManager, params: Record<string, string>) => Promise<P>
+  body?: B
+  ifMatch?: boolean
+  handle: (call: Call<Static<B>, P>) => Promise<Answer>
+}
+
+/** A route with its types checked, ready for the table. */
+export const route = <B extends TSchema, P extends Place = Place>(spec: RouteSpec<B, P>): RouteSpec => spec as unknown as RouteSpec
+
+const nowhere = async (): Promise<Place> => ({ machine: null, subject: {} })
+
+/** Puts one Detent person in the request; done by http/session.ts. */
+export const personOf = (req: Request): Person => {
+  const person = (req as Request & { user?: Person }).user
+  if (!person) throw new DomainError('not-signed-in', 'Sign in first; nothing was done.')
+  return person
+}
+
+function readIfMatch(req: Request): number {
+  const header = req.headers['if-match']
+  if (!header) throw new DomainError('precondition-required', 'This act must say which state it was decided on: send the ETag you read as If-Match. Nothing was done.')
+  const match = /^"(\d+)"$/.exec(header)
+  if (!match) throw new DomainError('precondition-failed', 'If-Match does not hold an ETag of Detent. Nothing was done; read it again and use the ETag given there.')
+  return Number(match[1])
+}
+
+/** @throws DomainError precondition-failed when the thing was altered since its reader saw it */
+export function mustMatch(call: { ifMatch: number }, revision: number) {
+  if (call.ifMatch !== revision)
+    throw new DomainError('precondition-failed', 'It was altered since you read it. Nothing was done; what you typed is still with you. Reload, look at what is new, then do it again.', { extra: { revision } })
+}
+
+async function transactWithReceipt(em: EntityManager, req: Request, person: Person, now: Date, work: (em: EntityManager) => Promise<Answer>): Promise<Answer> {
+  const key = req.headers['idempotency-key']
+  if (key === undefined) return em.transactional(work)
+  if (typeof key !== 'string' || !/^[\w-]{8,80}$/.test(key)) throw new DomainError('invalid-request', 'Idempotency-Key takes 8 to 80 letters, digits, hyphens and underscores. Nothing was done.')
+  const requestHash = createHash('sha256').update(canonicalize({ method: req.method, path: req.originalUrl, body: (req.body as unknown) ?? null })!).digest('hex')
+  return em.transactional(async (tx) => {
+    const earlier = await tx.findOne(Receipt, { personId: person.id, key })
+    if (earlier) {
+      if (earlier.requestHash !== requestHash) throw new DomainError('key-reused', 'This Idempotency-Key belongs to another request. Nothing was done; use a new key.')
+      return JSON.parse(earlier.body) as Answer
+    }
+    const answer = await work(tx)
+    tx.create(Receipt, { personId: person.id, key, requestHash, status: answer.status ?? 200, body: JSON.stringify(answer), createdAt: now })
+    return answer
+  })
+}
+
+/** Sends an answer; downloads carry their name by RFC 6266. */
+function send(res: Response, answer: Answer) {
+  res.status(answer.status ?? 200).set({ 'Cache-Control': 'no-store', ...answer.headers })
+  if ('bytes' in answer) {
+    const ascii = answer.fileName.replace(/[^\x20-\x7e]|["\\]/g, '_')
+    res.set({ 'Content-Type': answer.type, 'Content-Disposition': `attachment; filename="${ascii}"; filename*=UTF-8''${encodeURIComponent(answer.fileName).replace(/['()*]/g, (c) => `%${c.charCodeAt(0).toString(16).toUpperCase()}`)}` })
+    res.end(Buffer.from(answer.bytes))
+    return
+  }
+  if (answer.etag !== undefined) res.set('ETag', `"${answer.etag}"`)
+  if (answer.body === undefined) res.end()
+  else res.json(answer.body)
+}
+
+/** A refusal that tells of misuse goes into the ledger, in a transaction of its own. */
+async function record(services: Services, spec: RouteSpec, error: DomainError, person: Person, place: Place, now: Date) {
+  await services.orm.em.fork().transactional((em) => appendEntry(em, { at: now, person, act: 'refused', subject: place.subject, details: { asked: spec.summary, refusal: error.code, why: error.message } }))
+}
+
+async function answerTo(services: Services, spec: RouteSpec, req: Request): Promise<Answer> {
+  const em = services.orm.em.fork()
+  const now = services.now()
+  const person = personOf(req)
+  const held = await heldRoles(em, person)
+  const params = req.params as Record<string, string>
+  const place = await (spec.place ?? nowhere)(em, params)
+  if (place.machine !== null && !may(held, 'read', place.machine).allowed)
+    throw new DomainError('not-found', 'There is nothing at this address that you may read. Check the address, or ask an administrator for a role on the machine.')
+  try {
+    if (spec.access !== 'signed-in') {
+      const answer = may(held, spec.access, place.machine)
+      if (!answer.allowed)
+        throw new DomainError(answer.why.startsWith('Your signing role') ? 'signing-right-unconfirmed' : 'not-permitted', `${answer.why} Nothing was done.`, { recorded: spec.method !== 'get' })
+    }
+    return await spec.handle({
+      services,
+      em,
+      person,
+      held,
+      place,
+      params,
+      query: req.query as Record<string, string>,
+      body: spec.body ? validBody(spec.body, (req.body as unknown) ?? {}) : undefined,
+      ifMatch: spec.ifMatch ? readIfMatch(req) : 0,
+      now,
+      session: req.session,
+      act: (work) => transactWithReceipt(em, req, person, now, work),
+    })
+  } catch (error) {
+    if (error instanceof DomainError && error.recorded) await record(services, spec, error, person, place, now)
+    throw error
+  }
+}
+
+/** Puts the routes of the table on an Express router. */
+export function mount(router: Router, services: Services, specs: readonly RouteSpec[]) {
+  for (const spec of specs)
+    router[spec.method](spec.path, (req, res, next) => {
+      answerTo(services, spec, req).then(
+        (answer) => {
+          if (spec.method !== 'get') services.mailQueued()
+          send(res, answer)
+        },
+        next,
+      )
+    })
+}

@@ -1,0 +1,17 @@
+import { defineEntity, p, type InferEntity } from '@mikro-orm/core'
+import type { CheckResult } from '../../../shared/contract/checks.ts'
+import { Change } from '../changes/change.entity.ts'
+
+/** A finished check, kept by the hash of everything it depends on: equal inputs are answered from here. Immutable. */
+export const CheckReport = defineEntity({
+  name: 'CheckReport',
+  uniques: [{ properties: ['change', 'inputsHash'] }],
+  properties: {
+    id: p.integer().primary(),
+    change: () => p.manyToOne(Change),
+    inputsHash: p.string().length(64),
+    result: p.json<CheckResult>(),
+    createdAt: p.datetime(),
+  },
+})
+export type CheckReport = InferEntity<typeof CheckReport>

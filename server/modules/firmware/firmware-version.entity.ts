@@ -1,0 +1,54 @@
+import { defineEntity, p, type InferEntity } from '@mikro-orm/core'
+import { Person } from '../people/person.entity.ts'
+import { DomainError } from '../../http/errors.ts'
+import { FirmwareLine } from './firmware-line.entity.ts'
+
+export type FirmwareState = 'draft' | 'published' | 'retired'
+
+/** A version of a firmware line with its parameter schema. Editable as a draft, immutable once published. */
+export const FirmwareVersion = defineEntity({
+  name: 'FirmwareVersion',
+  uniques: [{ properties: ['line', 'version'] }],
+  properties: {
+    id: p.integer().primary(),
+    line: () => p.manyToOne(FirmwareLine),
+    version: p.string().length(40),
+    state: p.string().$type<FirmwareState>(),
+    /** the parameter schema as its author wrote it */
+    schemaText: p.text(),
+    /** SHA-256 of the schema's RFC 8785 form */
+    schemaHash: p.string().length(64),
+    notes: p.text(),
+    uploadedBy: () => p.manyToOne(Person),
+    createdAt: p.datetime(),
+    publishedBy: () => p.manyToOne(Person).nullable(),
+    publishedAt: p.datetime().nullable(),
+    retiredBy: () => p.manyToOne(Person).nullable(),
+    retiredAt: p.datetime().nullable(),
+    /** counts saves: the ETag of a draft */
+    revision: p.integer().default(1),
+  },
+})
+export type FirmwareVersion = InferEntity<typeof FirmwareVersion>
+
+const refuse = (v: FirmwareVersion, act: string): never => {
+  throw new DomainError('wrong-state', `${v.line.key} ${v.version} is ${v.state}; it can't be ${act}. Nothing was altered.`)
+}
+
+export function editSchema(v: FirmwareVersion, edit: { schemaText: string; schemaHash: string; notes: string }) {
+  if (v.state !== 'draft') refuse(v, 'edited; draft a new version instead')
+  Object.assign(v, edit)
+  v.revision += 1
+}
+
+export function publish(v: FirmwareVersion, by: Person, at: Date) {
+  if (v.state !== 'draft') refuse(v, 'published')
+  Object.assign(v, { state: 'published', publishedBy: by, publishedAt: at })
+  v.revision += 1
+}
+
+export function retire(v: FirmwareVersion, by: Person, at: Date) {
+  if (v.state !== 'published') refuse(v, 'retired')
+  Object.assign(v, { state: 'retired', retiredBy: by, retiredAt: at })
+  v.revision += 1
+}

@@ -1,0 +1,52 @@
+import { createHash } from 'node:crypto'
+import canonicalize from 'canonicalize'
+import type { EntityManager } from '@mikro-orm/core'
+import type { Person } from '../people/person.entity.ts'
+import { LedgerEntry, type LedgerSubject } from './ledger-entry.entity.ts'
+
+export const genesisHash = '0'.repeat(64)
+
+/** The part of an entry that its hash covers, in RFC 8785 form. */
+export function entryHash(entry: Pick<LedgerEntry, 'sequence' | 'at' | 'personId' | 'personName' | 'act' | 'machineKey' | 'subject' | 'details' | 'previousHash'>): string {
+  const covered = {
+    sequence: entry.sequence,
+    at: entry.at.toISOString(),
+    personId: entry.personId ?? null,
+    personName: entry.personName,
+    act: entry.act,
+    machine: entry.machineKey ?? null,
+    subject: entry.subject,
+    details: entry.details,
+    previousHash: entry.previousHash,
+  }
+  return createHash('sha256').update(canonicalize(covered)!).digest('hex')
+}
+
+/**
+ * Appends an act to the ledger, in the transaction of the act itself.
+ *
+ * `em` must be inside a transaction: the entry takes the next place in the chain, and nothing else may take it meanwhile.
+ */
+export async function appendEntry(
+  em: EntityManager,
+  entry: { at: Date; person: Pick<Person, 'id' | 'name'> | null; act: string; subject?: LedgerSubject; details?: Record<string, unknown> },
+): Promise<LedgerEntry> {
+  if (!em.isInTransaction()) throw new Error('ledger entries are appended inside the transaction of their act')
+  await em.flush()
+  const [last] = await em.find(LedgerEntry, {}, { orderBy: { sequence: 'desc' }, limit: 1 })
+  const subject = entry.subject ?? {}
+  const fields = {
+    sequence: (last?.sequence ?? 0) + 1,
+    at: entry.at,
+    personId: entry.person?.id ?? null,
+    personName: entry.person?.name ?? 'Detent',
+    act: entry.act,
+    machineKey: subject.machine ?? null,
+    subject,
+    details: JSON.parse(JSON.stringify(entry.details ?? {})) as Record<string, unknown>,
+    previousHash: last?.hash ?? genesisHash,
+  }
+  const made = em.create(LedgerEntry, { ...fields, hash: entryHash(fields) })
+  await em.flush()
+  return made
+}

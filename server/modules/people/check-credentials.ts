@@ -1,0 +1,18 @@
+import type { EntityManager } from '@mikro-orm/core'
+import { passwordMatches } from './passwords.ts'
+import { Person } from './person.entity.ts'
+
+export const normalEmail = (email: string) => email.trim().toLowerCase()
+
+/** The person these credentials belong to, or null: unknown, without a password yet, disabled and wrong take the same time and look the same. */
+export async function checkCredentials(em: EntityManager, email: string, password: string): Promise<Person | null> {
+  const person = await em.findOne(Person, { email: normalEmail(email) }, { populate: ['passwordHash'] })
+  const right = await passwordMatches(person?.passwordHash, password)
+  return right && person && person.disabledAt === null ? person : null
+}
+
+/** Whether a signed-in person re-entered their own password. */
+export async function reentered(em: EntityManager, person: Person, password: string): Promise<boolean> {
+  const fresh = await em.findOne(Person, { id: person.id }, { populate: ['passwordHash'], refresh: true })
+  return passwordMatches(fresh?.passwordHash, password)
+}

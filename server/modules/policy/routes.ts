@@ -1,0 +1,3 @@
+import type { RouteSpec } from '../../http/route.ts'
+
+export const policyRoutes: readonly RouteSpec[] = []

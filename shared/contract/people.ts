@@ -1,0 +1,79 @@
+import { Type, type Static } from '@sinclair/typebox'
+import { Key } from '../parameters/machine-set.ts'
+
+const strict = { additionalProperties: false }
+
+export const roles = ['observer', 'controls engineer', 'peer reviewer', 'release manager', 'builder', 'administrator'] as const
+export type Role = (typeof roles)[number]
+
+/** Roles whose holder signs: a fresh grant gives no signing right until another signer confirms it. */
+export const signingRoles: readonly Role[] = ['peer reviewer', 'release manager']
+
+const RoleName = Type.Union(roles.map((r) => Type.Literal(r)))
+const Name = Type.String({ minLength: 1, maxLength: 120, pattern: '\\S' })
+const Email = Type.String({ format: 'email', maxLength: 254 })
+export const minPasswordLength = 15
+const Password = Type.String({ minLength: 1, maxLength: 200 })
+
+export const SignIn = Type.Object({ email: Type.String({ minLength: 1, maxLength: 254 }), password: Password }, strict)
+export type SignIn = Static<typeof SignIn>
+
+export const RoleGrantRequest = Type.Object({ role: RoleName, machine: Type.Union([Key, Type.Null()], { description: 'null: on all machines' }) }, strict)
+export type RoleGrantRequest = Static<typeof RoleGrantRequest>
+
+export const InvitePerson = Type.Object({ name: Name, email: Email, roles: Type.Array(RoleGrantRequest, { maxItems: 50 }) }, strict)
+export type InvitePerson = Static<typeof InvitePerson>
+
+export const AskReset = Type.Object({ email: Email }, strict)
+export const UseLink = Type.Object({ secret: Type.String({ minLength: 20, maxLength: 200 }), password: Password }, strict)
+export type UseLink = Static<typeof UseLink>
+export const ChangePassword = Type.Object({ current: Password, next: Password }, strict)
+export type ChangePassword = Static<typeof ChangePassword>
+
+export interface GrantView {
+  id: number
+  role: Role
+  machine: string | null
+  /** false: a signing role that a second signer has still to confirm */
+  confirmed: boolean
+}
+
+/** An answer to "may I": allowed, or the reason why not, in words for the person. */
+export type Allowed = { allowed: true } | { allowed: false; why: string }
+
+export interface PersonView {
+  id: number
+  name: string
+  email: string
+  state: 'invited' | 'active' | 'disabled'
+  /** why signatures of this person wait for another signer's confirmation; null when they don't */
+  signingHold: string | null
+  roles: GrantView[]
+  may: { grantRoles: Allowed; disable: Allowed; reset: Allowed; confirmSigning: Allowed }
+}
+
+/** Who is signed in: what the client shows and hides by. */
+export interface Me {
+  id: number
+  name: string
+  email: string
+  roles: GrantView[]
+  /** acts of the permission matrix, by machine key; '*' holds what is not tied to one machine */
+  acts: Record<string, string[]>
+  /** to be sent as X-Detent-Token with every act */
+  token: string
+}
+
+export interface SessionView {
+  id: string
+  current: boolean
+  createdAt: string
+  seenAt: string
+}
+
+/** What the sign-in page needs to know. */
+export interface WorkplaceView {
+  mode: 'demo' | 'workplace'
+  /** demo mode only: the invented people and their passwords */
+  signIns: { name: string; email: string; password: string; roles: string }[]
+}

@@ -1,0 +1,72 @@
+import { Type } from '@sinclair/typebox'
+import type { EffectiveValue } from '../parameters/effective.ts'
+import type { DriveTrain } from '../parameters/machine-set.ts'
+import type { ConcessionRequest, SignatureView } from './changes.ts'
+import type { Allowed } from './people.ts'
+
+export const versionSteps = ['patch', 'minor', 'major'] as const
+export type VersionStep = (typeof versionSteps)[number]
+
+export const WithdrawRelease = Type.Object({ version: Type.String({ maxLength: 60 }), reason: Type.String({ minLength: 1, maxLength: 2000, pattern: '\\S' }) }, { additionalProperties: false })
+
+/** What a revision freezes of a joint. */
+export interface RevisionContent {
+  family: string
+  bus: string
+  address: number
+  firmware: string
+  schemaHash: string
+  values: EffectiveValue[]
+  driveTrain: DriveTrain
+  board: string | null
+  /** of the image with release number 0 */
+  imageSha256: string
+}
+
+/** What Detent proposes for the next version, and why. */
+export interface VersionProposal {
+  version: string
+  step: VersionStep
+  /** one sentence each, strongest first */
+  because: string[]
+}
+
+export interface ReleaseSummary {
+  machine: string
+  machineName: string
+  version: string
+  sequence: number
+  state: 'current' | 'superseded' | 'withdrawn'
+  title: string
+  change: string
+  releasedBy: string
+  releasedAt: string
+  joints: number
+}
+
+export interface ReleaseJointView {
+  joint: string
+  name: string
+  family: string
+  bus: string
+  address: number
+  firmware: string
+  revision: number
+  /** the revision is new in this release */
+  isNew: boolean
+  imageSha256: string
+  imageBytes: number
+}
+
+export interface ReleaseView extends ReleaseSummary {
+  reason: string
+  contentHash: string
+  proposedStep: VersionStep
+  step: VersionStep
+  stepReason: string
+  signatures: SignatureView[]
+  concessions: ConcessionRequest[]
+  items: ReleaseJointView[]
+  withdrawal: { reason: string; by: string; at: string } | null
+  may: { download: Allowed; withdraw: Allowed }
+}
