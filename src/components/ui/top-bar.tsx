@@ -1,0 +1,111 @@
+import { Link, NavLink, useLocation } from 'react-router'
+import { Chevron } from './chevron.tsx'
+import { Mark } from './mark.tsx'
+import { Menu } from './menu.tsx'
+import type { MenuItem } from './menu.tsx'
+import { PlaceBall } from './place-ball.tsx'
+import { SearchBox } from './search-box.tsx'
+
+export interface Place {
+  to: string
+  label: string
+  /** Only this very path counts as being there. */
+  end?: boolean
+  /** Further paths that belong to this place, as prefixes. */
+  also?: readonly string[]
+  /** How many things wait there. */
+  waiting?: number
+}
+
+export interface TopBarProps {
+  /** Where the mark leads. */
+  home: string
+  places: readonly Place[]
+  machines: readonly MenuItem[]
+  /** Name of the machine shown; without it "All machines". */
+  machine?: string
+  onSearch: (text: string) => void
+  person?: { name: string; roles: string }
+  personItems: readonly MenuItem[]
+}
+
+/** The slim bar above every page. Below 1024 px the places fold into a menu and the search takes a line of its own. */
+export function TopBar({ home, places, machines, machine, onSearch, person, personItems }: TopBarProps) {
+  const { pathname } = useLocation()
+  const here = places.find((p) => isHere(p, pathname))
+  return (
+    <header className="bar">
+      <a href="#content" className="sr-only focus:not-sr-only focus:absolute focus:left-2 focus:top-2 focus:z-30 focus:bg-sheet focus:p-2">
+        to the content
+      </a>
+      <div className="wrap bar-row">
+        <Link to={home} className="flex items-center gap-2 text-16 font-semibold tracking-[.1px] text-ink no-underline" aria-label="Detent, to the desk">
+          <Mark />
+          <span className="max-[419px]:sr-only">Detent</span>
+        </Link>
+        <Menu label="machine" items={machines}>
+          <span className="max-w-[9rem] truncate">{machine ?? 'All machines'}</span>
+          <Chevron />
+        </Menu>
+        <nav aria-label="main" className="bar-nav">
+          {places.map((place) => (
+            <NavLink key={place.to} to={place.to} end={place.end} aria-current={place === here ? 'page' : undefined} className="">
+              {place.label}
+              {place.waiting ? <WaitingCount n={place.waiting} /> : null}
+              {place === here && <PlaceBall />}
+            </NavLink>
+          ))}
+        </nav>
+        <div className="bar-narrow">
+          <Menu
+            label="place"
+            buttonClass="switch border-transparent bg-transparent"
+            items={places.map((p) => ({ label: p.label, to: p.to, current: p === here, note: p.waiting ? <WaitingCount n={p.waiting} /> : undefined }))}
+          >
+            {here?.label ?? 'go to'}
+            <Chevron />
+          </Menu>
+        </div>
+        <span className="flex-1" />
+        <div className="bar-wide">
+          <SearchBox onSearch={onSearch} className="w-[208px]" />
+        </div>
+        {person && (
+          <Menu label="person" align="end" buttonClass="border-0 bg-transparent p-0 text-right text-13 leading-4" items={personItems}>
+            <span className="max-sm:hidden">
+              {person.name}
+              <span className="block text-12 leading-4 text-ink-2">{person.roles}</span>
+            </span>
+            <span className="grid size-[30px] place-items-center rounded-full border border-rule font-medium sm:hidden" aria-label={person.name}>
+              {initials(person.name)}
+            </span>
+          </Menu>
+        )}
+      </div>
+      <div className="bar-narrow">
+        <div className="wrap pb-2 lg:hidden">
+          <SearchBox onSearch={onSearch} className="w-full" />
+        </div>
+      </div>
+    </header>
+  )
+}
+
+function WaitingCount({ n }: { n: number }) {
+  return (
+    <b className="num ml-[6px] text-12 leading-4 font-medium text-brass">
+      {n}
+      <span className="sr-only"> waiting</span>
+    </b>
+  )
+}
+
+function isHere(place: Place, path: string): boolean {
+  const within = (prefix: string) => path === prefix || path.startsWith(`${prefix}/`)
+  return (place.end ? path === place.to : within(place.to)) || (place.also ?? []).some(within)
+}
+
+function initials(name: string): string {
+  const words = name.split(/\s+/)
+  return (words[0].charAt(0) + (words.length > 1 ? words[words.length - 1].charAt(0) : '')).toUpperCase()
+}
