@@ -12,3 +12,8 @@ export const FirmwareLine = defineEntity({
   },
 })
 export type FirmwareLine = InferEntity<typeof FirmwareLine>
+
+export function describe(line: FirmwareLine, edit: { name?: string; description?: string }) {
+  if (edit.name !== undefined) line.name = edit.name.trim()
+  if (edit.description !== undefined) line.description = edit.description.trim()
+}

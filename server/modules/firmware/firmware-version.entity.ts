@@ -20,6 +20,8 @@ export const FirmwareVersion = defineEntity({
     schemaHash: p.string().length(64),
     notes: p.text(),
     uploadedBy: () => p.manyToOne(Person),
+    /** everybody who wrote in it, the uploader first: none of them publishes or retires it */
+    writers: p.json<number[]>(),
     createdAt: p.datetime(),
     publishedBy: () => p.manyToOne(Person).nullable(),
     publishedAt: p.datetime().nullable(),
@@ -31,24 +33,37 @@ export const FirmwareVersion = defineEntity({
 })
 export type FirmwareVersion = InferEntity<typeof FirmwareVersion>
 
+/** The name that joints give it by, such as "hinge 2.1.0". */
+export const firmwareName = (v: FirmwareVersion) => `${v.line.key} ${v.version}`
+
 const refuse = (v: FirmwareVersion, act: string): never => {
-  throw new DomainError('wrong-state', `${v.line.key} ${v.version} is ${v.state}; it can't be ${act}. Nothing was altered.`)
+  throw new DomainError('wrong-state', `${firmwareName(v)} is ${v.state}; it can't be ${act}. Nothing was altered.`)
 }
 
-export function editSchema(v: FirmwareVersion, edit: { schemaText: string; schemaHash: string; notes: string }) {
+export function editSchema(v: FirmwareVersion, edit: { schemaText: string; schemaHash: string; notes: string }, by: Person) {
   if (v.state !== 'draft') refuse(v, 'edited; draft a new version instead')
-  Object.assign(v, edit)
+  Object.assign(v, { schemaText: edit.schemaText, schemaHash: edit.schemaHash, notes: edit.notes })
+  if (!v.writers.includes(by.id)) v.writers = [...v.writers, by.id]
   v.revision += 1
 }
 
+/** @throws DomainError own-work, wrong-state */
 export function publish(v: FirmwareVersion, by: Person, at: Date) {
+  mustBeOthers(v, by, 'publishes')
   if (v.state !== 'draft') refuse(v, 'published')
   Object.assign(v, { state: 'published', publishedBy: by, publishedAt: at })
   v.revision += 1
 }
 
+/** @throws DomainError own-work, wrong-state */
 export function retire(v: FirmwareVersion, by: Person, at: Date) {
+  mustBeOthers(v, by, 'retires')
   if (v.state !== 'published') refuse(v, 'retired')
   Object.assign(v, { state: 'retired', retiredBy: by, retiredAt: at })
   v.revision += 1
+}
+
+function mustBeOthers(v: FirmwareVersion, by: Person, act: 'publishes' | 'retires') {
+  if (v.writers.includes(by.id))
+    throw new DomainError('own-work', `You wrote in ${firmwareName(v)}; another release manager ${act} it. Nothing was altered.`, { recorded: true })
 }

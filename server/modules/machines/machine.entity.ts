@@ -1,4 +1,5 @@
 import { defineEntity, p, type InferEntity } from '@mikro-orm/core'
+import { DomainError } from '../../http/errors.ts'
 
 /** A machine type under control. What it is made of stands in its releases and drafts; this is its identity. */
 export const Machine = defineEntity({
@@ -17,3 +18,18 @@ export const Machine = defineEntity({
   },
 })
 export type Machine = InferEntity<typeof Machine>
+
+function mustBeInUse(machine: Machine, act: string) {
+  if (machine.retiredAt) throw new DomainError('wrong-state', `${machine.name} is retired; it can't be ${act}. Nothing was altered. Its releases and its ledger stay readable.`)
+}
+
+export function describe(machine: Machine, edit: { name?: string; description?: string }) {
+  mustBeInUse(machine, 'described')
+  if (edit.name !== undefined) machine.name = edit.name.trim()
+  if (edit.description !== undefined) machine.description = edit.description.trim()
+}
+
+export function retire(machine: Machine, now: Date) {
+  mustBeInUse(machine, 'retired again')
+  machine.retiredAt = now
+}
