@@ -1,0 +1,116 @@
+import { isObject, shown, under, type Json, type ProblemList } from './problem-list.ts'
+
+/** Deepest nesting a schema may have; enough for any map, far from a stack's end. */
+export const MAX_DEPTH = 32
+
+/** What a `$ref` inside the same schema points at; undefined when it points nowhere. */
+export function targetOf(root: Json, ref: string): unknown {
+  if (ref === '#') return root
+  let node: unknown = root
+  for (const step of ref.slice(2).split('/')) {
+    const key = decode(step)
+    if (Array.isArray(node) && /^\d+$/.test(key)) node = node[Number(key)]
+    else if (isObject(node) && Object.hasOwn(node, key)) node = node[key]
+    else return undefined
+  }
+  return node
+}
+
+function decode(step: string): string {
+  try {
+    return decodeURIComponent(step).replaceAll('~1', '/').replaceAll('~0', '~')
+  } catch {
+    return step
+  }
+}
+
+/** Keys whose content is data or names, not schemas: a `$ref` inside them is none. */
+const DATA = new Set(['const', 'enum', 'default', 'examples', 'x-register', 'x-image', 'x-carry'])
+
+/**
+ * Walks a whole schema before anything else reads it: refuses remote and cyclic references, references that point
+ * nowhere, dynamic ones, regular expressions, and nesting beyond the limit.
+ *
+ * @returns false when the schema must not be read further
+ */
+export function checkReferences(root: Json, list: ProblemList): boolean {
+  const before = list.problems.length
+  const refs = new Map<string, string>()
+  walk(root, '', 0, refs, list)
+  if (list.problems.length > before) return false
+  checkCycles(root, refs, list)
+  return list.problems.length === before
+}
+
+/** `refs`: reference found at each pointer. */
+function walk(node: unknown, at: string, depth: number, refs: Map<string, string>, list: ProblemList): void {
+  if (depth > MAX_DEPTH) {
+    list.add(at.slice(0, 200), 'too-deep', `The schema is nested deeper than ${MAX_DEPTH} levels.`)
+    return
+  }
+  if (Array.isArray(node)) {
+    node.forEach((item, k) => walk(item, under(at, k), depth + 1, refs, list))
+    return
+  }
+  if (!isObject(node)) return
+  // under `properties` and `$defs` the keys are names, so that a parameter may be called “pattern”
+  const names = at.endsWith('/properties') || at.endsWith('/$defs')
+  for (const [key, value] of Object.entries(node)) {
+    const where = under(at, key)
+    if (!names) {
+      if (DATA.has(key)) continue
+      if (key === 'pattern' || key === 'patternProperties') {
+        list.add(where, 'regular-expression', 'Regular expressions have no place in a parameter schema: its values are numbers, booleans and enums.')
+        continue
+      }
+      if (key === '$dynamicRef' || key === '$dynamicAnchor' || key === '$anchor' || key === '$recursiveRef') {
+        list.add(where, 'reference-not-allowed', `${key} is not allowed; use $ref with a JSON pointer into $defs.`)
+        continue
+      }
+      if (key === '$ref') {
+        readRef(value, where, refs, list)
+        continue
+      }
+    }
+    if (typeof value === 'object' && value !== null) walk(value, where, depth + 1, refs, list)
+  }
+}
+
+function readRef(value: unknown, at: string, refs: Map<string, string>, list: ProblemList): void {
+  if (typeof value !== 'string' || !/^#(\/|$)/.test(value)) {
+    list.add(at, 'remote-reference', `${shown(value)} is not a reference inside this schema. Write "#/$defs/…".`)
+    return
+  }
+  refs.set(at, value)
+}
+
+function checkCycles(root: Json, refs: ReadonlyMap<string, string>, list: ProblemList): void {
+  // pointers sorted, so that the references inside a target are one run of the list
+  const places = [...refs.keys()].sort()
+  const done = new Set<string>()
+  const open = new Set<string>()
+  const inside = (target: string): string[] => {
+    const start = `${target}/`
+    return places.filter((place) => place.startsWith(start))
+  }
+  const visit = (place: string): void => {
+    if (done.has(place)) return
+    const ref = refs.get(place)!
+    if (targetOf(root, ref) === undefined) {
+      list.add(place, 'reference-to-nothing', `${shown(ref)} points at nothing in this schema.`)
+      done.add(place)
+      return
+    }
+    if (open.has(place) || place.startsWith(`${ref.slice(1)}/`)) {
+      list.add(place, 'cyclic-reference', `${shown(ref)} leads back to itself.`)
+      done.add(place)
+      return
+    }
+    open.add(place)
+    if (open.size <= MAX_DEPTH) inside(ref.slice(1)).forEach(visit)
+    else list.add(place, 'too-deep', `References lead through more than ${MAX_DEPTH} others.`)
+    open.delete(place)
+    done.add(place)
+  }
+  places.forEach(visit)
+}

@@ -1,0 +1,140 @@
+import { orderOf, physicalRange, toRaw } from './encoding.ts'
+import type { Bound, Parameter, ParameterValue, ParameterValues } from './parameter-schema.ts'
+import { shown, under } from './problem-list.ts'
+import { compare, divide, exactly, multiply, roundHalfEven, type Rational } from './rational.ts'
+
+export interface ValueProblem {
+  /** JSON pointer into the set of values. */
+  readonly pointer: string
+  /** Name of the parameter; empty for a rule over several. */
+  readonly parameter: string
+  readonly code:
+    | 'unknown-parameter' | 'no-register' | 'read-only' | 'missing' | 'wrong-type' | 'not-finite' | 'not-a-decimal'
+    | 'not-whole' | 'out-of-range' | 'below-minimum' | 'above-maximum' | 'not-a-multiple' | 'not-a-member' | 'not-constant' | 'rule' | 'release'
+  readonly message: string
+}
+
+export type ValueReading =
+  | { readonly kind: 'value'; readonly exact: Rational | null; readonly raw: number | null }
+  | { readonly kind: 'refused'; readonly code: ValueProblem['code']; readonly message: string }
+
+const refused = (code: ValueProblem['code'], message: string): ValueReading => ({ kind: 'refused', code, message })
+
+/** The parameter as messages name it. */
+export const label = (parameter: Parameter): string =>
+  parameter.title === parameter.name ? parameter.name : `${parameter.title} (${parameter.name})`
+
+const withUnit = (text: string, parameter: Parameter): string => (parameter.unit ? `${text} ${parameter.unit}` : text)
+
+/**
+ * One value against its parameter: type, register range, bounds.
+ *
+ * Register range and bounds are judged on rounded raw values, so that a typed 0.2 meets a maximum of 0.2 in an f32.
+ *
+ * @returns the exact value and the raw value, or the first thing wrong with it, naming parameter, value and range
+ * @source  register-image.md, Encoding rules
+ */
+export function readValue(parameter: Parameter, value: unknown): ValueReading {
+  const name = label(parameter)
+  if (parameter.kind === 'boolean') {
+    if (typeof value !== 'boolean') return refused('wrong-type', `${name} must be true or false, not ${shown(value)}.`)
+    return { kind: 'value', exact: null, raw: parameter.register?.values?.[String(value)] ?? null }
+  }
+  if (parameter.kind === 'enum') return readMember(parameter, value, name)
+  return readNumber(parameter, value, name)
+}
+
+function readMember(parameter: Parameter, value: unknown, name: string): ValueReading {
+  const choices = parameter.choices ?? []
+  const member = choices.find((choice) => choice === value || (typeof choice === 'number' && typeof value === 'string' && sameDecimal(choice, value)))
+  if (member === undefined) return refused('not-a-member', `${name} cannot be ${shown(value)}. It is one of ${choices.join(', ')}.`)
+  return { kind: 'value', exact: null, raw: parameter.register?.values?.[String(member)] ?? null }
+}
+
+function sameDecimal(a: number, b: string): boolean {
+  const left = exactly(a)
+  const right = exactly(b)
+  return left !== null && right !== null && compare(left, right) === 0
+}
+
+function readNumber(parameter: Parameter, value: unknown, name: string): ValueReading {
+  const codec = parameter.register?.codec ?? null
+  const holds = codec ? rangeText(parameter) : ''
+  if (typeof value === 'number' && !Number.isFinite(value)) return refused('not-finite', `${name} cannot be ${value}.${holds}`)
+  if (typeof value !== 'number' && typeof value !== 'string') return refused('wrong-type', `${name} must be a number, not ${shown(value)}.${holds}`)
+  const exact = exactly(value)
+  if (!exact) {
+    return /^[+-]?\d/.test(String(value))
+      ? refused('not-a-decimal', `${name}: ${shown(value)} is no decimal of at most 400 characters and powers of ten.${holds}`)
+      : refused('wrong-type', `${name} must be a number, not ${shown(value)}.${holds}`)
+  }
+  if (parameter.kind === 'integer' && exact.n % exact.d !== 0n) return refused('not-whole', `${name} must be a whole number, not ${value}.`)
+  const raw = codec ? toRaw(codec, exact) : null
+  if (raw?.kind === 'out-of-range') {
+    return refused('out-of-range', `${name} cannot hold ${withUnit(String(value), parameter)}.${holds}`)
+  }
+  const outside = outsideBounds(parameter, exact, String(value), name)
+  if (outside) return outside
+  return { kind: 'value', exact, raw: raw ? raw.raw : null }
+}
+
+/** Sentence with the range that a register can hold. */
+export function rangeText(parameter: Parameter): string {
+  const register = parameter.register
+  if (!register || register.values) return ''
+  const { low, high } = physicalRange(register.codec)
+  return ` Its register (${register.encoding.name}) holds ${low} to ${withUnit(String(high), parameter)}.`
+}
+
+/** Sign of value − bound, on raw values where there is a register. */
+function against(parameter: Parameter, exact: Rational, bound: Bound): number {
+  if (!parameter.register || bound.order === null) return compare(exact, bound.exact)
+  const order = orderOf(parameter.register.codec, exact)
+  return order < bound.order ? -1 : order > bound.order ? 1 : 0
+}
+
+function outsideBounds(parameter: Parameter, exact: Rational, text: string, name: string): ValueReading | null {
+  const { minimum, maximum, exclusiveMinimum, exclusiveMaximum, multipleOf } = parameter.bounds
+  const given = withUnit(text, parameter)
+  if (minimum && against(parameter, exact, minimum) < 0) return refused('below-minimum', `${name}: ${given} is below the minimum ${minimum.text}.`)
+  if (maximum && against(parameter, exact, maximum) > 0) return refused('above-maximum', `${name}: ${given} is above the maximum ${maximum.text}.`)
+  if (exclusiveMinimum && against(parameter, exact, exclusiveMinimum) <= 0) return refused('below-minimum', `${name}: ${given} must be above ${exclusiveMinimum.text}.`)
+  if (exclusiveMaximum && against(parameter, exact, exclusiveMaximum) >= 0) return refused('above-maximum', `${name}: ${given} must be below ${exclusiveMaximum.text}.`)
+  if (multipleOf && !isMultiple(parameter, exact, multipleOf)) return refused('not-a-multiple', `${name}: ${given} is no multiple of ${multipleOf.text}.`)
+  return null
+}
+
+/** A multiple, or what the register holds in place of one. */
+function isMultiple(parameter: Parameter, exact: Rational, step: Bound): boolean {
+  const nearest = multiply({ n: roundHalfEven(divide(exact, step.exact)), d: 1n }, step.exact)
+  if (compare(nearest, exact) === 0) return true
+  const codec = parameter.register?.codec
+  if (!codec || codec.encoding.kind === 'integer') return false
+  return orderOf(codec, nearest) === orderOf(codec, exact)
+}
+
+/** The value that counts for a parameter: the one given, else the default; undefined when there is neither. */
+export const effectiveValue = (parameter: Parameter, values: ParameterValues): ParameterValue | undefined =>
+  Object.hasOwn(values, parameter.name) ? values[parameter.name] : (parameter.default ?? undefined)
+
+/** What is wrong with one value, `const` counted in; null when nothing is. */
+export function problemOfValue(parameter: Parameter, value: unknown): ValueProblem | null {
+  const reading = readValue(parameter, value)
+  if (reading.kind === 'refused') return valueProblem(parameter.name, reading.code, reading.message)
+  if (parameter.constant !== null && !equalValues(parameter, parameter.constant, value as ParameterValue)) {
+    return valueProblem(parameter.name, 'not-constant', `${label(parameter)} must be ${shown(parameter.constant)}, not ${shown(value)}.`)
+  }
+  return null
+}
+
+/** Equal as the board would see them: by raw value where there is a register, else exactly. */
+export function equalValues(parameter: Parameter, a: ParameterValue, b: ParameterValue): boolean {
+  const left = readValue(parameter, a)
+  const right = readValue(parameter, b)
+  if (left.kind !== 'value' || right.kind !== 'value') return false
+  if (left.raw !== null && right.raw !== null) return left.raw === right.raw
+  return left.exact && right.exact ? compare(left.exact, right.exact) === 0 : a === b
+}
+
+export const valueProblem = (name: string, code: ValueProblem['code'], message: string): ValueProblem =>
+  ({ pointer: under('', name), parameter: name, code, message })
