@@ -11,7 +11,7 @@ export function DecimalText({ text, places }: { text: string | null; places: num
   const point = text.indexOf('.')
   const after = point < 0 ? 0 : text.length - point
   return (
-    <span className="num" style={{ paddingRight: `${places - after}ch` }}>
+    <span className="num grouped" style={{ paddingRight: `${places - after}ch` }}>
       {text}
     </span>
   )

@@ -22,7 +22,7 @@ export function Num({ value, unit = '', digits, plus, className = '' }: NumProps
   const q = typeof value === 'string' ? { number: formatExact(value), unit, power: 0 } : formatQuantity(value, unit, { digits, plus })
   return (
     <span className={`whitespace-nowrap ${className}`}>
-      <span className="num">
+      <span className="num grouped">
         {q.number}
         {q.power !== 0 && (
           <>

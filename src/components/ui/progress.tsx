@@ -39,7 +39,7 @@ export function Progress({ label, done, total, noun, secondsLeft, onStop, note =
       </div>
       <div className="flex flex-wrap justify-between gap-x-3 text-13 text-ink-2">
         <span>
-          <span className="num">{whole(done)}</span> of <span className="num">{whole(total)}</span> {noun}
+          <span className="num grouped">{whole(done)}</span> of <span className="num grouped">{whole(total)}</span> {noun}
         </span>
         <span>{[secondsLeft === null || secondsLeft === undefined ? '' : `about ${formatDuration(Math.max(1, secondsLeft))} left`, note].filter(Boolean).join(', ')}</span>
       </div>

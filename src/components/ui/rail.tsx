@@ -119,8 +119,8 @@ function Line({ width, here, struck, cancelled, peerReview, release }: LineProps
 function Notch({ ball, reached, last, struck }: { ball: 'brass' | 'hollow' | null; reached: boolean; last: boolean; struck: boolean }) {
   const ink = reached ? 'var(--ink)' : 'var(--rule)'
   return (
-    <svg width="26" height="100%" aria-hidden="true">
-      {!last && <path d="M13 22V400" stroke="var(--hairline)" />}
+    <svg width="26" aria-hidden="true">
+      {!last && <line x1="13" x2="13" y1="22" y2="100%" stroke="var(--hairline)" />}
       <path d="M0 7H5l8 9.5L21 7h5" fill="var(--paper)" stroke={ink} strokeWidth={reached ? 1.6 : 1.2} />
       {ball === 'brass' && <circle cx="13" cy="6.6" r="6" fill="var(--brass)" />}
       {ball === 'hollow' && <circle cx="13" cy="6.6" r="5.4" fill="var(--sheet)" stroke="var(--ink)" strokeWidth="1.6" />}

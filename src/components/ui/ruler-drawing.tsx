@@ -71,9 +71,9 @@ function Figures({ scale, width, notch, released, format }: { scale: RulerScale;
   const at = notch === null ? 0 : Math.min(width - PAD - half, Math.max(PAD + half, notch))
   return (
     <>
-      {keepLow && <text x={PAD} y="28" className="num">{low}</text>}
-      {keepHigh && <text x={width - PAD} y="28" textAnchor="end" className="num">{high}</text>}
-      {notch !== null && <text x={at} y="28" textAnchor="middle" className="num ink">{middle}</text>}
+      {keepLow && <text x={PAD} y="28" className="num grouped">{low}</text>}
+      {keepHigh && <text x={width - PAD} y="28" textAnchor="end" className="num grouped">{high}</text>}
+      {notch !== null && <text x={at} y="28" textAnchor="middle" className="num grouped ink">{middle}</text>}
     </>
   )
 }
