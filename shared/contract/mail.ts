@@ -1,3 +1,5 @@
+import type { Allowed } from './people.ts'
+
 export interface MailView {
   id: number
   to: string
@@ -10,4 +12,12 @@ export interface MailView {
   createdAt: string
   sentAt: string | null
   lastError: string | null
+  may: { retry: Allowed }
+}
+
+export interface MailPage {
+  mails: MailView[]
+  /** id to ask before for the next page; null at the end */
+  next: number | null
+  total: number
 }

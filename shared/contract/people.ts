@@ -27,6 +27,8 @@ export type InvitePerson = Static<typeof InvitePerson>
 export const AskReset = Type.Object({ email: Email }, strict)
 export const UseLink = Type.Object({ secret: Type.String({ minLength: 20, maxLength: 200 }), password: Password }, strict)
 export type UseLink = Static<typeof UseLink>
+/** The acts that say everything in their address. */
+export const Nothing = Type.Object({}, strict)
 export const ChangePassword = Type.Object({ current: Password, next: Password }, strict)
 export type ChangePassword = Static<typeof ChangePassword>
 
@@ -44,12 +46,18 @@ export type Allowed = { allowed: true } | { allowed: false; why: string }
 export interface PersonView {
   id: number
   name: string
-  email: string
+  /** null to whom neither keeps people nor is this person */
+  email: string | null
   state: 'invited' | 'active' | 'disabled'
   /** why signatures of this person wait for another signer's confirmation; null when they don't */
   signingHold: string | null
   roles: GrantView[]
-  may: { grantRoles: Allowed; disable: Allowed; reset: Allowed; confirmSigning: Allowed }
+  may: { grantRoles: Allowed; endRoles: Allowed; disable: Allowed; enable: Allowed; reset: Allowed; confirmSigning: Allowed }
+}
+
+export interface PeopleView {
+  people: PersonView[]
+  may: { invite: Allowed }
 }
 
 /** Who is signed in: what the client shows and hides by. */
@@ -58,13 +66,31 @@ export interface Me {
   name: string
   email: string
   roles: GrantView[]
+  /** why this person's signatures wait for another signer's confirmation; null when they don't */
+  signingHold: string | null
   /** acts of the permission matrix, by machine key; '*' holds what is not tied to one machine */
   acts: Record<string, string[]>
   /** to be sent as X-Detent-Token with every act */
   token: string
 }
 
+/** Whom a single-use link is for, before it is used. */
+export interface LinkView {
+  kind: 'invitation' | 'reset'
+  name: string
+  email: string
+  expiresAt: string
+}
+
+/** A password was set by link: what comes next. */
+export interface LinkUsed {
+  email: string
+  /** signing waits until another signer confirms it */
+  signingHold: string | null
+}
+
 export interface SessionView {
+  /** derived from the session, opens nothing */
   id: string
   current: boolean
   createdAt: string

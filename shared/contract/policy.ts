@@ -1,25 +1,28 @@
 import { Type, type Static } from '@sinclair/typebox'
+import type { Allowed } from './people.ts'
 
 const strict = { additionalProperties: false }
-const pair = () => Type.Object({ advise: Type.Number(), concession: Type.Number() }, strict)
+const limit = (unit: string, maximum = 1e6) => Type.Number({ minimum: 0, maximum, description: unit })
+const degrees = () => limit('degrees', 180)
+const percent = () => limit('percent', 1000)
 
 /** Limits of the findings and the count of peer reviews; one version of a machine's policy. Units in the names. */
 export const PolicyContent = Type.Object(
   {
     peerReviews: Type.Integer({ minimum: 1, maximum: 5 }),
-    phaseMarginDeg: Type.Object({ nominal: Type.Number(), worst: Type.Number(), block: Type.Number() }, strict),
-    gainMarginDb: Type.Object({ nominal: Type.Number(), worst: Type.Number() }, strict),
-    sensitivityPeak: pair(),
-    separation: pair(),
-    outerRateOverBandwidth: Type.Number(),
-    deadTimePhaseDeg: Type.Number(),
-    quantumRipplePercent: Type.Number(),
-    windingReserveK: Type.Number(),
-    overshootPercent: Type.Number(),
-    finalErrorCounts: Type.Number(),
-    limitCycleCounts: Type.Number(),
-    roundingPercent: pair(),
-    busLoadPercent: Type.Object({ advise: Type.Number(), block: Type.Number() }, strict),
+    phaseMarginDeg: Type.Object({ nominal: degrees(), worst: degrees(), block: degrees() }, strict),
+    gainMarginDb: Type.Object({ nominal: limit('dB'), worst: limit('dB') }, strict),
+    sensitivityPeak: Type.Object({ advise: limit('ratio'), concession: limit('ratio') }, strict),
+    separation: Type.Object({ advise: limit('ratio'), concession: limit('ratio') }, strict),
+    outerRateOverBandwidth: limit('ratio'),
+    deadTimePhaseDeg: degrees(),
+    quantumRipplePercent: percent(),
+    windingReserveK: limit('K', 500),
+    overshootPercent: percent(),
+    finalErrorCounts: limit('encoder counts'),
+    limitCycleCounts: limit('encoder counts'),
+    roundingPercent: Type.Object({ advise: percent(), concession: percent() }, strict),
+    busLoadPercent: Type.Object({ advise: percent(), block: Type.Number({ minimum: 0, maximum: 100, description: 'percent' }) }, strict),
   },
   strict,
 )
@@ -43,6 +46,30 @@ export const defaultPolicy: PolicyContent = {
   busLoadPercent: { advise: 70, block: 100 },
 }
 
+const Reason = Type.String({ minLength: 1, maxLength: 2000, pattern: '\\S' })
+export const ProposePolicy = Type.Object({ content: PolicyContent, reason: Reason }, strict)
+export type ProposePolicy = Static<typeof ProposePolicy>
+export const SignPolicy = Type.Object({ password: Type.String({ minLength: 1, maxLength: 200 }) }, strict)
+export const DeclinePolicy = Type.Object({ reason: Reason }, strict)
+
+/** What the signer of a policy states. */
+export const policyStatement = 'I have read every limit of this policy and put it in force. I did not propose it.'
+
+/** What of a policy contradicts itself, although each number fits: pointers into the content. */
+export function policyContradictions(c: PolicyContent): { pointer: string; detail: string }[] {
+  const pairs: [boolean, string, string][] = [
+    [c.phaseMarginDeg.worst <= c.phaseMarginDeg.nominal, '/phaseMarginDeg/worst', 'is above the nominal limit'],
+    [c.phaseMarginDeg.block <= c.phaseMarginDeg.worst, '/phaseMarginDeg/block', 'is above the limit for the worst case'],
+    [c.gainMarginDb.worst <= c.gainMarginDb.nominal, '/gainMarginDb/worst', 'is above the nominal limit'],
+    [c.sensitivityPeak.advise >= 1, '/sensitivityPeak/advise', 'is below 1, which no loop reaches'],
+    [c.sensitivityPeak.advise <= c.sensitivityPeak.concession, '/sensitivityPeak/concession', 'is below the limit that advises'],
+    [c.separation.concession <= c.separation.advise, '/separation/concession', 'is above the limit that advises'],
+    [c.roundingPercent.advise <= c.roundingPercent.concession, '/roundingPercent/concession', 'is below the limit that advises'],
+    [c.busLoadPercent.advise <= c.busLoadPercent.block, '/busLoadPercent/block', 'is below the limit that advises'],
+  ]
+  return pairs.filter(([holds]) => !holds).map(([, pointer, detail]) => ({ pointer, detail }))
+}
+
 export interface PolicyView {
   machine: string
   number: number
@@ -53,4 +80,14 @@ export interface PolicyView {
   proposedAt: string
   signedBy: string | null
   signedAt: string | null
+  may: { sign: Allowed; decline: Allowed }
+}
+
+export interface MachinePolicyView {
+  machine: string
+  machineName: string
+  inForce: PolicyView
+  /** newest first, the one in force among them */
+  versions: PolicyView[]
+  may: { propose: Allowed }
 }

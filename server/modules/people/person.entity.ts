@@ -1,4 +1,5 @@
 import { defineEntity, p, type InferEntity } from '@mikro-orm/core'
+import { DomainError } from '../../http/errors.ts'
 
 /** A person who may sign in. People are disabled, never deleted: their acts stay theirs. */
 export const Person = defineEntity({
@@ -15,3 +16,22 @@ export const Person = defineEntity({
   },
 })
 export type Person = InferEntity<typeof Person>
+
+export function disable(person: Person, now: Date) {
+  if (person.disabledAt !== null) throw new DomainError('wrong-state', `${person.name} is disabled already. Nothing was altered.`)
+  person.disabledAt = now
+}
+
+export function enable(person: Person) {
+  if (person.disabledAt === null) throw new DomainError('wrong-state', `${person.name} is not disabled. Nothing was altered.`)
+  person.disabledAt = null
+}
+
+/** From here on the person's signatures wait for another signer's confirmation. */
+export function holdSigning(person: Person, why: string) {
+  person.signingHold = why
+}
+
+export function releaseSigning(person: Person) {
+  person.signingHold = null
+}

@@ -1,5 +1,6 @@
 import { defineEntity, p, type InferEntity } from '@mikro-orm/core'
 import type { Role } from '../../../shared/contract/people.ts'
+import { DomainError } from '../../http/errors.ts'
 import { Machine } from '../machines/machine.entity.ts'
 import { Person } from './person.entity.ts'
 
@@ -20,3 +21,14 @@ export const RoleGrant = defineEntity({
   },
 })
 export type RoleGrant = InferEntity<typeof RoleGrant>
+
+export function confirm(grant: RoleGrant, by: Person, now: Date) {
+  if (grant.confirmedAt !== null) return
+  grant.confirmedBy = by
+  grant.confirmedAt = now
+}
+
+export function end(grant: RoleGrant, now: Date) {
+  if (grant.endedAt !== null) throw new DomainError('wrong-state', 'This role ended already. Nothing was altered.')
+  grant.endedAt = now
+}

@@ -1,5 +1,6 @@
 import { defineEntity, p, type InferEntity } from '@mikro-orm/core'
 import type { PolicyContent } from '../../../shared/contract/policy.ts'
+import { DomainError } from '../../http/errors.ts'
 import { Machine } from '../machines/machine.entity.ts'
 import { Person } from '../people/person.entity.ts'
 
@@ -22,3 +23,22 @@ export const PolicyVersion = defineEntity({
   },
 })
 export type PolicyVersion = InferEntity<typeof PolicyVersion>
+
+export type PolicyState = 'proposed' | 'signed' | 'declined'
+
+export const stateOf = (v: PolicyVersion): PolicyState => (v.signedAt !== null ? 'signed' : v.declinedAt !== null ? 'declined' : 'proposed')
+
+function mustBeProposed(v: PolicyVersion, act: string) {
+  const state = stateOf(v)
+  if (state !== 'proposed') throw new DomainError('wrong-state', `Version ${v.number} of the policy is ${state}; it can't be ${act}. Nothing was altered.`)
+}
+
+export function sign(v: PolicyVersion, by: Person, now: Date) {
+  mustBeProposed(v, 'signed')
+  Object.assign(v, { signedBy: by, signedAt: now })
+}
+
+export function decline(v: PolicyVersion, now: Date) {
+  mustBeProposed(v, 'declined')
+  v.declinedAt = now
+}
