@@ -1,0 +1,32 @@
+/** Every address of the client. */
+const part = encodeURIComponent
+
+export const paths = {
+  desk: () => '/',
+  signIn: (next?: string) => (next && next !== '/' ? `/sign-in?next=${part(next)}` : '/sign-in'),
+  forgotten: () => '/forgotten',
+  link: (secret: string) => `/links/${part(secret)}`,
+  account: () => '/account',
+  people: () => '/people',
+  person: (id: number) => `/people/${id}`,
+  mail: () => '/mail',
+  ledger: (filter: { machine?: string; act?: string; person?: string } = {}) => {
+    const query = new URLSearchParams(Object.entries(filter).filter(([, v]) => v)).toString()
+    return query ? `/ledger?${query}` : '/ledger'
+  },
+  policy: (machine?: string) => (machine ? `/policy?machine=${part(machine)}` : '/policy'),
+  machines: () => '/machines',
+  machine: (machine: string) => `/machines/${part(machine)}`,
+  bus: (machine: string, bus: string) => `/machines/${part(machine)}/bus/${part(bus)}`,
+  joint: (machine: string, joint: string) => `/machines/${part(machine)}/joints/${part(joint)}`,
+  family: (machine: string, family: string) => `/machines/${part(machine)}/families/${part(family)}`,
+  firmware: () => '/firmware',
+  firmwareVersion: (line: string, version: string) => `/firmware/${part(line)}/${part(version)}`,
+  changes: (machine?: string) => (machine ? `/changes?machine=${part(machine)}` : '/changes'),
+  change: (change: string) => `/changes/${part(change)}`,
+  changeCheck: (change: string) => `/changes/${part(change)}/check`,
+  changeReview: (change: string) => `/changes/${part(change)}/review`,
+  releases: (machine?: string) => (machine ? `/releases?machine=${part(machine)}` : '/releases'),
+  release: (machine: string, version: string) => `/machines/${part(machine)}/releases/${part(version)}`,
+  search: (text: string) => `/search?q=${part(text)}`,
+}

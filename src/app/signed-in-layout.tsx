@@ -1,0 +1,70 @@
+import { useQuery } from '@tanstack/react-query'
+import { Suspense, useEffect, useRef } from 'react'
+import { Outlet, redirect, ScrollRestoration, useLocation, useNavigate, useNavigation } from 'react-router'
+import type { LoaderFunctionArgs } from 'react-router'
+import { SignInAgain } from '../features/people/components/sign-in-again.tsx'
+import { useSignOut } from '../features/people/mutations.ts'
+import { machinesQuery } from '../features/machines/queries.ts'
+import { ProblemPanel } from '../components/problem/problem-panel.tsx'
+import { TopBar } from '../components/ui/top-bar.tsx'
+import { Waiting } from '../components/ui/waiting.tsx'
+import { ApiProblem } from '../lib/api-client.ts'
+import { holds, meQuery, useMe } from '../lib/me.ts'
+import { queryClient } from '../lib/query-client.ts'
+import { paths } from './paths.ts'
+import { useTheme } from './theme.ts'
+import { machineItems, machineOfPath, personItems, placesFor, rolesInWords } from './top-bar-places.ts'
+
+/** Whoever is not signed in goes to the sign-in page, and back here after it. */
+export async function signedInLoader({ request }: LoaderFunctionArgs) {
+  try {
+    return await queryClient.ensureQueryData(meQuery)
+  } catch (error) {
+    if (!(error instanceof ApiProblem) || error.code !== 'not-signed-in') throw error
+    const { pathname, search } = new URL(request.url)
+    throw redirect(paths.signIn(pathname + search))
+  }
+}
+
+/** Top bar and page. A new page takes the focus, so that keyboard and screen reader begin at its head. */
+export function SignedInLayout() {
+  const me = useMe()
+  const { pathname } = useLocation()
+  const navigate = useNavigate()
+  const busy = useNavigation().state === 'loading'
+  const machines = useQuery(machinesQuery)
+  const signOut = useSignOut()
+  const theme = useTheme()
+  const main = useRef<HTMLElement>(null)
+  const before = useRef(pathname)
+
+  useEffect(() => {
+    if (before.current === pathname) return
+    before.current = pathname
+    main.current?.focus({ preventScroll: true })
+  }, [pathname])
+
+  const machineKey = machineOfPath(pathname)
+  const machine = machines.data?.find((m) => m.key === machineKey)
+  return (
+    <>
+      <TopBar
+        home={paths.desk()}
+        places={placesFor(me)}
+        machines={machineItems(machines.data ?? [], machineKey)}
+        machine={machine?.name}
+        onSearch={(text) => text && void navigate(paths.search(text))}
+        person={{ name: me.name, roles: rolesInWords(me.roles) }}
+        personItems={personItems({ theme, mayKeepPeople: holds(me, 'keep people'), mayKeepMail: holds(me, 'keep mail'), signOut: () => signOut.mutate() })}
+      />
+      <main ref={main} id="content" tabIndex={-1} aria-busy={busy} className="wrap pb-12 outline-none">
+        <ProblemPanel className="mt-3" problem={signOut.error} />
+        <Suspense fallback={<Waiting className="pt-8" />}>
+          <Outlet />
+        </Suspense>
+      </main>
+      <SignInAgain email={me.email} />
+      <ScrollRestoration />
+    </>
+  )
+}
