@@ -1,14 +1,19 @@
 import { Type, type Static } from '@sinclair/typebox'
-import { Key } from '../parameters/machine-set.ts'
+import type { Value } from '../parameters/machine-set.ts'
 import type { Allowed } from './people.ts'
 
 const strict = { additionalProperties: false }
 const SchemaText = Type.String({ maxLength: 2_000_000 })
 const Notes = Type.String({ maxLength: 4000 })
+const Name = Type.String({ minLength: 1, maxLength: 80, pattern: '\\S' })
+const Description = Type.String({ maxLength: 400 })
 
-export const MakeFirmwareLine = Type.Object({ key: Key, name: Type.String({ minLength: 1, maxLength: 80, pattern: '\\S' }), description: Type.String({ maxLength: 400 }) }, strict)
+/** A line's key: one character shorter than other keys, so that the firmware names of joints hold it. */
+const LineKey = Type.String({ pattern: '^[a-z0-9](?:[a-z0-9-]{0,37}[a-z0-9])?$', maxLength: 39, description: 'lower-case letters, digits and hyphens' })
+
+export const MakeFirmwareLine = Type.Object({ key: LineKey, name: Name, description: Description }, strict)
 export type MakeFirmwareLine = Static<typeof MakeFirmwareLine>
-export const DescribeFirmwareLine = Type.Object({ name: Type.Optional(Type.String({ minLength: 1, maxLength: 80, pattern: '\\S' })), description: Type.Optional(Type.String({ maxLength: 400 })) }, strict)
+export const DescribeFirmwareLine = Type.Object({ name: Type.Optional(Name), description: Type.Optional(Description) }, strict)
 export type DescribeFirmwareLine = Static<typeof DescribeFirmwareLine>
 export const DraftFirmwareVersion = Type.Object({ version: Type.String({ minLength: 5, maxLength: 40 }), schemaText: SchemaText, notes: Notes }, strict)
 export type DraftFirmwareVersion = Static<typeof DraftFirmwareVersion>
@@ -27,6 +32,7 @@ export interface FirmwareVersionSummary {
   publishedBy: string | null
   publishedAt: string | null
   parameters: number
+  /** length of the register image */
   imageBytes: number
 }
 
@@ -34,8 +40,25 @@ export interface FirmwareLineView {
   key: string
   name: string
   description: string
+  /** newest version first */
   versions: FirmwareVersionSummary[]
   may: { draftVersion: Allowed; describe: Allowed }
+}
+
+/** A parameter of a firmware version, in short; the schema says the rest. */
+export interface FirmwareParameter {
+  name: string
+  title: string
+  unit: string
+  kind: 'number' | 'integer' | 'boolean' | 'enum'
+  role: string | null
+  boardBound: boolean
+  default: Value | null
+  minimum: number | null
+  maximum: number | null
+  choices: (string | number)[] | null
+  /** null for a constant of the firmware */
+  register: { address: number; bytes: number; encoding: string; access: 'rw' | 'ro' | 'wo'; bit: number | null; width: number | null } | null
 }
 
 export interface FirmwareVersionView extends FirmwareVersionSummary {
@@ -43,6 +66,15 @@ export interface FirmwareVersionView extends FirmwareVersionSummary {
   schemaText: string
   notes: string
   revision: number
+  /** names of everybody who wrote in it, the uploader first; each counts as an author of changes that move a joint to it */
+  writers: string[]
+  createdAt: string
   retiredBy: string | null
+  retiredAt: string | null
+  /** by register address, constants last */
+  parameterList: FirmwareParameter[]
+  image: { base: number; length: number; addressWidth: 8 | 16 }
+  /** what is allowed but worth a second look, with pointers into the schema */
+  advice: { pointer: string; message: string }[]
   may: { edit: Allowed; publish: Allowed; retire: Allowed }
 }
