@@ -166,3 +166,20 @@ function checkNode(node: OneNode | TwoNode): void {
 function checkFinite(field: string, value: number): void {
   guardNumber(field, value, 'any')
 }
+
+/** Time at peak current as a finding takes it: one node alone cannot say how long a peak may last. */
+export type PeakAssessment =
+  | { kind: 'assessed'; time: TimeToTemperature }
+  | { kind: 'not assessed'; reason: 'winding time constant missing'; time: TimeToTemperature }
+
+/**
+ * How long the peak current may last from ambient, with what the figure is worth.
+ *
+ * One node has the housing's time constant, some ten times too kind to the winding: the time is computed, not assessed.
+ *
+ * @source  control-model.md §6
+ */
+export function assessPeak(node: OneNode | TwoNode, I_peak: number, T_max: number): PeakAssessment {
+  const time = timeToTemperature(node, I_peak, T_max)
+  return 'R_th' in node ? { kind: 'not assessed', reason: 'winding time constant missing', time } : { kind: 'assessed', time }
+}
