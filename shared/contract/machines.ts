@@ -1,6 +1,6 @@
 import { Type, type Static } from '@sinclair/typebox'
 import type { EffectiveValue } from '../parameters/effective.ts'
-import type { BusSettings, DriveTrain, FamilySettings, JointSettings } from '../parameters/machine-set.ts'
+import type { BusSettings, DriveTrain, FamilySettings, JointSettings, Value } from '../parameters/machine-set.ts'
 import { Key } from '../parameters/machine-set.ts'
 import type { ChangeSummary } from './changes.ts'
 import type { LedgerEntryView } from './ledger.ts'
@@ -16,6 +16,14 @@ export type MakeMachine = Static<typeof MakeMachine>
 export const DescribeMachine = Type.Object({ name: Type.Optional(Name), description: Type.Optional(Description) }, strict)
 export type DescribeMachine = Static<typeof DescribeMachine>
 export const RetireMachine = Type.Object({ name: Type.String({ maxLength: 80, description: 'the name, typed again' }) }, strict)
+export type RetireMachine = Static<typeof RetireMachine>
+
+/** The release whose set is shown: the newest. Withdrawn, it is shown all the same, marked, until the next one; null before the first. */
+export interface ShownRelease {
+  version: string
+  sequence: number
+  withdrawn: boolean
+}
 
 export interface MachineSummary {
   key: string
@@ -28,7 +36,7 @@ export interface MachineSummary {
   openChanges: number
 }
 
-/** A joint as the current release holds it. */
+/** A joint as the shown release holds it. */
 export interface JointSummary {
   key: string
   name: string
@@ -47,12 +55,14 @@ export interface JointSummary {
 
 export interface BusSummary {
   key: string
+  joints: number
   settings: BusSettings
   /** addresses at which two boards answer */
   doubled: number[]
 }
 
 export interface MachineView extends MachineSummary {
+  shown: ShownRelease | null
   currentRelease: ReleaseSummary | null
   busList: BusSummary[]
   familyList: { key: string; name: string; joints: number; driveTrainNumber: number | null }[]
@@ -71,43 +81,68 @@ export interface ParameterValue extends EffectiveValue {
   boardBound: boolean
   minimum: number | null
   maximum: number | null
-  familyValue: unknown
-  firmwareDefault: unknown
-  register: { address: number; encoding: string; access: string } | null
+  familyValue: Value | null
+  firmwareDefault: Value | null
+  /** null for a constant of the firmware */
+  register: { address: number; encoding: string; access: string; bit: number | null; width: number | null } | null
+  /** the whole word as it lies in memory, hex; empty where no register holds the value */
   bytes: string
+  /** what the board will see; null where no register holds the value */
+  physical: Value | null
+  /** rounding error in the value's unit, and relative to the typed value (null when that is 0 and the error is not) */
+  errorAbsolute: number | null
+  errorRelative: number | null
 }
 
 export interface JointView extends JointSummary {
   machine: string
   machineName: string
+  shown: ShownRelease
   settings: JointSettings
   familySettings: FamilySettings
   busSettings: BusSettings
   driveTrain: DriveTrain
   driveTrainNumber: number | null
   values: ParameterValue[]
+  /** why the values can't be encoded by their schema; empty for whatever a release holds, unless its firmware is gone */
+  problems: { pointer: string; detail: string }[]
   imageSha256: string | null
+  /** its revisions, newest first, each with the release that brought it */
   history: { revision: number; release: string; sequence: number; at: string; change: string; title: string }[]
 }
 
 export interface FamilyView {
   machine: string
   machineName: string
+  shown: ShownRelease
   key: string
   settings: FamilySettings
   driveTrainNumber: number | null
   driveTrainHistory: { number: number; at: string; driveTrain: DriveTrain }[]
   joints: JointSummary[]
   /** value of each parameter across the joints: the family's, and who departs from it */
-  values: { name: string; title: string; unit: string; familyValue: unknown; firmwareDefault: unknown; own: { joint: string; value: unknown }[] }[]
+  values: { name: string; title: string; unit: string; role: string | null; familyValue: Value | null; firmwareDefault: Value | null; own: { joint: string; value: Value }[] }[]
+}
+
+export interface Tap {
+  address: number
+  joint: string | null
+  name: string
+  /** the address lies in a reserved range */
+  reserved: boolean
 }
 
 export interface BusView {
   machine: string
   machineName: string
+  shown: ShownRelease
   key: string
   settings: BusSettings
-  taps: { address: number; joint: string | null; name: string; reserved: boolean }[]
+  /** what answers on the bus, by address; `joint` is null for other devices */
+  taps: Tap[]
   doubled: number[]
+  /** ranges that the bus keeps for itself, ends included */
+  reserved: { from: number; to: number }[]
+  /** addresses at which a board may still be put */
   free: number
 }
