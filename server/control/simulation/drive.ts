@@ -32,6 +32,11 @@ const ROUNDING = 1e-14
 /** Switchings in one interval before the walk gives up locating them: only a degenerate set of values gets there. */
 const MAX_SWITCHINGS = 200
 
+/** ‖A‖·h beyond which Taylor steps would be too many: an electrical time constant far below the tick. */
+const STIFF = 64
+/** Halvings of a unit that stiff intervals are cut into. */
+const HALVINGS = 52
+
 /** A linear function of the state that is ≥ 0 while its mode lasts, and its rate for that mode. */
 interface Guard {
   row: Float64Array
@@ -75,7 +80,8 @@ export class Drive {
   private readonly modes: (Mode | undefined)[] = new Array(18)
   private readonly systems: (Structure | undefined)[] = new Array(4)
   private readonly transitions: ReturnType<typeof transition>[][] = [[], [], [], []]
-  private y: Float64Array
+  private readonly halves: ReturnType<typeof transition>[][] = [[], [], [], []]
+  private readonly y: Float64Array
   private readonly series: Float64Array
   private readonly gamma = new Float64Array(DEGREE + 1)
 
@@ -149,6 +155,10 @@ export class Drive {
     while (remaining > 0) {
       if (this.friction) this.release()
       const mode = this.mode
+      if (mode.system.norm * remaining > STIFF) {
+        remaining = this.descend(mode, remaining, this.switchings < limit)
+        continue
+      }
       const step = Math.min(remaining, 1 / mode.system.norm)
       this.expand(mode)
       let earliest = step
@@ -166,6 +176,40 @@ export class Drive {
       remaining = earliest === remaining ? 0 : remaining - earliest
       if (crossed !== undefined) this.cross(crossed)
     }
+  }
+
+  /**
+   * Walks up to the first switching, or to the end, in exact pieces of unit/2^k: the longest that ends before a
+   * switching, then the next shorter. Returns what is left of the interval.
+   */
+  private descend(mode: Mode, h: number, locate: boolean): number {
+    const { n, x, y, v } = this
+    const cache = this.halves[this.systemKey()]
+    let remaining = h
+    for (let depth = 0; depth <= HALVINGS && remaining > 0; ) {
+      const piece = this.options.unit * 2 ** -depth
+      if (piece > remaining) {
+        depth++
+        continue
+      }
+      const { Ad, Bd } = (cache[depth] ??= transition(mode.system, piece))
+      for (let r = 0; r < n; r++) {
+        let sum = Bd[r * INPUTS] * v + Bd[r * INPUTS + 1] * mode.tau + Bd[r * INPUTS + 2] * mode.offset
+        for (let c = 0; c < n; c++) sum += Ad[r * n + c] * x[c]
+        y[r] = sum
+      }
+      const crossed = locate ? mode.guards.find((guard) => valueOf(guard, y) < 0) : undefined
+      if (crossed !== undefined && depth < HALVINGS) {
+        depth++
+        continue
+      }
+      x.set(y)
+      remaining -= piece
+      if (crossed === undefined) continue
+      this.cross(crossed)
+      return remaining
+    }
+    return 0
   }
 
   /** Taylor coefficients of the state about now, in `series`. */
@@ -332,4 +376,10 @@ export class Drive {
     mode.bv[units] = bv
     mode.b0[units] = b0
   }
+}
+
+function valueOf(guard: Guard, state: Float64Array): number {
+  let sum = guard.constant
+  for (let c = 0; c < state.length; c++) sum += guard.row[c] * state[c]
+  return sum
 }
