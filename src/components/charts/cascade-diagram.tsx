@@ -24,7 +24,6 @@ export interface CascadeDiagramProps {
 }
 
 const TITLES: Record<BlockName, string> = { position: 'Position', velocity: 'Velocity', current: 'Current', driveTrain: 'Drive train', velocityWindow: 'Velocity window', sensor: 'Sensor' }
-const AREAS: Record<BlockName, string> = { position: 'position', velocity: 'velocity', current: 'current', driveTrain: 'drive', velocityWindow: 'window', sensor: 'sensor' }
 
 /**
  * The control cascade as a block diagram whose blocks hold values: reference from the left, feedback returning below. Wires follow the
@@ -43,7 +42,7 @@ export function CascadeDiagram({ mode, outerRate, currentRate, ...slots }: Casca
       <div ref={frame} className="cascade" role="group" aria-label={`control cascade, ${mode} mode`}>
         {boxes && <CascadeWires boxes={boxes} mode={mode} outerRate={outerRate} currentRate={currentRate} />}
         {shown.map((name) => (
-          <section key={name} data-block={name} aria-label={TITLES[name]} className="cascade-block self-stretch" style={{ gridArea: AREAS[name] }}>
+          <section key={name} data-block={name} aria-label={TITLES[name]} className="cascade-block">
             <header>
               {TITLES[name]}
               {blocks[name]?.note !== undefined && <span>{blocks[name]?.note}</span>}

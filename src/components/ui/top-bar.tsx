@@ -62,6 +62,7 @@ export function TopBar({ home, places, machines, machine, onSearch, person, pers
             buttonClass="switch border-transparent bg-transparent"
             items={places.map((p) => ({ label: p.label, to: p.to, current: p === here, note: p.waiting ? <WaitingCount n={p.waiting} /> : undefined }))}
           >
+            {here && <Seat />}
             {here?.label ?? 'go to'}
             <Chevron />
           </Menu>
@@ -97,6 +98,16 @@ function WaitingCount({ n }: { n: number }) {
       {n}
       <span className="sr-only"> waiting</span>
     </b>
+  )
+}
+
+/** The ball in its notch, in a line of text: where you are, in the folded navigation. */
+function Seat() {
+  return (
+    <svg width="18" height="12" viewBox="0 0 18 12" aria-hidden="true">
+      <path d="M0 4.5H4.5L9 10l4.5-5.5H18" fill="none" stroke="var(--rule)" strokeWidth="1.2" />
+      <circle cx="9" cy="4.3" r="3.9" fill="var(--brass)" />
+    </svg>
   )
 }
 

@@ -1,0 +1,30 @@
+import type { LedgerEntryView } from '../../../shared/contract/ledger.ts'
+import { Hash } from '../ui/hash.tsx'
+import { Time } from '../ui/time.tsx'
+
+const short = (value: string | number) => (/^[0-9a-f]{64}$/.test(String(value)) ? String(value).slice(0, 8) : String(value))
+
+/** What an entry is about, besides its machine: "change dunlin-47, release 1.7.0". */
+export const subjectWords = ({ subject }: LedgerEntryView): string =>
+  Object.entries(subject).filter(([k]) => k !== 'machine').map(([k, v]) => `${k} ${short(v)}`).join(', ')
+
+/** Entries of the ledger in few words, newest first. */
+export function Acts({ entries }: { entries: readonly LedgerEntryView[] }) {
+  return (
+    <ul>
+      {entries.map((e) => (
+        <li key={e.sequence} className="grid grid-cols-[6.5rem_minmax(0,1fr)] items-baseline gap-x-3 border-b border-hairline py-[6px] text-13 last:border-rule sm:grid-cols-[6.5rem_minmax(0,1fr)_9rem_5rem]">
+          <span className="text-ink-2">
+            <Time at={e.at} />
+          </span>
+          <span className="text-14">
+            {e.act}
+            {subjectWords(e) && <span className="text-13 text-ink-2"> {subjectWords(e)}</span>}
+          </span>
+          <span className="text-ink-2 max-sm:col-start-2">{e.person}</span>
+          <Hash hash={e.hash} bytes={4} className="text-right max-sm:hidden" />
+        </li>
+      ))}
+    </ul>
+  )
+}

@@ -1,0 +1,31 @@
+import { useSearchParams } from 'react-router'
+import type { Sort } from '../ui/table.tsx'
+
+/** One value of the query; setting it to '' takes it away. The page stays where it is, and going back skips it. */
+export function useUrlText(name: string): [string, (value: string) => void] {
+  const [search, setSearch] = useSearchParams()
+  const set = (value: string) =>
+    setSearch(
+      (before) => {
+        const next = new URLSearchParams(before)
+        if (value === '') next.delete(name)
+        else next.set(name, value)
+        return next
+      },
+      { replace: true, preventScrollReset: true },
+    )
+  return [search.get(name) ?? '', set]
+}
+
+/** A table's sort in the query: "address", or "-address" from the greatest down. */
+export function useUrlSort(name = 'sort'): [Sort | null, (sort: Sort | null) => void] {
+  const [text, setText] = useUrlText(name)
+  const sort = text === '' ? null : { key: text.replace(/^-/, ''), descending: text.startsWith('-') }
+  return [sort, (next) => setText(next === null ? '' : `${next.descending ? '-' : ''}${next.key}`)]
+}
+
+/** Whether any of the texts holds every word of the filter. */
+export function fits(filter: string, ...texts: (string | number | null | undefined)[]): boolean {
+  const all = texts.join(' ').toLowerCase()
+  return filter.toLowerCase().split(/\s+/).every((word) => all.includes(word))
+}
