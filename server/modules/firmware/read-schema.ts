@@ -1,22 +1,20 @@
-import { placeOf, readText } from '../../../shared/parameters/set-text.ts'
-import { expectParameterSchema, readParameterSchema } from '../../../shared/registers/read-parameter-schema.ts'
+import { checkParameterSchemaText } from '../../../shared/registers/check-parameter-schema.ts'
+import { readJsonText } from '../../../shared/registers/json-text.ts'
+import type { SchemaProblem } from '../../../shared/registers/parameter-schema.ts'
+import { expectParameterSchema } from '../../../shared/registers/read-parameter-schema.ts'
 import { DomainError } from '../../http/errors.ts'
 import { firmwareName, type FirmwareVersion } from './firmware-version.entity.ts'
 import { hashOf, knownSchema, type KnownSchema } from './schema-cache.ts'
 
-interface Place {
-  line: number
-  column: number
-  pointer: string
-  message: string
-}
-
-function refuse(problems: readonly Place[]): never {
+function refuse(problems: readonly SchemaProblem[]): never {
   throw new DomainError('content-invalid', `The parameter schema can't be used: ${problems.length === 1 ? 'one place' : `${problems.length} places`} to correct. Nothing was saved; what you typed is still with you.`, {
-    fields: problems.map((p) => ({ pointer: p.pointer, detail: `line ${p.line}, column ${p.column}: ${p.message}` })),
+    fields: problems.map((p) => ({ pointer: p.pointer, detail: `line ${p.line ?? 1}, column ${p.column ?? 1}: ${p.message}` })),
     extra: { problems },
   })
 }
+
+/** Control characters but tab and line ends, and halves of a surrogate pair: a database or a file would not give them back as they were. */
+const unkept = /[\x00-\x08\x0b\x0c\x0e-\x1f\x7f]|[\ud800-\udbff](?![\udc00-\udfff])|(?<![\ud800-\udbff])[\udc00-\udfff]/
 
 /**
  * Reads the text of a parameter schema and checks it against Detent's meta-schema.
@@ -24,12 +22,13 @@ function refuse(problems: readonly Place[]): never {
  * @throws DomainError content-invalid with line, column and pointer of each problem; the pointers lead into the schema
  */
 export function readSchema(text: string): KnownSchema {
-  const read = readText(text)
-  if (!read.ok) return refuse(read.problems)
-  const reading = readParameterSchema(read.document)
-  if (reading.kind === 'schema') return { document: read.document, hash: hashOf(read.document), schema: reading.schema }
-  const offsetOf = (pointer: string): number => read.pointerOffsets.get(pointer) ?? (pointer === '' ? 0 : offsetOf(pointer.slice(0, pointer.lastIndexOf('/'))))
-  return refuse(reading.problems.map((p) => ({ ...placeOf(text, offsetOf(p.pointer)), pointer: p.pointer, message: p.message })))
+  const at = text.search(unkept)
+  if (at >= 0) {
+    const lines = text.slice(0, at).split('\n')
+    refuse([{ pointer: '', code: 'bad-character', message: 'A character stands here that text can\'t keep; take it out.', line: lines.length, column: lines[lines.length - 1].length + 1 }])
+  }
+  const check = checkParameterSchemaText(text)
+  return check.kind === 'schema' ? { document: check.json, hash: hashOf(check.json), schema: check.schema } : refuse(check.problems)
 }
 
 /**
@@ -39,9 +38,9 @@ export function readSchema(text: string): KnownSchema {
  */
 export const schemaOf = (version: FirmwareVersion): KnownSchema =>
   knownSchema(version.schemaHash, () => {
-    const read = readText(version.schemaText)
-    if (!read.ok) throw new Error(`the stored schema of ${firmwareName(version)} is no JSON`)
-    const known = { document: read.document, hash: hashOf(read.document), schema: expectParameterSchema(read.document) }
+    const read = readJsonText(version.schemaText)
+    if (read.kind === 'refused') throw new Error(`the stored schema of ${firmwareName(version)} is no JSON`)
+    const known = { document: read.value, hash: hashOf(read.value), schema: expectParameterSchema(read.value) }
     if (known.hash !== version.schemaHash) throw new Error(`the stored schema of ${firmwareName(version)} is not the one that its hash names`)
     return known
   })
