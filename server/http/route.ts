@@ -7,7 +7,7 @@ import { appendEntry } from '../modules/ledger/append-entry.ts'
 import type { LedgerSubject } from '../modules/ledger/ledger-entry.entity.ts'
 import { heldRoles } from '../modules/people/held-roles.ts'
 import { may, type Act, type HeldRole } from '../modules/people/permissions.ts'
-import type { Person } from '../modules/people/person.entity.ts'
+import { Person } from '../modules/people/person.entity.ts'
 import { DomainError } from './errors.ts'
 import { Receipt } from './receipt.entity.ts'
 import type { Services } from './services.ts'
@@ -120,7 +120,7 @@ async function record(services: Services, spec: RouteSpec, error: DomainError, p
 async function answerTo(services: Services, spec: RouteSpec, req: Request): Promise<Answer> {
   const em = services.orm.em.fork()
   const now = services.now()
-  const person = personOf(req)
+  const person = await em.findOneOrFail(Person, { id: personOf(req).id })
   const held = await heldRoles(em, person)
   const params = req.params as Record<string, string>
   const place = await (spec.place ?? nowhere)(em, params)

@@ -89,8 +89,6 @@ export interface ChangeView extends ChangeSummary {
   text: string
   set: MachineSet
   base: MachineSet
-  /** problems of the text that kept `set` at its last readable state; empty when text and set agree */
-  textProblems: { line: number; column: number; message: string }[]
   events: ChangeEventView[]
   signatures: SignatureView[]
   /** peer reviews that the policy in force asks for */

@@ -12,8 +12,8 @@ export interface EffectiveValue {
 /** What resolving needs to know of a parameter: its name, its role and its firmware default. */
 export interface ResolvedParameter {
   name: string
-  role?: string
-  default?: Value
+  role: string | null
+  default: Value | null
 }
 
 /**
@@ -33,7 +33,7 @@ export function effectiveValues(set: MachineSet, jointKey: string, parameters: r
     if (p.role === 'bus.address') return [{ name: p.name, value: joint.address, origin: 'joint' }]
     if (Object.hasOwn(joint.values, p.name)) return [{ name: p.name, value: joint.values[p.name], origin: 'joint' }]
     if (Object.hasOwn(family.values, p.name)) return [{ name: p.name, value: family.values[p.name], origin: 'family' }]
-    return p.default === undefined ? [] : [{ name: p.name, value: p.default, origin: 'firmware' }]
+    return p.default === null ? [] : [{ name: p.name, value: p.default, origin: 'firmware' }]
   })
 }
 

@@ -48,16 +48,22 @@ const touch = (change: Change, now: Date) => {
 }
 
 /** New text of the draft by one of its writers. */
-export function saveText(change: Change, text: string, by: Person, now: Date) {
+export function saveText(change: Change, text: string, now: Date) {
   mustBe(change, ['draft'], 'edited; return it to draft first')
   change.text = text
-  if (!change.writers.includes(by.id)) change.writers = [...change.writers, by.id]
   touch(change, now)
 }
 
 export function describe(change: Change, edit: { title?: string; reason?: string; concessions?: ConcessionRequest[] }, now: Date) {
   mustBe(change, ['draft'], 'edited; return it to draft first')
   Object.assign(change, edit)
+  touch(change, now)
+}
+
+/** Somebody who may write from now on, and so counts as a co-author. */
+export function admitWriter(change: Change, person: Person, now: Date) {
+  mustBe(change, ['draft'], 'opened to another writer')
+  if (!change.writers.includes(person.id)) change.writers = [...change.writers, person.id]
   touch(change, now)
 }
 
@@ -85,6 +91,13 @@ export function returnToDraft(change: Change, now: Date) {
 export function renewHash(change: Change, contentHash: string, now: Date) {
   mustBe(change, ['submitted', 'approved'], 'checked again')
   Object.assign(change, { state: 'submitted', contentHash, round: change.round + 1 })
+  touch(change, now)
+}
+
+/** The draft stands on another release from now on. */
+export function rebase(change: Change, release: Release, now: Date) {
+  mustBe(change, ['draft'], 'brought up to date')
+  change.baseRelease = release
   touch(change, now)
 }
 

@@ -10,4 +10,6 @@ export interface CheckInputs {
   base: MachineSet
   /** parameter schemas by firmware name, for every joint of both sets */
   schemas: Record<string, unknown>
+  /** state of each of those firmware versions */
+  firmwareStates: Record<string, 'draft' | 'published' | 'retired'>
 }

@@ -1,0 +1,41 @@
+import { check } from './cli/check.ts'
+import { cases } from './cli/cases.ts'
+import { image } from './cli/image.ts'
+import { Usage } from './cli/usage.ts'
+
+interface Command {
+  usage: string
+  does: string
+  run: (args: string[]) => Promise<number>
+}
+
+const commands: Record<string, Command> = {
+  check: { usage: 'check FILE [--json] [--schemas DIR]', does: 'checks every joint of a machine set', run: check },
+  image: { usage: 'image FILE --format bin|hex --out PATH [--joint KEY] [--release N] [--schemas DIR]', does: 'writes the register image of one joint', run: image },
+  cases: { usage: 'cases FILE', does: 'runs reference cases of the control model', run: cases },
+}
+
+const help = () =>
+  `Detent on the command line: npm run -s detent -- COMMAND\n\n${Object.values(commands).map((c) => `  ${c.usage}\n      ${c.does}`).join('\n')}\n\nA machine set is what the text view of a change shows; examples/README.md says how it is written.\n`
+
+async function main(): Promise<number> {
+  const [name, ...args] = process.argv.slice(2)
+  if (name === undefined || name === 'help' || name === '--help') {
+    process.stdout.write(help())
+    return name === undefined ? 2 : 0
+  }
+  const command = Object.hasOwn(commands, name) ? commands[name] : undefined
+  if (!command) {
+    process.stderr.write(`There is no command "${name}".\n\n${help()}`)
+    return 2
+  }
+  try {
+    return await command.run(args)
+  } catch (error) {
+    const usage = error instanceof Usage || (error as NodeJS.ErrnoException).code?.startsWith('ERR_PARSE_ARGS')
+    process.stderr.write(`${(error as Error).message}\n${usage ? `usage: ${command.usage}\n` : ''}`)
+    return usage ? 2 : 1
+  }
+}
+
+process.exitCode = await main()

@@ -1,0 +1,45 @@
+import { existsSync, readFileSync, statSync } from 'node:fs'
+import { dirname, join } from 'node:path'
+import type { MachineSet } from '../../shared/parameters/machine-set.ts'
+import type { ParameterSchema } from '../../shared/registers/parameter-schema.ts'
+import { readParameterSchema } from '../../shared/registers/read-parameter-schema.ts'
+import { readSet } from '../modules/changes/read-set.ts'
+
+const largest = 16 * 1024 * 1024
+
+/** Reads a text file of bounded size. @throws Error saying what is wrong with it */
+export function readTextFile(file: string): string {
+  if (!existsSync(file)) throw new Error(`${file}: there is no such file.`)
+  const { size } = statSync(file)
+  if (size > largest) throw new Error(`${file}: ${size} bytes are more than the ${largest} that are read.`)
+  return readFileSync(file, 'utf8')
+}
+
+export interface SetFile {
+  set: MachineSet
+  /** by firmware name */
+  schemas: Map<string, ParameterSchema>
+  documents: Record<string, unknown>
+}
+
+/**
+ * Reads a machine set and the parameter schemas it names: LINE-VERSION.schema.json in the folder given, else in "firmware" beside the file.
+ *
+ * @throws Error with every problem, each with its line
+ */
+export function readSetFile(file: string, schemasDir: string | undefined): SetFile {
+  const read = readSet(readTextFile(file))
+  if (!read.ok) throw new Error(read.problems.map((p) => `${file}:${p.line}:${p.column}: ${p.pointer ? `${p.pointer} ` : ''}${p.message}`).join('\n'))
+  const folder = schemasDir ?? join(dirname(file), 'firmware')
+  const schemas = new Map<string, ParameterSchema>()
+  const documents: Record<string, unknown> = {}
+  for (const name of new Set(Object.values(read.set.joints).map((j) => j.firmware))) {
+    const path = join(folder, `${name.replace(' ', '-')}.schema.json`)
+    const document: unknown = JSON.parse(readTextFile(path))
+    const reading = readParameterSchema(document)
+    if (reading.kind === 'refused') throw new Error(reading.problems.map((p) => `${path}: ${p.pointer} ${p.message}`).join('\n'))
+    schemas.set(name, reading.schema)
+    documents[name] = document
+  }
+  return { set: read.set, schemas, documents }
+}

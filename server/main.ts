@@ -1,0 +1,67 @@
+import { randomBytes } from 'node:crypto'
+import { existsSync, mkdirSync, readFileSync, writeFileSync } from 'node:fs'
+import { createServer } from 'node:http'
+import { availableParallelism } from 'node:os'
+import { join } from 'node:path'
+import { fileURLToPath } from 'node:url'
+import { pino } from 'pino'
+import { buildApp } from './app.ts'
+import { readConfig } from './config.ts'
+import { holdDatabase } from './db/only-process.ts'
+import { openDatabase } from './db/orm.ts'
+import { makeDemo } from './demo/make-demo.ts'
+import { serveClient } from './http/serve-client.ts'
+import type { Services } from './http/services.ts'
+import { onWorkers } from './jobs/on-workers.ts'
+import { startMailSender } from './modules/mail/send-mail.ts'
+import { Person } from './modules/people/person.entity.ts'
+
+const log = pino({ level: process.env.DETENT_LOG ?? 'warn', redact: ['req.headers.cookie', 'req.headers.authorization', 'req.headers["x-detent-token"]'] })
+
+/** The key that signs session cookies: made at the first start, kept beside the database for its owner alone. */
+function sessionSecret(dataDir: string): string {
+  const file = join(dataDir, 'session.key')
+  if (!existsSync(file)) writeFileSync(file, randomBytes(48).toString('base64url'), { mode: 0o600, flag: 'wx' })
+  return readFileSync(file, 'utf8')
+}
+
+async function start() {
+  const config = readConfig(process.env)
+  mkdirSync(config.dataDir, { recursive: true, mode: 0o700 })
+  const database = join(config.dataDir, 'detent.sqlite')
+  const release = holdDatabase(database)
+  const orm = await openDatabase(database)
+  const here = fileURLToPath(new URL('.', import.meta.url))
+  const checks = onWorkers(join(here, 'worker.js'), Math.max(1, availableParallelism() - 1))
+  let wake = () => {}
+  const services: Services = { config, orm, now: () => new Date(), checks, mailQueued: () => wake() }
+  if (config.mode === 'demo' && (await orm.em.fork().count(Person)) === 0) await makeDemo(services)
+  const sender = startMailSender(services, log)
+  wake = () => sender.wake()
+  const app = buildApp({ services, log, sessionSecret: sessionSecret(config.dataDir), client: serveClient(join(here, '../client')) })
+  const server = createServer(app)
+  server.listen(config.port, config.host, () => {
+    const address = server.address()
+    const port = typeof address === 'object' && address ? address.port : config.port
+    process.stdout.write(`Detent serves ${config.mode === 'demo' ? 'the demo workplace' : 'your workplace'} at http://${config.host}:${port}\n`)
+  })
+  let closing = false
+  const close = async () => {
+    if (closing) return
+    closing = true
+    server.closeAllConnections()
+    await new Promise((done) => server.close(done))
+    await sender.stop()
+    await checks.close()
+    await orm.close(true)
+    release()
+    process.exit(0)
+  }
+  process.on('SIGTERM', () => void close())
+  process.on('SIGINT', () => void close())
+}
+
+start().catch((error: Error) => {
+  process.stderr.write(`Detent could not start: ${error.message}\n`)
+  process.exit(1)
+})

@@ -1,0 +1,58 @@
+import type { EntityManager } from '@mikro-orm/core'
+import type { ReleaseJointView, ReleaseSummary, ReleaseView } from '../../../shared/contract/releases.ts'
+import { Change } from '../changes/change.entity.ts'
+import { presentSignature } from '../changes/present.ts'
+import type { HeldRole } from '../people/permissions.ts'
+import { Signature } from '../reviews/signature.entity.ts'
+import { mayDownload, mayWithdraw } from './permissions.ts'
+import { ReleaseJoint } from './release-joint.entity.ts'
+import { Release } from './release.entity.ts'
+import { Withdrawal } from './withdrawal.entity.ts'
+
+/** Newest of its machine and not withdrawn: current; a withdrawal brings no older one back. */
+export const stateOf = (release: Release, newestId: number, withdrawn: boolean): ReleaseSummary['state'] => (withdrawn ? 'withdrawn' : release.id === newestId ? 'current' : 'superseded')
+
+export async function presentReleases(em: EntityManager, releases: readonly Release[]): Promise<ReleaseSummary[]> {
+  const withdrawn = new Set((await em.find(Withdrawal, { release: { $in: releases.map((r) => r.id) } })).map((w) => w.release.id))
+  const newest = new Map<number, number>()
+  for (const r of await em.find(Release, { machine: { $in: [...new Set(releases.map((r) => r.machine.id))] } }, { fields: ['id', 'machine'], orderBy: { sequence: 'asc' } })) newest.set(r.machine.id, r.id)
+  return releases.map((r) => ({
+    machine: r.machine.key,
+    machineName: r.machine.name,
+    version: r.version,
+    sequence: r.sequence,
+    state: stateOf(r, newest.get(r.machine.id)!, withdrawn.has(r.id)),
+    title: r.changeTitle,
+    change: `${r.machine.key}-${r.changeNumber}`,
+    releasedBy: r.releasedBy.name,
+    releasedAt: r.releasedAt.toISOString(),
+    joints: Object.keys(r.set.joints).length,
+  }))
+}
+
+export async function presentRelease(em: EntityManager, release: Release, held: readonly HeldRole[]): Promise<ReleaseView> {
+  const [summary] = await presentReleases(em, [release])
+  const rows = await em.find(ReleaseJoint, { release }, { populate: ['joint', 'revision', 'image'] })
+  const [before] = await em.find(Release, { machine: release.machine, sequence: { $lt: release.sequence } }, { orderBy: { sequence: 'desc' }, limit: 1, fields: ['id'] })
+  const earlier = before ? new Set((await em.find(ReleaseJoint, { release: before.id })).map((r) => r.revision.id)) : new Set<number>()
+  const change = await em.findOneOrFail(Change, { machine: release.machine, number: release.changeNumber })
+  const signatures = await em.find(Signature, { change, round: change.round }, { orderBy: { id: 'asc' } })
+  const withdrawal = await em.findOne(Withdrawal, { release }, { populate: ['person'] })
+  const items = rows.map((row): ReleaseJointView => {
+    const j = release.set.joints[row.joint.key]
+    return { joint: row.joint.key, name: j.name, family: release.set.families[j.family].name, bus: release.set.buses[j.bus].name, address: j.address, firmware: j.firmware, revision: row.revision.number, isNew: !earlier.has(row.revision.id), imageSha256: row.imageSha256, imageBytes: row.image.length }
+  })
+  return {
+    ...summary,
+    reason: release.reason,
+    contentHash: release.contentHash,
+    proposedStep: release.proposedStep,
+    step: release.step,
+    stepReason: release.stepReason,
+    signatures: signatures.map((s) => presentSignature(s, change.round)),
+    concessions: change.concessions,
+    items,
+    withdrawal: withdrawal ? { reason: withdrawal.reason, by: withdrawal.person.name, at: withdrawal.at.toISOString() } : null,
+    may: { download: mayDownload(release.machine.key, held, summary.state), withdraw: mayWithdraw(release.machine.key, held, summary.state) },
+  }
+}
