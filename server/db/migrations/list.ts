@@ -2,6 +2,7 @@ import { Migration20261201110006 } from './20261201110006-foundation.ts'
 import { Migration20261201110100 } from './20261201110100-write-once.ts'
 import { Migration20261201110743 } from './20261201110743-firmware-writers.ts'
 import { Migration20261201111026 } from './20261201111026-link-asked-by.ts'
+import { Migration20261201111901 } from './20261201111901-ledger-filters.ts'
 
 /** Every migration in order. Classes, not files: the bundle carries them. */
 export const migrations = [
@@ -9,4 +10,5 @@ export const migrations = [
   { name: '20261201110100-write-once', class: Migration20261201110100 },
   { name: '20261201110743-firmware-writers', class: Migration20261201110743 },
   { name: '20261201111026-link-asked-by', class: Migration20261201111026 },
+  { name: '20261201111901-ledger-filters', class: Migration20261201111901 },
 ]

@@ -6,21 +6,23 @@ import { LedgerEntry, type LedgerSubject } from './ledger-entry.entity.ts'
 
 export const genesisHash = '0'.repeat(64)
 
-/** The part of an entry that its hash covers, in RFC 8785 form. */
-export function entryHash(entry: Pick<LedgerEntry, 'sequence' | 'at' | 'personId' | 'personName' | 'act' | 'machineKey' | 'subject' | 'details' | 'previousHash'>): string {
-  const covered = {
-    sequence: entry.sequence,
-    at: entry.at.toISOString(),
-    personId: entry.personId ?? null,
-    personName: entry.personName,
-    act: entry.act,
-    machine: entry.machineKey ?? null,
-    subject: entry.subject,
-    details: entry.details,
-    previousHash: entry.previousHash,
-  }
-  return createHash('sha256').update(canonicalize(covered)!).digest('hex')
-}
+type Content = Pick<LedgerEntry, 'sequence' | 'at' | 'personId' | 'personName' | 'act' | 'machineKey' | 'subject' | 'details' | 'previousHash'>
+
+/** The part of an entry that its hash covers. */
+export const covered = (entry: Content) => ({
+  sequence: entry.sequence,
+  at: entry.at.toISOString(),
+  personId: entry.personId ?? null,
+  personName: entry.personName,
+  act: entry.act,
+  machine: entry.machineKey ?? null,
+  subject: entry.subject,
+  details: entry.details,
+  previousHash: entry.previousHash,
+})
+
+/** SHA-256 over the RFC 8785 form of what the hash covers, hex. */
+export const entryHash = (entry: Content): string => createHash('sha256').update(canonicalize(covered(entry))!).digest('hex')
 
 /**
  * Appends an act to the ledger, in the transaction of the act itself.

@@ -18,9 +18,9 @@ export const LedgerEntry = defineEntity({
     /** position in the chain, from 1, without gaps */
     sequence: p.integer().primary().autoincrement(false),
     at: p.datetime(),
-    personId: p.integer().nullable(),
+    personId: p.integer().nullable().index(),
     personName: p.string().length(120),
-    act: p.string().length(60),
+    act: p.string().length(60).index(),
     machineKey: p.string().length(40).nullable().index(),
     subject: p.json<LedgerSubject>(),
     details: p.json<Record<string, unknown>>(),

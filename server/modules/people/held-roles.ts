@@ -10,6 +10,6 @@ export async function heldRoles(em: EntityManager, person: Person): Promise<Held
   return grants.map((g) => ({
     role: g.role,
     machine: g.machine?.key ?? null,
-    confirmed: !isSigning(g.role) || (g.confirmedAt !== null && person.signingHold === null),
+    confirmed: !isSigning(g.role) || (Boolean(g.confirmedAt) && !person.signingHold),
   }))
 }

@@ -26,7 +26,7 @@ const words = (link: Link) => (link.kind === 'invitation' ? 'invitation' : 'rese
 
 /** @throws DomainError link-used, link-expired */
 export function mustBeUsable(link: Link, now: Date) {
-  if (link.usedAt !== null) throw new DomainError('link-used', `This ${words(link)} was used already. Nothing was altered; sign in with the password set by it, or ask for a reset.`)
+  if (link.usedAt) throw new DomainError('link-used', `This ${words(link)} was used already. Nothing was altered; sign in with the password set by it, or ask for a reset.`)
   if (link.expiresAt <= now) throw new DomainError('link-expired', `This ${words(link)} can't be used any more: it holds for ${linkHours[link.kind]} hours. Nothing was altered; ask for a new one.`)
 }
 

@@ -17,13 +17,16 @@ export const Person = defineEntity({
 })
 export type Person = InferEntity<typeof Person>
 
+/** For somebody who has still to set one. The type of a hidden property takes no null, although its column does. */
+export const noPassword = null as never
+
 export function disable(person: Person, now: Date) {
-  if (person.disabledAt !== null) throw new DomainError('wrong-state', `${person.name} is disabled already. Nothing was altered.`)
+  if (person.disabledAt) throw new DomainError('wrong-state', `${person.name} is disabled already. Nothing was altered.`)
   person.disabledAt = now
 }
 
 export function enable(person: Person) {
-  if (person.disabledAt === null) throw new DomainError('wrong-state', `${person.name} is not disabled. Nothing was altered.`)
+  if (!person.disabledAt) throw new DomainError('wrong-state', `${person.name} is not disabled. Nothing was altered.`)
   person.disabledAt = null
 }
 

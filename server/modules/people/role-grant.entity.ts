@@ -23,12 +23,12 @@ export const RoleGrant = defineEntity({
 export type RoleGrant = InferEntity<typeof RoleGrant>
 
 export function confirm(grant: RoleGrant, by: Person, now: Date) {
-  if (grant.confirmedAt !== null) return
+  if (grant.confirmedAt) return
   grant.confirmedBy = by
   grant.confirmedAt = now
 }
 
 export function end(grant: RoleGrant, now: Date) {
-  if (grant.endedAt !== null) throw new DomainError('wrong-state', 'This role ended already. Nothing was altered.')
+  if (grant.endedAt) throw new DomainError('wrong-state', 'This role ended already. Nothing was altered.')
   grant.endedAt = now
 }

@@ -26,7 +26,7 @@ export type PolicyVersion = InferEntity<typeof PolicyVersion>
 
 export type PolicyState = 'proposed' | 'signed' | 'declined'
 
-export const stateOf = (v: PolicyVersion): PolicyState => (v.signedAt !== null ? 'signed' : v.declinedAt !== null ? 'declined' : 'proposed')
+export const stateOf = (v: PolicyVersion): PolicyState => (v.signedAt ? 'signed' : v.declinedAt ? 'declined' : 'proposed')
 
 function mustBeProposed(v: PolicyVersion, act: string) {
   const state = stateOf(v)
