@@ -1,4 +1,4 @@
-import { add, divide, multiply, roundHalfEven, subtract, toDouble, type Rational } from './rational.ts'
+import { add, divide, multiply, ONE, roundHalfEven, subtract, toDouble, ZERO, type Rational } from './rational.ts'
 import { roundToF32, f32ToDouble, f32Key } from './f32.ts'
 
 /** How a word's bits are read: unsigned or signed (two's complement) integer, fixed point, or IEEE 754 binary32. */
@@ -49,40 +49,54 @@ export interface NumberCodec {
   readonly offset: Rational
 }
 
+const PLAIN_CODECS = new Map<Encoding, NumberCodec>()
+
 /** Codec of an encoding with the scale and offset of its register (1 and 0 unless it is an integer). */
 export function numberCodec(encoding: Encoding, scale: Rational, offset: Rational): NumberCodec {
-  return { encoding, step: encoding.kind === 'fixed' ? { n: 1n, d: 1n << BigInt(encoding.fraction) } : scale, offset }
+  if (scale !== ONE || offset !== ZERO) return { encoding, step: scale, offset }
+  let codec = PLAIN_CODECS.get(encoding)
+  if (!codec) {
+    codec = { encoding, step: encoding.kind === 'fixed' ? { n: 1n, d: 1n << BigInt(encoding.fraction) } : ONE, offset: ZERO }
+    PLAIN_CODECS.set(encoding, codec)
+  }
+  return codec
 }
 
 export type RawResult = { kind: 'raw'; raw: number } | { kind: 'out-of-range' }
 
-/** The raw integer nearest to a physical value, without regard to the register's range (f32: an order-preserving key). */
+/**
+ * Place of a physical value among the raw values, rounded as a register rounds it (nearest, ties to the even raw
+ * value) but without regard to its range: a larger value never has a smaller order, whatever the sign of the scale.
+ */
 export function orderOf(codec: NumberCodec, value: Rational): bigint {
   if (codec.encoding.kind === 'float') return BigInt(f32Key(roundToF32(value)))
-  const raw = nearestRaw(codec, value)
+  const raw = roundHalfEven(divide(codec.offset.n === 0n ? value : subtract(value, codec.offset), codec.step))
   return codec.step.n < 0n ? -raw : raw
 }
 
-const nearestRaw = (codec: NumberCodec, value: Rational): bigint =>
-  roundHalfEven(divide(codec.offset.n === 0n ? value : subtract(value, codec.offset), codec.step))
+/** Largest order of a finite f32. */
+const F32_LAST = 0x7f7fffff
+
+/** The raw value at an order; out of range where the register ends. */
+export function rawAtOrder(codec: NumberCodec, order: bigint): RawResult {
+  if (codec.encoding.kind === 'float') {
+    const key = Number(order)
+    if (Math.abs(key) > F32_LAST) return { kind: 'out-of-range' }
+    return { kind: 'raw', raw: key < 0 ? 0x80000000 - key : key }
+  }
+  const raw = codec.step.n < 0n ? -Number(order) : Number(order)
+  const { low, high } = rawRange(codec.encoding)
+  return raw < low || raw > high ? { kind: 'out-of-range' } : { kind: 'raw', raw: raw === 0 ? 0 : raw }
+}
 
 /**
  * Physical value to raw value: nearest, ties to the even raw value; the range is judged on the rounded one.
+ * Zero is written +0.
  *
  * @returns the raw value as its encoding reads it (signed for i and q; the bit pattern for f32), or out of range
  * @source  register-image.md, Encoding rules
  */
-export function toRaw(codec: NumberCodec, value: Rational): RawResult {
-  if (codec.encoding.kind === 'float') {
-    const bits = roundToF32(value)
-    if ((bits & 0x7f800000) === 0x7f800000) return { kind: 'out-of-range' }
-    // zero is written +0
-    return { kind: 'raw', raw: bits === 0x80000000 ? 0 : bits }
-  }
-  const raw = nearestRaw(codec, value)
-  const { low, high } = rawRange(codec.encoding)
-  return raw < BigInt(low) || raw > BigInt(high) ? { kind: 'out-of-range' } : { kind: 'raw', raw: Number(raw) }
-}
+export const toRaw = (codec: NumberCodec, value: Rational): RawResult => rawAtOrder(codec, orderOf(codec, value))
 
 /** Exact physical value of a raw value; null for an f32's NaN and ±∞. */
 export function exactPhysical(codec: NumberCodec, raw: number): Rational | null {

@@ -3,6 +3,9 @@ import { isObject, shown, under, type Json, type ProblemList } from './problem-l
 /** Deepest nesting a schema may have; enough for any map, far from a stack's end. */
 export const MAX_DEPTH = 32
 
+/** Keywords whose keys are names, so that a parameter may be called “pattern”. */
+const NAMED = new Set(['properties', '$defs', 'dependentSchemas', 'dependentRequired'])
+
 /** What a `$ref` inside the same schema points at; undefined when it points nowhere. */
 export function targetOf(root: Json, ref: string): unknown {
   if (ref === '#') return root
@@ -36,52 +39,58 @@ const DATA = new Set(['const', 'enum', 'default', 'examples', 'x-register', 'x-i
 export function checkReferences(root: Json, list: ProblemList): boolean {
   const before = list.problems.length
   const refs = new Map<string, string>()
-  walk(root, '', 0, refs, list)
+  walk(root, null, false, refs, list)
   if (list.problems.length > before) return false
   checkCycles(root, refs, list)
   return list.problems.length === before
 }
 
-/** `refs`: reference found at each pointer. */
-function walk(node: unknown, at: string, depth: number, refs: Map<string, string>, list: ProblemList): void {
+/** One step of the way to a node; a pointer is written only where it is needed. */
+interface Step { readonly key: string | number; readonly up: Step | null; readonly depth: number }
+
+const pointerOf = (step: Step | null): string => (step ? under(pointerOf(step.up), step.key) : '')
+
+/** `names`: the node's keys are names of parameters or definitions, not keywords. `refs`: reference found at each pointer. */
+function walk(node: unknown, step: Step | null, names: boolean, refs: Map<string, string>, list: ProblemList): void {
+  const depth = step ? step.depth + 1 : 1
   if (depth > MAX_DEPTH) {
-    list.add(at.slice(0, 200), 'too-deep', `The schema is nested deeper than ${MAX_DEPTH} levels.`)
+    list.add(pointerOf(step).slice(0, 200), 'too-deep', `The schema is nested deeper than ${MAX_DEPTH} levels.`)
     return
   }
   if (Array.isArray(node)) {
-    node.forEach((item, k) => walk(item, under(at, k), depth + 1, refs, list))
+    node.forEach((item: unknown, key) => { if (typeof item === 'object' && item !== null) walk(item, { key, up: step, depth }, false, refs, list) })
     return
   }
   if (!isObject(node)) return
-  // under `properties` and `$defs` the keys are names, so that a parameter may be called “pattern”
-  const names = at.endsWith('/properties') || at.endsWith('/$defs')
-  for (const [key, value] of Object.entries(node)) {
-    const where = under(at, key)
-    if (!names) {
-      if (DATA.has(key)) continue
-      if (key === 'pattern' || key === 'patternProperties') {
-        list.add(where, 'regular-expression', 'Regular expressions have no place in a parameter schema: its values are numbers, booleans and enums.')
-        continue
-      }
-      if (key === '$dynamicRef' || key === '$dynamicAnchor' || key === '$anchor' || key === '$recursiveRef') {
-        list.add(where, 'reference-not-allowed', `${key} is not allowed; use $ref with a JSON pointer into $defs.`)
-        continue
-      }
-      if (key === '$ref') {
-        readRef(value, where, refs, list)
-        continue
-      }
-    }
-    if (typeof value === 'object' && value !== null) walk(value, where, depth + 1, refs, list)
+  for (const key of Object.keys(node)) {
+    const value = node[key]
+    if (!names && key.startsWith('$') ? !readReference(key, value, step, refs, list) : !names && isRefused(key, step, list)) continue
+    if (typeof value !== 'object' || value === null || (!names && DATA.has(key))) continue
+    walk(value, { key, up: step, depth }, !names && NAMED.has(key), refs, list)
   }
 }
 
-function readRef(value: unknown, at: string, refs: Map<string, string>, list: ProblemList): void {
-  if (typeof value !== 'string' || !/^#(\/|$)/.test(value)) {
-    list.add(at, 'remote-reference', `${shown(value)} is not a reference inside this schema. Write "#/$defs/…".`)
-    return
+function isRefused(key: string, step: Step | null, list: ProblemList): boolean {
+  if (key !== 'pattern' && key !== 'patternProperties') return false
+  list.add(under(pointerOf(step), key), 'regular-expression', 'Regular expressions have no place in a parameter schema: its values are numbers, booleans and enums.')
+  return true
+}
+
+/** Notes a `$ref`, refuses the keywords that reach further; true for a `$` key that is neither. */
+function readReference(key: string, value: unknown, step: Step | null, refs: Map<string, string>, list: ProblemList): boolean {
+  if (key === '$dynamicRef' || key === '$dynamicAnchor' || key === '$anchor' || key === '$recursiveRef') {
+    list.add(under(pointerOf(step), key), 'reference-not-allowed', `${key} is not allowed; use $ref with a JSON pointer into $defs.`)
+    return false
   }
-  refs.set(at, value)
+  if (key === '$id' && step) {
+    list.add(under(pointerOf(step), key), 'reference-not-allowed', 'Only the root of a parameter schema may have an $id.')
+    return false
+  }
+  if (key !== '$ref') return true
+  const at = under(pointerOf(step), key)
+  if (typeof value === 'string' && /^#(\/|$)/.test(value)) refs.set(at, value)
+  else list.add(at, 'remote-reference', `${shown(value)} is not a reference inside this schema. Write "#/$defs/…".`)
+  return false
 }
 
 function checkCycles(root: Json, refs: ReadonlyMap<string, string>, list: ProblemList): void {

@@ -6,6 +6,7 @@ export interface Rational {
 }
 
 export const ZERO: Rational = { n: 0n, d: 1n }
+export const ONE: Rational = { n: 1n, d: 1n }
 
 /** Longest decimal taken, and the largest power of ten: beyond them a text is refused, so that no input can ask for a number of a million digits. */
 export const MAX_DECIMAL_LENGTH = 400

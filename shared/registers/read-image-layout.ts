@@ -17,12 +17,12 @@ export function readImageLayout(value: unknown, list: ProblemList): ImageLayout 
   const before = list.problems.length
   list.onlyKeys(value, at, KEYS)
   const number = (key: string, otherwise: number, low: number, high: number): number =>
-    value[key] === undefined ? otherwise : (list.integer(value[key], under(at, key), low, high) ?? otherwise)
-  const addressWidth = value.addressWidth === undefined ? 8 : (list.oneOf(value.addressWidth, under(at, 'addressWidth'), [8, 16] as const) ?? 8)
+    value[key] === undefined ? otherwise : (list.integer(value, key, at, low, high) ?? otherwise)
+  const addressWidth = value.addressWidth === undefined ? 8 : (list.oneOf(value, 'addressWidth', at, [8, 16] as const) ?? 8)
   const base = number('base', 0, 0, 65535)
-  const length = list.integer(value.length, under(at, 'length'), 1, 65536)
+  const length = list.integer(value, 'length', at, 1, 65536)
   const fill = number('fill', 255, 0, 255)
-  const byteOrder = value.byteOrder === undefined ? 'little' : (list.oneOf(value.byteOrder, under(at, 'byteOrder'), BYTE_ORDERS) ?? 'little')
+  const byteOrder = value.byteOrder === undefined ? 'little' : (list.oneOf(value, 'byteOrder', at, BYTE_ORDERS) ?? 'little')
   const loadAddress = number('loadAddress', base, 0, 0xffffffff)
   if (value.writeGaps !== undefined && typeof value.writeGaps !== 'boolean') {
     list.add(under(at, 'writeGaps'), 'not-a-boolean', `${shown(value.writeGaps)} is neither true nor false.`)
@@ -53,7 +53,7 @@ function readImageRegister(value: unknown, at: string, more: readonly string[], 
     return null
   }
   list.onlyKeys(value, at, new Set(['address', 'encoding', ...more]))
-  const address = list.integer(value.address, under(at, 'address'), 0, 65535)
+  const address = list.integer(value, 'address', at, 0, 65535)
   const encoding = typeof value.encoding === 'string' ? parseEncoding(value.encoding) : null
   if (!encoding || encoding.kind !== 'integer') {
     list.add(under(at, 'encoding'), 'bad-encoding', `${shown(value.encoding)} is no integer encoding (u8 i8 u16 i16 u32 i32).`)
@@ -67,7 +67,7 @@ function readLayoutId(value: unknown, at: string, list: ProblemList): ImageLayou
   const register = readImageRegister(value, at, ['value'], list)
   if (!register) return null
   const { low, high } = rawRange(register.encoding)
-  const id = list.integer((value as Json).value, under(at, 'value'), low, high)
+  const id = list.integer(value as Json, 'value', at, low, high)
   return id === null ? null : { ...register, value: id }
 }
 
@@ -79,9 +79,9 @@ function readChecksum(value: unknown, at: string, space: Space, list: ProblemLis
   const register = readImageRegister(value, at, ['algorithm', 'from', 'to'], list)
   if (!register) return null
   const given = value as Json
-  const algorithm = list.oneOf(given.algorithm, under(at, 'algorithm'), ALGORITHMS)
-  const from = given.from === undefined ? space.base : list.integer(given.from, under(at, 'from'), space.base, space.last)
-  const to = given.to === undefined ? space.last : list.integer(given.to, under(at, 'to'), space.base, space.last)
+  const algorithm = list.oneOf(given, 'algorithm', at, ALGORITHMS)
+  const from = given.from === undefined ? space.base : list.integer(given, 'from', at, space.base, space.last)
+  const to = given.to === undefined ? space.last : list.integer(given, 'to', at, space.base, space.last)
   if (!algorithm || from === null || to === null) return null
   if (from > to) list.add(under(at, 'to'), 'empty-range', `The range ends (${to}) before it begins (${from}).`)
   if (!fitsChecksum(register.encoding, algorithm)) {

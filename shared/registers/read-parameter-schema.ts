@@ -1,6 +1,6 @@
 import { checkReferences } from './local-refs.ts'
 import { readCarryRules } from './carry-rules.ts'
-import { physicalRange, toRaw } from './encoding.ts'
+import { physicalRange, rawAtOrder } from './encoding.ts'
 import { SchemaError, type Parameter, type ParameterSchema, type SchemaReading } from './parameter-schema.ts'
 import { isObject, ProblemList, shown, under, type Json } from './problem-list.ts'
 import { readImageLayout } from './read-image-layout.ts'
@@ -46,7 +46,7 @@ export function expectParameterSchema(json: unknown): ParameterSchema {
 
 function readRoot(root: Json, list: ProblemList): ParameterSchema | null {
   list.onlyKeys(root, '', ROOT_KEYS)
-  if (root.$schema !== undefined) list.oneOf(root.$schema, '/$schema', DIALECTS)
+  if (root.$schema !== undefined) list.oneOf(root, '$schema', '', DIALECTS)
   if (root.type !== undefined && root.type !== 'object') list.add('/type', 'bad-type', 'The root of a parameter schema describes an object.')
   for (const key of ['additionalProperties', 'unevaluatedProperties']) {
     if (root[key] !== undefined && root[key] !== false) list.add(under('', key), 'open-set', `${key} can only be false: a set has the schema's parameters and no others.`)
@@ -76,7 +76,7 @@ function readRoot(root: Json, list: ProblemList): ParameterSchema | null {
   if (!image) return null
   const words = layWords(parameters, image, list)
   return {
-    title: list.text(root.title, '/title'), description: list.text(root.description, '/description'),
+    title: list.text(root, 'title', ''), description: list.text(root, 'description', ''),
     parameters, byName, byRole, image, words, rules: rulesOf(root), carry, advice: list.advice,
   }
 }
@@ -107,10 +107,11 @@ function checkParameter(parameter: Parameter, root: Json, list: ProblemList): vo
     list.add(parameter.pointer, 'constant-without-value', 'A parameter without x-register is a constant of the firmware and needs a const or a default.')
   }
   if (!parameter.register || parameter.register.values) return
-  const { low, high } = physicalRange(parameter.register.codec)
+  const { codec } = parameter.register
   for (const key of ['minimum', 'maximum'] as const) {
     const bound = parameter.bounds[key]
-    if (bound && toRaw(parameter.register.codec, bound.exact).kind === 'out-of-range') {
+    if (bound && bound.order !== null && rawAtOrder(codec, bound.order).kind === 'out-of-range') {
+      const { low, high } = physicalRange(codec)
       list.advise(under(parameter.pointer, key), 'bound-beyond-register', `The ${key} ${bound.text} lies beyond what ${parameter.register.encoding.name} holds (${low} to ${high}).`)
     }
   }

@@ -39,8 +39,8 @@ export function readParameter(root: Json, name: string, leaf: unknown, mapOrder:
   if (merged['x-register'] !== undefined && !register) return null
   const unit = readUnit(merged, pointer, shape.kind, list)
   const role = readRole(merged, pointer, list)
-  const perTick = merged['x-per-tick'] === undefined ? null : list.oneOf(merged['x-per-tick'], under(pointer, 'x-per-tick'), ['current', 'outer'] as const)
-  if (merged['x-bound'] !== undefined) list.oneOf(merged['x-bound'], under(pointer, 'x-bound'), ['board'])
+  const perTick = merged['x-per-tick'] === undefined ? null : list.oneOf(merged, 'x-per-tick', pointer, ['current', 'outer'] as const)
+  if (merged['x-bound'] !== undefined) list.oneOf(merged, 'x-bound', pointer, ['board'])
   if (role) checkRole(role, perTick !== null, unit, shape.kind, pointer, list)
   if (perTick && (!role || !PER_TICK_ROLES.includes(role))) {
     list.add(under(pointer, 'x-per-tick'), 'per-tick-without-gain', 'Only a gain with a role (…kp, …ki) can say x-per-tick.')
@@ -49,8 +49,8 @@ export function readParameter(root: Json, name: string, leaf: unknown, mapOrder:
   if (list.problems.length > before) return null
   const constant = isValue(merged.const) ? merged.const : null
   return {
-    name, pointer, title: list.text(merged.title, under(pointer, 'title')) || name,
-    description: list.text(merged.description, under(pointer, 'description')),
+    name, pointer, title: list.text(merged, 'title', pointer) || name,
+    description: list.text(merged, 'description', pointer),
     kind: shape.kind, unit, role, perTick, boardBound: merged['x-bound'] === 'board',
     default: isValue(merged.default) ? merged.default : constant,
     bounds, choices: shape.choices, constant, register,

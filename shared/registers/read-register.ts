@@ -1,7 +1,7 @@
 import { numberCodec, parseEncoding, physicalRange, rawRange, survivesDoubles } from './encoding.ts'
 import type { Access, ParameterKind, Register } from './parameter-schema.ts'
 import { isObject, shown, under, type Json, type ProblemList } from './problem-list.ts'
-import { exactly, toDouble, type Rational } from './rational.ts'
+import { exactly, ONE, toDouble, ZERO, type Rational } from './rational.ts'
 import type { ByteOrder } from './word-bytes.ts'
 
 const KEYS = new Set(['address', 'encoding', 'byteOrder', 'access', 'scale', 'offset', 'bit', 'width', 'reserved', 'values'])
@@ -21,14 +21,14 @@ export function readRegister(value: unknown, at: string, leaf: LeafShape, mapOrd
   }
   const before = list.problems.length
   list.onlyKeys(value, at, KEYS)
-  const address = list.integer(value.address, under(at, 'address'), 0, 65535)
+  const address = list.integer(value, 'address', at, 0, 65535)
   const encoding = typeof value.encoding === 'string' ? parseEncoding(value.encoding) : null
   if (!encoding) {
     list.add(under(at, 'encoding'), 'bad-encoding',
       `${shown(value.encoding)} is no encoding. Use u8 i8 u16 i16 u32 i32 f32, qM.F with 1 + M + F = 8, 16 or 32, or uqM.F with M + F = 8, 16 or 32.`)
   }
-  const byteOrder = value.byteOrder === undefined ? mapOrder : list.oneOf(value.byteOrder, under(at, 'byteOrder'), BYTE_ORDERS)
-  const access = value.access === undefined ? 'rw' : list.oneOf(value.access, under(at, 'access'), ACCESSES)
+  const byteOrder = value.byteOrder === undefined ? mapOrder : list.oneOf(value, 'byteOrder', at, BYTE_ORDERS)
+  const access = value.access === undefined ? 'rw' : list.oneOf(value, 'access', at, ACCESSES)
   if (address === null || !encoding || !byteOrder || !access) return null
 
   const isNumber = leaf.kind === 'number' || leaf.kind === 'integer'
@@ -61,8 +61,9 @@ export function readRegister(value: unknown, at: string, leaf: LeafShape, mapOrd
 }
 
 /** An exact decimal: a number, or its text where a double does not hold it. */
-function readDecimal(value: Json, key: string, otherwise: string, at: string, list: ProblemList): { text: string; exact: Rational } | null {
-  const given = value[key] ?? otherwise
+function readDecimal(value: Json, key: string, otherwise: '1' | '0', at: string, list: ProblemList): { text: string; exact: Rational } | null {
+  if (value[key] === undefined) return { text: otherwise, exact: otherwise === '1' ? ONE : ZERO }
+  const given = value[key]
   const exact = typeof given === 'number' || typeof given === 'string' ? exactly(given) : null
   if (exact && Math.abs(toDouble(exact)) < 1e300) return { text: String(given), exact }
   list.add(under(at, key), 'not-a-decimal', `${shown(given)} is no decimal number that a ${key} can be.`)
@@ -80,10 +81,10 @@ function readField(value: Json, at: string, isNumber: boolean, bits: number, lis
     list.add(under(at, 'bit'), 'field-not-allowed', 'Only booleans and enums may be fields of a word.')
     return null
   }
-  const bit = list.integer(value.bit, under(at, 'bit'), 0, bits - 1)
+  const bit = list.integer(value, 'bit', at, 0, bits - 1)
   if (bit === null) return null
-  const width = value.width === undefined ? 1 : list.integer(value.width, under(at, 'width'), 1, bits - bit)
-  const reserved = value.reserved === undefined ? null : list.integer(value.reserved, under(at, 'reserved'), 0, 2 ** bits - 1)
+  const width = value.width === undefined ? 1 : list.integer(value, 'width', at, 1, bits - bit)
+  const reserved = value.reserved === undefined ? null : list.integer(value, 'reserved', at, 0, 2 ** bits - 1)
   return width === null ? null : { bit, width, reserved }
 }
 

@@ -1,4 +1,4 @@
-import { orderOf, physicalRange, toRaw } from './encoding.ts'
+import { orderOf, physicalRange, rawAtOrder } from './encoding.ts'
 import type { Bound, Parameter, ParameterValue, ParameterValues } from './parameter-schema.ts'
 import { shown, under } from './problem-list.ts'
 import { compare, divide, exactly, multiply, roundHalfEven, type Rational } from './rational.ts'
@@ -59,21 +59,21 @@ function sameDecimal(a: number, b: string): boolean {
 
 function readNumber(parameter: Parameter, value: unknown, name: string): ValueReading {
   const codec = parameter.register?.codec ?? null
-  const holds = codec ? rangeText(parameter) : ''
-  if (typeof value === 'number' && !Number.isFinite(value)) return refused('not-finite', `${name} cannot be ${value}.${holds}`)
-  if (typeof value !== 'number' && typeof value !== 'string') return refused('wrong-type', `${name} must be a number, not ${shown(value)}.${holds}`)
+  if (typeof value === 'number' && !Number.isFinite(value)) return refused('not-finite', `${name} cannot be ${value}.${rangeText(parameter)}`)
+  if (typeof value !== 'number' && typeof value !== 'string') return refused('wrong-type', `${name} must be a number, not ${shown(value)}.${rangeText(parameter)}`)
   const exact = exactly(value)
   if (!exact) {
     return /^[+-]?\d/.test(String(value))
-      ? refused('not-a-decimal', `${name}: ${shown(value)} is no decimal of at most 400 characters and powers of ten.${holds}`)
-      : refused('wrong-type', `${name} must be a number, not ${shown(value)}.${holds}`)
+      ? refused('not-a-decimal', `${name}: ${shown(value)} is no decimal of at most 400 characters and powers of ten.${rangeText(parameter)}`)
+      : refused('wrong-type', `${name} must be a number, not ${shown(value)}.${rangeText(parameter)}`)
   }
   if (parameter.kind === 'integer' && exact.n % exact.d !== 0n) return refused('not-whole', `${name} must be a whole number, not ${value}.`)
-  const raw = codec ? toRaw(codec, exact) : null
+  const order = codec ? orderOf(codec, exact) : null
+  const raw = codec && order !== null ? rawAtOrder(codec, order) : null
   if (raw?.kind === 'out-of-range') {
-    return refused('out-of-range', `${name} cannot hold ${withUnit(String(value), parameter)}.${holds}`)
+    return refused('out-of-range', `${name} cannot hold ${withUnit(String(value), parameter)}.${rangeText(parameter)}`)
   }
-  const outside = outsideBounds(parameter, exact, String(value), name)
+  const outside = outsideBounds(parameter, exact, order, String(value), name)
   if (outside) return outside
   return { kind: 'value', exact, raw: raw ? raw.raw : null }
 }
@@ -86,22 +86,26 @@ export function rangeText(parameter: Parameter): string {
   return ` Its register (${register.encoding.name}) holds ${low} to ${withUnit(String(high), parameter)}.`
 }
 
-/** Sign of value − bound, on raw values where there is a register. */
-function against(parameter: Parameter, exact: Rational, bound: Bound): number {
-  if (!parameter.register || bound.order === null) return compare(exact, bound.exact)
-  const order = orderOf(parameter.register.codec, exact)
+/** Sign of value − bound, on rounded raw values where there is a register. */
+function against(exact: Rational, order: bigint | null, bound: Bound): number {
+  if (order === null || bound.order === null) return compare(exact, bound.exact)
   return order < bound.order ? -1 : order > bound.order ? 1 : 0
 }
 
-function outsideBounds(parameter: Parameter, exact: Rational, text: string, name: string): ValueReading | null {
+function outsideBounds(parameter: Parameter, exact: Rational, order: bigint | null, text: string, name: string): ValueReading | null {
   const { minimum, maximum, exclusiveMinimum, exclusiveMaximum, multipleOf } = parameter.bounds
-  const given = withUnit(text, parameter)
-  if (minimum && against(parameter, exact, minimum) < 0) return refused('below-minimum', `${name}: ${given} is below the minimum ${minimum.text}.`)
-  if (maximum && against(parameter, exact, maximum) > 0) return refused('above-maximum', `${name}: ${given} is above the maximum ${maximum.text}.`)
-  if (exclusiveMinimum && against(parameter, exact, exclusiveMinimum) <= 0) return refused('below-minimum', `${name}: ${given} must be above ${exclusiveMinimum.text}.`)
-  if (exclusiveMaximum && against(parameter, exact, exclusiveMaximum) >= 0) return refused('above-maximum', `${name}: ${given} must be below ${exclusiveMaximum.text}.`)
-  if (multipleOf && !isMultiple(parameter, exact, multipleOf)) return refused('not-a-multiple', `${name}: ${given} is no multiple of ${multipleOf.text}.`)
-  return null
+  const low = minimum && against(exact, order, minimum) < 0
+  const high = maximum && against(exact, order, maximum) > 0
+  const tooLow = exclusiveMinimum && against(exact, order, exclusiveMinimum) <= 0
+  const tooHigh = exclusiveMaximum && against(exact, order, exclusiveMaximum) >= 0
+  const between = multipleOf && !isMultiple(parameter, exact, multipleOf)
+  if (!low && !high && !tooLow && !tooHigh && !between) return null
+  const given = `${name}: ${withUnit(text, parameter)}`
+  if (low) return refused('below-minimum', `${given} is below the minimum ${minimum.text}.${rangeText(parameter)}`)
+  if (high) return refused('above-maximum', `${given} is above the maximum ${maximum.text}.${rangeText(parameter)}`)
+  if (tooLow) return refused('below-minimum', `${given} must be above ${exclusiveMinimum.text}.`)
+  if (tooHigh) return refused('above-maximum', `${given} must be below ${exclusiveMaximum.text}.`)
+  return refused('not-a-multiple', `${given} is no multiple of ${multipleOf?.text}.`)
 }
 
 /** A multiple, or what the register holds in place of one. */
