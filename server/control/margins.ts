@@ -1,0 +1,352 @@
+import { fromMinusOne, traceLoci, type LocusNode, type LocusSource } from './loci.ts'
+
+/** Gain margins are searched this far, up and down. */
+export const GAIN_LIMIT_DB = 60
+
+export type GainMargin =
+  | { readonly kind: 'unstable' }
+  | { readonly kind: 'none-within'; readonly limitDb: number }
+  | { readonly kind: 'margin'; readonly factor: number; readonly gainMarginDb: number; readonly hz: number }
+
+export type PhaseMargin =
+  | { readonly kind: 'unstable' }
+  | { readonly kind: 'none-up-to'; readonly limitDeg: 180 }
+  | { readonly kind: 'margin'; readonly phaseMarginDeg: number; readonly hz: number }
+
+export type DelayMargin =
+  | { readonly kind: 'unstable' }
+  | { readonly kind: 'none' }
+  | { readonly kind: 'margin'; readonly delay: number; readonly ticks: number; readonly crossoverHz: number }
+
+export type SensitivityPeak =
+  | { readonly kind: 'unstable' }
+  | { readonly kind: 'not-asked' }
+  | { readonly kind: 'peak'; readonly value: number; readonly hz: number }
+
+export interface LoopMargins {
+  readonly gainUp: GainMargin
+  readonly gainDown: GainMargin
+  readonly phase: PhaseMargin
+  readonly delay: DelayMargin
+  readonly M_s: SensitivityPeak
+  readonly Ms_lifted_norm: SensitivityPeak
+}
+
+/** A loop whose loci can be traced and whose strongest frequency and lifted sensitivity can be asked for. */
+export interface MarginSource extends LocusSource {
+  /** Ticks of the loop's own task in a period ψ: ψ = q·ω·period. */
+  readonly period: number
+  /** Signed true frequency, radians per own tick within ±π, of the strongest component of the locus λ at ψ. */
+  strongest(psi: number, re: number, im: number): number
+  /** Largest singular value of (I + L)⁻¹ at ψ, or 0 when its bound shows it to be at most `floor`. */
+  sensitivityNorm(psi: number, floor: number): number
+}
+
+export const UNSTABLE_MARGINS: LoopMargins = {
+  gainUp: { kind: 'unstable' },
+  gainDown: { kind: 'unstable' },
+  phase: { kind: 'unstable' },
+  delay: { kind: 'unstable' },
+  M_s: { kind: 'unstable' },
+  Ms_lifted_norm: { kind: 'unstable' },
+}
+
+interface Crossing {
+  readonly psi: number
+  readonly re: number
+  readonly im: number
+}
+
+/**
+ * All margins of a loop that is stable as it stands, from the loci of its lifted transfer.
+ *
+ * @param source  the broken loop
+ * @throws        NumericError no-convergence from the tracer
+ * @accuracy      1e-6 dB and 1e-6° against perturbing Φ (margins.test.ts)
+ * @source        control-model.md §4
+ */
+export function marginsOf(source: MarginSource, wanted: 'gain-and-phase' | 'all' = 'all'): LoopMargins {
+  const nodes = traceLoci(source)
+  const finder = new CrossingFinder(source)
+  const onAxis: Crossing[] = endpoints(nodes)
+  const onCircle: Crossing[] = []
+  for (let k = 1; k < nodes.length; k++) {
+    for (let i = 0; i < source.q; i++) finder.between(nodes[k - 1], nodes[k], i, onAxis, onCircle)
+  }
+  const toHz = 1 / (2 * Math.PI * source.period)
+  const trueHz = (x: Crossing): number => Math.abs(source.strongest(x.psi, x.re, x.im)) * toHz
+  const phase = phaseMargin(onCircle, trueHz)
+  const all = wanted === 'all'
+  const M_s = all ? sensitivityPeak(source, nodes, toHz) : null
+  const lifted = M_s ? liftedPeak(source, nodes, M_s, toHz) : null
+  return {
+    gainUp: gainMargin(onAxis, 'up', trueHz),
+    gainDown: gainMargin(onAxis, 'down', trueHz),
+    phase,
+    delay: delayMargin(source, onCircle, toHz),
+    M_s: tagged(M_s),
+    Ms_lifted_norm: tagged(lifted),
+  }
+}
+
+function tagged(peak: Peak | null): SensitivityPeak {
+  return peak ? { kind: 'peak', value: peak.value, hz: peak.hz } : { kind: 'not-asked' }
+}
+
+function gainMargin(crossings: readonly Crossing[], direction: 'up' | 'down', trueHz: (x: Crossing) => number): GainMargin {
+  const limit = 10 ** (GAIN_LIMIT_DB / 20)
+  let best: Crossing | null = null
+  let factor = direction === 'up' ? limit : 1 / limit
+  for (const x of crossings) {
+    const g = 1 / Math.hypot(x.re, x.im)
+    if (direction === 'up' ? g > 1 && g <= factor : g < 1 && g >= factor) {
+      factor = g
+      best = x
+    }
+  }
+  if (!best) return { kind: 'none-within', limitDb: direction === 'up' ? GAIN_LIMIT_DB : -GAIN_LIMIT_DB }
+  return { kind: 'margin', factor, gainMarginDb: 20 * Math.log10(factor), hz: trueHz(best) }
+}
+
+function phaseMargin(crossings: readonly Crossing[], trueHz: (x: Crossing) => number): PhaseMargin {
+  let best: Crossing | null = null
+  let least = Infinity
+  for (const x of crossings) {
+    const angle = Math.abs(fromMinusOne(x.re, x.im))
+    if (angle < least) {
+      least = angle
+      best = x
+    }
+  }
+  if (!best) return { kind: 'none-up-to', limitDeg: 180 }
+  return { kind: 'margin', phaseMarginDeg: (least * 180) / Math.PI, hz: trueHz(best) }
+}
+
+function delayMargin(source: MarginSource, crossings: readonly Crossing[], toHz: number): DelayMargin {
+  let ticks = Infinity
+  let hz = 0
+  for (const x of crossings) {
+    const theta = source.strongest(x.psi, x.re, x.im)
+    if (theta === 0) continue
+    // A component at −ω is the mirror image of one at ω: take the locus' conjugate.
+    const angle = fromMinusOne(x.re, theta < 0 ? -x.im : x.im)
+    const lag = angle <= 0 ? angle + 2 * Math.PI : angle
+    const wait = lag / Math.abs(theta)
+    if (wait < ticks) {
+      ticks = wait
+      hz = Math.abs(theta) * toHz
+    }
+  }
+  if (ticks === Infinity) return { kind: 'none' }
+  return { kind: 'margin', delay: ticks * source.period, ticks, crossoverHz: hz }
+}
+
+/** Real negative values at the ends of the frequency range, where a locus meets its mirror image. */
+function endpoints(nodes: readonly LocusNode[]): Crossing[] {
+  const found: Crossing[] = []
+  const first = nodes[0]
+  const last = nodes[nodes.length - 1]
+  for (let i = 0; i < last.re.length; i++) {
+    if (last.re[i] < 0 && Math.abs(last.im[i]) <= 1e-9 * -last.re[i]) found.push({ psi: last.psi, re: last.re[i], im: last.im[i] })
+    const next = nodes[1]
+    const flat = Math.abs(Math.hypot(next.re[i], next.im[i]) / Math.hypot(first.re[i], first.im[i]) - 1) < 0.01
+    if (first.re[i] < 0 && flat && Math.abs(first.im[i]) < 1e-3 * -first.re[i]) found.push({ psi: first.psi, re: first.re[i], im: first.im[i] })
+  }
+  return found
+}
+
+const ROOT_STEPS = 80
+
+/** Finds where one locus, between two nodes, meets the unit circle or the negative real axis. */
+class CrossingFinder {
+  private readonly source: MarginSource
+  private readonly re: Float64Array
+  private readonly im: Float64Array
+
+  constructor(source: MarginSource) {
+    this.source = source
+    this.re = new Float64Array(source.q)
+    this.im = new Float64Array(source.q)
+  }
+
+  between(a: LocusNode, b: LocusNode, i: number, onAxis: Crossing[], onCircle: Crossing[]): void {
+    const ma = a.re[i] * a.re[i] + a.im[i] * a.im[i]
+    const mb = b.re[i] * b.re[i] + b.im[i] * b.im[i]
+    if (ma > 1 !== mb > 1) onCircle.push(this.root(a, b, i, 'circle'))
+    const pa = fromMinusOne(a.re[i], a.im[i])
+    const pb = fromMinusOne(b.re[i], b.im[i])
+    if (pa > 0 !== pb > 0 && Math.abs(pa - pb) < Math.PI) onAxis.push(this.root(a, b, i, 'axis'))
+  }
+
+  /** Illinois' variant of regula falsi in ψ, halved when it stalls. */
+  private root(a: LocusNode, b: LocusNode, i: number, line: 'circle' | 'axis'): Crossing {
+    const value = (re: number, im: number): number => (line === 'circle' ? Math.log(Math.hypot(re, im)) : fromMinusOne(re, im))
+    let left: Crossing = { psi: a.psi, re: a.re[i], im: a.im[i] }
+    let right: Crossing = { psi: b.psi, re: b.re[i], im: b.im[i] }
+    let fl = value(left.re, left.im)
+    let fr = value(right.re, right.im)
+    let side = 0
+    let best = Math.abs(fl) < Math.abs(fr) ? left : right
+    for (let step = 0; step < ROOT_STEPS; step++) {
+      if (right.psi - left.psi <= 4e-16 * right.psi || fl === fr) break
+      let psi = step % 8 === 7 ? 0.5 * (left.psi + right.psi) : (left.psi * fr - right.psi * fl) / (fr - fl)
+      if (!(psi > left.psi && psi < right.psi)) psi = 0.5 * (left.psi + right.psi)
+      const point = this.near(psi, left, right)
+      const f = value(point.re, point.im)
+      best = point
+      if (Math.abs(f) < 1e-13) break
+      if (f > 0 === fr > 0) {
+        right = point
+        fr = f
+        if (side === -1) fl /= 2
+        side = -1
+      } else {
+        left = point
+        fl = f
+        if (side === 1) fr /= 2
+        side = 1
+      }
+    }
+    return best
+  }
+
+  /** The locus at ψ nearest to the line between its two known points. */
+  private near(psi: number, left: Crossing, right: Crossing): Crossing {
+    this.source.evaluate(psi, this.re, this.im)
+    const t = (psi - left.psi) / (right.psi - left.psi)
+    const wr = left.re + t * (right.re - left.re)
+    const wi = left.im + t * (right.im - left.im)
+    let best = 0
+    let least = Infinity
+    for (let k = 0; k < this.re.length; k++) {
+      const d = (this.re[k] - wr) ** 2 + (this.im[k] - wi) ** 2
+      if (d < least) {
+        least = d
+        best = k
+      }
+    }
+    return { psi, re: this.re[best], im: this.im[best] }
+  }
+}
+
+const GOLDEN = 0.5 * (Math.sqrt(5) - 1)
+
+/** Maximum of f on [low, high] by golden section to 1e-7 of the interval: the peak's value is then exact to rounding. */
+function goldenPeak(f: (psi: number) => number, low: number, high: number): { readonly psi: number; readonly value: number } {
+  let a = low
+  let b = high
+  let x = b - GOLDEN * (b - a)
+  let y = a + GOLDEN * (b - a)
+  let fx = f(x)
+  let fy = f(y)
+  for (let step = 0; step < 34; step++) {
+    if (fx > fy) {
+      b = y
+      y = x
+      fy = fx
+      x = b - GOLDEN * (b - a)
+      fx = f(x)
+    } else {
+      a = x
+      x = y
+      fx = fy
+      y = a + GOLDEN * (b - a)
+      fy = f(y)
+    }
+  }
+  return fx > fy ? { psi: x, value: fx } : { psi: y, value: fy }
+}
+
+/** Candidates within this factor of the best node's value are refined. */
+const NEAR_PEAK = 0.8
+
+interface Peak {
+  readonly psi: number
+  readonly value: number
+  readonly hz: number
+}
+
+function sensitivityPeak(source: MarginSource, nodes: readonly LocusNode[], toHz: number): Peak {
+  const { q } = source
+  const inverse = (node: LocusNode, i: number): number => 1 / Math.hypot(1 + node.re[i], node.im[i])
+  let best = 0
+  let bestAt: Crossing = { psi: nodes[0].psi, re: nodes[0].re[0], im: nodes[0].im[0] }
+  for (const node of nodes) {
+    for (let i = 0; i < q; i++) {
+      const value = inverse(node, i)
+      if (value > best) {
+        best = value
+        bestAt = { psi: node.psi, re: node.re[i], im: node.im[i] }
+      }
+    }
+  }
+  const re = new Float64Array(q)
+  const im = new Float64Array(q)
+  const floor = best * NEAR_PEAK
+  for (let k = 0; k < nodes.length; k++) {
+    for (let i = 0; i < q; i++) {
+      const here = inverse(nodes[k], i)
+      if (here < floor) continue
+      if (k > 0 && inverse(nodes[k - 1], i) > here) continue
+      if (k < nodes.length - 1 && inverse(nodes[k + 1], i) > here) continue
+      const low = nodes[Math.max(0, k - 1)].psi
+      const high = nodes[Math.min(nodes.length - 1, k + 1)].psi
+      const peak = goldenPeak((psi) => {
+        source.evaluate(psi, re, im)
+        let most = 0
+        for (let c = 0; c < q; c++) {
+          const value = 1 / Math.hypot(1 + re[c], im[c])
+          if (value > most) most = value
+        }
+        return most
+      }, low, high)
+      if (peak.value > best) {
+        best = peak.value
+        source.evaluate(peak.psi, re, im)
+        let at = 0
+        for (let c = 1; c < q; c++) if (Math.hypot(1 + re[c], im[c]) < Math.hypot(1 + re[at], im[at])) at = c
+        bestAt = { psi: peak.psi, re: re[at], im: im[at] }
+      }
+    }
+  }
+  return { psi: bestAt.psi, value: best, hz: Math.abs(source.strongest(bestAt.psi, bestAt.re, bestAt.im)) * toHz }
+}
+
+/** The norm peaks beside M_s, and is at least as high; from there and from nodes whose bound lets them be higher. */
+function liftedPeak(source: MarginSource, nodes: readonly LocusNode[], M_s: Peak, toHz: number): Peak {
+  if (source.q === 1) return M_s
+  const norm = (psi: number): number => source.sensitivityNorm(psi, 0)
+  let best = climb(norm, M_s.psi, M_s.psi / (10 * M_s.value))
+  const floor = best.value * 0.95
+  const values = nodes.map((node) => source.sensitivityNorm(node.psi, floor))
+  for (let k = 0; k < nodes.length; k++) {
+    if (values[k] < floor) continue
+    if (k > 0 && values[k - 1] > values[k]) continue
+    if (k < nodes.length - 1 && values[k + 1] > values[k]) continue
+    const low = nodes[Math.max(0, k - 1)].psi
+    const high = nodes[Math.min(nodes.length - 1, k + 1)].psi
+    if (low < best.psi && best.psi < high) continue
+    const peak = goldenPeak(norm, low, high)
+    if (peak.value > best.value) best = peak
+  }
+  return { ...best, hz: (best.psi * toHz) / source.q }
+}
+
+/** Peak of f near ψ: steps grow on both sides until f falls, then golden section. */
+function climb(f: (psi: number) => number, psi: number, step: number): { readonly psi: number; readonly value: number } {
+  const top = f(psi)
+  const reach = (direction: number): number => {
+    let at = psi
+    let last = top
+    for (let h = step; h < Math.PI; h *= 2) {
+      const next = Math.min(Math.PI, Math.max(psi * 1e-3, at + direction * h))
+      const value = f(next)
+      at = next
+      if (value < last || next === Math.PI || next === psi * 1e-3) break
+      last = value
+    }
+    return at
+  }
+  const peak = goldenPeak(f, reach(-1), reach(1))
+  return peak.value > top ? peak : { psi, value: top }
+}
