@@ -127,8 +127,8 @@ export class OuterCarrier {
   private readonly width: number
   /** Added to the broken signal at every outer tick, one entry a column. */
   readonly injected: Float64Array
-  /** Called after each outer sample with the step's index and the sampled rows. */
-  observe: ((k: number, omega: Float64Array, angle: Float64Array) => void) | null = null
+  /** Called at each outer tick with its index and the broken signal as it goes on: factor and injection included. */
+  observe: ((k: number, broken: Float64Array) => void) | null = null
 
   constructor(joint: SampledJoint, steps: OuterSteps, closure: 'position' | 'velocity', width: number) {
     this.joint = joint
@@ -179,14 +179,13 @@ export class OuterCarrier {
   /** Carries the columns through q outer ticks. */
   run(factor: BreakFactor): void {
     for (let k = 0; k < this.steps.q; k++) {
-      this.laws(factor)
+      this.laws(k, factor)
       this.step(k)
-      this.observe?.(k, this.sum, this.angle)
     }
   }
 
   /** The outer task's work at one tick, reference 0 plus what is injected into the broken signal. */
-  private laws(factor: BreakFactor): void {
+  private laws(k: number, factor: BreakFactor): void {
     const { W, K_pp, K_ip, K_pv, K_iv } = this.joint.model.firmware
     const { T_o } = this.joint.timing
     const { width, sum, angle, xp, xv, reference, injected } = this
@@ -200,6 +199,7 @@ export class OuterCarrier {
       if (K_ip === 0) xp.fill(0)
       scaleBy(reference, factor)
       for (let c = 0; c < width; c++) reference[c] += injected[c]
+      this.observe?.(k, reference)
     }
     for (let c = 0; c < width; c++) {
       const e = (position ? reference[c] : 0) - sum[c] * toSpeed
@@ -210,6 +210,7 @@ export class OuterCarrier {
     if (!position) {
       scaleBy(reference, factor)
       for (let c = 0; c < width; c++) reference[c] += injected[c]
+      this.observe?.(k, reference)
     }
   }
 
