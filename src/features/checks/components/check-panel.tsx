@@ -1,0 +1,124 @@
+import type { UseQueryResult } from '@tanstack/react-query'
+import type { ReactNode } from 'react'
+import type { CheckView, JointCheck } from '../../../../shared/contract/checks.ts'
+import { PolePlot } from '../../../components/charts/pole-plot.tsx'
+import { ProblemPanel } from '../../../components/problem/problem-panel.tsx'
+import { EmptyState } from '../../../components/ui/empty-state.tsx'
+import { SectionHeading } from '../../../components/ui/section-heading.tsx'
+import { TextLink } from '../../../components/ui/text-link.tsx'
+import { Time } from '../../../components/ui/time.tsx'
+import { VerdictMark } from '../../../components/ui/verdict-mark.tsx'
+import { Waiting } from '../../../components/ui/waiting.tsx'
+import { count, formatQuantity } from '../../../lib/format.ts'
+import { figuresOf, worstOf } from '../figures.ts'
+import { BeforeAfter } from './before-after.tsx'
+import { FigureRows } from './figure-rows.tsx'
+import { FindingList } from './finding-list.tsx'
+
+export interface CheckPanelProps {
+  query: UseQueryResult<CheckView>
+  /** the values on the screen are newer than those checked */
+  stale: boolean
+  /** joints looked at */
+  joints: readonly string[]
+  nameOf: (joint: string) => string
+  reportTo: string
+  /** at the end of a finding */
+  note?: (finding: CheckView['findings'][number]) => ReactNode
+}
+
+/** The live check beside the editor: what the values on the screen do. An older answer stays while the next is computed, and says so. */
+export function CheckPanel({ query, stale, joints, nameOf, reportTo, note }: CheckPanelProps) {
+  const check = query.data
+  if (!check) return query.isError ? <ProblemPanel problem={query.error} onRetry={() => void query.refetch()} /> : <Waiting what="the check" lines={6} />
+  const shown = check.joints.filter((j) => joints.includes(j.joint))
+  const worst = worstOf(shown)
+  return (
+    <section aria-label="live check" aria-busy={stale} className={stale ? 'opacity-60' : ''}>
+      {query.isError && <ProblemPanel className="mb-3" problem={query.error} onRetry={() => void query.refetch()} />}
+      <Head check={check} joint={worst} stale={stale} among={shown.length} nameOf={nameOf} />
+      {worst?.candidate ? (
+        <JointFiguresShown joint={worst} check={check} nameOf={nameOf} />
+      ) : (
+        <p className="border-b border-hairline py-3 text-13 text-ink-2">{worst ? `Nothing was computed for ${nameOf(worst.joint)}; the findings say why.` : 'No joint stands here yet.'}</p>
+      )}
+      <SectionHeading level={3} className="mt-4 mb-1" aux={undefined} actions={<TextLink to={reportTo}>full report</TextLink>}>
+        Findings
+      </SectionHeading>
+      {check.findings.length === 0 ? <EmptyState title="Nothing to judge yet">Findings appear with the first joint.</EmptyState> : <FindingList findings={check.findings} nameOf={nameOf} narrow note={note} />}
+    </section>
+  )
+}
+
+function Head({ check, joint, stale, among, nameOf }: { check: CheckView; joint: JointCheck | null; stale: boolean; among: number; nameOf: (joint: string) => string }) {
+  const figures = joint?.candidate
+  const released = joint?.released ?? null
+  const slow = (s: number | null | undefined) => (s === null || s === undefined ? null : s * 1e3)
+  const others = check.verdict !== null && check.verdict !== figures?.verdict
+  return (
+    <div className="flex flex-wrap items-start gap-x-4 gap-y-1 border-b border-ink pb-3">
+      <div className="min-w-0 flex-1">
+        <div aria-live="polite">
+          {figures ? <VerdictMark verdict={figures.verdict} size={32} className="text-20 font-medium" /> : <span className="text-20 font-medium text-ink-2">no verdict</span>}
+        </div>
+        {figures && (
+          <div className="mt-1 pl-[39px] text-13">
+            <div>
+              ρ <BeforeAfter before={released ? released.rho.toFixed(5) : null} after={figures.rho.toFixed(5)} className="num" />
+            </div>
+            <div>
+              <span className="text-ink-2">slowest </span>
+              <BeforeAfter before={slow(released?.slowestTimeConstantS)} after={slow(figures.slowestTimeConstantS) ?? 'does not decay'} unit="ms" />
+            </div>
+          </div>
+        )}
+      </div>
+      <div className="text-right text-12 text-ink-2">
+        {stale ? (
+          <span className="text-plum">
+            stale, checking
+            <br />
+          </span>
+        ) : (
+          <>
+            checked <Time at={check.checkedAt} style="clock" />
+            <br />
+          </>
+        )}
+        decoded registers
+        {joint && among > 1 && (
+          <>
+            <br />
+            {nameOf(joint.joint)}, worst of {count(among, 'joint')}
+          </>
+        )}
+      </div>
+      {others && (
+        <p className="w-full text-13">
+          elsewhere in the change: <VerdictMark verdict={check.verdict!} size={15} />
+        </p>
+      )}
+    </div>
+  )
+}
+
+function JointFiguresShown({ joint, check, nameOf }: { joint: JointCheck; check: CheckView; nameOf: (joint: string) => string }) {
+  const figures = figuresOf(joint, check.findings)
+  const period = formatQuantity(joint.candidate!.hyperperiodS, 's')
+  return (
+    <>
+      {figures.length > 0 && <FigureRows figures={figures} label={`margins of ${nameOf(joint.joint)}`} />}
+      <PolePlot
+        title="Poles"
+        level={3}
+        className="mt-4"
+        aux={`over ${period.number} ${period.unit}`}
+        hideLegend={joint.released === null || !joint.touched}
+        sets={[
+          ...(joint.released && joint.touched ? [{ label: 'released', role: 'released' as const, poles: joint.released.eigenvalues }] : []),
+          { label: 'candidate', role: 'candidate' as const, poles: joint.candidate!.eigenvalues },
+        ]}
+      />
+    </>
+  )
+}

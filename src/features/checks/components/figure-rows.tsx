@@ -1,0 +1,45 @@
+import { EffectRuler } from '../../../components/ui/effect-ruler.tsx'
+import { Arrow } from '../../../components/ui/arrow.tsx'
+import { formatNumber } from '../../../lib/format.ts'
+import type { Figure } from '../figures.ts'
+
+const shown = (value: number | null, reads: string, unit: string) => (value === null ? reads || '–' : unit === 'Hz' || unit === '' ? formatNumber(value) : value.toFixed(1))
+
+/** Margins and bandwidth of each loop, before and after, with policy on the ruler. */
+export function FigureRows({ figures, label }: { figures: readonly Figure[]; label: string }) {
+  return (
+    <table className="table table-dense" aria-label={label}>
+      <tbody>
+        {figures.map((f, i) => (
+          <tr key={`${f.loop} ${f.name}`}>
+            <th scope="row" className="!border-hairline !bg-transparent !px-0 !text-14 !text-ink">
+              <span className={i > 0 && figures[i - 1].loop === f.loop ? 'sr-only' : ''}>{f.loop}</span>
+            </th>
+            <td className="!px-2 text-13 text-ink-2">{f.name}</td>
+            <td className="end num !px-0 text-13">{shown(f.before, f.beforeReads, f.unit)}</td>
+            <td className="!px-0 text-center">
+              <Arrow />
+            </td>
+            <td className={`end num !px-0 text-13 font-medium ${f.missed ? 'text-plum' : ''}`}>{shown(f.after, f.afterReads, f.unit)}</td>
+            <td className="unit !px-1 text-13">{f.unit}</td>
+            <td className="!pr-0 !pl-1">
+              {f.after !== null && (
+                <EffectRuler
+                  label={`${f.loop} ${f.name}`}
+                  before={f.before}
+                  after={f.after}
+                  min={f.range[0]}
+                  max={f.range[1]}
+                  unit={f.unit}
+                  scale={f.unit === 'Hz' ? 'log' : 'linear'}
+                  policy={f.policy === null ? undefined : { limit: f.policy, forbidden: f.name === 'sensitivity peak' ? 'above' : 'below' }}
+                  width={108}
+                />
+              )}
+            </td>
+          </tr>
+        ))}
+      </tbody>
+    </table>
+  )
+}
