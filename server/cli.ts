@@ -11,7 +11,7 @@ interface Command {
 
 const commands: Record<string, Command> = {
   check: { usage: 'check FILE [--json] [--schemas DIR]', does: 'checks every joint of a machine set', run: check },
-  image: { usage: 'image FILE --format bin|hex --out PATH [--joint KEY] [--release N] [--schemas DIR]', does: 'writes the register image of one joint', run: image },
+  image: { usage: 'image FILE --format bin|hex|srec|h|csv|json|write-list|systemrdl --out PATH [--joint KEY] [--release N] [--schemas DIR]', does: 'writes the register image of one joint', run: image },
   cases: { usage: 'cases FILE', does: 'runs reference cases of the control model', run: cases },
 }
 

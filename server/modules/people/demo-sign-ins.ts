@@ -14,7 +14,7 @@ const signIn = (name: string, password: string, ...roles: Role[]): DemoSignIn =>
 export const demoSignIns: readonly DemoSignIn[] = [
   signIn('Mirela Castanho', 'demo only mudflat knee', 'controls engineer'),
   signIn('Tobias Oyelaran', 'demo only seed sorter', 'controls engineer'),
-  signIn('Rafiq Sandoval', 'demo only second look', 'peer reviewer'),
+  signIn('Rafiq Sandoval', 'demo only second look', 'peer reviewer', 'release manager'),
   signIn('Ingunn Veblen', 'demo only bench lamp', 'peer reviewer', 'builder'),
   signIn('Hedda Lindqvist', 'demo only last word', 'release manager', 'builder'),
   signIn('Pascoe Adeyemi', 'demo only torque wrench', 'builder'),

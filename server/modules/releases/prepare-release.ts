@@ -1,6 +1,6 @@
 import { encodeImage } from '../../../shared/registers/encode-image.ts'
 import { DomainError } from '../../http/errors.ts'
-import { differencesFound } from '../../exports/verify/verify-image.ts'
+import { differencesFound } from './prove-image.ts'
 import { sha256 } from '../checks/resolve-joint.ts'
 import type { Content } from '../reviews/content-of.ts'
 

@@ -15,7 +15,7 @@ import { newestRelease } from '../machines/current-release.ts'
 import { Joint } from '../machines/joint.entity.ts'
 import { queueMail } from '../mail/queue-mail.ts'
 import { Person } from '../people/person.entity.ts'
-import { mustBeFitToSign } from '../reviews/may-sign.ts'
+import { mustBeAnother } from '../reviews/may-sign.ts'
 import { Signature } from '../reviews/signature.entity.ts'
 import type { Content } from '../reviews/content-of.ts'
 import { keepIdentities } from './keep-identities.ts'
@@ -26,7 +26,6 @@ import { Release } from './release.entity.ts'
 import { Revision } from './revision.entity.ts'
 
 export interface ReleaseRequest {
-  password: string
   contentHash: string
   version: string
   stepReason: string
@@ -94,13 +93,15 @@ async function writeJoints(em: EntityManager, release: Release, content: Content
 /**
  * Signs second, and releases: revisions, release, ledger entries and mails in one transaction, or nothing.
  *
- * @throws DomainError wrong-state, own-work, wrong-password, base-outdated, content-differs, version-refused
+ * The signer's password was re-entered before.
+ *
+ * @throws DomainError wrong-state, own-work, base-outdated, content-differs, version-refused
  */
 export async function releaseChange(em: EntityManager, change: Change, prepared: Prepared, request: ReleaseRequest): Promise<Release> {
   const { person, now } = request
   const open = inState(change, 'approved')
   if (!open.allowed) throw new DomainError('wrong-state', `${open.why} Only an approved change is released. Nothing was released.`)
-  await mustBeFitToSign(em, change, person, request.password)
+  await mustBeAnother(em, change, person)
   const newest = await newestRelease(em, change.machine)
   if ((newest?.id ?? null) !== (change.baseRelease?.id ?? null)) throw new DomainError('base-outdated', `Release ${newest?.version} came meanwhile. Nothing was released; the change has to be brought up to date and signed again.`)
   if (change.contentHash !== prepared.content.hash || request.contentHash !== prepared.content.hash || change.machine.lastSequence + 1 !== prepared.sequence)

@@ -1,4 +1,5 @@
 import { WithdrawRelease } from '../../../shared/contract/releases.ts'
+import { EXPORT_FORMATS, isExportFormat } from '../../exports/export-file.ts'
 import { DomainError } from '../../http/errors.ts'
 import { route, type RouteSpec } from '../../http/route.ts'
 import { Machine } from '../machines/machine.entity.ts'
@@ -7,24 +8,8 @@ import { onRelease } from './locate.ts'
 import { mayDownload } from './permissions.ts'
 import { presentRelease, presentReleases } from './present.ts'
 import { Release } from './release.entity.ts'
-import { takeImage } from './take-image.ts'
+import { takeFile } from './take-file.ts'
 import { withdrawRelease } from './withdraw-release.ts'
-
-const imageRoute = (format: 'bin' | 'hex') =>
-  route({
-    method: 'get',
-    path: `/machines/:machine/releases/:version/joints/:joint/image.${format}`,
-    summary: 'download an image',
-    access: 'download',
-    place: onRelease,
-    handle: async ({ em, place, params, held }) => {
-      const [{ state }] = await presentReleases(em, [place.release])
-      const allowed = mayDownload(place.machine, held, state)
-      if (!allowed.allowed) throw new DomainError('not-permitted', `${allowed.why} Nothing was downloaded.`, { recorded: true })
-      const taken = await takeImage(em, place.release, params.joint, format, state)
-      return { bytes: taken.bytes, type: taken.type, fileName: taken.fileName, headers: { 'X-Detent-SHA256': taken.sha256 } }
-    },
-  })
 
 export const releaseRoutes: readonly RouteSpec[] = [
   route({
@@ -46,8 +31,21 @@ export const releaseRoutes: readonly RouteSpec[] = [
     place: onRelease,
     handle: async ({ em, place, held }) => ({ body: await presentRelease(em, place.release, held) }),
   }),
-  imageRoute('bin'),
-  imageRoute('hex'),
+  route({
+    method: 'get',
+    path: '/machines/:machine/releases/:version/joints/:joint/image.:format',
+    summary: 'download an image',
+    access: 'download',
+    place: onRelease,
+    handle: async ({ em, place, params, held }) => {
+      if (!isExportFormat(params.format)) throw new DomainError('not-found', `Images come as ${EXPORT_FORMATS.join(', ')}. Nothing was downloaded.`)
+      const [{ state }] = await presentReleases(em, [place.release])
+      const allowed = mayDownload(place.machine, held, state)
+      if (!allowed.allowed) throw new DomainError('not-permitted', `${allowed.why} Nothing was downloaded.`, { recorded: true })
+      const { bytes, type, fileName, sha256 } = await takeFile(em, place.release, params.joint, params.format, state)
+      return { bytes, type, fileName, headers: { 'X-Detent-SHA256': sha256 } }
+    },
+  }),
   route({
     method: 'post',
     path: '/machines/:machine/releases/:version/withdraw',

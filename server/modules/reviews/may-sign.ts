@@ -17,14 +17,22 @@ function firmwareMovedTo(change: Change): string[] {
 
 /**
  * The two-person rule for one signature: nobody who wrote in the change, wrote or published a firmware version it moves a joint to, or
- * signed it already. The password is re-entered. Each refusal goes into the ledger.
+ * signed it already. Each refusal goes into the ledger.
  *
- * @throws DomainError own-work, wrong-password
+ * @throws DomainError own-work
  */
-export async function mustBeFitToSign(em: EntityManager, change: Change, person: Person, password: string): Promise<void> {
+export async function mustBeAnother(em: EntityManager, change: Change, person: Person): Promise<void> {
   const refuse = (why: string) => new DomainError('own-work', `${why} Nothing was signed.`, { recorded: true })
   if (change.writers.includes(person.id)) throw refuse('You wrote in this change; two other people sign it.')
   if ((await firmwareAuthors(em, firmwareMovedTo(change))).includes(person.id)) throw refuse('You wrote or published a firmware version that this change moves a joint to, and so count as one of its authors.')
   if ((await em.count(Signature, { change, round: change.round, person })) > 0) throw refuse('You signed this change already; another person signs next.')
+}
+
+/**
+ * The password re-entered for a signature; slow, so it stands before the transaction.
+ *
+ * @throws DomainError wrong-password, which goes into the ledger
+ */
+export async function mustReenter(em: EntityManager, person: Person, password: string): Promise<void> {
   if (!(await reentered(em, person, password))) throw new DomainError('wrong-password', 'The password is not yours. Nothing was signed; type it again.', { fields: [{ pointer: '/password', detail: 'is not the password you sign in with' }], recorded: true })
 }

@@ -6,7 +6,7 @@ import { checkChange } from '../checks/check-change.ts'
 import { prepare, proposalFor, releaseChange } from '../releases/release-change.ts'
 import { contentOf } from './content-of.ts'
 import { diffChange } from './diff-change.ts'
-import { mustBeFitToSign } from './may-sign.ts'
+import { mustBeAnother, mustReenter } from './may-sign.ts'
 import { recompute } from './recompute.ts'
 import { signPeerReview } from './sign-peer-review.ts'
 
@@ -34,9 +34,10 @@ export const reviewRoutes: readonly RouteSpec[] = [
     handle: async (call) => {
       const { change } = call.place
       mustMatch(call, change.revision)
-      await mustBeFitToSign(call.em, change, call.person, call.body.password)
+      await mustBeAnother(call.em, change, call.person)
+      await mustReenter(call.em, call.person, call.body.password)
       await recompute(call.services, call.em, change, call.body.contentHash)
-      return actOnChange(call, (em, fresh) => signPeerReview(em, fresh, { ...call.body, person: call.person, now: call.now }))
+      return actOnChange(call, (em, fresh) => signPeerReview(em, fresh, { contentHash: call.body.contentHash, person: call.person, now: call.now }))
     },
   }),
   route({
@@ -50,13 +51,14 @@ export const reviewRoutes: readonly RouteSpec[] = [
     handle: async (call) => {
       const { change } = call.place
       mustMatch(call, change.revision)
-      await mustBeFitToSign(call.em, change, call.person, call.body.password)
+      await mustBeAnother(call.em, change, call.person)
+      await mustReenter(call.em, call.person, call.body.password)
       const content = await recompute(call.services, call.em, change, call.body.contentHash)
       const prepared = await prepare(call.em, change, content)
       return call.act(async (em) => {
         const fresh = await again(em, change)
         mustMatch(call, fresh.revision)
-        const release = await releaseChange(em, fresh, prepared, { ...call.body, stepReason: call.body.stepReason ?? '', person: call.person, now: call.now })
+        const release = await releaseChange(em, fresh, prepared, { contentHash: call.body.contentHash, version: call.body.version, stepReason: call.body.stepReason ?? '', person: call.person, now: call.now })
         return { status: 201, body: { machine: fresh.machine.key, version: release.version } }
       })
     },

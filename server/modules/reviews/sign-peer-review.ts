@@ -7,14 +7,14 @@ import { DomainError } from '../../http/errors.ts'
 import { Person } from '../people/person.entity.ts'
 import { policyInForce } from '../policy/policy-in-force.ts'
 import { Signature } from './signature.entity.ts'
-import { mustBeFitToSign } from './may-sign.ts'
+import { mustBeAnother } from './may-sign.ts'
 
-/** A peer review, signed. When as many as the policy asks for are signed, the change is approved. */
-export async function signPeerReview(em: EntityManager, change: Change, { password, contentHash, person, now }: { password: string; contentHash: string; person: Person; now: Date }): Promise<void> {
+/** A peer review, signed by somebody whose password was re-entered. When as many as the policy asks for are signed, the change is approved. */
+export async function signPeerReview(em: EntityManager, change: Change, { contentHash, person, now }: { contentHash: string; person: Person; now: Date }): Promise<void> {
   const open = inState(change, 'submitted')
   if (!open.allowed) throw new DomainError('wrong-state', `${open.why} A peer review is signed while it is submitted. Nothing was signed.`)
   if (change.contentHash !== contentHash) throw new DomainError('content-differs', 'The change moved while you signed. Nothing was signed; reload and read it again.')
-  await mustBeFitToSign(em, change, person, password)
+  await mustBeAnother(em, change, person)
   em.create(Signature, { change, round: change.round, meaning: 'peer review', statement: statements['peer review'], person: em.getReference(Person, person.id), personName: person.name, at: now, contentHash })
   await em.flush()
   const signed = await em.count(Signature, { change, round: change.round, meaning: 'peer review' })

@@ -1,0 +1,81 @@
+import type { MachineSet } from '../../shared/parameters/machine-set.ts'
+import type { Story } from './story.ts'
+
+const [mirela, tobias, rafiq, ingunn, hedda] = ['Mirela Castanho', 'Tobias Oyelaran', 'Rafiq Sandoval', 'Ingunn Veblen', 'Hedda Lindqvist']
+const machine = 'dunlin'
+const value = (family: string, name: string) => `/families/${family}/values/${name}`
+const own = (joint: string, name: string) => `/joints/${joint}/values/${name}`
+
+/** Five months of Dunlin: six releases, one of them withdrawn, and changes in every state. */
+export async function dunlinStory(story: Story, set: MachineSet): Promise<void> {
+  story.day(4)
+  await story.through({ machine, title: 'First numbers for the walker', reason: 'Starting values from the drive trains, tried on one leg on the bench stand at reduced current.', author: mirela, content: set }, ingunn, hedda)
+
+  story.day(26)
+  await story.through(
+    { machine, title: 'Hip reach', reason: 'The hips stop 0.1 rad short of the stride the gait asks for; the stops leave room.', author: tobias, content: [[value('hip', 'positionMin'), -1.25], [value('hip', 'positionMax'), 1.25]] },
+    rafiq, hedda,
+  )
+
+  story.day(47)
+  const halfRate = await story.through(
+    { machine, title: 'Quieter current task', reason: 'Half the current task rate to cool the processor of the leg boards.', author: tobias, content: [[value('hip', 'currentRate'), 8000], [value('hip', 'currentGain'), 0.6], [value('hip', 'currentIntegralGain'), 1700]] },
+    rafiq, hedda,
+  )
+  void halfRate
+  story.day(52)
+  await story.withdraw(machine, '1.2.0', hedda, 'Current task at half rate: the hips hum at 41 Hz above 2.1 A.')
+
+  story.day(54)
+  await story.through(
+    { machine, title: 'Current task back to full rate', reason: 'Takes back the half rate of the withdrawn release.', author: mirela, content: [[value('hip', 'currentRate'), 16000], [value('hip', 'currentGain'), 1.2], [value('hip', 'currentIntegralGain'), 3400]] },
+    rafiq, hedda,
+  )
+
+  story.day(83)
+  await story.through(
+    { machine, title: 'R3 knee runs softer', reason: 'The R3 shank carries the sampling tube; its knee keeps more margin with less gain.', author: mirela, content: [[own('r3-knee', 'velocityGain'), 2.9]] },
+    ingunn, hedda,
+  )
+
+  story.day(131)
+  await story.through(
+    { machine, title: 'Knee current limit after the gear train of October', reason: 'The new gear train is rated for 6.6 N·m; 2.80 A stays under it with 15 % in hand.', author: mirela, content: [[value('knee', 'currentLimit'), 2.8]] },
+    rafiq, hedda,
+  )
+
+  story.day(139)
+  const pitch = await story.draft({ machine, title: 'Lower idle polling of the winch', reason: 'Tried on the bench; the bus has room, so there is no need.', author: tobias, content: [[value('winch', 'busTimeout'), 0.8]] })
+  await story.cancel(pitch, tobias, 'The bus load finding shows room to spare; nothing gained.')
+
+  story.day(141)
+  const yaw = await story.draft({ machine, title: 'Quieter yaw at rest', reason: 'The yaw joints tick at rest with the covers on.', author: tobias, content: [[value('yaw', 'velocityWindow'), 18]] })
+  await story.submit(yaw, tobias)
+  await story.giveBack(yaw, rafiq, 'A log at rest, please: is it the window or the covers?')
+
+  story.day(143)
+  const hip = await story.draft({ machine, title: 'Stiffer hip on landing', reason: 'The body sinks 6 mm on landing; the hips give way first.', author: mirela, content: [[value('hip', 'velocityGain'), 4.6], [value('hip', 'positionGain'), 32]] })
+  await story.submit(hip, mirela)
+  await story.review(hip, ingunn)
+  await story.giveBack(hip, hedda, 'Velocity gain 4.6 leaves little at full load; try 4.4.')
+  await story.write(hip, mirela, [[value('hip', 'velocityGain'), 4.4]])
+  await story.submit(hip, mirela)
+
+  story.day(145)
+  const reach = await story.draft({ machine, title: 'Longer hip reach on landing', reason: 'Reaching out further before touch-down takes the shock off the knees.', author: tobias, content: [[own('l1-hip', 'positionMax'), 1.28], [own('r1-hip', 'positionMin'), -1.28]] })
+  await story.submit(reach, tobias)
+
+  story.day(147)
+  const knee = await story.draft({
+    machine,
+    title: 'Stiffer knee for soft mud',
+    reason: 'On the Sandweer flats the shank sinks 4 to 6 cm and the knee gives way under the step load. The shorter window buys back the phase that the higher gains cost; the limit of 3.20 A stays under what the gear train bears.',
+    author: mirela,
+    content: [[value('knee', 'velocityWindow'), 10], [value('knee', 'velocityGain'), 4.2], [value('knee', 'velocityIntegralGain'), 40], [value('knee', 'positionGain'), 46], [value('knee', 'currentLimit'), 3.2], [own('r3-knee', 'velocityGain'), undefined]],
+  })
+  await story.submit(knee, mirela)
+  await story.review(knee, rafiq)
+
+  story.day(149)
+  await story.draft({ machine, title: 'Winch brake-out current', reason: '', author: mirela, content: [[value('winch', 'speedGain'), 26]] })
+}

@@ -1,0 +1,138 @@
+import type { EntityManager } from '@mikro-orm/core'
+import type { Edit } from '../../shared/parameters/edits.ts'
+import type { MachineSet } from '../../shared/parameters/machine-set.ts'
+import { valueAt } from '../../shared/parameters/paths.ts'
+import { editText, printSet } from '../../shared/parameters/set-text.ts'
+import type { Services } from '../http/services.ts'
+import { describe, type Change } from '../modules/changes/change.entity.ts'
+import { draftChange } from '../modules/changes/draft-change.ts'
+import { again } from '../modules/changes/locate.ts'
+import { setOf } from '../modules/changes/read-set.ts'
+import { cancelChange, returnChange } from '../modules/changes/return-change.ts'
+import { saveDraftText } from '../modules/changes/save-draft.ts'
+import { prepareSubmission, submitChange } from '../modules/changes/submit-change.ts'
+import { checkChange } from '../modules/checks/check-change.ts'
+import { Machine } from '../modules/machines/machine.entity.ts'
+import { Person } from '../modules/people/person.entity.ts'
+import { prepare, releaseChange } from '../modules/releases/release-change.ts'
+import { Release } from '../modules/releases/release.entity.ts'
+import { withdrawRelease } from '../modules/releases/withdraw-release.ts'
+import { recompute } from '../modules/reviews/recompute.ts'
+import { mustBeAnother } from '../modules/reviews/may-sign.ts'
+import { signPeerReview } from '../modules/reviews/sign-peer-review.ts'
+
+/** A value altered by the story: where, and to what. */
+export type Alteration = [pointer: string, to: unknown]
+
+export interface Proposal {
+  machine: string
+  title: string
+  reason: string
+  author: string
+  /** a whole set for the first change of a machine, else single values */
+  content: MachineSet | Alteration[]
+}
+
+/** Tells the demo's history with the program's own acts, each at its own time and by its own person. */
+export class Story {
+  private readonly services: Services
+  private readonly start: Date
+  /** hours since the story's start; every act moves on a little, so that no two share a moment */
+  private hours = 0
+
+  constructor(services: Services, start: Date) {
+    this.services = services
+    this.start = start
+  }
+
+  get now(): Date {
+    return new Date(this.start.getTime() + this.hours * 3600_000)
+  }
+
+  /** Moves the clock on to a moment of the story, in days since its start. */
+  day(days: number) {
+    this.hours = Math.max(this.hours, days * 24)
+  }
+
+  /** One act in its own transaction. */
+  async act<T>(work: (em: EntityManager, now: Date) => Promise<T>): Promise<T> {
+    this.hours += 0.4
+    return this.services.orm.em.fork().transactional((em) => work(em, this.now))
+  }
+
+  person = (em: EntityManager, name: string) => em.findOneOrFail(Person, { name })
+
+  /** the services with the clock at the story's moment */
+  private get then(): Services {
+    const { now } = this
+    return { ...this.services, now: () => now }
+  }
+
+  async draft({ machine, title, reason, author, content }: Proposal): Promise<Change> {
+    const change = await this.act(async (em, now) => draftChange(em, { machine: await em.findOneOrFail(Machine, { key: machine }), title, reason, person: await this.person(em, author), now }))
+    await this.write(change, author, content)
+    return change
+  }
+
+  /** Saves in a draft: a whole set as text, or values one save at a time. */
+  async write(change: Change, by: string, content: MachineSet | Alteration[]) {
+    const saves = Array.isArray(content) ? content.map((a) => [a]) : [content]
+    for (const save of saves)
+      await this.act(async (em, now) => {
+        const fresh = await again(em, change)
+        const set = setOf(fresh.text)
+        const text = Array.isArray(save) ? editText(fresh.text, save.map(([pointer, to]): Edit => ({ pointer, from: valueAt(set, pointer), to }))) : printSet(save)
+        await saveDraftText(em, fresh, text, { person: await this.person(em, by), now })
+      })
+  }
+
+  /** Submits; what the check wants a concession for is requested with the reason given. */
+  async submit(change: Change, by: string, concession = '') {
+    const em = this.services.orm.em.fork()
+    const { result } = await checkChange(this.then, em, await again(em, change))
+    const wanted = result.findings.filter((f) => f.level === 'concession needed')
+    if (wanted.length > 0)
+      await this.act(async (tx, now) =>
+        describe(await again(tx, change), { concessions: wanted.map((f) => ({ finding: f.key, characteristic: f.kind, limit: `${f.limit ?? ''} ${f.unit}`.trim() || f.kind, reason: concession || `${f.text} Agreed at the bench until the next release.`, until: new Date(now.getTime() + 120 * 86_400_000).toISOString().slice(0, 10), count: null })) }, now),
+      )
+    const prepared = await prepareSubmission(this.then, em.fork(), await again(em, change))
+    await this.act(async (tx, now) => submitChange(tx, await again(tx, change), prepared, { person: await this.person(tx, by), now }))
+  }
+
+  async review(change: Change, by: string) {
+    const em = this.services.orm.em.fork()
+    const read = await again(em, change)
+    const { hash } = await recompute(this.then, em, read, read.contentHash!)
+    await this.act(async (tx, now) => signPeerReview(tx, await again(tx, change), { contentHash: hash, person: await this.person(tx, by), now }))
+  }
+
+  async release(change: Change, by: string, version?: string, stepReason = '') {
+    const em = this.services.orm.em.fork()
+    const read = await again(em, change)
+    await mustBeAnother(em, read, await this.person(em, by))
+    const content = await recompute(this.then, em, read, read.contentHash!)
+    const prepared = await prepare(em, read, content)
+    await this.act(async (tx, now) => releaseChange(tx, await again(tx, change), prepared, { contentHash: content.hash, version: version ?? prepared.proposal.version, stepReason, person: await this.person(tx, by), now }))
+  }
+
+  /** From draft to release in the usual four steps. */
+  async through(proposal: Proposal, reviewer: string, manager: string, version?: string) {
+    const change = await this.draft(proposal)
+    await this.submit(change, proposal.author)
+    await this.review(change, reviewer)
+    await this.release(change, manager, version)
+    return change
+  }
+
+  async giveBack(change: Change, by: string, reason: string) {
+    await this.act(async (em, now) => returnChange(em, await again(em, change), { reason, person: await this.person(em, by), now }))
+  }
+
+  async cancel(change: Change, by: string, reason: string) {
+    await this.act(async (em, now) => cancelChange(em, await again(em, change), { reason, person: await this.person(em, by), now }))
+  }
+
+  async withdraw(machine: string, version: string, by: string, reason: string) {
+    await this.act(async (em, now) => withdrawRelease(em, await em.findOneOrFail(Release, { machine: { key: machine }, version }, { populate: ['machine'] }), { reason, person: await this.person(em, by), now }))
+  }
+}
