@@ -29,7 +29,8 @@ export function stepNumberText(text: string, step: number): string | null {
   return (parsed.value + step).toFixed(Math.min(decimals, 20))
 }
 
-function decimalsOf(text: string): number {
+/** Decimals a written number has: 1 for "0.5", 6 for "1e-6". */
+export function decimalsOf(text: string): number {
   const [mantissa, exponent = '0'] = text.toLowerCase().split('e')
   return Math.max(0, (mantissa.split('.')[1] ?? '').length - Number(exponent))
 }
@@ -149,7 +150,7 @@ export function formatBytes(count: number): string {
 
 /** "1 joint", "6 joints"; an irregular plural is given. */
 export function count(n: number, one: string, many = `${one}s`): string {
-  return `${formatNumber(n, { digits: Math.max(3, String(Math.abs(n)).length) })} ${n === 1 ? one : many}`
+  return `${formatFixed(n, 0)} ${n === 1 ? one : many}`
 }
 
 export type TimeStyle = 'short' | 'long' | 'clock' | 'date'

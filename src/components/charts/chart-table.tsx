@@ -1,4 +1,4 @@
-import { formatNumber } from '../../lib/format.ts'
+import { formatFixed, formatNumber } from '../../lib/format.ts'
 import type { ChartNumbers } from './chart-frame.tsx'
 
 /** More rows than a reader reads; the CSV holds all. */
@@ -36,7 +36,7 @@ export function ChartTable({ label, head, rows }: ChartNumbers & { label: string
       </div>
       {every > 1 && (
         <p className="help">
-          Every {every}th of {formatNumber(rows.length, { digits: 6 })} rows; the csv holds all.
+          Every {every}th of {formatFixed(rows.length, 0)} rows; the csv holds all.
         </p>
       )}
     </div>

@@ -1,4 +1,4 @@
-import { formatDuration, formatNumber } from '../../lib/format.ts'
+import { formatDuration, formatFixed } from '../../lib/format.ts'
 import { useWidth } from './use-width.ts'
 
 export interface ProgressProps {
@@ -18,7 +18,7 @@ export function Progress({ label, done, total, noun, secondsLeft, onStop, note =
   const [ref, width] = useWidth<HTMLDivElement>(400)
   const share = total > 0 ? Math.min(1, Math.max(0, done / total)) : 0
   const x = 6 + share * (width - 12)
-  const whole = (n: number) => formatNumber(n, { digits: Math.max(3, String(Math.trunc(n)).length) })
+  const whole = (n: number) => formatFixed(n, 0)
   return (
     <div ref={ref}>
       <div className="flex justify-between gap-3 text-13">

@@ -50,15 +50,16 @@ export function rulerTicks(scale: RulerScale): Tick[] {
  * a log scale by a fortieth of a decade, to three digits. A step across the notch stops in it: that is what a detent does.
  */
 export function stepValue(scale: RulerScale, value: number, steps: number, notch: number | null, step?: number): number {
-  const held = (v: number) => Math.min(scale.max, Math.max(scale.min, v))
+  // A bound is taken as it is; only what lies between is rounded.
+  const held = (v: number, digits: number) => (v >= scale.max ? scale.max : v <= scale.min ? scale.min : Number(v.toPrecision(digits)))
   let next: number
-  if (scale.kind === 'log' && step === undefined) next = Number(held(value * 10 ** (steps / 40)).toPrecision(3))
+  if (scale.kind === 'log' && step === undefined) next = held(value * 10 ** (steps / 40), 3)
   else {
     const size = step ?? niceStep(scale.max - scale.min)
-    next = Number(held(Math.round(value / size + steps) * size).toPrecision(12))
+    next = held(Math.round(value / size + steps) * size, 12)
   }
   if (notch !== null && value !== notch && (notch - value) * (next - notch) >= 0 && (next - value) * steps > 0) return notch
-  return held(next)
+  return Math.min(scale.max, Math.max(scale.min, next))
 }
 
 function niceStep(range: number): number {

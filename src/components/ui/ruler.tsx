@@ -1,6 +1,6 @@
 import { useRef } from 'react'
 import type { KeyboardEvent, PointerEvent } from 'react'
-import { formatNumber } from '../../lib/format.ts'
+import { decimalsOf, formatFixed, formatNumber } from '../../lib/format.ts'
 import { RulerDrawing } from './ruler-drawing.tsx'
 import type { RulerDrawingProps } from './ruler-drawing.tsx'
 import { rulerScale, stepValue } from './ruler-scale.ts'
@@ -16,6 +16,7 @@ export interface RulerProps extends Pick<RulerDrawingProps, 'value' | 'unstable'
   released?: number | null
   scale?: ScaleKind
   unit?: string
+  /** Default: as many decimals as `step` has, or three digits. */
   format?: (value: number) => string
   /** Bounds and released value in figures below the line. */
   figures?: boolean
@@ -38,10 +39,11 @@ const PAD = 6
  * unstable with the other values as they stand; a plum stop is policy. With `onChange` a slider (WAI-ARIA APG): arrows step, Shift or
  * Page keys ten steps, Home and End the bounds; a step or a drag across the notch rests in it.
  */
-export function Ruler({ label, min, max, value, released = null, scale: wanted = 'linear', unit = '', format = formatNumber, figures = true, width: fixed, onChange, onCommit, step, id, ...marks }: RulerProps) {
+export function Ruler({ label, min, max, value, released = null, scale: wanted = 'linear', unit = '', format: given, figures = true, width: fixed, onChange, onCommit, step, id, ...marks }: RulerProps) {
   const [box, measured] = useWidth<HTMLDivElement>(fixed ?? 182)
   const dragging = useRef<number | null>(null)
   const width = fixed ?? measured
+  const format = given ?? (step === undefined ? formatNumber : (v: number) => formatFixed(v, decimalsOf(String(step))))
   const scale = rulerScale(min, max, wanted)
   const text = valueText({ value, released, unit, format, unstable: marks.unstable, policy: marks.policy })
   const drawing = <RulerDrawing {...marks} scale={scale} value={value} released={released} width={width} format={format} figures={figures} />

@@ -1,4 +1,4 @@
-import { Link, NavLink, useLocation } from 'react-router'
+import { Link, useLocation } from 'react-router'
 import { Chevron } from './chevron.tsx'
 import { Mark } from './mark.tsx'
 import { Menu } from './menu.tsx'
@@ -49,11 +49,11 @@ export function TopBar({ home, places, machines, machine, onSearch, person, pers
         </Menu>
         <nav aria-label="main" className="bar-nav">
           {places.map((place) => (
-            <NavLink key={place.to} to={place.to} end={place.end} aria-current={place === here ? 'page' : undefined} className="">
+            <Link key={place.to} to={place.to} aria-current={place === here ? 'page' : undefined}>
               {place.label}
               {place.waiting ? <WaitingCount n={place.waiting} /> : null}
               {place === here && <PlaceBall />}
-            </NavLink>
+            </Link>
           ))}
         </nav>
         <div className="bar-narrow">

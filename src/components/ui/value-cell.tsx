@@ -60,7 +60,7 @@ export function ValueCell({ title, value, unit = '', origin, change, changed = f
             <input
               id={id}
               className="num font-medium"
-              style={{ width: `${Math.max(2, value.length)}ch` }}
+              style={{ width: `${Math.max(1, value.length)}ch` }}
               inputMode="decimal"
               autoComplete="off"
               spellCheck={false}
