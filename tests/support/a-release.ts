@@ -2,13 +2,10 @@ import type { EntityManager } from '@mikro-orm/core'
 import { resolveJoint, sha256, type ResolvedJoint } from '../../server/modules/checks/resolve-joint.ts'
 import { schemasFor } from '../../server/modules/firmware/schemas-for.ts'
 import { hashOf } from '../../server/modules/firmware/schema-cache.ts'
-import { Bus } from '../../server/modules/machines/bus.entity.ts'
-import { DriveTrain } from '../../server/modules/machines/drive-train.entity.ts'
-import { Family } from '../../server/modules/machines/family.entity.ts'
-import { Joint } from '../../server/modules/machines/joint.entity.ts'
 import { Machine } from '../../server/modules/machines/machine.entity.ts'
 import { Person } from '../../server/modules/people/person.entity.ts'
 import { foundPolicy } from '../../server/modules/policy/found-policy.ts'
+import { keepIdentities } from '../../server/modules/releases/keep-identities.ts'
 import { ReleaseJoint } from '../../server/modules/releases/release-joint.entity.ts'
 import { Release } from '../../server/modules/releases/release.entity.ts'
 import { Revision } from '../../server/modules/releases/revision.entity.ts'
@@ -73,14 +70,8 @@ interface Building {
 
 async function buildJoints(em: EntityManager, { machine, release, set, now }: Building) {
   const { schemas, hashes } = await schemasFor(em, set)
-  for (const [key, { name }] of Object.entries(set.buses)) if ((await em.count(Bus, { machine, key })) === 0) em.create(Bus, { machine, key, name, createdAt: now })
-  for (const [key, { name, driveTrain }] of Object.entries(set.families)) {
-    const family = (await em.findOne(Family, { machine, key })) ?? em.create(Family, { machine, key, name, createdAt: now })
-    await em.flush()
-    const [last] = await em.find(DriveTrain, { family }, { orderBy: { number: 'desc' }, limit: 1 })
-    const contentHash = hashOf(driveTrain)
-    if (last?.contentHash !== contentHash) em.create(DriveTrain, { family, number: (last?.number ?? 0) + 1, settings: driveTrain, contentHash, createdAt: now })
-  }
+  const joints = await keepIdentities(em, machine, set, now)
+  await em.flush()
   for (const [key, settings] of Object.entries(set.joints)) {
     const resolve = (sequence: number) => resolvedOrThrow(resolveJoint(set, key, new Map(Object.entries(schemas)), sequence))
     const unreleased = resolve(0)
@@ -88,8 +79,7 @@ async function buildJoints(em: EntityManager, { machine, release, set, now }: Bu
       family: settings.family, bus: settings.bus, address: settings.address, firmware: settings.firmware, schemaHash: hashes[settings.firmware], values: unreleased.values,
       driveTrain: set.families[settings.family].driveTrain, board: settings.board ?? null, imageSha256: unreleased.imageSha256,
     }
-    const joint = (await em.findOne(Joint, { machine, key })) ?? em.create(Joint, { machine, key, name: settings.name, createdAt: now })
-    await em.flush()
+    const joint = joints.get(key)!
     const [last] = await em.find(Revision, { joint }, { orderBy: { number: 'desc' }, limit: 1 })
     const contentHash = hashOf(contents)
     const revision = last?.contentHash === contentHash ? last : em.create(Revision, { joint, number: (last?.number ?? 0) + 1, content: contents, contentHash, createdAt: now })

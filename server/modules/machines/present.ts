@@ -7,6 +7,7 @@ import { Change } from '../changes/change.entity.ts'
 import { presentSummaries } from '../changes/present.ts'
 import { LedgerEntry } from '../ledger/ledger-entry.entity.ts'
 import { may, type HeldRole } from '../people/permissions.ts'
+import { presentReleases } from '../releases/present.ts'
 import type { Release } from '../releases/release.entity.ts'
 import { driveTrainNumber, driveTrainsOf } from './drive-trains.ts'
 import { Machine } from './machine.entity.ts'
@@ -22,20 +23,9 @@ export async function presentMachines(em: EntityManager, held: readonly HeldRole
   return summaries.sort((a, b) => Number(a.retired) - Number(b.retired) || a.name.localeCompare(b.name, 'en'))
 }
 
-async function presentCurrent(em: EntityManager, machine: Machine, release: Release): Promise<ReleaseSummary> {
-  await em.populate(release, ['releasedBy'])
-  return {
-    machine: machine.key,
-    machineName: machine.name,
-    version: release.version,
-    sequence: release.sequence,
-    state: 'current',
-    title: release.changeTitle,
-    change: `${machine.key}-${release.changeNumber}`,
-    releasedBy: release.releasedBy.name,
-    releasedAt: release.releasedAt.toISOString(),
-    joints: Object.keys(release.set.joints).length,
-  }
+async function presentCurrent(em: EntityManager, release: Release): Promise<ReleaseSummary> {
+  await em.populate(release, ['machine', 'releasedBy'])
+  return (await presentReleases(em, [release]))[0]
 }
 
 const lastActsShown = 12
@@ -76,7 +66,7 @@ export async function presentMachine(em: EntityManager, machine: Machine, held: 
   return {
     ...summariseMachine(all, open.length),
     shown,
-    currentRelease: release && shown && !shown.withdrawn ? await presentCurrent(em, machine, release) : null,
+    currentRelease: release && shown && !shown.withdrawn ? await presentCurrent(em, release) : null,
     busList: summariseBuses(set),
     familyList: Object.entries(set.families).map(([key, { name }]) => ({
       key,
