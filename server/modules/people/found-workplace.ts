@@ -1,5 +1,7 @@
 import type { EntityManager } from '@mikro-orm/core'
+import { InvitePerson } from '../../../shared/contract/people.ts'
 import { DomainError } from '../../http/errors.ts'
+import { validBody } from '../../http/validate.ts'
 import { appendEntry } from '../ledger/append-entry.ts'
 import { queueMail } from '../mail/queue-mail.ts'
 import { normalEmail } from './check-credentials.ts'
@@ -16,11 +18,12 @@ import { noPassword, Person } from './person.entity.ts'
  *
  * @param em  inside a transaction
  * @returns the link's address
- * @throws DomainError already-exists when somebody can sign in
+ * @throws DomainError invalid-request; already-exists when somebody can sign in
  */
 export async function foundWorkplace(em: EntityManager, { name, email, baseUrl, now }: { name: string; email: string; baseUrl: string; now: Date }): Promise<string> {
   if ((await em.count(Person, { passwordHash: { $ne: null } })) > 0)
     throw new DomainError('already-exists', 'This workplace has people who can sign in. Nothing was made; ask one of its administrators for an invitation.')
+  validBody(InvitePerson, { name, email, roles: [] })
   const address = normalEmail(email)
   const known = await em.findOne(Person, { email: address }, { populate: ['passwordHash'] })
   const person = known ?? em.create(Person, { name: plainName(name), email: address, passwordHash: noPassword, createdAt: now })
