@@ -34,7 +34,6 @@ export function titleLine(context: ExportContext): string {
 }
 
 /** Text without line ends or other control characters. */
-// eslint-disable-next-line no-control-regex
 export const oneLine = (text: string): string => text.replace(/[\u0000-\u001f\u007f-\u009f\u2028\u2029]+/g, ' ').trim()
 
 /** A name as a part of a file name: letters, digits, point, dash. */
