@@ -35,7 +35,7 @@ const MAX_SWITCHINGS = 200
 /** ‖A‖·h beyond which Taylor steps would be too many: an electrical time constant far below the tick. */
 const STIFF = 64
 /** Halvings of a unit that stiff intervals are cut into. */
-const HALVINGS = 52
+const HALVINGS = 40
 
 /** A linear function of the state that is ≥ 0 while its mode lasts, and its rate for that mode. */
 interface Guard {
@@ -186,6 +186,7 @@ export class Drive {
     const { n, x, y, v } = this
     const cache = this.halves[this.systemKey()]
     let remaining = h
+    let suspect: Guard | undefined
     for (let depth = 0; depth <= HALVINGS && remaining > 0; ) {
       const piece = this.options.unit * 2 ** -depth
       if (piece > remaining) {
@@ -198,15 +199,17 @@ export class Drive {
         for (let c = 0; c < n; c++) sum += Ad[r * n + c] * x[c]
         y[r] = sum
       }
-      const crossed = locate ? mode.guards.find((guard) => valueOf(guard, y) < 0) : undefined
+      const crossed = locate ? mode.guards.find((guard) => valueOf(guard, y) < -ROUNDING) : undefined
       if (crossed !== undefined && depth < HALVINGS) {
+        suspect = crossed
         depth++
         continue
       }
       x.set(y)
       remaining -= piece
-      if (crossed === undefined) continue
-      this.cross(crossed)
+      // The shortest piece ends at the switching to within rounding, whichever side of it.
+      if (depth < HALVINGS || suspect === undefined) continue
+      this.cross(suspect)
       return remaining
     }
     return 0

@@ -79,6 +79,17 @@ function apart(a: ArrayLike<number>, b: ArrayLike<number>): number {
 }
 
 describe('against a Runge–Kutta run', () => {
+  it('walks a winding whose time constant is far below the tick in bounded steps', () => {
+    // L/R is 0.1 µs against ticks of 67 µs: a Taylor step would cover a six-hundredth of a tick.
+    const joint = rigidJoint({ plant: { L: 1.65e-6 }, firmware: { K_pc: 0.2, K_ic: 50_000, mode: 'velocity' } })
+    const options = aStep({ step_to: 0.4, t_end: 0.006, tau_load: 0.01 })
+    const { traces, switchings } = simulate(joint, { ...options, trace_points: 1e6 })
+    const plain = plainRun(joint, options as unknown as PlainOptions, 15, 4, 400)
+    expect(switchings).toBeGreaterThan(0)
+    expect(apart(traces.omega, plain.omega)).toBeLessThan(1e-6)
+    expect(apart(traces.i, plain.i)).toBeLessThan(1e-6)
+  })
+
   it.each(CASES.map((c) => [c.name, c] as const))('%s', (_, { joint, options, p, q }) => {
     const { traces, ticks } = simulate(joint, { ...options, trace_points: 1e6 })
     const plain = plainRun(joint, options as unknown as PlainOptions, p, q, 4)
