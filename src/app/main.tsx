@@ -5,7 +5,7 @@ import '../index.css'
 import { queryClient } from '../lib/query-client.ts'
 import { Providers } from './providers.tsx'
 import { makeRouter } from './router.tsx'
-import { startTheme } from './theme.ts'
+import { startTheme } from '../lib/theme.ts'
 
 startTheme()
 createRoot(document.getElementById('root')!).render(

@@ -6,6 +6,17 @@ import { FirstWait } from './first-wait.tsx'
 
 /** Pages for those signed in; each is its own chunk, loaded when first opened. */
 const pages: RouteObject[] = [
+  { path: 'account', lazy: () => import('../routes/account.tsx') },
+  { path: 'people', lazy: () => import('../routes/people.tsx') },
+  { path: 'people/:person', lazy: () => import('../routes/person.tsx') },
+  { path: 'mail', lazy: () => import('../routes/mail.tsx') },
+  { path: 'ledger', lazy: () => import('../routes/ledger.tsx') },
+  { path: 'policy', lazy: () => import('../routes/policy.tsx') },
+  { path: 'machines', lazy: () => import('../routes/machines.tsx') },
+  { path: 'machines/:machine', lazy: () => import('../routes/machine.tsx') },
+  { path: 'machines/:machine/bus/:bus', lazy: () => import('../routes/bus.tsx') },
+  { path: 'machines/:machine/joints/:joint', lazy: () => import('../routes/joint.tsx') },
+  { path: 'machines/:machine/families/:family', lazy: () => import('../routes/family.tsx') },
 ]
 
 export const routes: RouteObject[] = [
@@ -14,6 +25,8 @@ export const routes: RouteObject[] = [
     HydrateFallback: FirstWait,
     children: [
       { path: '/sign-in', lazy: () => import('../routes/sign-in.tsx') },
+      { path: '/forgotten', lazy: () => import('../routes/forgotten.tsx') },
+      { path: '/links/:secret', lazy: () => import('../routes/link.tsx') },
       {
         path: '/',
         Component: SignedInLayout,

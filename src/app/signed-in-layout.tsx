@@ -12,7 +12,7 @@ import { ApiProblem } from '../lib/api-client.ts'
 import { holds, meQuery, useMe } from '../lib/me.ts'
 import { queryClient } from '../lib/query-client.ts'
 import { paths } from './paths.ts'
-import { useTheme } from './theme.ts'
+import { useTheme } from '../lib/theme.ts'
 import { machineItems, machineOfPath, personItems, placesFor, rolesInWords } from './top-bar-places.ts'
 
 /** Whoever is not signed in goes to the sign-in page, and back here after it. */

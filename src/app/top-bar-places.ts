@@ -3,8 +3,8 @@ import type { GrantView, Me } from '../../shared/contract/people.ts'
 import type { MenuItem } from '../components/ui/menu.tsx'
 import type { Place } from '../components/ui/top-bar.tsx'
 import { paths } from './paths.ts'
-import { setTheme, themes } from './theme.ts'
-import type { Theme } from './theme.ts'
+import { setTheme, themes } from '../lib/theme.ts'
+import type { Theme } from '../lib/theme.ts'
 
 export function placesFor(_me: Me): Place[] {
   return [

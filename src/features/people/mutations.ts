@@ -1,5 +1,5 @@
 import { useMutation, useQueryClient } from '@tanstack/react-query'
-import type { SignIn } from '../../../shared/contract/people.ts'
+import type { ChangePassword, InvitePerson, LinkUsed, PersonView, RoleGrantRequest, SignIn, UseLink } from '../../../shared/contract/people.ts'
 import { act, setActToken } from '../../lib/api-client.ts'
 import { meQuery } from '../../lib/me.ts'
 
@@ -8,7 +8,6 @@ export function useSignIn() {
   const client = useQueryClient()
   return useMutation({
     mutationFn: async (body: SignIn) => {
-      setActToken('')
       await act({ path: '/session', body })
       return client.fetchQuery({ ...meQuery, staleTime: 0 })
     },
@@ -21,4 +20,62 @@ export function useSignOut() {
     mutationFn: () => act({ method: 'DELETE', path: '/session' }),
     onSuccess: () => window.location.assign('/sign-in'),
   })
+}
+
+export const useAskReset = () => useMutation({ mutationFn: (email: string) => act({ path: '/reset', body: { email } }) })
+
+/** Sets the password of a link's person; who else was signed in on this computer no longer is. */
+export function useLink() {
+  const client = useQueryClient()
+  return useMutation({
+    mutationFn: (body: UseLink) => act<LinkUsed>({ path: '/links/use', body }),
+    onSuccess: () => {
+      setActToken('')
+      client.removeQueries({ queryKey: meQuery.queryKey })
+    },
+  })
+}
+
+export function useChangePassword() {
+  const client = useQueryClient()
+  return useMutation({
+    mutationFn: (body: ChangePassword) => act<{ sessionsEnded: number }>({ path: '/account/password', body }),
+    onSuccess: () => client.invalidateQueries({ queryKey: ['sessions'] }),
+  })
+}
+
+export function useEndSession() {
+  const client = useQueryClient()
+  return useMutation({
+    mutationFn: (session: string) => act({ method: 'DELETE', path: `/account/sessions/${encodeURIComponent(session)}` }),
+    onSuccess: () => client.invalidateQueries({ queryKey: ['sessions'] }),
+  })
+}
+
+/** People, what the reader may do themselves, and the traces that acts on people leave. */
+function useStale() {
+  const client = useQueryClient()
+  return () => Promise.all([['people'], ['me'], ['ledger'], ['mail']].map((queryKey) => client.invalidateQueries({ queryKey })))
+}
+
+export function useInvite() {
+  const stale = useStale()
+  return useMutation({ mutationFn: (body: InvitePerson) => act<PersonView>({ path: '/people', body }), onSuccess: stale })
+}
+
+export function useGrantRole(person: number) {
+  const stale = useStale()
+  return useMutation({ mutationFn: (body: RoleGrantRequest) => act<PersonView>({ path: `/people/${person}/roles`, body }), onSuccess: stale })
+}
+
+export function useEndRole(person: number) {
+  const stale = useStale()
+  return useMutation({ mutationFn: (grant: number) => act<PersonView>({ method: 'DELETE', path: `/people/${person}/roles/${grant}` }), onSuccess: stale })
+}
+
+export type PersonAct = 'confirm-signing' | 'disable' | 'enable' | 'reset'
+
+export function usePersonAct(person: number) {
+  const stale = useStale()
+  return useMutation({ mutationFn: (what: PersonAct) => act<PersonView>({ path: `/people/${person}/${what}`, body: {} }), onSuccess: stale })
 }

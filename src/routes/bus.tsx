@@ -1,0 +1,67 @@
+import { useSuspenseQuery } from '@tanstack/react-query'
+import { useParams } from 'react-router'
+import type { LoaderFunctionArgs } from 'react-router'
+import { paths } from '../app/paths.ts'
+import { PageHead } from '../components/layout/page-head.tsx'
+import { KeyValueList } from '../components/ui/key-value-list.tsx'
+import { Num } from '../components/ui/num.tsx'
+import { SectionHeading } from '../components/ui/section-heading.tsx'
+import { TextLink } from '../components/ui/text-link.tsx'
+import { AddressGrid } from '../features/machines/components/address-grid.tsx'
+import { MachineFrame } from '../features/machines/components/machine-frame.tsx'
+import { FromRelease } from '../features/machines/components/release-shown.tsx'
+import { TapTable } from '../features/machines/components/tap-table.tsx'
+import { busQuery, machineQuery } from '../features/machines/queries.ts'
+import { count } from '../lib/format.ts'
+import { queryClient } from '../lib/query-client.ts'
+
+export const loader = ({ params }: LoaderFunctionArgs) =>
+  Promise.all([queryClient.ensureQueryData(machineQuery(params.machine!)), queryClient.ensureQueryData(busQuery(params.machine!, params.bus!))])
+
+export function Component() {
+  const params = useParams()
+  const machine = useSuspenseQuery(machineQuery(params.machine!)).data
+  const bus = useSuspenseQuery(busQuery(params.machine!, params.bus!)).data
+  const { settings } = bus
+  return (
+    <>
+      <PageHead
+        kicker={
+          <>
+            <TextLink to={paths.machine(bus.machine)}>{bus.machineName}</TextLink>, bus
+          </>
+        }
+        title={settings.name}
+        documentTitle={`bus ${settings.name}, ${bus.machineName}`}
+        aside={
+          <KeyValueList
+            entries={[
+              { key: 'bit rate', value: <Num value={settings.bitRate} unit="bit/s" /> },
+              { key: 'supply', value: <Num value={settings.supply} unit="V" digits={2} /> },
+              { key: 'pull-up', value: <Num value={settings.pullUp} unit="Ω" /> },
+              { key: 'capacitance', value: <Num value={settings.capacitance} unit="F" /> },
+            ]}
+          />
+        }
+        actions={
+          <div className="text-13 text-ink-2">
+            as in release <FromRelease machine={bus.machine} shown={bus.shown} />
+          </div>
+        }
+      >
+        {count(bus.taps.length, 'address', 'addresses')} answered, {bus.free} free
+        {settings.pollingRate !== undefined && <>, each board read <Num value={settings.pollingRate} unit="Hz" /></>}
+      </PageHead>
+      <MachineFrame machine={machine} bus={bus.key}>
+        <section aria-labelledby="grid" className="mb-8">
+          <SectionHeading id="grid" className="mb-2">Addresses</SectionHeading>
+          <AddressGrid bus={bus} />
+        </section>
+        <section aria-labelledby="taps">
+          <SectionHeading id="taps">What answers</SectionHeading>
+          <TapTable bus={bus} />
+        </section>
+      </MachineFrame>
+    </>
+  )
+}
