@@ -6,6 +6,7 @@ import type { ReleaseSummary } from '../../../shared/contract/releases.ts'
 import { Change } from '../changes/change.entity.ts'
 import { presentSummaries } from '../changes/present.ts'
 import { LedgerEntry } from '../ledger/ledger-entry.entity.ts'
+import { presentEntry } from '../ledger/present.ts'
 import { may, type HeldRole } from '../people/permissions.ts'
 import { presentReleases } from '../releases/present.ts'
 import type { Release } from '../releases/release.entity.ts'
@@ -32,17 +33,7 @@ const lastActsShown = 12
 
 async function lastActs(em: EntityManager, machine: Machine): Promise<LedgerEntryView[]> {
   const entries = await em.find(LedgerEntry, { machineKey: machine.key }, { orderBy: { sequence: 'desc' }, limit: lastActsShown })
-  return entries.map((e) => ({
-    sequence: e.sequence,
-    at: e.at.toISOString(),
-    person: e.personName,
-    act: e.act,
-    machine: e.machineKey ?? null,
-    subject: { ...e.subject },
-    details: e.details,
-    hash: e.hash,
-    previousHash: e.previousHash,
-  }))
+  return entries.map(presentEntry)
 }
 
 /** "Retired" is told before "not your role", so that nobody asks for a role in vain. */

@@ -16,7 +16,7 @@ export const summariseMachine = ({ machine, shown, set }: ShownSet, openChanges:
   key: machine.key,
   name: machine.name,
   description: machine.description,
-  retired: machine.retiredAt !== null,
+  retired: Boolean(machine.retiredAt),
   joints: Object.keys(set.joints).length,
   buses: Object.keys(set.buses).length,
   currentVersion: shown && !shown.withdrawn ? shown.version : null,
