@@ -36,7 +36,7 @@ export function ChartTable({ label, head, rows }: ChartNumbers & { label: string
       </div>
       {every > 1 && (
         <p className="help">
-          Every {every}th of {formatFixed(rows.length, 0)} rows; the csv holds all.
+          One row in {every} of {formatFixed(rows.length, 0)}; the csv holds all rows.
         </p>
       )}
     </div>

@@ -40,6 +40,7 @@ export function LinePlot({ label, x, y, series, limits = [], marks = [], height,
   const [cursor, setCursor] = useState<{ x: number; left: number } | null>(null)
   const [failed, setFailed] = useState(false)
   const theme = useThemeKey()
+  const around = JSON.stringify([x, y, limits, marks])
 
   useEffect(() => {
     const host = canvasHost.current
@@ -63,9 +64,9 @@ export function LinePlot({ label, x, y, series, limits = [], marks = [], height,
       own.current = null
       if (plotRef) plotRef.current = null
     }
-    // A plot is made anew for new data, size or colours; `x`, `y`, `limits` and `marks` come with the data.
+    // A plot is made anew for new data, size or colours. Axes, limits and marks are small and compared by content (`around`).
     // eslint-disable-next-line react-hooks/exhaustive-deps
-  }, [series, width, height, theme, together, upper])
+  }, [series, width, height, theme, together, upper, around])
 
   const onKey = (event: KeyboardEvent) => {
     const plot = own.current
@@ -97,7 +98,7 @@ export function LinePlot({ label, x, y, series, limits = [], marks = [], height,
       {!upper && <div className="-mt-1 text-right text-12 text-ink-2">{axisName(x)}</div>}
       {failed && <p className="absolute inset-x-12 top-10 text-13 text-ink-2">The picture could not be drawn. The table holds the same numbers.</p>}
       {cursor && (
-        <div className="chart-readout" style={{ top: 24, left: flip ? undefined : cursor.left + 52, right: flip ? width - cursor.left - 36 : undefined }}>
+        <div className="chart-readout" style={{ bottom: upper ? 20 : 52, left: flip ? undefined : cursor.left + 52, right: flip ? width - cursor.left - 36 : undefined }}>
           <div className="text-ink-2">{at}</div>
           {readings.map((r) => (
             <div key={r.label} style={{ color: `var(--${SERIES_STYLES[r.role].colour})` }}>
