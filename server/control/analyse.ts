@@ -2,6 +2,7 @@ import { bandwidthsOf, currentResponse, dcGainOf, outerResponse, type Bandwidths
 import { CurrentTransfer } from './current-transfer.ts'
 import { NumericError } from './errors.ts'
 import { liftPlant } from './lifted-plant.ts'
+import { windowDelay } from './closed-forms.ts'
 import { currentSource, OuterSource } from './margin-sources.ts'
 import { marginsOf, UNSTABLE_MARGINS, type LoopMargins } from './margins.ts'
 import type { ControlMode, JointModel } from './model.ts'
@@ -9,6 +10,7 @@ import { closuresOf } from './monodromy.ts'
 import { outerSteps } from './outer-steps.ts'
 import { OuterTransfer } from './outer-transfer.ts'
 import { velocityQuantum } from './plant.ts'
+import { resonances, unfold } from './resonances.ts'
 import { sampleJoint, type SampledJoint } from './sampled-joint.ts'
 import { stabilityOf, verdictOf, type Stability, type Verdict } from './stability.ts'
 
@@ -144,7 +146,7 @@ function overall(joint: SampledJoint, last: Stability): Omit<LinearReport, 'loop
     slowestTimeConstant: decayRate > 0 ? 1 / decayRate : null,
     eigenvalues: list,
     foldHz: 1 / T_h,
-    windowDelay: (model.firmware.W * T_o) / 2,
+    windowDelay: windowDelay(model.firmware.W, T_o),
     velocityQuantum: velocityQuantum(model.plant, model.firmware),
   }
 }
@@ -159,31 +161,4 @@ export function stateCount(joint: SampledJoint): number {
   const mechanics = plant.k_s === null ? 1 : 3
   const outer = 1 + mechanics + W + integrator(K_iv) + 1 + (firmware.sensor_delay ?? 0) + (firmware.outer_delay ?? 0)
   return inner + outer + (joint.closes === 'position' ? 1 + integrator(K_ip) : 0)
-}
-
-/** Angles of eigenvalues that ring: where a locus or T may have something narrow, and its flanks. */
-export function resonances(stability: Stability): number[] {
-  const marks: number[] = []
-  for (let k = 0; k < stability.re.length; k++) {
-    const re = stability.re[k]
-    const im = stability.im[k]
-    const modulus = Math.hypot(re, im)
-    if (im <= 0 || modulus < 0.6) continue
-    const angle = Math.atan2(im, re)
-    const width = Math.abs(1 - modulus)
-    for (const at of [angle - width, angle, angle + width]) if (at > 0 && at < Math.PI) marks.push(at)
-  }
-  return marks
-}
-
-/** ψ = ±q·θ mod 2π: every θ in (0, π) that folds onto the marks. */
-function unfold(marks: readonly number[], q: number): number[] {
-  if (q === 1) return [...marks]
-  const out: number[] = []
-  for (const psi of marks) {
-    for (let m = 0; m < q; m++) {
-      for (const at of [(psi + 2 * Math.PI * m) / q, (2 * Math.PI * (m + 1) - psi) / q]) if (at > 0 && at < Math.PI) out.push(at)
-    }
-  }
-  return out
 }

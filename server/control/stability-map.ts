@@ -1,0 +1,152 @@
+import { NumericError } from './errors.ts'
+import { guardInteger, guardNumber, type JointModel } from './model.ts'
+import { parameterNamed, valueOf, withValues, type ParameterName } from './parameters.ts'
+import { evaluatePoint, type PointResult } from './point.ts'
+import type { Verdict } from './stability.ts'
+
+/** Cells of the largest map. */
+export const CELLS_LIMIT = 65_536
+/** Bounds further apart than this are spaced in equal ratios. */
+export const LOG_RATIO = 20
+
+export type MapAxis =
+  | { readonly parameter: string; readonly low: number; readonly high: number; readonly count: number }
+  | { readonly parameter: string; readonly values: readonly number[] }
+
+/** Smallest margin of a cell over its loops. */
+export type CellMargin =
+  | { readonly kind: 'unstable' }
+  /** No loop has a margin within the search's limits. */
+  | { readonly kind: 'none' }
+  | { readonly kind: 'margin'; readonly value: number }
+
+export interface MapCell {
+  readonly x: number
+  readonly y: number
+  readonly rho: number
+  readonly verdict: Verdict
+  readonly phaseMarginDeg: CellMargin
+  readonly gainMarginDb: CellMargin
+}
+
+/** Codes of `MapReport.verdicts`. */
+export const MAP_VERDICTS = ['stable', 'boundary', 'unstable'] as const
+
+export interface MapReport {
+  readonly xParameter: ParameterName
+  readonly yParameter: ParameterName
+  readonly x: Float64Array
+  readonly y: Float64Array
+  /** Rows of constant y from the first to the last, each along x. */
+  readonly rho: Float64Array
+  /** Indices into MAP_VERDICTS. */
+  readonly verdicts: Uint8Array
+  /** Null where margins were not asked for. */
+  readonly phaseMarginDeg: readonly CellMargin[] | null
+  readonly gainMarginDb: readonly CellMargin[] | null
+}
+
+/**
+ * A grid over two parameters, worked off in pieces.
+ *
+ * @source control-model.md §5
+ */
+export class StabilityMap {
+  readonly total: number
+  readonly x: Float64Array
+  readonly y: Float64Array
+  private readonly names: readonly [ParameterName, ParameterName]
+  private readonly model: JointModel
+  private readonly margins: boolean
+  private readonly rho: Float64Array
+  private readonly verdicts: Uint8Array
+  private readonly phase: CellMargin[] = []
+  private readonly gain: CellMargin[] = []
+  private count = 0
+
+  /** @throws NumericError bounds-crossed, not-finite, unknown-parameter, too-large, bad-input */
+  constructor(model: JointModel, x: MapAxis, y: MapAxis, options: { readonly margins: boolean }) {
+    this.model = model
+    this.margins = options.margins
+    this.names = [parameterNamed(x.parameter), parameterNamed(y.parameter)]
+    if (this.names[0] === this.names[1]) throw new NumericError('bad-input', { field: 'y', value: y.parameter, text: `Both axes are ${y.parameter}; a map needs two parameters. Nothing was computed.` })
+    for (const name of this.names) valueOf(model, name)
+    this.x = axisValues('x', x)
+    this.y = axisValues('y', y)
+    this.total = this.x.length * this.y.length
+    if (this.total > CELLS_LIMIT) throw new NumericError('too-large', { field: 'map', value: this.total, limit: CELLS_LIMIT, text: `The map has ${this.total} cells, at most ${CELLS_LIMIT} are computed; nothing was computed. Ask for a coarser grid.` })
+    this.rho = new Float64Array(this.total)
+    this.verdicts = new Uint8Array(this.total)
+  }
+
+  get done(): number {
+    return this.count
+  }
+
+  /** Evaluates up to `count` further cells; true when none are left. */
+  step(count: number): boolean {
+    const end = Math.min(this.total, this.count + count)
+    const width = this.x.length
+    for (; this.count < end; this.count++) {
+      const values = [this.x[this.count % width], this.y[Math.floor(this.count / width)]]
+      const point = evaluatePoint(withValues(this.model, this.names, values), this.margins)
+      this.rho[this.count] = point.rho
+      this.verdicts[this.count] = MAP_VERDICTS.indexOf(point.verdict)
+      if (this.margins) {
+        this.phase.push(smallest(point, (loop) => (loop.phase.kind === 'margin' ? loop.phase.phaseMarginDeg : null)))
+        this.gain.push(smallest(point, (loop) => (loop.gainUp.kind === 'margin' ? loop.gainUp.gainMarginDb : null)))
+      }
+    }
+    return this.count === this.total
+  }
+
+  report(): MapReport {
+    return {
+      xParameter: this.names[0],
+      yParameter: this.names[1],
+      x: this.x,
+      y: this.y,
+      rho: this.rho,
+      verdicts: this.verdicts,
+      phaseMarginDeg: this.margins ? this.phase : null,
+      gainMarginDb: this.margins ? this.gain : null,
+    }
+  }
+}
+
+/** The whole map at once. */
+export function stabilityMap(model: JointModel, x: MapAxis, y: MapAxis, options: { readonly margins: boolean }): MapReport {
+  const map = new StabilityMap(model, x, y, options)
+  map.step(map.total)
+  return map.report()
+}
+
+/** Axis values: given, or between two bounds in equal steps, in equal ratios where high/low exceeds 20. */
+export function axisValues(field: string, axis: MapAxis): Float64Array {
+  if ('values' in axis) {
+    if (axis.values.length === 0) throw new NumericError('bad-input', { field, text: `The ${field} axis has no values; nothing was computed.` })
+    axis.values.forEach((value, k) => guardNumber(`${field}.values[${k}]`, value, 'any'))
+    return Float64Array.from(axis.values)
+  }
+  const { low, high, count } = axis
+  guardNumber(`${field}.low`, low, 'any')
+  guardNumber(`${field}.high`, high, 'any')
+  guardInteger(`${field}.count`, count, 2, CELLS_LIMIT)
+  if (low >= high) throw new NumericError('bounds-crossed', { field, value: [low, high], text: `The ${field} axis runs from ${low} to ${high}; its low end must be below its high end. Nothing was computed.` })
+  const ratios = low > 0 && high / low > LOG_RATIO
+  return Float64Array.from({ length: count }, (_, k) => {
+    if (k === 0) return low
+    if (k === count - 1) return high
+    const t = k / (count - 1)
+    return ratios ? low * (high / low) ** t : low + t * (high - low)
+  })
+}
+
+type LoopPoint = NonNullable<PointResult['loops']['current']>
+
+function smallest(point: PointResult, read: (loop: LoopPoint) => number | null): CellMargin {
+  const loops = Object.values(point.loops)
+  if (point.verdict !== 'stable' || loops.some((loop) => loop.verdict !== 'stable')) return { kind: 'unstable' }
+  const values = loops.map(read).filter((v) => v !== null)
+  return values.length === 0 ? { kind: 'none' } : { kind: 'margin', value: Math.min(...values) }
+}
