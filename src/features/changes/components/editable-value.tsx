@@ -1,0 +1,132 @@
+import { useRef } from 'react'
+import type { Edit } from '../../../../shared/parameters/edits.ts'
+import type { MachineSet } from '../../../../shared/parameters/machine-set.ts'
+import { OriginMark } from '../../../components/ui/origin-mark.tsx'
+import { ValueCell } from '../../../components/ui/value-cell.tsx'
+import { percentChange } from '../../../lib/format.ts'
+import { rulerRange, stepOf } from '../ruler-range.ts'
+import { numberOf, rangeText, registerText, shownValue, valueText } from '../typed-value.ts'
+import { editTo, useTypedValue } from '../use-typed-value.ts'
+import { ownValuesOf, type ValueAt } from '../value-cells.ts'
+
+export interface EditableValueProps {
+  at: ValueAt
+  set: MachineSet
+  onEdit: ((edits: Edit[]) => void) | null
+  /** other than the parameter's own, where the block says the rest */
+  title?: string
+}
+
+/** A value in its block: typed with units, stepped, dragged along its ruler, set back to what is inherited. */
+export function EditableValue(props: EditableValueProps) {
+  const { parameter } = props.at
+  return parameter.choices || parameter.kind === 'boolean' ? <Choice {...props} /> : <Quantity {...props} />
+}
+
+function Quantity({ at, set, onEdit, title }: EditableValueProps) {
+  const typed = useTypedValue(at, onEdit ?? (() => {}))
+  // The cell tells a move of the ruler and a key typed through the same call; the ruler writes its value first.
+  const fromRuler = useRef(false)
+  const range = rulerRange(at)
+  const [now, before] = [numberOf(at.value), numberOf(at.released)]
+  const own = at.place.kind === 'family' ? ownValuesOf(set, at.place.family, at.parameter.name) : []
+  return (
+    <ValueCell
+      title={title ?? at.parameter.title}
+      value={onEdit ? typed.text : shownValue(at.value)}
+      unit={at.parameter.unit ?? ''}
+      origin={at.origin}
+      change={now !== null && before !== null ? percentChange(before, now) : null}
+      changed={at.changed}
+      ruler={range && now !== null ? { ...range, value: now, released: before, step: stepOf(at), flags: own.flatMap((o) => numberOf(o.value) ?? []) } : undefined}
+      step={stepOf(at)}
+      write={(v) => {
+        fromRuler.current = true
+        return String(v)
+      }}
+      onChange={
+        onEdit
+          ? (text) => {
+              if (fromRuler.current) typed.move(text)
+              else typed.type(text)
+              fromRuler.current = false
+            }
+          : undefined
+      }
+      onCommit={
+        onEdit
+          ? (text) => {
+              if (fromRuler.current) typed.move(text)
+              else typed.commit(text)
+              fromRuler.current = false
+            }
+          : undefined
+      }
+      error={typed.error}
+      note={<Notes at={at} own={own.length} onEdit={onEdit} onClear={typed.cancel} bare={range === null} />}
+    />
+  )
+}
+
+function Notes({ at, own, onEdit, onClear, bare }: { at: ValueAt; own: number; onEdit: EditableValueProps['onEdit']; onClear: () => void; bare: boolean }) {
+  const parts = [
+    own > 0 && `${own === 1 ? 'one joint has' : `${own} joints have`} a value of its own`.replace('have a value of its own', 'have values of their own'),
+    bare && rangeText(at.parameter),
+  ].filter(Boolean)
+  const back = onEdit && at.own !== undefined && (at.place.kind === 'joint' || at.released !== at.value)
+  if (parts.length === 0 && !back) return null
+  return (
+    <>
+      {parts.join('; ')}
+      {back && (
+        <button
+          type="button"
+          className="link ml-1 text-12"
+          title={`register ${registerText(at.parameter)}`}
+          onClick={() => {
+            onClear()
+            const edit = editTo(at, undefined)
+            if (edit) onEdit([edit])
+          }}
+        >
+          set back to {at.place.kind === 'joint' ? 'inherited' : 'firmware'}
+          <span className="sr-only">, {at.parameter.title}</span>
+        </button>
+      )}
+    </>
+  )
+}
+
+/** A switch or one of a few words. */
+function Choice({ at, onEdit, title }: EditableValueProps) {
+  const typed = useTypedValue(at, onEdit ?? (() => {}))
+  const choices = at.parameter.choices?.map(String) ?? ['on', 'off']
+  const name = title ?? at.parameter.title
+  return (
+    <div className={`value-cell ${at.changed ? 'value-cell-changed' : ''}`}>
+      <div className="flex justify-between gap-2 text-13">
+        <span>{name}</span>
+        {at.changed && <span className="num text-12 text-ink-2">was {shownValue(at.released)}</span>}
+      </div>
+      <div className="flex items-baseline gap-[5px]">
+        {onEdit ? (
+          <select aria-label={name} className={`-ml-1 border-0 bg-transparent text-16 ${at.changed ? 'text-brass' : 'text-ink'}`} value={valueText(at.value)} onChange={(e) => typed.commit(e.target.value)}>
+            {at.value === undefined && <option value="">–</option>}
+            {choices.map((c) => (
+              <option key={c} className="bg-sheet text-ink">
+                {c}
+              </option>
+            ))}
+          </select>
+        ) : (
+          <span className={`text-16 ${at.changed ? 'text-brass' : ''}`}>{shownValue(at.value)}</span>
+        )}
+        <span className="flex-1" />
+        <OriginMark origin={at.origin} />
+      </div>
+      <p className="text-12 text-ink-2">
+        <Notes at={at} own={0} onEdit={onEdit} onClear={typed.cancel} bare={false} />
+      </p>
+    </div>
+  )
+}

@@ -1,0 +1,86 @@
+import { useId, useState } from 'react'
+import { readQuantity } from '../../../../shared/units/quantity.ts'
+import { shownValue, valueText } from '../typed-value.ts'
+
+export interface QuantityInputProps {
+  label: string
+  value: number | string | undefined
+  unit: string | null
+  changed: boolean
+  choices?: readonly string[]
+  /** an empty field takes the value away */
+  mayBeEmpty: boolean
+  autoFocus?: boolean
+  /** null: read only */
+  onCommit: ((value: number | string | undefined) => void) | null
+}
+
+/** A quantity typed in a table, in its own unit or another of the same kind ("0.42 mH"). Committed on Enter or leaving; Esc takes it back. */
+export function QuantityInput({ label, value, unit, changed, choices, mayBeEmpty, autoFocus = false, onCommit }: QuantityInputProps) {
+  const [typed, setTyped] = useState<string | null>(null)
+  const [error, setError] = useState<string | null>(null)
+  const id = useId()
+  const tone = changed ? 'font-medium text-brass' : ''
+  if (!onCommit) return <span className={`num ${tone}`}>{value === undefined ? '' : shownValue(value)}</span>
+  if (choices)
+    return (
+      <select aria-label={label} className={`bg-transparent ${tone}`} value={String(value ?? '')} onChange={(e) => onCommit(e.target.value)}>
+        {choices.map((c) => (
+          <option key={c} className="bg-sheet text-ink">
+            {c}
+          </option>
+        ))}
+      </select>
+    )
+  const commit = () => {
+    if (typed === null) return
+    const text = typed.trim()
+    if (text === '') {
+      if (mayBeEmpty) onCommit(undefined)
+      setTyped(null)
+      setError(null)
+      return
+    }
+    const read = readQuantity(text, unit)
+    if (read.kind === 'refused' || typeof read.value !== 'number') {
+      setError(read.kind === 'refused' ? read.message : 'This has more digits than a model value holds.')
+      return
+    }
+    setTyped(null)
+    setError(null)
+    onCommit(read.rounded ? Number(read.value.toPrecision(12)) : read.value)
+  }
+  return (
+    <span className="relative inline-block">
+      <input
+        aria-label={label}
+        className={`num w-[12ch] rounded border border-transparent bg-transparent px-1 text-right hover:border-hairline focus:border-rule focus:bg-sheet ${tone} ${error ? '!border-oxide' : ''}`}
+        inputMode="decimal"
+        autoComplete="off"
+        spellCheck={false}
+        autoFocus={autoFocus}
+        placeholder={mayBeEmpty ? '–' : undefined}
+        aria-invalid={error ? true : undefined}
+        aria-describedby={error ? id : undefined}
+        value={typed ?? valueText(value)}
+        onChange={(e) => {
+          setTyped(e.target.value)
+          setError(null)
+        }}
+        onBlur={commit}
+        onKeyDown={(e) => {
+          if (e.key === 'Enter') commit()
+          if (e.key === 'Escape') {
+            setTyped(null)
+            setError(null)
+          }
+        }}
+      />
+      {error && (
+        <span id={id} role="alert" className="field-error absolute top-full right-0 z-10 w-56 border border-oxide bg-sheet px-2 py-1 text-left whitespace-normal">
+          {error} {value === undefined ? '' : `${shownValue(value)} is kept.`}
+        </span>
+      )}
+    </span>
+  )
+}
