@@ -139,5 +139,6 @@ export function runFirmware(options: RunOptions, record: Record): void {
       requestAt = requestAt + 1 === D + 1 ? 0 : requestAt + 1
       drive.v = appliedVoltage(supply, requestLine[requestAt], stiff ? V : busVoltage(supply, requestLine[requestAt], i))
     }
+    record.v[k] = drive.v
   }
 }

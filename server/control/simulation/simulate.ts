@@ -75,6 +75,17 @@ export const MAX_TICKS = 2_000_000
  * @source         control-model.md §2, §6
  */
 export function simulate(model: JointModel, options: SimulationOptions): SimulationResult {
+  const { record, switchings } = simulateEveryTick(model, options)
+  return {
+    metrics: metricsOf(record, model.firmware.mode, options),
+    traces: decimate(record, options.trace_points ?? 1200),
+    ticks: record.count,
+    switchings,
+  }
+}
+
+/** As simulate, with the signals at every current tick and no figures. */
+export function simulateEveryTick(model: JointModel, options: SimulationOptions): { record: Record; switchings: number } {
   const { plant, firmware } = model
   const count = checked(model, options)
   const { p, q } = timingOf(firmware.f_c, firmware.f_o)
@@ -112,17 +123,12 @@ export function simulate(model: JointModel, options: SimulationOptions): Simulat
     },
     record,
   )
-  return {
-    metrics: metricsOf(record, firmware.mode, options),
-    traces: decimate(record, options.trace_points ?? 1200),
-    ticks: count,
-    switchings: drive.switchings,
-  }
+  return { record, switchings: drive.switchings }
 }
 
 function buffers(count: number): Omit<Record, 'count' | 'T_c'> {
   const make = (): Float64Array => new Float64Array(count)
-  return { reference: make(), theta: make(), omega: make(), i: make(), u: make() }
+  return { reference: make(), theta: make(), omega: make(), i: make(), u: make(), v: make() }
 }
 
 function metricsOf(record: Record, mode: Firmware['mode'], options: SimulationOptions): SimulationMetrics {

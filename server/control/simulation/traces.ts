@@ -10,9 +10,11 @@ export interface Traces {
   i: Float64Array
   /** Voltage request, V, before its clamp and delay. */
   u: Float64Array
+  /** Voltage on the motor from this sample's tick on, V. */
+  v: Float64Array
 }
 
-/** Every sample of a run, taken at the current ticks before the tick's work; `u` is that tick's own request. */
+/** Every sample of a run, taken at the current ticks before the tick's work; `u` and `v` are what that work gives. */
 export interface Record {
   count: number
   T_c: number
@@ -21,6 +23,7 @@ export interface Record {
   omega: Float64Array
   i: Float64Array
   u: Float64Array
+  v: Float64Array
 }
 
 /**
@@ -41,7 +44,7 @@ export function decimate(record: Record, points: number): Traces {
   }
   const t = new Float64Array(n)
   for (let k = 0; k < n; k++) t[k] = (kept === null ? k : kept[k]) * T_c
-  return { t, reference: pick(record.reference), theta: pick(record.theta), omega: pick(record.omega), i: pick(record.i), u: pick(record.u) }
+  return { t, reference: pick(record.reference), theta: pick(record.theta), omega: pick(record.omega), i: pick(record.i), u: pick(record.u), v: pick(record.v) }
 }
 
 function keptTicks(record: Record, buckets: number): Int32Array {
