@@ -1,16 +1,40 @@
-import type { JointFigures } from '../../../shared/contract/checks.ts'
-import { eigenvalues, spectralRadius } from '../../control/eigenvalues.ts'
-import type { JointModel } from '../../control/model.ts'
-import { currentMonodromy, outerMonodromy } from '../../control/monodromy.ts'
-import { outerSteps } from '../../control/outer-steps.ts'
-import { sampleJoint } from '../../control/sampled-joint.ts'
+import type { JointFigures, LoopFigures } from '../../../shared/contract/checks.ts'
+import { analyse, type LoopReport } from '../../control/analyse.ts'
+import type { GainMargin } from '../../control/margins.ts'
+import type { ControlMode, JointModel } from '../../control/model.ts'
+import type { Verdict as ControlVerdict } from '../../control/stability.ts'
 
-/** The figures of one joint's closed cascade, as the check carries them. */
+const verdictWords: Record<ControlVerdict, JointFigures['verdict']> = { stable: 'stable', unstable: 'unstable', boundary: 'on the boundary' }
+
+const reads = (margin: GainMargin): string => (margin.kind === 'unstable' ? 'unstable' : margin.kind === 'none-within' ? `above ${margin.limitDb} dB` : '')
+
+function loopFigures(loop: LoopReport): LoopFigures {
+  const { gainUp, gainDown, phase, delay, M_s, bandwidths } = loop
+  const width = bandwidths?.relative
+  return {
+    verdict: verdictWords[loop.verdict],
+    gainMarginDb: gainUp.kind === 'margin' ? gainUp.gainMarginDb : null,
+    gainMarginReads: reads(gainUp),
+    gainMarginDownDb: gainDown.kind === 'margin' ? gainDown.gainMarginDb : null,
+    phaseMarginDeg: phase.kind === 'margin' ? phase.phaseMarginDeg : null,
+    phaseMarginReads: phase.kind === 'unstable' ? 'unstable' : phase.kind === 'none-up-to' ? 'none up to 180°' : '',
+    delayMarginS: delay.kind === 'margin' ? delay.delay : null,
+    sensitivityPeak: M_s.kind === 'peak' ? M_s.value : null,
+    bandwidthHz: width?.kind === 'bandwidth' ? width.hz : null,
+  }
+}
+
+/** The figures of one joint's closed cascade, as a check carries them. */
 export function figuresOf(model: JointModel): JointFigures {
-  const joint = sampleJoint(model)
-  const m = joint.closes === 'current' ? currentMonodromy(joint) : outerMonodromy(joint, outerSteps(joint), joint.closes)
-  const ev = eigenvalues(m.Phi, m.n)
-  const rho = spectralRadius(ev.re, ev.im, m.n)
-  const T = joint.closes === 'current' ? joint.timing.T_c : joint.timing.T_h
-  return { verdict: rho < 1 - 1e-9 ? 'stable' : rho > 1 + 1e-9 ? 'unstable' : 'on the boundary', rho, hyperperiodS: T, decayRate: -Math.log(rho) / T, slowestTimeConstantS: rho < 1 ? -T / Math.log(rho) : null, eigenvalues: [], loops: {} }
+  const report = analyse(model)
+  const loops = Object.entries(report.loops) as [ControlMode, LoopReport][]
+  return {
+    verdict: verdictWords[report.verdict],
+    rho: report.rho,
+    hyperperiodS: report.T_h,
+    decayRate: report.decayRate,
+    slowestTimeConstantS: report.slowestTimeConstant,
+    eigenvalues: report.eigenvalues.map((e) => ({ re: e.re, im: e.im, decayRate: e.decayRate, frequencyHz: e.foldedHz })),
+    loops: Object.fromEntries(loops.map(([name, loop]) => [name, loopFigures(loop)])),
+  }
 }

@@ -39,7 +39,7 @@ interface Analysis {
 }
 
 /** One joint: its values through the registers and back, and everything that is computed from them. */
-function analyse(set: MachineSet, resolved: ResolvedJoint, policy: CheckInputs['policy']): Analysis {
+function analyse(set: MachineSet, resolved: ResolvedJoint, policy: CheckInputs['policy'], known: Map<string, JointFigures>): Analysis {
   const { joint } = resolved
   const place = set.joints[joint].family
   if (resolved.kind === 'refused') return { figures: null, findings: refusedFindings(place, resolved) }
@@ -53,7 +53,9 @@ function analyse(set: MachineSet, resolved: ResolvedJoint, policy: CheckInputs['
   const refuse = (text: string, remedy: string): Analysis => ({ figures: null, findings: [...findings, { place, joint, kind: 'closed loop', level: 'block', value: null, limit: null, unit: '', text, remedy, source: 'server/control/MODEL.md' }] })
   if (made.kind === 'missing') return refuse(`The firmware version has no parameter for ${made.roles.join(', ')}, so the loop can't be analysed.`, 'Name the roles in the schema (x-role); nobody can say that this loop is safe to try.')
   try {
-    const figures = figuresOf(made.model)
+    const key = JSON.stringify(made.model)
+    const figures = known.get(key) ?? figuresOf(made.model)
+    known.set(key, figures)
     return { figures, findings: [...findings, stabilityFinding(place, joint, figures)] }
   } catch (error) {
     if (!(error instanceof NumericError)) throw error
@@ -76,14 +78,16 @@ export function runCheck(inputs: CheckInputs): CheckResult {
   const { candidate, base, policy } = inputs
   const resolved = resolveAll(candidate, schemas)
   const resolvedBase = resolveAll(base, schemas)
+  /** figures by model: joints built alike are computed once */
+  const known = new Map<string, JointFigures>()
   const touched = new Set(touchedJoints(candidate, base, resolved, resolvedBase))
   const raw: RawFinding[] = [...addressFindings(candidate), ...firmwareFindings(inputs, touched)]
   const joints = Object.keys(candidate.joints).map((joint): JointCheck => {
     const now = resolved.get(joint)!
-    const analysis = analyse(candidate, now, policy)
+    const analysis = analyse(candidate, now, policy, known)
     raw.push(...analysis.findings)
     const then = resolvedBase.get(joint)
-    const released = touched.has(joint) ? (then ? analyse(base, then, policy).figures : null) : analysis.figures
+    const released = touched.has(joint) ? (then ? analyse(base, then, policy, known).figures : null) : analysis.figures
     return { joint, touched: touched.has(joint), candidate: analysis.figures, released, imageSha256: now.kind === 'resolved' ? now.imageSha256 : null }
   })
   const findings: Finding[] = fold(raw)
