@@ -54,10 +54,10 @@ describe('a ruler as slider', () => {
   })
 
   it('tells of each rest once', () => {
-    const commit = vi.fn()
-    render(<Held start={1} min={0} max={10} step={1} onCommit={commit} />)
+    const settled = vi.fn()
+    render(<Held start={1} min={0} max={10} step={1} onSettle={settled} />)
     fireEvent.keyDown(screen.getByRole('slider'), { key: 'ArrowRight' })
-    expect(commit.mock.calls).toEqual([[2]])
+    expect(settled.mock.calls).toEqual([[2]])
   })
 
   it('leaves other keys to the page', () => {

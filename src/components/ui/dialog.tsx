@@ -15,7 +15,7 @@ export interface DialogProps {
   busy?: boolean
 }
 
-/** A native modal dialog: the page behind is inert, Esc closes, focus returns to where it was. */
+/** A native modal dialog: the page under it is inert, Esc closes, focus returns to where it was. */
 export function Dialog({ open, onClose, title, children, actions, wide = false, busy = false }: DialogProps) {
   const ref = useRef<HTMLDialogElement>(null)
   const titleId = useId()

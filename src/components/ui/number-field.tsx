@@ -7,15 +7,15 @@ export interface NumberFieldProps extends Omit<TextFieldProps, 'mono' | 'type' |
   /** Arrow keys move by this much, with Shift by ten times as much. Without it they do nothing. */
   step?: number
   /** Enter, or the field left after a change. */
-  onCommit?: (text: string) => void
+  onSettle?: (text: string) => void
 }
 
 /** A number as typed. The text is kept exactly; judging it is the caller's (parseNumber in lib/format.ts). */
-export function NumberField({ step, onCommit, value, onChange, onKeyDown, onBlur, ...rest }: NumberFieldProps) {
+export function NumberField({ step, onSettle, value, onChange, onKeyDown, onBlur, ...rest }: NumberFieldProps) {
   const onKey = (event: KeyboardEvent<HTMLInputElement>) => {
     onKeyDown?.(event)
     if (event.defaultPrevented) return
-    if (event.key === 'Enter') onCommit?.(value)
+    if (event.key === 'Enter') onSettle?.(value)
     const direction = event.key === 'ArrowUp' ? 1 : event.key === 'ArrowDown' ? -1 : 0
     if (step === undefined || direction === 0) return
     const next = stepNumberText(value, direction * step * (event.shiftKey ? 10 : 1))
@@ -35,7 +35,7 @@ export function NumberField({ step, onCommit, value, onChange, onKeyDown, onBlur
       onKeyDown={onKey}
       onBlur={(event) => {
         onBlur?.(event)
-        onCommit?.(value)
+        onSettle?.(value)
       }}
     />
   )

@@ -25,7 +25,7 @@ export interface RulerProps extends Pick<RulerDrawingProps, 'value' | 'unstable'
   /** Makes it a slider. Called while the ball moves. */
   onChange?: (value: number) => void
   /** Called once when the ball comes to rest. */
-  onCommit?: (value: number) => void
+  onSettle?: (value: number) => void
   step?: number
   id?: string
 }
@@ -39,7 +39,7 @@ const PAD = 6
  * unstable with the other values as they stand; a plum stop is policy. With `onChange` a slider (WAI-ARIA APG): arrows step, Shift or
  * Page keys ten steps, Home and End the bounds; a step or a drag across the notch rests in it.
  */
-export function Ruler({ label, min, max, value, released = null, scale: wanted = 'linear', unit = '', format: given, figures = true, width: fixed, onChange, onCommit, step, id, ...marks }: RulerProps) {
+export function Ruler({ label, min, max, value, released = null, scale: wanted = 'linear', unit = '', format: given, figures = true, width: fixed, onChange, onSettle, step, id, ...marks }: RulerProps) {
   const [box, measured] = useWidth<HTMLDivElement>(fixed ?? 182)
   const dragging = useRef<number | null>(null)
   const width = fixed ?? measured
@@ -77,7 +77,7 @@ export function Ruler({ label, min, max, value, released = null, scale: wanted =
     if (next === null) return
     event.preventDefault()
     onChange(next)
-    onCommit?.(next)
+    onSettle?.(next)
   }
   return (
     <div
@@ -102,7 +102,7 @@ export function Ruler({ label, min, max, value, released = null, scale: wanted =
         if (dragging.current !== null) moveTo(event)
       }}
       onPointerUp={() => {
-        if (dragging.current !== null) onCommit?.(dragging.current)
+        if (dragging.current !== null) onSettle?.(dragging.current)
         dragging.current = null
       }}
       onPointerCancel={() => {

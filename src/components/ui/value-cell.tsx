@@ -19,7 +19,7 @@ export interface ValueCellProps {
   ruler?: Omit<RulerProps, 'label' | 'unit' | 'width' | 'figures' | 'id'>
   /** Makes the number a field and the ruler a slider. */
   onChange?: (text: string) => void
-  onCommit?: (text: string) => void
+  onSettle?: (text: string) => void
   /** Writes a value the ruler gives as text; three significant digits unless given. */
   write?: (value: number) => string
   /** Arrow keys in the field. */
@@ -32,11 +32,11 @@ export interface ValueCellProps {
 }
 
 /** One value where it acts: name, change, number, unit, origin, and the ruler of what it may be. */
-export function ValueCell({ title, value, unit = '', origin, change, changed = false, ruler, onChange, onCommit, write = toText, step, chosen = false, onFocus, error, note }: ValueCellProps) {
+export function ValueCell({ title, value, unit = '', origin, change, changed = false, ruler, onChange, onSettle, write = toText, step, chosen = false, onFocus, error, note }: ValueCellProps) {
   const id = useId()
   const classes = ['value-cell', changed ? 'value-cell-changed' : '', chosen ? 'value-cell-chosen' : ''].filter(Boolean).join(' ')
   const onKey = (event: KeyboardEvent) => {
-    if (event.key === 'Enter') onCommit?.(value)
+    if (event.key === 'Enter') onSettle?.(value)
     const way = event.key === 'ArrowUp' ? 1 : event.key === 'ArrowDown' ? -1 : 0
     const next = step === undefined || way === 0 ? null : stepNumberText(value, way * step * (event.shiftKey ? 10 : 1))
     if (next === null) return
@@ -69,7 +69,7 @@ export function ValueCell({ title, value, unit = '', origin, change, changed = f
               aria-describedby={error ? `${id}-error` : undefined}
               onChange={(e) => onChange(e.target.value)}
               onKeyDown={onKey}
-              onBlur={() => onCommit?.(value)}
+              onBlur={() => onSettle?.(value)}
             />
           ) : (
             <span className="num font-medium">{value}</span>
@@ -79,7 +79,7 @@ export function ValueCell({ title, value, unit = '', origin, change, changed = f
         <span className="flex-1" />
         <OriginMark origin={origin} />
       </div>
-      {ruler && <Ruler {...ruler} label={title} unit={unit} onChange={onChange && ((v) => onChange(write(v)))} onCommit={onCommit && ((v) => onCommit(write(v)))} />}
+      {ruler && <Ruler {...ruler} label={title} unit={unit} onChange={onChange && ((v) => onChange(write(v)))} onSettle={onSettle && ((v) => onSettle(write(v)))} />}
       {error && (
         <p className="field-error" id={`${id}-error`} role="alert">
           {error}

@@ -12,7 +12,7 @@ export interface ViewSwitchProps {
   /** What is switched: "views of the change". */
   label: string
   views: readonly View[]
-  /** Colour behind the switch, so that the line opens at the notch. */
+  /** Colour the switch stands on, so that the line opens at the notch. */
   over?: string
 }
 
