@@ -1,16 +1,15 @@
 import type { EntityManager } from '@mikro-orm/core'
 import type { BusSummary, JointSummary, MachineSummary } from '../../../shared/contract/machines.ts'
 import { effectiveValues } from '../../../shared/parameters/effective.ts'
-import { emptySet, type MachineSet } from '../../../shared/parameters/machine-set.ts'
+import type { MachineSet } from '../../../shared/parameters/machine-set.ts'
 import type { ParameterSchema } from '../../../shared/registers/parameter-schema.ts'
 import type { Change } from '../changes/change.entity.ts'
 import { presentSummaries } from '../changes/present.ts'
-import { readSet } from '../changes/read-set.ts'
 import { ReleaseJoint } from '../releases/release-joint.entity.ts'
 import type { Release } from '../releases/release.entity.ts'
 import { busPlan } from './bus-plan.ts'
-import { jointsApart } from './joints-apart.ts'
 import type { ShownSet } from './shown-set.ts'
+import { touchedBy } from './touched-by.ts'
 
 export const summariseMachine = ({ machine, shown, set }: ShownSet, openChanges: number): MachineSummary => ({
   key: machine.key,
@@ -46,10 +45,7 @@ export async function waitingAt(em: EntityManager, open: readonly Change[]): Pro
   const waiting = new Map<string, JointSummary['waiting']>()
   const summaries = await presentSummaries(em, open)
   open.forEach((change, i) => {
-    const read = readSet(change.text)
-    if (!read.ok) return
-    for (const joint of jointsApart(read.set, change.baseRelease?.set ?? emptySet()))
-      waiting.set(joint, [...(waiting.get(joint) ?? []), { change: summaries[i].key, state: summaries[i].life }])
+    for (const joint of touchedBy(change)) waiting.set(joint, [...(waiting.get(joint) ?? []), { change: summaries[i].key, state: summaries[i].life }])
   })
   return waiting
 }

@@ -93,6 +93,13 @@ describe('a machine', () => {
       'knee-starboard': [{ change: 'dunlin-9', state: 'returned' }],
       'hip-port': [],
     })
+    const em = w.orm.em.fork()
+    const hipAlone = aSet()
+    hipAlone.joints['hip-port'].address = 0x30
+    ;(await em.findOneOrFail(Change, { number: 9 })).text = printSet(hipAlone)
+    await em.flush()
+    const later = (await (await w.as('observer')).get('/api/machines/dunlin').expect(200)).body as MachineView
+    expect(later.jointList.filter((j) => j.waiting.length > 0).map((j) => j.key)).toEqual(['hip-port'])
     expect(view.changes).toMatchObject([{ key: 'dunlin-9', life: 'returned', author: 'Author', baseVersion: '1.0.0' }])
   })
 
