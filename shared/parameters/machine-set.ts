@@ -17,7 +17,7 @@ export const Key = Type.String({ pattern: '^[a-z0-9](?:[a-z0-9-]{0,38}[a-z0-9])?
 export const Value = Type.Union([Type.Number(), Type.Boolean(), Type.String({ maxLength: 80 })])
 export type Value = Static<typeof Value>
 
-export const Values = Type.Record(Type.String({ pattern: '^[A-Za-z][A-Za-z0-9_]{0,63}$' }), Value, { additionalProperties: false })
+export const Values = Type.Record(Type.String({ pattern: '^[A-Za-z_][A-Za-z0-9_-]{0,63}$' }), Value, { additionalProperties: false })
 export type Values = Static<typeof Values>
 
 const positive = (description: string) => Type.Number({ exclusiveMinimum: 0, description })

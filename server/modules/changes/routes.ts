@@ -1,36 +1,25 @@
 import { Type } from '@sinclair/typebox'
 import { CancelChange, changeStates, DescribeChange, DraftChange, EditValues, GoBackTo, InviteWriter, SaveText, type ChangeState, type DraftPointView } from '../../../shared/contract/changes.ts'
+import { ReturnChange } from '../../../shared/contract/reviews.ts'
 import type { Edit } from '../../../shared/parameters/edits.ts'
 import { emptySet } from '../../../shared/parameters/machine-set.ts'
 import { DomainError } from '../../http/errors.ts'
-import { mustMatch, route, type Call, type RouteSpec } from '../../http/route.ts'
+import { mustMatch, route, type RouteSpec } from '../../http/route.ts'
 import { schemasFor } from '../firmware/schemas-for.ts'
 import { Machine } from '../machines/machine.entity.ts'
 import { may } from '../people/permissions.ts'
+import { actOnChange } from './act-on-change.ts'
 import { bringUpToDate, outOfDate } from './bring-up-to-date.ts'
-import { describe, type Change } from './change.entity.ts'
-import { Change as ChangeEntity } from './change.entity.ts'
+import { Change, describe } from './change.entity.ts'
 import { draftChange } from './draft-change.ts'
 import { DraftPoint } from './draft-point.entity.ts'
 import { inviteWriter } from './invite-writer.ts'
-import { again, changeKey, onChange, type OnChange } from './locate.ts'
+import { changeKey, onChange } from './locate.ts'
 import { presentChange, presentSummaries } from './present.ts'
 import { setOf } from './read-set.ts'
 import { cancelChange, returnChange } from './return-change.ts'
 import { goBackTo, mustWrite, saveDraftText, saveEdits } from './save-draft.ts'
 import { prepareSubmission, submitChange } from './submit-change.ts'
-import { ReturnChange } from '../../../shared/contract/reviews.ts'
-
-/** Runs an act on a change inside a transaction and answers with the change as it stands after. */
-export function actOnChange<B>(call: Call<B, OnChange>, work: (em: Call<B, OnChange>['em'], change: Change) => Promise<void>, { match = true } = {}) {
-  return call.act(async (em) => {
-    const change = await again(em, call.place.change)
-    if (match) mustMatch(call, change.revision)
-    await work(em, change)
-    await em.flush()
-    return { body: await presentChange(em, change, call.person, call.held), etag: change.revision }
-  })
-}
 
 const BringUpToDate = Type.Object({ decisions: Type.Array(Type.Object({ pointer: Type.String({ maxLength: 400 }), keep: Type.Union([Type.Literal('yours'), Type.Literal('theirs')]) }, { additionalProperties: false }), { maxItems: 5000 }) }, { additionalProperties: false })
 
@@ -43,7 +32,7 @@ export const changeRoutes: readonly RouteSpec[] = [
     handle: async ({ em, held, query }) => {
       const readable = (await em.find(Machine, query.machine ? { key: query.machine } : {})).filter((m) => may(held, 'read', m.key).allowed)
       const states = query.state ? query.state.split(',').filter((s): s is ChangeState => (changeStates as readonly string[]).includes(s)) : [...changeStates]
-      const changes = await em.find(ChangeEntity, { machine: { $in: readable.map((m) => m.id) }, state: { $in: states } }, { populate: ['machine', 'author', 'baseRelease'], exclude: ['text'], orderBy: { alteredAt: 'desc' }, limit: 1000 } as never)
+      const changes = await em.find(Change, { machine: { $in: readable.map((m) => m.id) }, state: { $in: states } }, { populate: ['machine', 'author', 'baseRelease'], exclude: ['text'], orderBy: { alteredAt: 'desc' }, limit: 1000 } as never)
       return { body: await presentSummaries(em, changes as Change[]) }
     },
   }),

@@ -1,7 +1,7 @@
 import { SignPeerReview, SignRelease } from '../../../shared/contract/reviews.ts'
 import { mustMatch, route, type RouteSpec } from '../../http/route.ts'
+import { actOnChange } from '../changes/act-on-change.ts'
 import { again, onChange } from '../changes/locate.ts'
-import { actOnChange } from '../changes/routes.ts'
 import { checkChange } from '../checks/check-change.ts'
 import { prepare, proposalFor, releaseChange } from '../releases/release-change.ts'
 import { contentOf } from './content-of.ts'
