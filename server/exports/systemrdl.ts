@@ -28,13 +28,25 @@ const identifier = (name: string): string => `p_${name.replace(/[^A-Za-z0-9_]/g,
  *
  * @source Accellera SystemRDL 2.0 (January 2018): clauses 9 to 11 and 15
  */
-export function writeSystemRdl(schema: ParameterSchema, context: Pick<ExportContext, 'firmware'>): string {
+export function writeSystemRdl(schema: ParameterSchema, { firmware }: Pick<ExportContext, 'firmware'>): string {
+  const name = `${firmware.line} ${firmware.version}`
+  const known = WRITTEN.get(schema)
+  if (known?.name === name) return known.text
+  const text = writeMap(schema, name)
+  WRITTEN.set(schema, { name, text })
+  return text
+}
+
+/** Maps already written: the text hangs on the schema alone, and a kit asks for it once a joint. */
+const WRITTEN = new WeakMap<ParameterSchema, { name: string; text: string }>()
+
+function writeMap(schema: ParameterSchema, title: string): string {
   const names = new Identifiers()
-  const map = `map_${`${context.firmware.line}_${context.firmware.version}`.replace(/[^A-Za-z0-9_]/g, '_')}`
+  const map = `map_${title.replace(/[^A-Za-z0-9_]/g, '_')}`
   const registers = schema.words.map((word) => register(schema, word, names))
   return `${PROPERTIES}
 addrmap ${map} {
-  name = ${quoted(`${context.firmware.line} ${context.firmware.version}`)};
+  name = ${quoted(title)};
   desc = ${quoted(schema.description || schema.title || map)};
   ${schema.image.byteOrder === 'big' ? 'bigendian' : 'littleendian'};
   addressing = compact;

@@ -2,6 +2,7 @@ import { checksumOf } from './checksum.ts'
 import { rawRange, roundingError, toPhysical } from './encoding.ts'
 import type { Access, Parameter, ParameterSchema, ParameterValue, ParameterValues, Word, WordKind } from './parameter-schema.ts'
 import { findValueProblems } from './find-value-problems.ts'
+import type { Rational } from './rational.ts'
 import { effectiveValue, readValue, type ValueProblem } from './value-check.ts'
 import { rawToWord, wordBytes } from './word-bytes.ts'
 
@@ -69,16 +70,17 @@ export function encodeImage(schema: ParameterSchema, values: ParameterValues, { 
   if (problems.length > 0) return { kind: 'refused', problems }
 
   const { image: layout } = schema
+  const readings = readAll(schema, values)
   const image = new Uint8Array(layout.length).fill(layout.fill)
   const rows: RegisterRow[] = []
   const words: EncodedWord[] = []
   for (const word of schema.words) {
     if (word.access === 'ro' || word.kind === 'checksum') continue
-    const content = word.kind === 'layout-id' ? layout.layoutId!.value : word.kind === 'release' ? release : fillWord(word, values)
+    const content = word.kind === 'layout-id' ? layout.layoutId!.value : word.kind === 'release' ? release : fillWord(word, readings)
     const encoded = encodedWord(word, rawToWord(content, word.encoding.bits))
     words.push(encoded)
     if (word.access === 'rw') image.set(encoded.bytes, word.address - layout.base)
-    for (const parameter of word.parameters) rows.push(rowOf(parameter, values, encoded))
+    for (const parameter of word.parameters) rows.push(rowOf(parameter, readings.get(parameter.name)!, encoded))
   }
   const checksum = layout.checksum ? imageChecksum(schema, image) : null
   const place = schema.words.find((word) => word.kind === 'checksum')
@@ -98,19 +100,28 @@ function releaseProblem(schema: ParameterSchema, release: number): ValueProblem 
   return { pointer: '', parameter: '', code: 'release', message: `The release number ${release} is no whole number from 0 to ${high}, which is what the image's release register holds.` }
 }
 
-/** Raw content of a parameter word: one value, or the fields over the reserved bits. */
-function fillWord(word: Word, values: ParameterValues): number {
-  const [first] = word.parameters
-  if (first.register!.bit === null) return rawOf(first, values)
-  let content = word.reserved
-  for (const field of word.parameters) content += rawOf(field, values) * 2 ** field.register!.bit!
-  return content
+interface CheckedValue { readonly typed: ParameterValue; readonly exact: Rational | null; readonly raw: number }
+
+/** Every value of a set that was found good, rounded once. */
+function readAll(schema: ParameterSchema, values: ParameterValues): Map<string, CheckedValue> {
+  const readings = new Map<string, CheckedValue>()
+  for (const parameter of schema.parameters) {
+    if (!parameter.register || parameter.register.access === 'ro') continue
+    const typed = effectiveValue(parameter, values)
+    const reading = readValue(parameter, typed)
+    if (typed === undefined || reading.kind !== 'value' || reading.raw === null) throw new Error(`${parameter.name} was not checked before it was encoded`)
+    readings.set(parameter.name, { typed, exact: reading.exact, raw: reading.raw })
+  }
+  return readings
 }
 
-function rawOf(parameter: Parameter, values: ParameterValues): number {
-  const reading = readValue(parameter, effectiveValue(parameter, values))
-  if (reading.kind !== 'value' || reading.raw === null) throw new Error(`${parameter.name} was not checked before it was encoded`)
-  return reading.raw
+/** Raw content of a parameter word: one value, or the fields over the reserved bits. */
+function fillWord(word: Word, readings: ReadonlyMap<string, CheckedValue>): number {
+  const [first] = word.parameters
+  if (first.register!.bit === null) return readings.get(first.name)!.raw
+  let content = word.reserved
+  for (const field of word.parameters) content += readings.get(field.name)!.raw * 2 ** field.register!.bit!
+  return content
 }
 
 const encodedWord = (word: Word, content: number): EncodedWord => ({
@@ -118,16 +129,13 @@ const encodedWord = (word: Word, content: number): EncodedWord => ({
   access: word.access === 'wo' ? 'wo' : 'rw', parameters: word.parameters.map((p) => p.name),
 })
 
-function rowOf(parameter: Parameter, values: ParameterValues, word: EncodedWord): RegisterRow {
+function rowOf(parameter: Parameter, { typed, exact, raw }: CheckedValue, word: EncodedWord): RegisterRow {
   const register = parameter.register!
-  const typed = effectiveValue(parameter, values)!
-  const reading = readValue(parameter, typed)
-  if (reading.kind !== 'value' || reading.raw === null) throw new Error(`${parameter.name} was not checked before it was encoded`)
-  const error = reading.exact ? roundingError(register.codec, reading.exact, reading.raw) : { absolute: 0, relative: 0 }
+  const error = exact ? roundingError(register.codec, exact, raw) : { absolute: 0, relative: 0 }
   return {
     parameter: parameter.name, title: parameter.title, unit: parameter.unit, access: register.access, address: register.address,
-    bytes: word.bytes, encoding: register.encoding.name, bit: register.bit, width: register.width, raw: reading.raw, typed,
-    physical: reading.exact ? toPhysical(register.codec, reading.raw) : memberOf(parameter, typed),
+    bytes: word.bytes, encoding: register.encoding.name, bit: register.bit, width: register.width, raw, typed,
+    physical: exact ? toPhysical(register.codec, raw) : memberOf(parameter, typed),
     errorAbsolute: error.absolute, errorRelative: error.relative,
   }
 }

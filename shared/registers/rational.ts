@@ -41,9 +41,19 @@ export function parseDecimal(text: string): Rational | null {
  * @returns null for NaN and ±∞
  */
 export function decimalOf(value: number): Rational | null {
-  if (Number.isSafeInteger(value)) return { n: BigInt(value), d: 1n }
-  return Number.isFinite(value) ? parseDecimal(String(value)) : null
+  const known = SEEN.get(value)
+  if (known) return known
+  if (!Number.isFinite(value)) return null
+  const exact = Number.isSafeInteger(value) ? { n: BigInt(value), d: 1n } : parseDecimal(String(value))
+  if (exact) {
+    if (SEEN.size >= 4096) SEEN.clear()
+    SEEN.set(value, exact)
+  }
+  return exact
 }
+
+/** The same few numbers are asked for again and again: bounds, scales, defaults. */
+const SEEN = new Map<number, Rational>()
 
 /** Exact value of a number or of a decimal text; null when it is neither. */
 export const exactly = (value: number | string): Rational | null =>

@@ -62,6 +62,7 @@ export const isValue = (value: unknown): value is ParameterValue =>
 
 /** A leaf with what its `$ref` chain says: own annotations win, an assertion may be stated once. */
 function followRef(root: Json, leaf: unknown, pointer: string, list: ProblemList): Json | null {
+  if (isObject(leaf) && leaf.$ref === undefined) return leaf
   let merged: Record<string, unknown> = {}
   let node = leaf
   for (;;) {
@@ -143,25 +144,25 @@ function checkRole(role: Role, perTick: boolean, unit: string | null, kind: Para
   }
 }
 
+const UNBOUNDED: Bounds = { minimum: null, maximum: null, exclusiveMinimum: null, exclusiveMaximum: null, multipleOf: null }
+
 function readBounds(leaf: Json, pointer: string, kind: ParameterKind, codec: NumberCodec | null, list: ProblemList): Bounds {
-  const bounds: Record<string, Bound | null> = {}
+  let bounds: { -readonly [key in keyof Bounds]: Bound | null } | null = null
   for (const key of BOUND_KEYS) {
-    bounds[key] = null
     const given = leaf[key]
     if (given === undefined) continue
-    const at = under(pointer, key)
     const exact = typeof given === 'number' || typeof given === 'string' ? exactly(given) : null
-    if (kind !== 'number' && kind !== 'integer') list.add(at, 'bound-not-allowed', `A ${kind} has no ${key}.`)
-    else if (!exact || (key === 'multipleOf' && exact.n <= 0n)) list.add(at, 'not-a-decimal', `${shown(given)} is no number that ${key} can be.`)
-    else bounds[key] = { text: String(given), exact, order: codec ? orderOf(codec, exact) : null }
+    if (kind !== 'number' && kind !== 'integer') list.add(under(pointer, key), 'bound-not-allowed', `A ${kind} has no ${key}.`)
+    else if (!exact || (key === 'multipleOf' && exact.n <= 0n)) list.add(under(pointer, key), 'not-a-decimal', `${shown(given)} is no number that ${key} can be.`)
+    else (bounds ??= { ...UNBOUNDED })[key] = { text: String(given), exact, order: codec ? orderOf(codec, exact) : null }
   }
-  const result = bounds as unknown as Bounds
-  const low = result.minimum ?? result.exclusiveMinimum
-  const high = result.maximum ?? result.exclusiveMaximum
+  if (!bounds) return UNBOUNDED
+  const low = bounds.minimum ?? bounds.exclusiveMinimum
+  const high = bounds.maximum ?? bounds.exclusiveMaximum
   if (low && high && compare(low.exact, high.exact) > 0) {
     list.add(under(pointer, 'maximum'), 'empty-range', `The maximum ${high.text} lies below the minimum ${low.text}.`)
   }
-  return result
+  return bounds
 }
 
 /** A register that a parameter is known to have. */

@@ -96,18 +96,19 @@ function checkFields(fields: readonly Parameter[], list: ProblemList): void {
   }
 }
 
+const addressOf = ({ word, pointer }: Entry): string => under(word.kind === 'parameter' ? under(pointer, 'x-register') : pointer, 'address')
+
 function checkPlaces(entries: readonly Entry[], image: ImageLayout, list: ProblemList): void {
   const last = image.base + image.length - 1
   let before: Entry | null = null
   for (const entry of entries) {
     const { word } = entry
-    const at = under(word.kind === 'parameter' ? under(entry.pointer, 'x-register') : entry.pointer, 'address')
     const end = word.address + word.bytes - 1
     if (word.address < image.base || end > last) {
-      list.add(at, 'outside-image', `${entry.label} at ${spanText(word.address, word.bytes)} lies outside the image, ${spanText(image.base, image.length)}.`)
+      list.add(addressOf(entry), 'outside-image', `${entry.label} at ${spanText(word.address, word.bytes)} lies outside the image, ${spanText(image.base, image.length)}.`)
     }
     if (before && before.word.address + before.word.bytes > word.address) {
-      list.add(at, 'registers-overlap', `${entry.label} at ${spanText(word.address, word.bytes)} overlaps ${before.label} at ${spanText(before.word.address, before.word.bytes)}.`)
+      list.add(addressOf(entry), 'registers-overlap', `${entry.label} at ${spanText(word.address, word.bytes)} overlaps ${before.label} at ${spanText(before.word.address, before.word.bytes)}.`)
     }
     if (!before || end >= before.word.address + before.word.bytes) before = entry
     if (image.checksum && word.access !== 'rw' && word.address <= image.checksum.to && end >= image.checksum.from) {

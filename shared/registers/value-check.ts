@@ -35,19 +35,18 @@ const withUnit = (text: string, parameter: Parameter): string => (parameter.unit
  * @source  register-image.md, Encoding rules
  */
 export function readValue(parameter: Parameter, value: unknown): ValueReading {
-  const name = label(parameter)
   if (parameter.kind === 'boolean') {
-    if (typeof value !== 'boolean') return refused('wrong-type', `${name} must be true or false, not ${shown(value)}.`)
+    if (typeof value !== 'boolean') return refused('wrong-type', `${label(parameter)} must be true or false, not ${shown(value)}.`)
     return { kind: 'value', exact: null, raw: parameter.register?.values?.[String(value)] ?? null }
   }
-  if (parameter.kind === 'enum') return readMember(parameter, value, name)
-  return readNumber(parameter, value, name)
+  if (parameter.kind === 'enum') return readMember(parameter, value)
+  return readNumber(parameter, value)
 }
 
-function readMember(parameter: Parameter, value: unknown, name: string): ValueReading {
+function readMember(parameter: Parameter, value: unknown): ValueReading {
   const choices = parameter.choices ?? []
   const member = choices.find((choice) => choice === value || (typeof choice === 'number' && typeof value === 'string' && sameDecimal(choice, value)))
-  if (member === undefined) return refused('not-a-member', `${name} cannot be ${shown(value)}. It is one of ${choices.join(', ')}.`)
+  if (member === undefined) return refused('not-a-member', `${label(parameter)} cannot be ${shown(value)}. It is one of ${choices.join(', ')}.`)
   return { kind: 'value', exact: null, raw: parameter.register?.values?.[String(member)] ?? null }
 }
 
@@ -57,23 +56,23 @@ function sameDecimal(a: number, b: string): boolean {
   return left !== null && right !== null && compare(left, right) === 0
 }
 
-function readNumber(parameter: Parameter, value: unknown, name: string): ValueReading {
+function readNumber(parameter: Parameter, value: unknown): ValueReading {
   const codec = parameter.register?.codec ?? null
-  if (typeof value === 'number' && !Number.isFinite(value)) return refused('not-finite', `${name} cannot be ${value}.${rangeText(parameter)}`)
-  if (typeof value !== 'number' && typeof value !== 'string') return refused('wrong-type', `${name} must be a number, not ${shown(value)}.${rangeText(parameter)}`)
+  if (typeof value === 'number' && !Number.isFinite(value)) return refused('not-finite', `${label(parameter)} cannot be ${value}.${rangeText(parameter)}`)
+  if (typeof value !== 'number' && typeof value !== 'string') return refused('wrong-type', `${label(parameter)} must be a number, not ${shown(value)}.${rangeText(parameter)}`)
   const exact = exactly(value)
   if (!exact) {
     return /^[+-]?\d/.test(String(value))
-      ? refused('not-a-decimal', `${name}: ${shown(value)} is no decimal of at most 400 characters and powers of ten.${rangeText(parameter)}`)
-      : refused('wrong-type', `${name} must be a number, not ${shown(value)}.${rangeText(parameter)}`)
+      ? refused('not-a-decimal', `${label(parameter)}: ${shown(value)} is no decimal of at most 400 characters and powers of ten.${rangeText(parameter)}`)
+      : refused('wrong-type', `${label(parameter)} must be a number, not ${shown(value)}.${rangeText(parameter)}`)
   }
-  if (parameter.kind === 'integer' && exact.n % exact.d !== 0n) return refused('not-whole', `${name} must be a whole number, not ${value}.`)
+  if (parameter.kind === 'integer' && exact.n % exact.d !== 0n) return refused('not-whole', `${label(parameter)} must be a whole number, not ${value}.`)
   const order = codec ? orderOf(codec, exact) : null
   const raw = codec && order !== null ? rawAtOrder(codec, order) : null
   if (raw?.kind === 'out-of-range') {
-    return refused('out-of-range', `${name} cannot hold ${withUnit(String(value), parameter)}.${rangeText(parameter)}`)
+    return refused('out-of-range', `${label(parameter)} cannot hold ${withUnit(String(value), parameter)}.${rangeText(parameter)}`)
   }
-  const outside = outsideBounds(parameter, exact, order, String(value), name)
+  const outside = outsideBounds(parameter, exact, order, value)
   if (outside) return outside
   return { kind: 'value', exact, raw: raw ? raw.raw : null }
 }
@@ -92,7 +91,7 @@ function against(exact: Rational, order: bigint | null, bound: Bound): number {
   return order < bound.order ? -1 : order > bound.order ? 1 : 0
 }
 
-function outsideBounds(parameter: Parameter, exact: Rational, order: bigint | null, text: string, name: string): ValueReading | null {
+function outsideBounds(parameter: Parameter, exact: Rational, order: bigint | null, value: number | string): ValueReading | null {
   const { minimum, maximum, exclusiveMinimum, exclusiveMaximum, multipleOf } = parameter.bounds
   const low = minimum && against(exact, order, minimum) < 0
   const high = maximum && against(exact, order, maximum) > 0
@@ -100,7 +99,7 @@ function outsideBounds(parameter: Parameter, exact: Rational, order: bigint | nu
   const tooHigh = exclusiveMaximum && against(exact, order, exclusiveMaximum) >= 0
   const between = multipleOf && !isMultiple(parameter, exact, multipleOf)
   if (!low && !high && !tooLow && !tooHigh && !between) return null
-  const given = `${name}: ${withUnit(text, parameter)}`
+  const given = `${label(parameter)}: ${withUnit(String(value), parameter)}`
   if (low) return refused('below-minimum', `${given} is below the minimum ${minimum.text}.${rangeText(parameter)}`)
   if (high) return refused('above-maximum', `${given} is above the maximum ${maximum.text}.${rangeText(parameter)}`)
   if (tooLow) return refused('below-minimum', `${given} must be above ${exclusiveMinimum.text}.`)
