@@ -4,6 +4,9 @@ import type { EntityManager } from '@mikro-orm/core'
 import type { Person } from '../people/person.entity.ts'
 import { LedgerEntry, type LedgerSubject } from './ledger-entry.entity.ts'
 
+/** As it will be read back: what JSON does not hold falls away before the hash is taken. */
+const plain = <T>(value: T): T => JSON.parse(JSON.stringify(value)) as T
+
 export const genesisHash = '0'.repeat(64)
 
 type Content = Pick<LedgerEntry, 'sequence' | 'at' | 'personId' | 'personName' | 'act' | 'machineKey' | 'subject' | 'details' | 'previousHash'>
@@ -32,11 +35,12 @@ export const entryHash = (entry: Content): string => createHash('sha256').update
 export async function appendEntry(
   em: EntityManager,
   entry: { at: Date; person: Pick<Person, 'id' | 'name'> | null; act: string; subject?: LedgerSubject; details?: Record<string, unknown> },
-): Promise<LedgerEntry> {
+): Promise<{ sequence: number; hash: string }> {
   if (!em.isInTransaction()) throw new Error('ledger entries are appended inside the transaction of their act')
   await em.flush()
-  const [last] = await em.find(LedgerEntry, {}, { orderBy: { sequence: 'desc' }, limit: 1 })
-  const subject = entry.subject ?? {}
+  // Past the unit of work: an entry that nothing will alter needs no watching, and a transaction may append many.
+  const [last] = await em.find(LedgerEntry, {}, { orderBy: { sequence: 'desc' }, limit: 1, disableIdentityMap: true })
+  const subject = plain(entry.subject ?? {})
   const fields = {
     sequence: (last?.sequence ?? 0) + 1,
     at: entry.at,
@@ -45,10 +49,10 @@ export async function appendEntry(
     act: entry.act,
     machineKey: subject.machine ?? null,
     subject,
-    details: JSON.parse(JSON.stringify(entry.details ?? {})) as Record<string, unknown>,
+    details: plain(entry.details ?? {}),
     previousHash: last?.hash ?? genesisHash,
   }
-  const made = em.create(LedgerEntry, { ...fields, hash: entryHash(fields) })
-  await em.flush()
-  return made
+  const hash = entryHash(fields)
+  await em.insert(LedgerEntry, { ...fields, hash })
+  return { sequence: fields.sequence, hash }
 }

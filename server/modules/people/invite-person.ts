@@ -9,8 +9,8 @@ import { linkLetter, roleWords } from './letters.ts'
 import { makeLink } from './make-link.ts'
 import { noPassword, Person } from './person.entity.ts'
 
-/** Control characters, and those that turn the writing direction: a name stands in mails, in the ledger and on bench cards. */
-const unprintable = /[\p{Cc}\u202A-\u202E\u2066-\u2069]/u
+/** Control characters, halves of characters, and those that turn the writing direction: a name stands in mails, in the ledger and on bench cards. */
+const unprintable = /[\p{Cc}\p{Cs}\u202A-\u202E\u2066-\u2069]/u
 
 /** @throws DomainError invalid-request */
 export function plainName(name: string): string {

@@ -111,6 +111,7 @@ describe('an invitation is refused', () => {
     ['an address with a second header', { ...request, email: 'rafiq@dunlin.example\r\nBcc: all@dunlin.example' }, 400, '/email'],
     ['an empty name', { ...request, name: '   ' }, 400, '/name'],
     ['a name that turns its direction', { ...request, name: 'Rafiq \u202Elavodnas' }, 400, '/name'],
+    ['a name with half a character', { ...request, name: 'Rafiq \uD83D' }, 400, '/name'],
     ['a field that would set the password', { ...request, passwordHash: 'x' }, 400, '/passwordHash'],
     ['a field that would confirm', { ...request, roles: [{ role: 'peer reviewer', machine: null, confirmedAt: '2026-01-01' }] }, 400, '/roles/0/confirmedAt'],
   ])('for %s', async (_what, body, status, pointer) => {
