@@ -1,14 +1,9 @@
 import { useId, useState } from 'react'
 import type { ReactNode } from 'react'
 import { SectionHeading } from '../ui/section-heading.tsx'
+import type { ChartNumbers } from './chart-numbers.ts'
 import { ChartTable } from './chart-table.tsx'
 import { csvText, downloadText } from './download.ts'
-
-export interface ChartNumbers {
-  /** Column names with units, as "time, ms". */
-  head: readonly string[]
-  rows: readonly (readonly (string | number | null | undefined)[])[]
-}
 
 export interface ChartFrameProps {
   title: string

@@ -1,5 +1,5 @@
 import { formatFixed, formatNumber } from '../../lib/format.ts'
-import type { ChartNumbers } from './chart-frame.tsx'
+import type { ChartNumbers } from './chart-numbers.ts'
 
 /** More rows than a reader reads; the CSV holds all. */
 const MOST = 400

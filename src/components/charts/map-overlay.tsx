@@ -1,7 +1,6 @@
 import type { RefObject } from 'react'
 import { axisTicks, placeOf } from './map-scale.ts'
-import type { MapAxis } from './map-scale.ts'
-import type { MapPoint } from './stability-map.tsx'
+import type { MapAxis, MapPoint } from './map-scale.ts'
 
 export interface MapOverlayProps {
   svgRef: RefObject<SVGSVGElement | null>

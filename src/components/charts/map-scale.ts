@@ -8,6 +8,13 @@ export interface MapAxis {
   log?: boolean
 }
 
+/** A set of values marked on the map. */
+export interface MapPoint {
+  x: number
+  y: number
+  label: string
+}
+
 export interface MapMargin {
   verdict: 'stable' | 'on the boundary' | 'unstable'
   phaseMarginDeg: number | null

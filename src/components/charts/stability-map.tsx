@@ -8,15 +8,9 @@ import type { MapCells } from './map-canvas.ts'
 import { MapLegend } from './map-legend.tsx'
 import { MapOverlay } from './map-overlay.tsx'
 import { placeOf } from './map-scale.ts'
-import type { MapAxis, MapMargin } from './map-scale.ts'
+import type { MapAxis, MapMargin, MapPoint } from './map-scale.ts'
 import { saveSvg } from './svg-image.ts'
 import { useThemeKey } from './use-theme-key.ts'
-
-export interface MapPoint {
-  x: number
-  y: number
-  label: string
-}
 
 export interface StabilityMapProps {
   title?: string

@@ -1,4 +1,4 @@
-import type { Column, Sort } from './table.tsx'
+import type { Column, Sort } from './table-column.ts'
 
 export interface TableHeadProps<Row> {
   columns: readonly Column<Row>[]

@@ -1,7 +1,7 @@
 import type { MouseEvent } from 'react'
 import { Link, useNavigate } from 'react-router'
 import { DecimalText } from './decimal-text.tsx'
-import type { Column } from './table.tsx'
+import type { Column } from './table-column.ts'
 
 export interface TableRowProps<Row> {
   row: Row
