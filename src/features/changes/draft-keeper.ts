@@ -6,7 +6,7 @@ import { editText, readText, type TextProblem } from '../../../shared/parameters
 import { ApiProblem } from '../../lib/api-client.ts'
 import type { DraftStorage } from './draft-storage.ts'
 import { decided, enqueue, type Batch, type Keep, type ValueConflict } from './edit-batches.ts'
-import { rebaseText } from './rebase-text.ts'
+import { textOnto } from './text-onto.ts'
 import { UndoSteps } from './undo-steps.ts'
 
 /**
@@ -194,7 +194,7 @@ export class DraftKeeper {
     this.changed()
   }
 
-  /** Sends now what waits; resolves when it has been tried. */
+  /** Sends now what waits; done when it has been tried. */
   async flush(): Promise<void> {
     if (this.typed) this.textDue = true
     await this.pump()
@@ -278,7 +278,7 @@ export class DraftKeeper {
         this.textProblems = read.problems
         return
       }
-      if (this.typed.basis !== this.view.text && !this.rebase()) return
+      if (this.typed.basis !== this.view.text && !this.takeIn()) return
       const sent = this.typed.text
       this.saving = 'sending'
       this.changed()
@@ -308,9 +308,9 @@ export class DraftKeeper {
   }
 
   /** False when places are to be decided first. */
-  private rebase(): boolean {
+  private takeIn(): boolean {
     const typed = this.typed!
-    const result = rebaseText(typed.text, typed.basis, this.view.set, this.decisions)
+    const result = textOnto(typed.text, typed.basis, this.view.set, this.decisions)
     if (result.kind === 'conflicts') {
       this.conflictOf = 'text'
       this.conflicts = result.conflicts

@@ -30,8 +30,8 @@ export function folded(earlier: readonly Edit[], later: readonly Edit[]): Edit[]
 export function enqueue(queue: readonly Batch[], edits: readonly Edit[]): Batch[] {
   const last = queue.at(-1)
   if (!last || last.tried || edits.some((e) => last.edits.some((f) => entangled(e, f)))) return [...queue, { edits: [...edits], tried: false }]
-  const merged = folded(last.edits, edits)
-  return merged.length > 0 ? [...queue.slice(0, -1), { ...last, edits: merged }] : queue.slice(0, -1)
+  const joined = folded(last.edits, edits)
+  return joined.length > 0 ? [...queue.slice(0, -1), { ...last, edits: joined }] : queue.slice(0, -1)
 }
 
 /** A value that was saved in a place this person edited too. */

@@ -1,8 +1,8 @@
 import { useMutation, useQueryClient } from '@tanstack/react-query'
 import type { ChangeView, DescribeChange, DraftChange } from '../../../shared/contract/changes.ts'
-import type { Edit } from '../../../shared/parameters/edits.ts'
+import { same, type Edit } from '../../../shared/parameters/edits.ts'
 import type { Decision } from '../../../shared/parameters/three-way.ts'
-import { act } from '../../lib/api-client.ts'
+import { act, ApiProblem, get } from '../../lib/api-client.ts'
 import { acceptChange, changesQuery } from './queries.ts'
 
 const at = (change: string) => `/changes/${encodeURIComponent(change)}`
@@ -25,18 +25,38 @@ function useChangeAct<V>(perform: (variables: V) => Promise<ChangeView>) {
   return useMutation({ mutationFn: perform, onSuccess: (view) => acceptChange(client, view) })
 }
 
-type On = Pick<ChangeView, 'key' | 'revision'>
+/** The change as an act is decided on it: as shown, or, while it is edited, once everything typed is saved. */
+export type Current = () => ChangeView | Promise<ChangeView>
 
-export const useDescribeChange = (change: On) =>
-  useChangeAct((body: DescribeChange) => act<ChangeView>({ method: 'PATCH', path: at(change.key), body, ifMatch: change.revision }))
+const revised = (body: unknown, ifMatch: number) => ({ body, ifMatch })
 
-export const useSubmitChange = (change: On) => useChangeAct(() => act<ChangeView>({ path: `${at(change.key)}/submit`, ifMatch: change.revision }))
+/**
+ * Title, reason, concessions. When something else of the change was saved meanwhile it is done again on that state; not when the very
+ * field was altered, which its writer has to see first.
+ */
+async function describeSeen(seen: ChangeView, body: DescribeChange): Promise<ChangeView> {
+  const patch = (ifMatch: number) => act<ChangeView>({ method: 'PATCH', path: at(seen.key), ...revised(body, ifMatch) })
+  try {
+    return await patch(seen.revision)
+  } catch (error) {
+    if (!(error instanceof ApiProblem) || error.code !== 'precondition-failed') throw error
+    const fresh = await get<ChangeView>(at(seen.key))
+    const untouched = (Object.keys(body) as (keyof DescribeChange)[]).every((field) => same(fresh[field], seen[field]))
+    if (!untouched) throw error
+    return patch(fresh.revision)
+  }
+}
 
-export const useCancelChange = (change: On) => useChangeAct((body: { reason: string }) => act<ChangeView>({ path: `${at(change.key)}/cancel`, body, ifMatch: change.revision }))
+export const useDescribeChange = (current: Current) => useChangeAct(async (body: DescribeChange) => describeSeen(await current(), body))
 
-export const useGoBackTo = (change: On) => useChangeAct((point: number) => act<ChangeView>({ path: `${at(change.key)}/back`, body: { point }, ifMatch: change.revision }))
+/** An act decided on the very revision shown. */
+const on = async (current: Current, name: string, body: unknown) => {
+  const change = await current()
+  return act<ChangeView>({ path: `${at(change.key)}/${name}`, ...revised(body, change.revision) })
+}
 
-export const useInviteWriter = (change: On) => useChangeAct((person: number) => act<ChangeView>({ path: `${at(change.key)}/writers`, body: { person } }))
-
-export const useBringUpToDate = (change: On) =>
-  useChangeAct((decisions: Decision[]) => act<ChangeView>({ path: `${at(change.key)}/up-to-date`, body: { decisions }, ifMatch: change.revision }))
+export const useSubmitChange = (current: Current) => useChangeAct(() => on(current, 'submit', {}))
+export const useCancelChange = (current: Current) => useChangeAct((body: { reason: string }) => on(current, 'cancel', body))
+export const useGoBackTo = (current: Current) => useChangeAct((point: number) => on(current, 'back', { point }))
+export const useInviteWriter = (change: string) => useChangeAct((person: number) => act<ChangeView>({ path: `${at(change)}/writers`, body: { person } }))
+export const useBringUpToDate = (current: Current) => useChangeAct((decisions: Decision[]) => on(current, 'up-to-date', { decisions }))

@@ -1,5 +1,5 @@
 import { queryOptions, type QueryClient } from '@tanstack/react-query'
-import type { ChangeState, ChangeSummary, ChangeView, DraftPointView } from '../../../shared/contract/changes.ts'
+import type { ChangeSummary, ChangeView, DraftPointView } from '../../../shared/contract/changes.ts'
 import type { MachineSet } from '../../../shared/parameters/machine-set.ts'
 import type { Conflict } from '../../../shared/parameters/three-way.ts'
 import { readParameterSchema } from '../../../shared/registers/read-parameter-schema.ts'
@@ -9,7 +9,7 @@ import type { Schemas } from './value-cells.ts'
 const all = ['changes'] as const
 const at = (change: string) => `/changes/${encodeURIComponent(change)}`
 
-export const changesQuery = (filter: { machine?: string; state?: ChangeState } = {}) =>
+export const changesQuery = (filter: { machine?: string; state?: string } = {}) =>
   queryOptions({
     queryKey: [...all, 'list', filter],
     queryFn: ({ signal }) => get<ChangeSummary[]>(withQuery('/changes', filter), { signal }),
@@ -53,8 +53,8 @@ function readSchemas(raw: Record<string, unknown>): Schemas {
 
 export interface OutOfDate {
   conflicts: Conflict[]
-  /** version of the newer release */
-  newest: string
+  /** version of the newer release; null when the change stands on the newest */
+  newest: string | null
 }
 
 export const upToDateQuery = (change: string, revision: number) =>

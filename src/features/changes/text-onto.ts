@@ -10,7 +10,7 @@ const setOf = (text: string): MachineSet | null => {
   return read.ok ? (withNumericAddresses(read.document) as MachineSet) : null
 }
 
-export type Rebased = { kind: 'text'; text: string } | { kind: 'conflicts'; conflicts: ValueConflict[] } | { kind: 'unreadable' }
+export type TextOnto = { kind: 'text'; text: string } | { kind: 'conflicts'; conflicts: ValueConflict[] } | { kind: 'unreadable' }
 
 const within = (inner: string, outer: string) => inner === outer || inner.startsWith(`${outer}/`)
 
@@ -23,7 +23,7 @@ const within = (inner: string, outer: string) => inner === outer || inner.starts
  * @param decisions  which value stays, for places that both altered
  * @returns          the text, or the places still to decide, or that one of the texts can't be read yet
  */
-export function rebaseText(typed: string, basis: string, now: MachineSet, decisions: ReadonlyMap<string, Keep> = new Map()): Rebased {
+export function textOnto(typed: string, basis: string, now: MachineSet, decisions: ReadonlyMap<string, Keep> = new Map()): TextOnto {
   const mine = setOf(typed)
   const before = setOf(basis)
   if (!mine || !before) return { kind: 'unreadable' }

@@ -11,8 +11,8 @@ export const editTo = (at: ValueAt, to: Value | undefined): Edit | null => (same
 const PAUSE = 600
 
 /**
- * A value while it is typed: kept as typed until it is committed, by leaving, by Enter, or after a pause when it can be read. What can't be
- * is said in words when it is committed, and the value before is kept.
+ * A value while it is typed: kept as typed until it is settled, by leaving, by Enter, or after a pause when it can be read. What can't be
+ * is said in words when it is settled, and the value before is kept.
  */
 export function useTypedValue(at: ValueAt, onEdit: (edits: Edit[]) => void) {
   const [typed, setTyped] = useState<string | null>(null)
@@ -25,7 +25,7 @@ export function useTypedValue(at: ValueAt, onEdit: (edits: Edit[]) => void) {
     // What is inherited already needs no value of its own, unless one stands there.
     if (edit && !(at.own === undefined && same(at.value, value))) onEdit([edit])
   }
-  const commit = (text: string) => {
+  const settle = (text: string) => {
     clearTimeout(timer.current)
     if (text === valueText(at.value)) {
       setTyped(null)
@@ -60,7 +60,7 @@ export function useTypedValue(at: ValueAt, onEdit: (edits: Edit[]) => void) {
         }
       }, PAUSE)
     },
-    commit,
+    settle,
     /** A value from the ruler, at once. */
     move(text: string) {
       const read = readTyped(at.parameter, text)

@@ -7,7 +7,7 @@ export interface AddressInputProps {
   /** other boards of the bus */
   taken: readonly { address: number; name: string }[]
   className?: string
-  onCommit: (address: number) => void
+  onSettle: (address: number) => void
 }
 
 /** A typed bus address: "0x33" or 51; null when it is none. */
@@ -18,19 +18,19 @@ export function readAddress(text: string): number | null {
 }
 
 /** An address typed in hexadecimal or decimal. A doubled one is taken, since two boards may swap, and said at once; the check blocks it. */
-export function AddressInput({ label, value, taken, className = '', onCommit }: AddressInputProps) {
+export function AddressInput({ label, value, taken, className = '', onSettle }: AddressInputProps) {
   const [typed, setTyped] = useState<string | null>(null)
   const [error, setError] = useState<string | null>(null)
   const id = useId()
   const doubled = taken.find((t) => t.address === value)
   const words = error ?? (doubled ? `${doubled.name} answers there too.` : null)
-  const commit = () => {
+  const settle = () => {
     if (typed === null) return
     const read = readAddress(typed)
     if (read === null) return setError(`"${typed}" is no address from 0x00 to 0x7F. ${formatHex(value)} is kept.`)
     setTyped(null)
     setError(null)
-    onCommit(read)
+    onSettle(read)
   }
   return (
     <>
@@ -46,9 +46,9 @@ export function AddressInput({ label, value, taken, className = '', onCommit }: 
           setTyped(e.target.value)
           setError(null)
         }}
-        onBlur={commit}
+        onBlur={settle}
         onKeyDown={(e) => {
-          if (e.key === 'Enter') commit()
+          if (e.key === 'Enter') settle()
           if (e.key === 'Escape') {
             setTyped(null)
             setError(null)

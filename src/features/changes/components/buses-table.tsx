@@ -55,7 +55,7 @@ export function BusesTable({ set, base, onEdit, onAdd }: BusesTableProps) {
               return (
                 <tr key={key}>
                   <th scope="row" className="!border-hairline !bg-transparent !text-14 !text-ink">
-                    <PlainInput label={`name of the bus ${bus.name}`} value={bus.name} onCommit={onEdit && ((v) => v !== '' && put(key, 'name', v))} />
+                    <PlainInput label={`name of the bus ${bus.name}`} value={bus.name} onSettle={onEdit && ((v) => v !== '' && put(key, 'name', v))} />
                   </th>
                   {figures.map((f) => (
                     <td key={f.field} className="end">
@@ -65,7 +65,7 @@ export function BusesTable({ set, base, onEdit, onAdd }: BusesTableProps) {
                         unit={f.unit}
                         changed={before !== undefined && !same(before[f.field], bus[f.field])}
                         mayBeEmpty={!f.needed}
-                        onCommit={onEdit && ((v) => (v !== undefined || !f.needed) && put(key, f.field, v))}
+                        onSettle={onEdit && ((v) => (v !== undefined || !f.needed) && put(key, f.field, v))}
                       />
                     </td>
                   ))}

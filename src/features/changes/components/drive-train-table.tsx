@@ -76,7 +76,7 @@ function LetterRow({ line, driveTrain, before, onPut }: { line: LetterLine; driv
       choices={line.choices}
       changed={altered && before !== undefined && partOf(before[line.letter], p) !== partOf(stored, p)}
       mayBeEmpty={p !== 'value' || !line.needed}
-      onCommit={onPut && ((v) => onPut(typeof v === 'string' ? (v as Filled) : withPart(stored, p, v)))}
+      onSettle={onPut && ((v) => onPut(typeof v === 'string' ? (v as Filled) : withPart(stored, p, v)))}
     />
   )
   return (
@@ -122,7 +122,7 @@ function AddLetter({ lines, onAdd }: { lines: readonly LetterLine[]; onAdd: (lin
             changed={false}
             mayBeEmpty
             autoFocus
-            onCommit={(v) => {
+            onSettle={(v) => {
               if (v !== undefined) onAdd(chosen, v as Filled)
               setChosen(null)
             }}

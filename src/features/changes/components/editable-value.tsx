@@ -53,11 +53,11 @@ function Quantity({ at, set, onEdit, title }: EditableValueProps) {
             }
           : undefined
       }
-      onCommit={
+      onSettle={
         onEdit
           ? (text) => {
               if (fromRuler.current) typed.move(text)
-              else typed.commit(text)
+              else typed.settle(text)
               fromRuler.current = false
             }
           : undefined
@@ -110,7 +110,7 @@ function Choice({ at, onEdit, title }: EditableValueProps) {
       </div>
       <div className="flex items-baseline gap-[5px]">
         {onEdit ? (
-          <select aria-label={name} className={`-ml-1 border-0 bg-transparent text-16 ${at.changed ? 'text-brass' : 'text-ink'}`} value={valueText(at.value)} onChange={(e) => typed.commit(e.target.value)}>
+          <select aria-label={name} className={`-ml-1 border-0 bg-transparent text-16 ${at.changed ? 'text-brass' : 'text-ink'}`} value={valueText(at.value)} onChange={(e) => typed.settle(e.target.value)}>
             {at.value === undefined && <option value="">–</option>}
             {choices.map((c) => (
               <option key={c} className="bg-sheet text-ink">

@@ -72,7 +72,7 @@ function JointRow({ joint, set, before, firmware, onEdit }: { joint: string; set
   return (
     <tr>
       <th scope="row" className="!border-hairline !bg-transparent !text-14 !text-ink">
-        <PlainInput label={`name of ${settings.name}`} value={settings.name} className={tone('name')} onCommit={onEdit && ((v) => v !== '' && put('name', v))} />
+        <PlainInput label={`name of ${settings.name}`} value={settings.name} className={tone('name')} onSettle={onEdit && ((v) => v !== '' && put('name', v))} />
         <span className="block text-12 font-normal text-ink-2">{before === undefined ? 'new' : ''}</span>
       </th>
       <td>
@@ -91,7 +91,7 @@ function JointRow({ joint, set, before, firmware, onEdit }: { joint: string; set
       </td>
       <td>
         {onEdit ? (
-          <AddressInput label={`address of ${settings.name}`} value={settings.address} className={tone('address')} taken={others.map(([, j]) => ({ address: j.address, name: j.name }))} onCommit={(a) => put('address', a)} />
+          <AddressInput label={`address of ${settings.name}`} value={settings.address} className={tone('address')} taken={others.map(([, j]) => ({ address: j.address, name: j.name }))} onSettle={(a) => put('address', a)} />
         ) : (
           <HexAddress address={settings.address} />
         )}
@@ -112,7 +112,7 @@ function JointRow({ joint, set, before, firmware, onEdit }: { joint: string; set
         {was('firmware')}
       </td>
       <td>
-        <PlainInput label={`board of ${settings.name}`} mono value={settings.board ?? ''} placeholder="–" className={tone('board')} pattern={/^[A-Za-z0-9][A-Za-z0-9._-]{0,39}$/} wrong="A serial number is letters, digits, points, hyphens and underscores." onCommit={onEdit && ((v) => put('board', v === '' ? undefined : v))} />
+        <PlainInput label={`board of ${settings.name}`} mono value={settings.board ?? ''} placeholder="–" className={tone('board')} pattern={/^[A-Za-z0-9][A-Za-z0-9._-]{0,39}$/} wrong="A serial number is letters, digits, points, hyphens and underscores." onSettle={onEdit && ((v) => put('board', v === '' ? undefined : v))} />
         {was('board')}
       </td>
       <td className="end">

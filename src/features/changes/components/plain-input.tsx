@@ -10,20 +10,20 @@ export interface PlainInputProps {
   /** words when the pattern does not fit */
   wrong?: string
   /** null: read only */
-  onCommit: ((text: string) => void) | null
+  onSettle: ((text: string) => void) | null
 }
 
-/** A short text edited where it stands in a table: Enter or leaving commits, Esc takes it back. */
-export function PlainInput({ label, value, mono = false, placeholder, className = '', pattern, wrong = '', onCommit }: PlainInputProps) {
+/** A short text edited where it stands in a table: Enter or leaving settles, Esc takes it back. */
+export function PlainInput({ label, value, mono = false, placeholder, className = '', pattern, wrong = '', onSettle }: PlainInputProps) {
   const [typed, setTyped] = useState<string | null>(null)
   const [error, setError] = useState(false)
   const id = useId()
-  if (!onCommit) return <span className={`${mono ? 'num' : ''} ${className}`}>{value || placeholder}</span>
-  const commit = () => {
+  if (!onSettle) return <span className={`${mono ? 'num' : ''} ${className}`}>{value || placeholder}</span>
+  const settle = () => {
     if (typed === null) return
     const text = typed.trim()
     if (text !== '' && pattern && !pattern.test(text)) return setError(true)
-    if (text !== value) onCommit(text)
+    if (text !== value) onSettle(text)
     setTyped(null)
     setError(false)
   }
@@ -43,9 +43,9 @@ export function PlainInput({ label, value, mono = false, placeholder, className 
           setTyped(e.target.value)
           setError(false)
         }}
-        onBlur={commit}
+        onBlur={settle}
         onKeyDown={(e) => {
-          if (e.key === 'Enter') commit()
+          if (e.key === 'Enter') settle()
           if (e.key === 'Escape') {
             setTyped(null)
             setError(false)

@@ -12,19 +12,19 @@ export interface QuantityInputProps {
   mayBeEmpty: boolean
   autoFocus?: boolean
   /** null: read only */
-  onCommit: ((value: number | string | undefined) => void) | null
+  onSettle: ((value: number | string | undefined) => void) | null
 }
 
-/** A quantity typed in a table, in its own unit or another of the same kind ("0.42 mH"). Committed on Enter or leaving; Esc takes it back. */
-export function QuantityInput({ label, value, unit, changed, choices, mayBeEmpty, autoFocus = false, onCommit }: QuantityInputProps) {
+/** A quantity typed in a table, in its own unit or another of the same kind ("0.42 mH"). Settled on Enter or leaving; Esc takes it back. */
+export function QuantityInput({ label, value, unit, changed, choices, mayBeEmpty, autoFocus = false, onSettle }: QuantityInputProps) {
   const [typed, setTyped] = useState<string | null>(null)
   const [error, setError] = useState<string | null>(null)
   const id = useId()
   const tone = changed ? 'font-medium text-brass' : ''
-  if (!onCommit) return <span className={`num ${tone}`}>{value === undefined ? '' : shownValue(value)}</span>
+  if (!onSettle) return <span className={`num ${tone}`}>{value === undefined ? '' : shownValue(value)}</span>
   if (choices)
     return (
-      <select aria-label={label} className={`bg-transparent ${tone}`} value={String(value ?? '')} onChange={(e) => onCommit(e.target.value)}>
+      <select aria-label={label} className={`bg-transparent ${tone}`} value={String(value ?? '')} onChange={(e) => onSettle(e.target.value)}>
         {choices.map((c) => (
           <option key={c} className="bg-sheet text-ink">
             {c}
@@ -32,11 +32,11 @@ export function QuantityInput({ label, value, unit, changed, choices, mayBeEmpty
         ))}
       </select>
     )
-  const commit = () => {
+  const settle = () => {
     if (typed === null) return
     const text = typed.trim()
     if (text === '') {
-      if (mayBeEmpty) onCommit(undefined)
+      if (mayBeEmpty) onSettle(undefined)
       setTyped(null)
       setError(null)
       return
@@ -48,7 +48,7 @@ export function QuantityInput({ label, value, unit, changed, choices, mayBeEmpty
     }
     setTyped(null)
     setError(null)
-    onCommit(read.rounded ? Number(read.value.toPrecision(12)) : read.value)
+    onSettle(read.rounded ? Number(read.value.toPrecision(12)) : read.value)
   }
   return (
     <span className="relative inline-block">
@@ -67,9 +67,9 @@ export function QuantityInput({ label, value, unit, changed, choices, mayBeEmpty
           setTyped(e.target.value)
           setError(null)
         }}
-        onBlur={commit}
+        onBlur={settle}
         onKeyDown={(e) => {
-          if (e.key === 'Enter') commit()
+          if (e.key === 'Enter') settle()
           if (e.key === 'Escape') {
             setTyped(null)
             setError(null)

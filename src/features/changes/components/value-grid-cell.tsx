@@ -76,7 +76,7 @@ function FilledCell({ id, at, label, inTabOrder, emphasised, editing, onChoose, 
           whole={first === null}
           onType={typed.type}
           onDone={(text, way) => {
-            const taken = typed.commit(text)
+            const taken = typed.settle(text)
             if (taken || way === 'leave') (way === 'leave' ? onLeave() : onEnd(way))
           }}
           onCancel={() => {

@@ -58,7 +58,7 @@ export function ValueInspector({ at, set, onEdit }: ValueInspectorProps) {
             step={stepOf(at)}
             flags={place.kind === 'family' ? ownValuesOf(set, place.family, parameter.name).flatMap((o) => numberOf(o.value) ?? []) : undefined}
             onChange={onEdit ? (v) => typed.move(String(v)) : undefined}
-            onCommit={onEdit ? (v) => typed.move(String(v)) : undefined}
+            onSettle={onEdit ? (v) => typed.move(String(v)) : undefined}
           />
         )}
         <p className="text-12 text-ink-2">
