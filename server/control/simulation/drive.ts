@@ -37,6 +37,9 @@ const STIFF = 64
 /** Halvings of a unit that stiff intervals are cut into. */
 const HALVINGS = 40
 
+/** Pieces tried in one stiff interval while switchings are still located. */
+const MAX_TRIES = 5000
+
 /** A linear function of the state that is ≥ 0 while its mode lasts, and its rate for that mode. */
 interface Guard {
   row: Float64Array
@@ -187,7 +190,10 @@ export class Drive {
     const cache = this.halves[this.systemKey()]
     let remaining = h
     let suspect: Guard | undefined
-    for (let depth = 0; depth <= HALVINGS && remaining > 0; ) {
+    /** What is left at the end of the shortest piece known to end past a switching. */
+    let past = 0
+    let depth = 0
+    for (let tries = 0; depth <= HALVINGS && remaining > 0; tries++) {
       const piece = this.options.unit * 2 ** -depth
       if (piece > remaining) {
         depth++
@@ -199,18 +205,25 @@ export class Drive {
         for (let c = 0; c < n; c++) sum += Ad[r * n + c] * x[c]
         y[r] = sum
       }
-      const crossed = locate ? mode.guards.find((guard) => valueOf(guard, y) < -ROUNDING) : undefined
+      const crossed = locate && tries < MAX_TRIES ? mode.guards.find((guard) => valueOf(guard, y) < -ROUNDING) : undefined
       if (crossed !== undefined && depth < HALVINGS) {
         suspect = crossed
+        past = remaining - piece
         depth++
         continue
       }
       x.set(y)
       remaining -= piece
       // The shortest piece ends at the switching to within rounding, whichever side of it.
-      if (depth < HALVINGS || suspect === undefined) continue
-      this.cross(suspect)
-      return remaining
+      if (depth === HALVINGS && suspect !== undefined) {
+        this.cross(suspect)
+        return remaining
+      }
+      // Rounding may let the halves pass where the whole did not: then begin again with long pieces.
+      if (suspect !== undefined && remaining <= past) {
+        suspect = undefined
+        depth = 0
+      }
     }
     return 0
   }
