@@ -21,6 +21,8 @@ function loopFigures(loop: LoopReport): LoopFigures {
     delayMarginS: delay.kind === 'margin' ? delay.delay : null,
     sensitivityPeak: M_s.kind === 'peak' ? M_s.value : null,
     bandwidthHz: width?.kind === 'bandwidth' ? width.hz : null,
+    phaseMarginHz: phase.kind === 'margin' ? phase.hz : null,
+    gainMarginHz: gainUp.kind === 'margin' ? gainUp.hz : null,
   }
 }
 
@@ -36,5 +38,8 @@ export function figuresOf(model: JointModel): JointFigures {
     slowestTimeConstantS: report.slowestTimeConstant,
     eigenvalues: report.eigenvalues.map((e) => ({ re: e.re, im: e.im, decayRate: e.decayRate, frequencyHz: e.foldedHz })),
     loops: Object.fromEntries(loops.map(([name, loop]) => [name, loopFigures(loop)])),
+    step: null,
+    heat: null,
+    tolerance: null,
   }
 }

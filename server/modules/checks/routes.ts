@@ -12,7 +12,7 @@ export const checkRoutes: readonly RouteSpec[] = [
     place: onChange,
     handle: async ({ services, em, place }) => {
       const { result, checkedAt } = await checkChange(services, em, place.change)
-      return { body: { ...result, checkedAt: checkedAt.toISOString() } satisfies CheckView }
+      return { body: { ...result, checkedAt: checkedAt.toISOString(), complete: true, progress: { done: 1, total: 1, state: 'done', problem: '' } } satisfies CheckView }
     },
   }),
 ]
