@@ -100,7 +100,10 @@ function checkCycles(root: Json, refs: ReadonlyMap<string, string>, list: Proble
   const open = new Set<string>()
   const inside = (target: string): string[] => {
     const start = `${target}/`
-    return places.filter((place) => place.startsWith(start))
+    let first = firstAtOrAfter(places, start)
+    const found: string[] = []
+    for (; first < places.length && places[first].startsWith(start); first += 1) found.push(places[first])
+    return found
   }
   const visit = (place: string): void => {
     if (done.has(place)) return
@@ -122,4 +125,16 @@ function checkCycles(root: Json, refs: ReadonlyMap<string, string>, list: Proble
     done.add(place)
   }
   places.forEach(visit)
+}
+
+/** Binary search in a sorted list. */
+function firstAtOrAfter(sorted: readonly string[], wanted: string): number {
+  let low = 0
+  let high = sorted.length
+  while (low < high) {
+    const middle = (low + high) >> 1
+    if (sorted[middle] < wanted) low = middle + 1
+    else high = middle
+  }
+  return low
 }

@@ -15,7 +15,8 @@ export type QuantityReading =
 /** π to 50 places: its error is far below a double's. Source: OEIS A000796 (from memory). */
 const PI: Rational = { n: 314159265358979323846264338327950288419716939937511n, d: 10n ** 50n }
 const PLAIN: Unit = { text: '', dimension: NO_DIMENSION, factor: { n: 1n, d: 1n }, pi: 0, zero: null }
-const TYPED = /^([+\-−–]?(?:\d[\d\s\u00a0\u2009\u202f]*(?:\.\d[\d\s\u00a0\u2009\u202f]*)?|\.\d+)(?:[eE][+\-−]?\d+)?)\s*(.*)$/u
+/** Digits may be grouped: by any space in threes before the point, by narrow ones after it (`5 1/s` is five per second). */
+const TYPED = /^([+\-−–]?(?:\d+(?:[\s\u00a0\u2009\u202f]\d{3}(?!\d))*(?:\.\d+(?:[\u00a0\u2009\u202f]\d+)*)?|\.\d+)(?:[eE][+\-−]?\d+)?)\s*(.*)$/u
 
 /**
  * A typed value with or without a unit, such as `350 mA`, `12 deg`, `60 rpm`, `0.35`, in the parameter's unit.
