@@ -2,6 +2,7 @@ import { check } from './cli/check.ts'
 import { cases } from './cli/cases.ts'
 import { image } from './cli/image.ts'
 import { Usage } from './cli/usage.ts'
+import { ledger, workplace } from './cli/workplace.ts'
 
 interface Command {
   usage: string
@@ -13,6 +14,8 @@ const commands: Record<string, Command> = {
   check: { usage: 'check FILE [--json] [--schemas DIR]', does: 'checks every joint of a machine set', run: check },
   image: { usage: 'image FILE --format bin|hex|srec|h|csv|json|write-list|systemrdl --out PATH [--joint KEY] [--release N] [--schemas DIR]', does: 'writes the register image of one joint', run: image },
   cases: { usage: 'cases FILE', does: 'runs reference cases of the control model', run: cases },
+  workplace: { usage: 'workplace NAME EMAIL', does: 'makes the first administrator of an empty workplace', run: workplace },
+  ledger: { usage: 'ledger verify', does: "walks the ledger's chain and names the first entry that does not hold", run: ledger },
 }
 
 const help = () =>
