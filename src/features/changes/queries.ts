@@ -1,5 +1,6 @@
 import { queryOptions, type QueryClient } from '@tanstack/react-query'
 import type { ChangeSummary, ChangeView, DraftPointView } from '../../../shared/contract/changes.ts'
+import type { FirmwareLineView } from '../../../shared/contract/firmware.ts'
 import type { MachineSet } from '../../../shared/parameters/machine-set.ts'
 import type { Conflict } from '../../../shared/parameters/three-way.ts'
 import { readParameterSchema } from '../../../shared/registers/read-parameter-schema.ts'
@@ -50,6 +51,13 @@ function readSchemas(raw: Record<string, unknown>): Schemas {
     }),
   )
 }
+
+/** Published firmware versions, which joints may be moved to: "hinge 2.1.0". */
+export const firmwareChoicesQuery = queryOptions({
+  queryKey: [...all, 'firmware'],
+  queryFn: ({ signal }) => get<FirmwareLineView[]>('/firmware', { signal }),
+  select: (lines) => lines.flatMap((l) => l.versions.filter((v) => v.state === 'published').map((v) => `${l.key} ${v.version}`)),
+})
 
 export interface OutOfDate {
   conflicts: Conflict[]

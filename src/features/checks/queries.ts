@@ -9,3 +9,11 @@ export const checkQuery = (change: string, revision: number) =>
     queryFn: ({ signal }) => get<CheckView>(`/changes/${encodeURIComponent(change)}/check`, { signal }),
     placeholderData: (before, query) => (query?.queryKey[1] === change ? before : undefined),
   })
+
+/** The check of a change as it stands, for lists: its revision is not known there. */
+export const checkNowQuery = (change: string) =>
+  queryOptions({
+    queryKey: ['checks', change, 'now'],
+    queryFn: ({ signal }) => get<CheckView>(`/changes/${encodeURIComponent(change)}/check`, { signal }),
+    staleTime: 60_000,
+  })

@@ -10,6 +10,8 @@ export interface BeforeSubmitProps {
   refusal: string | null
   /** findings for which a concession is still to be requested */
   open: readonly Finding[]
+  /** concessions requested already */
+  requested: number
   onRequest: () => void
   onSubmit: () => void
   onCancel: (() => void) | null
@@ -18,7 +20,7 @@ export interface BeforeSubmitProps {
 }
 
 /** What must hold before the change can be submitted, and the way to do it. */
-export function BeforeSubmit({ needs, refusal, open, onRequest, onSubmit, onCancel, pending, problem }: BeforeSubmitProps) {
+export function BeforeSubmit({ needs, refusal, open, requested, onRequest, onSubmit, onCancel, pending, problem }: BeforeSubmitProps) {
   const first = needs.find((n) => n.state !== 'met')
   return (
     <section aria-label="before it can be submitted">
@@ -31,7 +33,7 @@ export function BeforeSubmit({ needs, refusal, open, onRequest, onSubmit, onCanc
         ))}
       </ul>
       <div className="mt-3 flex flex-wrap gap-2">
-        {open.length > 0 && <Button onClick={onRequest}>{open.length === 1 ? 'Request the concession' : 'Request concessions'}</Button>}
+        {open.length + requested > 0 && <Button onClick={onRequest}>{open.length === 0 ? 'Concessions…' : open.length === 1 ? 'Request the concession' : 'Request concessions'}</Button>}
         <Button kind={first ? 'plain' : 'primary'} unavailable={refusal ?? (first ? `Not yet: ${first.words}.` : null)} pending={pending} onClick={onSubmit}>
           Submit
         </Button>

@@ -1,0 +1,95 @@
+import { useQuery } from '@tanstack/react-query'
+import { paths } from '../app/paths.ts'
+import type { ChangeSummary } from '../../shared/contract/changes.ts'
+import { Region } from '../components/layout/region.tsx'
+import { PageHead } from '../components/layout/page-head.tsx'
+import { EmptyState } from '../components/ui/empty-state.tsx'
+import { LinkButton } from '../components/ui/link-button.tsx'
+import { SectionHeading } from '../components/ui/section-heading.tsx'
+import { TextLink } from '../components/ui/text-link.tsx'
+import { Time } from '../components/ui/time.tsx'
+import { ChangeTable } from '../features/changes/components/change-table.tsx'
+import { WaitingChange } from '../features/changes/components/waiting-change.tsx'
+import { changesQuery } from '../features/changes/queries.ts'
+import { waitingFor } from '../features/changes/waiting-for.ts'
+import { CheckBrief } from '../features/checks/components/check-brief.tsx'
+import { count } from '../lib/format.ts'
+import { holds, useMe } from '../lib/me.ts'
+import { queryClient } from '../lib/query-client.ts'
+
+export const loader = () => {
+  void queryClient.prefetchQuery(changesQuery())
+  return null
+}
+
+export function Component() {
+  const me = useMe()
+  const changes = useQuery({ ...changesQuery(), refetchOnWindowFocus: true })
+  const now = Date.now()
+  const first = me.name.split(' ')[0]
+  const waiting = waitingFor(changes.data ?? [], me.name, (act, machine) => holds(me, act, machine))
+  const parts = [
+    waiting.toSign.length > 0 && `${waiting.toSign.length} to read and sign`,
+    waiting.toRelease.length > 0 && `${waiting.toRelease.length} to release`,
+    waiting.returned.length > 0 && `${waiting.returned.length} returned to you`,
+  ].filter(Boolean)
+  const total = waiting.toSign.length + waiting.toRelease.length + waiting.returned.length
+  const open = (changes.data ?? []).filter((c) => c.state !== 'released' && c.state !== 'cancelled')
+  return (
+    <>
+      <PageHead
+        title={!changes.data ? first : total === 0 ? `${first}, nothing waits for you` : `${first}, ${inWords(total)} ${total === 1 ? 'thing waits' : 'things wait'} for you`}
+        documentTitle="Desk"
+        actions={<p className="text-right text-13 text-ink-2 max-sm:text-left">{rolesByMachine(me.roles)}</p>}
+      >
+        {parts.join(', ')}
+        {parts.length > 0 && '. '}
+        <Time at={now} style="date" />
+      </PageHead>
+      <Region query={changes} what="what waits for you" lines={6} isEmpty={(all) => all.length === 0} empty={<EmptyState title="No change yet" action={<LinkButton to={paths.machines()}>To the machines</LinkButton>}>The first change gives a machine its buses, families and joints.</EmptyState>}>
+        {() => (
+          <>
+            <Group title="To read and sign" changes={waiting.toSign} act="Read and sign" now={now} />
+            <Group title="To release" changes={waiting.toRelease} act="Read and release" now={now} />
+            <Group title="Returned to you" changes={waiting.returned} act="Take it up again" now={now} toDraft />
+            <Group title="Your drafts" changes={waiting.drafts} act="Go on" now={now} toDraft />
+            <section className="mt-8">
+              <SectionHeading aux={`${open.length} of ${count(changes.data?.length ?? 0, 'change')}`} actions={<TextLink to={paths.changes()}>all changes</TextLink>}>
+                Not yet released
+              </SectionHeading>
+              <div className="mt-1">
+                <ChangeTable label="changes not yet released" changes={open} empty="Every change is released or cancelled." />
+              </div>
+            </section>
+          </>
+        )}
+      </Region>
+    </>
+  )
+}
+
+function Group({ title, changes, act, now, toDraft = false }: { title: string; changes: readonly ChangeSummary[]; act: string; now: number; toDraft?: boolean }) {
+  if (changes.length === 0) return null
+  return (
+    <section className="mb-6">
+      <SectionHeading aux={changes.length > 1 ? 'longest waiting first' : undefined}>{title}</SectionHeading>
+      <ul>
+        {changes.map((c) => (
+          <WaitingChange key={c.key} change={c} to={toDraft ? paths.change(c.key) : paths.changeReview(c.key)} act={act} now={now}>
+            {!toDraft && <CheckBrief change={c.key} />}
+          </WaitingChange>
+        ))}
+      </ul>
+    </section>
+  )
+}
+
+const numerals = ['no', 'one', 'two', 'three', 'four', 'five', 'six', 'seven', 'eight', 'nine', 'ten']
+const inWords = (n: number) => numerals[n] ?? String(n)
+
+/** "peer reviewer on dunlin and teasel, builder on dunlin". */
+function rolesByMachine(roles: readonly { role: string; machine: string | null }[]): string {
+  const machines = new Map<string, string[]>()
+  for (const { role, machine } of roles) machines.set(role, [...(machines.get(role) ?? []), machine ?? 'all machines'])
+  return [...machines].map(([role, on]) => `${role} on ${on.includes('all machines') ? 'all machines' : on.join(' and ')}`).join(', ') || 'no role yet: an administrator gives you one'
+}
