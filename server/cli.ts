@@ -1,8 +1,4 @@
-import { check } from './cli/check.ts'
-import { cases } from './cli/cases.ts'
-import { image } from './cli/image.ts'
 import { Usage } from './cli/usage.ts'
-import { ledger, workplace } from './cli/workplace.ts'
 
 interface Command {
   usage: string
@@ -10,12 +6,13 @@ interface Command {
   run: (args: string[]) => Promise<number>
 }
 
+/** Each command loads what it needs when it is called: `help` needs no database. */
 const commands: Record<string, Command> = {
-  check: { usage: 'check FILE [--json] [--schemas DIR]', does: 'checks every joint of a machine set', run: check },
-  image: { usage: 'image FILE --format bin|hex|srec|h|csv|json|write-list|systemrdl --out PATH [--joint KEY] [--release N] [--schemas DIR]', does: 'writes the register image of one joint', run: image },
-  cases: { usage: 'cases FILE', does: 'runs reference cases of the control model', run: cases },
-  workplace: { usage: 'workplace NAME EMAIL', does: 'makes the first administrator of an empty workplace', run: workplace },
-  ledger: { usage: 'ledger verify', does: "walks the ledger's chain and names the first entry that does not hold", run: ledger },
+  check: { usage: 'check FILE [--json] [--schemas DIR]', does: 'checks every joint of a machine set', run: async (args) => (await import('./cli/check.ts')).check(args) },
+  image: { usage: 'image FILE --format bin|hex|srec|h|csv|json|write-list|systemrdl --out PATH [--joint KEY] [--release N] [--schemas DIR]', does: 'writes the register image of one joint', run: async (args) => (await import('./cli/image.ts')).image(args) },
+  cases: { usage: 'cases FILE', does: 'runs reference cases of the control model', run: async (args) => (await import('./cli/cases.ts')).cases(args) },
+  workplace: { usage: 'workplace NAME EMAIL', does: 'makes the first administrator of an empty workplace', run: async (args) => (await import('./cli/workplace.ts')).workplace(args) },
+  ledger: { usage: 'ledger verify', does: "walks the ledger's chain and names the first entry that does not hold", run: async (args) => (await import('./cli/workplace.ts')).ledger(args) },
 }
 
 const help = () =>

@@ -12,7 +12,7 @@ import { resolveJoint, sha256, type ResolvedJoint } from '../checks/resolve-join
 import { schemasFor } from '../firmware/schemas-for.ts'
 import { appendEntry } from '../ledger/append-entry.ts'
 import { newestRelease } from '../machines/current-release.ts'
-import { Joint } from '../machines/joint.entity.ts'
+import type { Joint } from '../machines/joint.entity.ts'
 import { queueMail } from '../mail/queue-mail.ts'
 import { Person } from '../people/person.entity.ts'
 import { mustBeAnother } from '../reviews/may-sign.ts'
