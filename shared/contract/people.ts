@@ -15,7 +15,7 @@ const Email = Type.String({ format: 'email', maxLength: 254 })
 export const minPasswordLength = 15
 const Password = Type.String({ minLength: 1, maxLength: 200 })
 
-export const SignIn = Type.Object({ email: Type.String({ minLength: 1, maxLength: 254 }), password: Password }, strict)
+export const SignIn = Type.Object({ email: Type.String({ minLength: 1, maxLength: 254, pattern: '^[^\\u0000]*$' }), password: Password }, strict)
 export type SignIn = Static<typeof SignIn>
 
 export const RoleGrantRequest = Type.Object({ role: RoleName, machine: Type.Union([Key, Type.Null()], { description: 'null: on all machines' }) }, strict)

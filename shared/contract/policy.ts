@@ -46,7 +46,8 @@ export const defaultPolicy: PolicyContent = {
   busLoadPercent: { advise: 70, block: 100 },
 }
 
-const Reason = Type.String({ minLength: 1, maxLength: 2000, pattern: '\\S' })
+/** Something to read, without NUL, at which the database would cut it off. */
+const Reason = Type.String({ minLength: 1, maxLength: 2000, pattern: '^(?=[^]*\\S)[^\\u0000]*$' })
 export const ProposePolicy = Type.Object({ content: PolicyContent, reason: Reason }, strict)
 export type ProposePolicy = Static<typeof ProposePolicy>
 export const SignPolicy = Type.Object({ password: Type.String({ minLength: 1, maxLength: 200 }) }, strict)

@@ -6,7 +6,7 @@ const wrong = (name: string, what: string) => new DomainError('invalid-request',
 export function readWord(query: Record<string, unknown>, name: string): string | null {
   const value = query[name]
   if (value === undefined || value === '') return null
-  if (typeof value !== 'string' || value.length > 120) throw wrong(name, 'takes one value of at most 120 characters')
+  if (typeof value !== 'string' || value.length > 120 || value.includes('\0')) throw wrong(name, 'takes one value of at most 120 characters')
   return value
 }
 
