@@ -6,6 +6,13 @@ import { FirstWait } from './first-wait.tsx'
 
 /** Pages for those signed in; each is its own chunk, loaded when first opened. */
 const pages: RouteObject[] = [
+  { index: true, lazy: () => import('../routes/desk.tsx') },
+  { path: 'changes', lazy: () => import('../routes/changes.tsx') },
+  { path: 'changes/:change', lazy: () => import('../routes/change.tsx') },
+  { path: 'changes/:change/check', lazy: () => import('../routes/change-check.tsx') },
+  { path: 'changes/:change/review', lazy: () => import('../routes/change-review.tsx') },
+  { path: 'releases', lazy: () => import('../routes/releases.tsx') },
+  { path: 'machines/:machine/releases/:version', lazy: () => import('../routes/release.tsx') },
   { path: 'account', lazy: () => import('../routes/account.tsx') },
   { path: 'people', lazy: () => import('../routes/people.tsx') },
   { path: 'people/:person', lazy: () => import('../routes/person.tsx') },
@@ -17,6 +24,8 @@ const pages: RouteObject[] = [
   { path: 'machines/:machine/bus/:bus', lazy: () => import('../routes/bus.tsx') },
   { path: 'machines/:machine/joints/:joint', lazy: () => import('../routes/joint.tsx') },
   { path: 'machines/:machine/families/:family', lazy: () => import('../routes/family.tsx') },
+  { path: 'firmware', lazy: () => import('../routes/firmware.tsx') },
+  { path: 'firmware/:line/:version', lazy: () => import('../routes/firmware-version.tsx') },
 ]
 
 export const routes: RouteObject[] = [

@@ -17,6 +17,7 @@ import { machineItems, machineOfPath, personItems, placesFor, rolesInWords } fro
 
 /** Whoever is not signed in goes to the sign-in page, and back here after it. */
 export async function signedInLoader({ request }: LoaderFunctionArgs) {
+  void queryClient.prefetchQuery(machinesQuery)
   try {
     return await queryClient.ensureQueryData(meQuery)
   } catch (error) {
@@ -26,7 +27,10 @@ export async function signedInLoader({ request }: LoaderFunctionArgs) {
   }
 }
 
-/** Top bar and page. A new page takes the focus, so that keyboard and screen reader begin at its head. */
+/**
+ * Top bar and page. A new page takes the focus, so that keyboard and screen reader begin at its head. Words for screen readers alone are
+ * placed absolutely and would widen the page from inside a table that scrolls; the page clips them.
+ */
 export function SignedInLayout() {
   const me = useMe()
   const { pathname } = useLocation()
@@ -57,7 +61,7 @@ export function SignedInLayout() {
         person={{ name: me.name, roles: rolesInWords(me.roles) }}
         personItems={personItems({ theme, mayKeepPeople: holds(me, 'keep people'), mayKeepMail: holds(me, 'keep mail'), signOut: () => signOut.mutate() })}
       />
-      <main ref={main} id="content" tabIndex={-1} aria-busy={busy} className="wrap pb-12 outline-none">
+      <main ref={main} id="content" tabIndex={-1} aria-busy={busy} className="wrap relative overflow-x-clip pb-12 outline-none">
         <ProblemPanel className="mt-3" problem={signOut.error} />
         <Suspense fallback={<Waiting className="pt-8" />}>
           <Outlet />

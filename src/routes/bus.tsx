@@ -8,6 +8,7 @@ import { Num } from '../components/ui/num.tsx'
 import { SectionHeading } from '../components/ui/section-heading.tsx'
 import { TextLink } from '../components/ui/text-link.tsx'
 import { AddressGrid } from '../features/machines/components/address-grid.tsx'
+import { DraftChangeButton } from '../features/machines/components/draft-change-button.tsx'
 import { MachineFrame } from '../features/machines/components/machine-frame.tsx'
 import { FromRelease } from '../features/machines/components/release-shown.tsx'
 import { TapTable } from '../features/machines/components/tap-table.tsx'
@@ -28,7 +29,7 @@ export function Component() {
       <PageHead
         kicker={
           <>
-            <TextLink to={paths.machine(bus.machine)}>{bus.machineName}</TextLink>, bus
+              <TextLink to={paths.machine(bus.machine)}>{bus.machineName}</TextLink>, bus
           </>
         }
         title={settings.name}
@@ -44,12 +45,15 @@ export function Component() {
           />
         }
         actions={
-          <div className="text-13 text-ink-2">
-            as in release <FromRelease machine={bus.machine} shown={bus.shown} />
-          </div>
+          <>
+            <div className="text-13 text-ink-2">
+              as in release <FromRelease machine={bus.machine} shown={bus.shown} />
+            </div>
+            <DraftChangeButton machine={machine} />
+          </>
         }
       >
-        {count(bus.taps.length, 'address', 'addresses')} answered, {bus.free} free
+        {count(bus.taps.length, 'board or device', 'boards and devices')}, {count(bus.free, 'free address', 'free addresses')}
         {settings.pollingRate !== undefined && <>, each board read <Num value={settings.pollingRate} unit="Hz" /></>}
       </PageHead>
       <MachineFrame machine={machine} bus={bus.key}>

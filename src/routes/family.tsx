@@ -11,6 +11,7 @@ import { DriveTrainHistory } from '../features/machines/components/drive-train-h
 import { DriveTrainSheet } from '../features/machines/components/drive-train.tsx'
 import { FamilyValues } from '../features/machines/components/family-values.tsx'
 import { JointTable } from '../features/machines/components/joint-table.tsx'
+import { DraftChangeButton } from '../features/machines/components/draft-change-button.tsx'
 import { MachineFrame } from '../features/machines/components/machine-frame.tsx'
 import { FromRelease } from '../features/machines/components/release-shown.tsx'
 import { familyQuery, machineQuery } from '../features/machines/queries.ts'
@@ -30,15 +31,18 @@ export function Component() {
       <PageHead
         kicker={
           <>
-            <TextLink to={paths.machine(family.machine)}>{family.machineName}</TextLink>, family
+              <TextLink to={paths.machine(family.machine)}>{family.machineName}</TextLink>, family
           </>
         }
         title={family.settings.name}
         documentTitle={`${family.settings.name}, ${family.machineName}`}
         actions={
-          <div className="text-13 text-ink-2">
-            as in release <FromRelease machine={family.machine} shown={family.shown} />
-          </div>
+          <>
+            <div className="text-13 text-ink-2">
+              as in release <FromRelease machine={family.machine} shown={family.shown} />
+            </div>
+            <DraftChangeButton machine={machine} />
+          </>
         }
       >
         {count(family.joints.length, 'joint')} built alike: one drive train, shared values

@@ -14,6 +14,7 @@ import { Num } from '../components/ui/num.tsx'
 import { SectionHeading } from '../components/ui/section-heading.tsx'
 import { TextLink } from '../components/ui/text-link.tsx'
 import { DriveTrainSheet } from '../features/machines/components/drive-train.tsx'
+import { DraftChangeButton } from '../features/machines/components/draft-change-button.tsx'
 import { MachineFrame } from '../features/machines/components/machine-frame.tsx'
 import { FromRelease } from '../features/machines/components/release-shown.tsx'
 import { RevisionTable } from '../features/machines/components/revision-table.tsx'
@@ -38,7 +39,7 @@ export function Component() {
       <PageHead
         kicker={
           <>
-            <TextLink to={paths.machine(joint.machine)}>{joint.machineName}</TextLink>, joint
+              <TextLink to={paths.machine(joint.machine)}>{joint.machineName}</TextLink>, joint
           </>
         }
         title={joint.name}
@@ -53,12 +54,15 @@ export function Component() {
           />
         }
         actions={
-          <div className="text-right max-sm:text-left">
-            <div className="text-13 text-ink-2">revision, release</div>
-            <div className="text-16">
-              <span className="num">{joint.revision === null ? '–' : `r${joint.revision}`}</span>, <FromRelease machine={joint.machine} shown={joint.shown} />
+          <>
+            <div className="mr-2 text-right max-sm:text-left">
+              <div className="text-13 text-ink-2">revision, release</div>
+              <div className="text-16">
+                <span className="num">{joint.revision === null ? '–' : `r${joint.revision}`}</span>, <FromRelease machine={joint.machine} shown={joint.shown} />
+              </div>
             </div>
-          </div>
+            <DraftChangeButton machine={machine} />
+          </>
         }
       />
       <MachineFrame machine={machine} bus={joint.bus} joint={joint.key}>

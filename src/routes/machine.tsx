@@ -1,6 +1,6 @@
 import { useSuspenseQuery } from '@tanstack/react-query'
 import { useState } from 'react'
-import { useNavigate, useParams } from 'react-router'
+import { useParams } from 'react-router'
 import type { LoaderFunctionArgs } from 'react-router'
 import { paths } from '../app/paths.ts'
 import { Acts } from '../components/layout/acts.tsx'
@@ -14,7 +14,7 @@ import { SectionHeading } from '../components/ui/section-heading.tsx'
 import { TextLink } from '../components/ui/text-link.tsx'
 import { DescribeMachineDialog } from '../features/machines/components/describe-machine-dialog.tsx'
 import { DoubledAddresses } from '../features/machines/components/doubled-addresses.tsx'
-import { DraftChangeDialog } from '../features/machines/components/draft-change-dialog.tsx'
+import { DraftChangeButton } from '../features/machines/components/draft-change-button.tsx'
 import { FamilyList } from '../features/machines/components/family-list.tsx'
 import { JointTable } from '../features/machines/components/joint-table.tsx'
 import { CurrentRelease } from '../features/machines/components/release-shown.tsx'
@@ -23,14 +23,20 @@ import { Spines } from '../features/machines/components/spines.tsx'
 import { WaitingChanges } from '../features/machines/components/waiting-changes.tsx'
 import { machineQuery } from '../features/machines/queries.ts'
 import { count } from '../lib/format.ts'
+import { holds, useMe } from '../lib/me.ts'
 import { queryClient } from '../lib/query-client.ts'
 
 export const loader = ({ params }: LoaderFunctionArgs) => queryClient.ensureQueryData(machineQuery(params.machine!))
 
+/** Columns of the page: as many spines beside each other as there is room for, up to three. */
+const beside = (buses: number) =>
+  buses < 2 ? 'lg:grid-cols-[400px_minmax(0,1fr)]' : buses === 2 ? 'lg:grid-cols-[450px_minmax(0,1fr)]' : 'lg:grid-cols-[450px_minmax(0,1fr)] xl:grid-cols-[686px_minmax(0,1fr)]'
+
 export function Component() {
-  const machine = useSuspenseQuery(machineQuery(useParams().machine!)).data
-  const navigate = useNavigate()
-  const [dialog, setDialog] = useState<'draft' | 'describe' | 'retire' | null>(null)
+  const params = useParams()
+  const machine = useSuspenseQuery(machineQuery(params.machine!)).data
+  const keeps = holds(useMe(), 'make machines', params.machine!)
+  const [dialog, setDialog] = useState<'describe' | 'retire' | null>(null)
   const [filter, setFilter] = useUrlText('filter')
   const close = () => setDialog(null)
   const open = machine.changes.filter((c) => c.state !== 'released' && c.state !== 'cancelled')
@@ -44,24 +50,44 @@ export function Component() {
         aside={<CurrentRelease machine={machine.key} current={machine.currentRelease} shown={machine.shown} />}
         actions={
           <>
-            <Button kind="primary" unavailable={refusal(machine.may.draftChange)} onClick={() => setDialog('draft')}>
-              Draft a change…
-            </Button>
-            {machine.may.describe.allowed && <Button onClick={() => setDialog('describe')}>Describe…</Button>}
-            {machine.may.retire.allowed && <Button kind="danger" onClick={() => setDialog('retire')}>Retire…</Button>}
+            <DraftChangeButton machine={machine} />
+            {keeps && (
+              <>
+                <Button unavailable={refusal(machine.may.describe)} onClick={() => setDialog('describe')}>
+                  Describe…
+                </Button>
+                <Button kind="danger" unavailable={refusal(machine.may.retire)} onClick={() => setDialog('retire')}>
+                  Retire…
+                </Button>
+              </>
+            )}
           </>
         }
       >
         {size}
       </PageHead>
-      <div className={`grid gap-x-10 gap-y-8 ${machine.busList.length === 0 ? '' : machine.busList.length === 1 ? 'lg:grid-cols-[214px_minmax(0,1fr)]' : machine.busList.length === 2 ? 'lg:grid-cols-[450px_minmax(0,1fr)]' : 'lg:grid-cols-[450px_minmax(0,1fr)] xl:grid-cols-[686px_minmax(0,1fr)]'}`}>
-        {machine.busList.length > 0 && (
-          <section aria-label="buses">
-            <Spines machine={machine} />
-            <DoubledAddresses machine={machine} />
+      <div className={`grid grid-cols-[minmax(0,1fr)] gap-x-10 gap-y-8 ${beside(machine.busList.length)}`}>
+        <div className="grid min-w-0 grid-cols-[minmax(0,1fr)] content-start gap-8 max-lg:contents">
+          {machine.busList.length > 0 && (
+            <section aria-label="buses">
+              <Spines machine={machine} />
+              <DoubledAddresses machine={machine} />
+            </section>
+          )}
+          {machine.familyList.length > 0 && (
+            <section aria-labelledby="families" className="max-lg:order-2">
+              <SectionHeading id="families">Families</SectionHeading>
+              <FamilyList machine={machine} />
+            </section>
+          )}
+          <section aria-labelledby="acts" className="max-lg:order-3">
+            <SectionHeading id="acts" actions={<TextLink to={paths.ledger({ machine: machine.key })}>ledger</TextLink>}>
+              Last acts
+            </SectionHeading>
+            {machine.lastActs.length > 0 ? <Acts entries={machine.lastActs} /> : <p className="py-2 text-13 text-ink-2">Nothing was done here yet.</p>}
           </section>
-        )}
-        <div className="grid min-w-0 content-start gap-8">
+        </div>
+        <div className="grid min-w-0 grid-cols-[minmax(0,1fr)] content-start gap-8 max-lg:order-1">
           <section aria-labelledby="waiting">
             <SectionHeading id="waiting" aux={open.length > 0 && machine.busList.length > 0 ? `${count(open.length, 'change')} not released; the ball on a tap marks its joint` : undefined}>
               Waiting
@@ -73,28 +99,15 @@ export function Component() {
               Buses, families and joints are drafted in a change, checked, signed and released like every value.
             </EmptyState>
           ) : (
-            <>
-              <section aria-labelledby="joints">
-                <SectionHeading id="joints" actions={<FilterField label="filter joints" value={filter} onChange={setFilter} />}>
-                  Joints
-                </SectionHeading>
-                <JointTable machine={machine.key} joints={joints} />
-              </section>
-              <section aria-labelledby="families">
-                <SectionHeading id="families">Families</SectionHeading>
-                <FamilyList machine={machine} />
-              </section>
-            </>
+            <section aria-labelledby="joints">
+              <SectionHeading id="joints" actions={<FilterField label="filter joints" value={filter} onChange={setFilter} />}>
+                Joints
+              </SectionHeading>
+              <JointTable machine={machine.key} joints={joints} />
+            </section>
           )}
-          <section aria-labelledby="acts">
-            <SectionHeading id="acts" actions={<TextLink to={paths.ledger({ machine: machine.key })}>ledger</TextLink>}>
-              Last acts
-            </SectionHeading>
-            {machine.lastActs.length > 0 ? <Acts entries={machine.lastActs} /> : <p className="py-2 text-13 text-ink-2">Nothing was done here yet.</p>}
-          </section>
         </div>
       </div>
-      {dialog === 'draft' && <DraftChangeDialog machine={machine.key} machineName={machine.name} base={machine.shown?.version ?? null} onClose={close} onDrafted={(key) => void navigate(paths.change(key))} />}
       {dialog === 'describe' && <DescribeMachineDialog machine={machine} onClose={close} />}
       {dialog === 'retire' && <RetireMachineDialog machine={machine} onClose={close} />}
     </>

@@ -57,7 +57,7 @@ export function Component() {
                   <ProposedPolicy key={v.number} policy={v} inForce={view.inForce.content} />
                 ))}
                 <section aria-labelledby="in-force" className="mb-8">
-                  <SectionHeading id="in-force" aux={view.inForce.signedAt ? <>signed by {view.inForce.signedBy ?? 'Detent'}, <Time at={view.inForce.signedAt} style="long" /></> : undefined}>
+                  <SectionHeading id="in-force" aux={view.inForce.signedAt ? <>{view.inForce.signedBy ? `signed by ${view.inForce.signedBy},` : 'since'} <Time at={view.inForce.signedAt} style="long" /></> : undefined}>
                     Policy {view.inForce.number}, in force
                   </SectionHeading>
                   <p className="my-2 max-w-[80ch] whitespace-pre-wrap">{view.inForce.reason}</p>

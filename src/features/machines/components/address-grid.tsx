@@ -60,7 +60,12 @@ function Cell({ address, taps, reserved, machine }: { address: number; taps: rea
     <td className={`h-9 border p-0 align-middle ${tint} ${reserved ? hatched : ''}`} title={`${formatHex(address)} ${taps.map((t) => t.name).join(' and ') || (reserved ? 'reserved' : 'free')}`}>
       {taps.length === 0 && reserved && <span className="sr-only">reserved</span>}
       {taps.map((tap) => {
-        const inside = <span className="block truncate px-1 text-center leading-4">{tap.name}</span>
+        const inside = (
+          <>
+            <span className="block truncate px-1 text-center leading-4 max-sm:sr-only">{tap.name}</span>
+            <i className="mx-auto my-[3px] block size-[9px] bg-ink sm:hidden" />
+          </>
+        )
         return tap.joint === null ? (
           <span key={tap.name}>{inside}</span>
         ) : (

@@ -1,7 +1,7 @@
 import type { DriveTrain } from '../../../../shared/parameters/machine-set.ts'
 import { bounds, nominal } from '../../../../shared/parameters/quantity.ts'
 import { Num } from '../../../components/ui/num.tsx'
-import { formatQuantity } from '../../../lib/format.ts'
+import { formatNumber, formatQuantity } from '../../../lib/format.ts'
 import { driveTrainGroups, isQuantity, letterParts } from '../drive-train-parts.ts'
 import type { DriveTrainPart } from '../drive-train-parts.ts'
 
@@ -55,15 +55,19 @@ function PartValue({ part, value }: { part: DriveTrainPart; value: DriveTrain[ke
   const shown = nominal(value)
   if (part.unit.includes(' ')) return <><span className="num">{shown}</span> <span className="unit">{part.unit}</span></>
   if (!range) return <Num value={shown} unit={part.unit} digits={digits(shown)} />
-  const [low, high] = range.map((v) => formatQuantity(v, part.unit, { digits: digits(v) }))
-  const lowText = low.unit === high.unit ? low.number : `${low.number} ${low.unit}`
+  const power = powerOf(formatQuantity(shown, part.unit), part.unit)
+  const [low, high] = range.map((v) => formatNumber(v / 10 ** power, { digits: 4 }))
   return (
     <span title="value, and the bounds that the tolerance sweep walks">
       <Num value={shown} unit={part.unit} digits={digits(shown)} />
       <span className="num ml-2 text-12 text-ink-2">
-        {lowText}…{high.number}
-        {low.unit !== high.unit && ` ${high.unit}`}
+        {low} … {high}
       </span>
     </span>
   )
 }
+
+const PREFIX_POWERS: Record<string, number> = { G: 9, M: 6, k: 3, m: -3, µ: -6, n: -9, p: -12 }
+
+/** Power of ten that a quantity was written in, so that its bounds are written in the same. */
+const powerOf = (written: { unit: string; power: number }, unit: string) => written.power + (PREFIX_POWERS[written.unit.slice(0, written.unit.length - unit.length)] ?? 0)

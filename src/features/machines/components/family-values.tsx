@@ -14,7 +14,7 @@ export function FamilyValues({ machine, values, joints }: { machine: string; val
   const [sort, setSort] = useUrlSort()
   const nameOf = new Map(joints.map((j) => [j.key, j.name]))
   const columns: Column<FamilyValue>[] = [
-    { key: 'parameter', head: 'Parameter', sortBy: (v) => v.title, cell: (v) => v.title },
+    { key: 'parameter', head: 'Parameter', className: 'whitespace-nowrap', sortBy: (v) => v.title, cell: (v) => v.title },
     { key: 'value', head: 'Value', align: 'end', className: 'num', cell: (v) => valueText(v.familyValue ?? v.firmwareDefault) },
     { key: 'unit', head: 'Unit', className: 'text-ink-2', cell: (v) => v.unit },
     { key: 'origin', head: 'Origin', sortBy: (v) => (v.familyValue === null ? 0 : 1), cell: (v) => <OriginMark origin={v.familyValue === null ? 'firmware' : 'family'} /> },

@@ -6,36 +6,53 @@ import { Num } from '../../../components/ui/num.tsx'
 import { SmallRail } from '../../../components/ui/small-rail.tsx'
 import { Table } from '../../../components/ui/table.tsx'
 import type { Column } from '../../../components/ui/table.tsx'
-import { count } from '../../../lib/format.ts'
 
 const columns: Column<JointSummary>[] = [
   {
     key: 'joint',
     head: 'Joint',
+    className: 'whitespace-nowrap',
     sortBy: (j) => j.name,
     cell: (j) => (
       <>
         {j.name}
-        {j.ownValues > 0 && <span className="text-13 font-normal text-ink-2"> {count(j.ownValues, 'own value')}</span>}
+        {/* Most joints hold a position; what else one does is worth a word. */}
+        {j.mode !== null && j.mode !== 'position' && <span className="text-13 font-normal text-ink-2"> {j.mode}</span>}
       </>
     ),
   },
-  { key: 'bus', head: 'Bus', sortBy: (j) => j.bus, cell: (j) => j.bus, className: 'text-ink-2' },
-  { key: 'address', head: 'Address', sortBy: (j) => j.address, cell: (j) => <HexAddress address={j.address} /> },
+  {
+    key: 'address',
+    head: 'Address',
+    className: 'whitespace-nowrap',
+    sortBy: (j) => `${j.bus} ${String(j.address).padStart(3, '0')}`,
+    cell: (j) => (
+      <>
+        <HexAddress address={j.address} /> <span className="text-13 text-ink-2">{j.bus}</span>
+      </>
+    ),
+  },
   { key: 'family', head: 'Family', sortBy: (j) => j.familyName, cell: (j) => j.familyName },
-  { key: 'mode', head: 'Mode', sortBy: (j) => j.mode, cell: (j) => j.mode ?? <Num value={null} /> },
-  { key: 'firmware', head: 'Firmware', className: 'num text-13', sortBy: (j) => j.firmware, cell: (j) => j.firmware },
+  { key: 'firmware', head: 'Firmware', className: 'num text-13 whitespace-nowrap', sortBy: (j) => j.firmware, cell: (j) => j.firmware },
   { key: 'revision', head: 'Revision', className: 'num', sortBy: (j) => j.revision, cell: (j) => (j.revision === null ? <Num value={null} /> : `r${j.revision}`) },
+  { key: 'own', head: 'Own', align: 'end', className: 'num', sortBy: (j) => j.ownValues, cell: (j) => j.ownValues || '' },
   {
     key: 'waiting',
     head: 'Waiting',
+    width: '7.5rem',
     sortBy: (j) => j.waiting[0]?.change ?? null,
-    cell: (j) =>
-      j.waiting.map((w) => (
-        <SmallRail key={w.change} state={w.state}>
-          <span className="num text-13 text-ink-2">{w.change.split('-').at(-1)}</span>
-        </SmallRail>
-      )),
+    cell: (j) => (
+      <span className="flex flex-wrap gap-x-3">
+        {j.waiting.map((w) => (
+          <SmallRail key={w.change} state={w.state}>
+            <span className="num text-13 text-ink-2">
+              {w.change.split('-').at(-1)}
+              <span className="sr-only"> {w.state}</span>
+            </span>
+          </SmallRail>
+        ))}
+      </span>
+    ),
   },
 ]
 

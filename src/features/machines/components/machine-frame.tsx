@@ -5,7 +5,7 @@ import { Spines } from './spines.tsx'
 /** A page inside a machine: the spine of its bus on the left, folded away where there is no room beside. */
 export function MachineFrame({ machine, bus, joint, children }: { machine: MachineView; bus?: string; joint?: string; children: ReactNode }) {
   return (
-    <div className="grid gap-x-10 gap-y-5 lg:grid-cols-[214px_minmax(0,1fr)]">
+    <div className="grid grid-cols-[minmax(0,1fr)] gap-x-10 gap-y-5 lg:grid-cols-[214px_minmax(0,1fr)]">
       <div className="max-lg:hidden">
         <Spines machine={machine} only={bus} selected={joint} />
       </div>

@@ -15,6 +15,7 @@ export function TapTable({ bus }: { bus: BusView }) {
     {
       key: 'finding',
       head: 'Finding',
+    className: 'whitespace-nowrap',
       cell: (t) => (bus.doubled.includes(t.address) ? <FindingMark level="block">two at this address</FindingMark> : t.reserved ? <FindingMark level="block">reserved address</FindingMark> : <FindingMark level="pass">alone at its address</FindingMark>),
     },
   ]

@@ -10,8 +10,12 @@ import { formatNumber } from '../../../lib/format.ts'
 
 const range = (v: ParameterValue) => (v.minimum === null && v.maximum === null ? null : `${v.minimum === null ? '' : valueText(v.minimum)} … ${v.maximum === null ? '' : valueText(v.maximum)}`)
 
+const isAddress = (v: ParameterValue) => v.role === 'bus.address'
+
+/** What the value stands over: the family's, or the firmware's default. A bus address stands over nothing: each joint has its own. */
 const under = (v: ParameterValue): string | null =>
-  v.origin === 'joint' && v.familyValue !== null ? `family ${valueText(v.familyValue)}`
+  isAddress(v) ? null
+  : v.origin === 'joint' && v.familyValue !== null ? `family ${valueText(v.familyValue)}`
   : v.origin !== 'firmware' && v.firmwareDefault !== null && v.familyValue === null ? `firmware ${valueText(v.firmwareDefault)}`
   : null
 
@@ -19,6 +23,7 @@ const columns: Column<ParameterValue>[] = [
   {
     key: 'parameter',
     head: 'Parameter',
+    className: 'whitespace-nowrap',
     sortBy: (v) => v.title,
     cell: (v) => (
       <span title={v.description}>
@@ -27,7 +32,7 @@ const columns: Column<ParameterValue>[] = [
       </span>
     ),
   },
-  { key: 'value', head: 'Value', align: 'end', className: 'num', cell: (v) => valueText(v.value) },
+  { key: 'value', head: 'Value', align: 'end', className: 'num whitespace-nowrap', cell: (v) => (isAddress(v) && typeof v.value === 'number' ? <HexAddress address={v.value} /> : valueText(v.value)) },
   { key: 'unit', head: 'Unit', className: 'text-ink-2', cell: (v) => v.unit },
   {
     key: 'origin',
@@ -40,7 +45,7 @@ const columns: Column<ParameterValue>[] = [
       </span>
     ),
   },
-  { key: 'range', head: 'Allowed', align: 'end', className: 'num text-13 text-ink-2', cell: (v) => range(v) ?? <Num value={null} /> },
+  { key: 'range', head: 'Allowed', align: 'end', className: 'num text-13 text-ink-2 whitespace-nowrap', cell: (v) => range(v) ?? <Num value={null} /> },
   {
     key: 'register',
     head: 'Register',
@@ -55,7 +60,7 @@ const columns: Column<ParameterValue>[] = [
         </>
       ),
   },
-  { key: 'bytes', head: 'Bytes', className: 'num text-13 whitespace-nowrap', cell: (v) => v.bytes.replaceAll(/(..)(?=.)/g, '$1 ').toUpperCase() },
+  { key: 'bytes', head: 'Bytes', className: 'num text-13 whitespace-nowrap', cell: (v) => (v.bytes.match(/[0-9a-f]{2}/gi) ?? []).join(' ').toUpperCase() },
   {
     key: 'error',
     head: 'Rounding',

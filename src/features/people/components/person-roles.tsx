@@ -31,8 +31,8 @@ export function PersonRoles({ person, machines }: { person: PersonView; machines
         machineName={(key) => machines.find((m) => m.key === key)?.name ?? key}
         after={(grant) =>
           person.may.endRoles.allowed && (
-            <Button small kind="danger" onClick={() => setEnding(grant)}>
-              End<span className="sr-only"> {grant.role}</span>…
+            <Button small kind="danger" aria-label={`End the role ${grant.role}…`} onClick={() => setEnding(grant)}>
+              End…
             </Button>
           )
         }

@@ -1,0 +1,44 @@
+import { useMutation, useQueryClient } from '@tanstack/react-query'
+import type { DescribeFirmwareLine, DraftFirmwareVersion, EditFirmwareVersion, FirmwareLineView, FirmwareVersionView, MakeFirmwareLine, SignFirmwareVersion } from '../../../shared/contract/firmware.ts'
+import { act } from '../../lib/api-client.ts'
+import { firmwareVersionQuery } from './queries.ts'
+
+const part = encodeURIComponent
+
+function useStale() {
+  const client = useQueryClient()
+  return () => Promise.all([['firmware'], ['changes'], ['ledger']].map((queryKey) => client.invalidateQueries({ queryKey })))
+}
+
+export function useMakeLine() {
+  const stale = useStale()
+  return useMutation({ mutationFn: (body: MakeFirmwareLine) => act<FirmwareLineView>({ path: '/firmware', body }), onSuccess: stale })
+}
+
+export function useDescribeLine(line: string) {
+  const stale = useStale()
+  return useMutation({ mutationFn: (body: DescribeFirmwareLine) => act<FirmwareLineView>({ method: 'PATCH', path: `/firmware/${part(line)}`, body }), onSuccess: stale })
+}
+
+export function useDraftVersion(line: string) {
+  const stale = useStale()
+  return useMutation({ mutationFn: (body: DraftFirmwareVersion) => act<FirmwareVersionView>({ path: `/firmware/${part(line)}/versions`, body }), onSuccess: stale })
+}
+
+/** Saves a draft over the revision it was read at; what comes back is what the page shows next. */
+export function useEditVersion(line: string, version: string) {
+  const client = useQueryClient()
+  const stale = useStale()
+  return useMutation({
+    mutationFn: ({ revision, ...body }: EditFirmwareVersion & { revision: number }) => act<FirmwareVersionView>({ method: 'PUT', path: `/firmware/${part(line)}/${part(version)}`, ifMatch: revision, body }),
+    onSuccess: (view) => {
+      client.setQueryData(firmwareVersionQuery(line, version).queryKey, view)
+      return stale()
+    },
+  })
+}
+
+export function useSignVersion(line: string, version: string, what: 'publish' | 'retire') {
+  const stale = useStale()
+  return useMutation({ mutationFn: (body: SignFirmwareVersion) => act<FirmwareVersionView>({ path: `/firmware/${part(line)}/${part(version)}/${what}`, body }), onSuccess: stale })
+}
