@@ -67,6 +67,8 @@ export function bandwidthsOf(T: MeasuredOverReference, dcGain: number, landmarks
       re[0] = out.T_re
       im[0] = out.T_im
     },
+    // T keeps its value at zero frequency below the loop's slowest pole; two half decades of that are enough.
+    isLow: (above, below) => [above, below].every((node) => Math.hypot(node.re[0] - dcGain, node.im[0]) < 0.02 * Math.abs(dcGain)),
   }
   const relativeLevel = BANDWIDTH_LEVEL * Math.abs(dcGain)
   const reaches = Math.abs(dcGain) > BANDWIDTH_LEVEL

@@ -293,6 +293,7 @@ function balanceComplex(M: ComplexMatrix): void {
         column += Math.abs(re[j * n + i]) + Math.abs(im[j * n + i])
       }
       if (row === 0 || column === 0) continue
+      if (row < 4 * column && column < 4 * row) continue
       const total = row + column
       const exponent = Math.max(-300, Math.min(300, Math.round(0.5 * Math.log2(row / column))))
       if (exponent === 0) continue

@@ -13,12 +13,14 @@ export interface LocusSource {
   evaluate(psi: number, re: Float64Array, im: Float64Array): void
   /** Frequencies in (0, π] where something narrow may sit: resonances, lobes of the window. */
   readonly landmarks: readonly number[]
+  /** Whether nothing new follows below these two frequencies (upper, lower). */
+  isLow?(above: LocusNode, below: LocusNode): boolean
 }
 
 /** Loci below this modulus, or above its inverse, cross nothing within ±60 dB. */
 const NEGLIGIBLE = 5e-4
-/** How far a locus may stray, in ln and rad, from a straight line between nodes. */
-const STRAY = 0.02
+/** How far a locus may stray, in ln and rad (or relative to its size), from a straight line between nodes. */
+const STRAY = 0.05
 /** The same where it passes a threshold so closely that a crossing pair may hide between two nodes. */
 const STRAY_GRAZING = 2e-5
 const PSI_LOWEST = 1e-10
@@ -40,14 +42,16 @@ export function traceLoci(source: LocusSource, enough: (left: LocusNode, right: 
     source.evaluate(psi, node.re, node.im)
     return node
   }
-  const starts = startingFrequencies(source, make)
-  const nodes: LocusNode[] = [starts[0]]
+  const low = lowFrequencies(source, make)
+  const rest = higherFrequencies(source, low[0].psi, low[low.length - 1].psi)
+  const nodes: LocusNode[] = [low[0]]
   const permutation = new Int32Array(source.q)
   const taken = new Uint8Array(source.q)
-  let count = starts.length
+  let count = low.length
   const pending: LocusNode[] = []
-  for (let s = 1; s < starts.length; s++) {
-    pending.push(starts[s])
+  for (let s = 1; s < low.length + rest.length; s++) {
+    pending.push(s < low.length ? low[s] : make(rest[s - low.length]))
+    count++
     // Depth first, left to right: the last node kept is always the left end, its order settled.
     while (pending.length > 0) {
       const left = nodes[nodes.length - 1]
@@ -76,23 +80,25 @@ export function traceLoci(source: LocusSource, enough: (left: LocusNode, right: 
   return nodes
 }
 
-/** Half decades, from where all loci are beyond 60 dB or the lowest frequency is reached; then landmarks and eighths of decades. */
-function startingFrequencies(source: LocusSource, make: (psi: number) => LocusNode): LocusNode[] {
+/** Half decades from 0.01 down to where all loci are beyond 60 dB, or the source says that nothing follows, or the lowest frequency. */
+function lowFrequencies(source: LocusSource, make: (psi: number) => LocusNode): LocusNode[] {
   const low: LocusNode[] = []
-  let psi = 0.01
   let previous: LocusNode | null = null
-  while (psi >= PSI_LOWEST) {
+  for (let psi = 0.01; psi >= PSI_LOWEST; psi /= Math.sqrt(10)) {
     const node = make(psi)
     low.unshift(node)
-    if (previous && allRisen(previous, node)) break
+    if (previous && (allRisen(previous, node) || source.isLow?.(previous, node))) break
     previous = node
-    psi /= Math.sqrt(10)
   }
+  return low
+}
+
+/** Eighths of decades to π, and the landmarks. */
+function higherFrequencies(source: LocusSource, lowest: number, above: number): number[] {
   const grid = new Set<number>([Math.PI])
   for (let k = 1; k < 20; k++) grid.add(0.01 * 10 ** (k / 8))
-  for (const at of source.landmarks) if (at > low[0].psi && at < Math.PI) grid.add(at)
-  const rest = [...grid].filter((x) => x <= Math.PI && !low.some((node) => node.psi === x)).map(make)
-  return [...low, ...rest].sort((a, b) => a.psi - b.psi)
+  for (const at of source.landmarks) if (at > Math.max(lowest, above) && at < Math.PI) grid.add(at)
+  return [...grid].sort((a, b) => a - b)
 }
 
 /** Whether a locus has passed +60 dB on the way down and still rises like an integrator. */
@@ -135,6 +141,9 @@ export function ordered(left: LocusNode, right: LocusNode, permutation: Int32Arr
     permutation[from] = to
     taken[to] = 1
   }
+  let same = true
+  for (let i = 0; i < q && same; i++) same = permutation[i] === i
+  if (same) return right
   const node = { psi: right.psi, re: new Float64Array(q), im: new Float64Array(q) }
   for (let i = 0; i < q; i++) {
     node.re[i] = right.re[permutation[i]]
@@ -143,32 +152,62 @@ export function ordered(left: LocusNode, right: LocusNode, permutation: Int32Arr
   return node
 }
 
+/** Whether every locus of interest runs straight between the ends, in ln λ or in λ itself. */
 function straight(a: LocusNode, m: LocusNode, b: LocusNode): boolean {
   for (let i = 0; i < a.re.length; i++) {
-    const ma = Math.hypot(a.re[i], a.im[i])
-    const mm = Math.hypot(m.re[i], m.im[i])
-    const mb = Math.hypot(b.re[i], b.im[i])
-    if (ma < NEGLIGIBLE && mm < NEGLIGIBLE && mb < NEGLIGIBLE) continue
-    if (ma > 1 / NEGLIGIBLE && mm > 1 / NEGLIGIBLE && mb > 1 / NEGLIGIBLE) continue
-    if (ma === 0 || mm === 0 || mb === 0) return false
-    const la = Math.log(ma)
-    const lm = Math.log(mm)
-    const lb = Math.log(mb)
-    const first = turn(a.re[i], a.im[i], m.re[i], m.im[i])
-    const second = turn(m.re[i], m.im[i], b.re[i], b.im[i])
-    if (Math.abs(first) > 0.9 || Math.abs(second) > 0.9 || Math.abs(lm - la) > 3 || Math.abs(lb - lm) > 3) return false
-    const strayModulus = Math.abs(lm - 0.5 * (la + lb))
-    const strayPhase = 0.5 * Math.abs(first - second)
-    if (strayModulus > STRAY || strayPhase > STRAY) return false
-    if (strayModulus > STRAY_GRAZING && grazes(la, lm, lb, strayModulus)) return false
-    if (strayPhase > STRAY_GRAZING) {
-      const pa = fromMinusOne(a.re[i], a.im[i])
-      const pm = fromMinusOne(m.re[i], m.im[i])
-      const pb = fromMinusOne(b.re[i], b.im[i])
-      if (Math.abs(pm) < 2 && grazes(pa, pm, pb, strayPhase)) return false
-    }
+    const sa = a.re[i] * a.re[i] + a.im[i] * a.im[i]
+    const sm = m.re[i] * m.re[i] + m.im[i] * m.im[i]
+    const sb = b.re[i] * b.re[i] + b.im[i] * b.im[i]
+    const small = NEGLIGIBLE * NEGLIGIBLE
+    if (sa < small && sm < small && sb < small) continue
+    if (sa * small > 1 && sm * small > 1 && sb * small > 1) continue
+    if (!straightInLog(a, m, b, i, sa, sm, sb) && !straightInPlane(a, m, b, i, sa, sm, sb)) return false
   }
   return true
+}
+
+function straightInLog(a: LocusNode, m: LocusNode, b: LocusNode, i: number, sa: number, sm: number, sb: number): boolean {
+  if (sa === 0 || sm === 0 || sb === 0) return false
+  const first = turn(a.re[i], a.im[i], m.re[i], m.im[i])
+  const second = turn(m.re[i], m.im[i], b.re[i], b.im[i])
+  if (Math.abs(first) > 0.9 || Math.abs(second) > 0.9) return false
+  const strayPhase = 0.5 * Math.abs(first - second)
+  if (strayPhase > STRAY) return false
+  const la = 0.5 * Math.log(sa)
+  const lm = 0.5 * Math.log(sm)
+  const lb = 0.5 * Math.log(sb)
+  const strayModulus = Math.abs(lm - 0.5 * (la + lb))
+  if (strayModulus > STRAY || Math.abs(lm - la) > 3 || Math.abs(lb - lm) > 3) return false
+  if (strayModulus > STRAY_GRAZING && grazes(la, lm, lb, strayModulus)) return false
+  if (strayPhase <= STRAY_GRAZING) return true
+  const pm = fromMinusOne(m.re[i], m.im[i])
+  return Math.abs(pm) > 2 || !grazes(pm - first, pm, pm + second, strayPhase)
+}
+
+/** For loci inside the unit circle that run through or beside 0, where the logarithm is of no use: window zeros. */
+function straightInPlane(a: LocusNode, m: LocusNode, b: LocusNode, i: number, sa: number, sm: number, sb: number): boolean {
+  const most = Math.max(sa, sm, sb)
+  if (most > 0.25) return false
+  const size = Math.sqrt(most)
+  const stray = Math.hypot(m.re[i] - 0.5 * (a.re[i] + b.re[i]), m.im[i] - 0.5 * (a.im[i] + b.im[i]))
+  if (stray > STRAY * size) return false
+  // Which side of 0 it passes decides a crossing of the negative axis: settled, or too small to matter.
+  if (stray < 0.25 * NEGLIGIBLE) return true
+  if (Math.min(toOrigin(a, m, i), toOrigin(m, b, i)) < 4 * stray) return false
+  return !grazesBelow(a.im[i], m.im[i], b.im[i], stray, Math.min(a.re[i], m.re[i], b.re[i]))
+}
+
+function grazesBelow(a: number, m: number, b: number, stray: number, leftmost: number): boolean {
+  return leftmost < 0 && grazes(a, m, b, stray)
+}
+
+/** Distance of 0 from the chord between two nodes of a locus. */
+function toOrigin(a: LocusNode, b: LocusNode, i: number): number {
+  const dr = b.re[i] - a.re[i]
+  const di = b.im[i] - a.im[i]
+  const length = dr * dr + di * di
+  const t = length === 0 ? 0 : Math.min(1, Math.max(0, -(a.re[i] * dr + a.im[i] * di) / length))
+  return Math.hypot(a.re[i] + t * dr, a.im[i] + t * di)
 }
 
 /** All three on one side of 0, and one nearer to it than the line may be off. */

@@ -24,6 +24,9 @@ export function currentSource(joint: SampledJoint, transfer = new CurrentTransfe
   }
 }
 
+/** Up to this size the norm comes from the eigenvalues of SᴴS, above it from power iteration. */
+const DIRECT_NORM = 12
+
 /** The velocity or position loop as a source of margins; ψ in radians per hyperperiod. */
 export class OuterSource implements MarginSource {
   readonly q: number
@@ -36,6 +39,8 @@ export class OuterSource implements MarginSource {
   private readonly vector: ComplexMatrix
   private readonly image: ComplexMatrix
   private readonly det = { re: 0, im: 0 }
+  private readonly gramRe: Float64Array
+  private readonly gramIm: Float64Array
 
   constructor(joint: SampledJoint, plant: LiftedPlant, closure: 'velocity' | 'position', landmarks: readonly number[] = [], transfer = new OuterTransfer(joint, plant)) {
     this.q = plant.q
@@ -46,6 +51,8 @@ export class OuterSource implements MarginSource {
     this.S = complexMatrix(this.q)
     this.vector = complexMatrix(this.q, 1)
     this.image = complexMatrix(this.q, 1)
+    this.gramRe = new Float64Array(this.q)
+    this.gramIm = new Float64Array(this.q)
     this.landmarks = [...landmarks, ...windowLobes(joint, this.q)]
   }
 
@@ -91,6 +98,11 @@ export class OuterSource implements MarginSource {
     this.transfer.loop(this.closure, L)
     invertSensitivity(L, S, this.det)
     if (floor > 0 && normBound(S) <= floor) return 0
+    if (q <= DIRECT_NORM) {
+      gram(S, L)
+      complexEigenvalues(L, this.gramRe, this.gramIm)
+      return Math.sqrt(Math.max(...this.gramRe))
+    }
     // Power iteration on SᴴS: the value converges with the square of the vector.
     for (let a = 0; a < q; a++) {
       vector.re[a] = 1 + 0.1 * Math.cos(a)
@@ -161,6 +173,27 @@ function norm(x: ComplexMatrix): number {
   let sum = 0
   for (let k = 0; k < x.n; k++) sum += x.re[k] ** 2 + x.im[k] ** 2
   return Math.sqrt(sum)
+}
+
+/** out ← SᴴS. */
+function gram(S: ComplexMatrix, out: ComplexMatrix): void {
+  const { n, re, im } = S
+  for (let i = 0; i < n; i++) {
+    for (let j = 0; j < n; j++) {
+      let sr = 0
+      let si = 0
+      for (let k = 0; k < n; k++) {
+        const ar = re[k * n + i]
+        const ai = im[k * n + i]
+        const br = re[k * n + j]
+        const bi = im[k * n + j]
+        sr += ar * br + ai * bi
+        si += ar * bi - ai * br
+      }
+      out.re[i * n + j] = sr
+      out.im[i * n + j] = si
+    }
+  }
 }
 
 function multiply(M: ComplexMatrix, x: ComplexMatrix, y: ComplexMatrix): void {

@@ -51,6 +51,12 @@ export const UNSTABLE_MARGINS: LoopMargins = {
   Ms_lifted_norm: { kind: 'unstable' },
 }
 
+interface Peak {
+  readonly psi: number
+  readonly value: number
+  readonly hz: number
+}
+
 interface Crossing {
   readonly psi: number
   readonly re: number
@@ -68,11 +74,12 @@ interface Crossing {
 export function marginsOf(source: MarginSource, wanted: 'gain-and-phase' | 'all' = 'all'): LoopMargins {
   const nodes = traceLoci(source)
   const finder = new CrossingFinder(source)
-  const onAxis: Crossing[] = endpoints(nodes)
   const onCircle: Crossing[] = []
+  const candidates: Span[] = []
   for (let k = 1; k < nodes.length; k++) {
-    for (let i = 0; i < source.q; i++) finder.between(nodes[k - 1], nodes[k], i, onAxis, onCircle)
+    for (let i = 0; i < source.q; i++) finder.between(nodes[k - 1], nodes[k], i, candidates, onCircle)
   }
+  const onAxis = [...endpoints(nodes), ...finder.contenders(candidates)]
   const toHz = 1 / (2 * Math.PI * source.period)
   const trueHz = (x: Crossing): number => Math.abs(source.strongest(x.psi, x.re, x.im)) * toHz
   const phase = phaseMargin(onCircle, trueHz)
@@ -156,6 +163,16 @@ function endpoints(nodes: readonly LocusNode[]): Crossing[] {
 }
 
 const ROOT_STEPS = 80
+/** A chord between settled nodes tells a crossing's size at least this well. */
+const CONTENDER = 1.3
+
+/** Where locus i crosses the negative axis, and the modulus there about. */
+interface Span {
+  readonly a: LocusNode
+  readonly b: LocusNode
+  readonly i: number
+  readonly about: number
+}
 
 /** Finds where one locus, between two nodes, meets the unit circle or the negative real axis. */
 class CrossingFinder {
@@ -169,13 +186,29 @@ class CrossingFinder {
     this.im = new Float64Array(source.q)
   }
 
-  between(a: LocusNode, b: LocusNode, i: number, onAxis: Crossing[], onCircle: Crossing[]): void {
+  between(a: LocusNode, b: LocusNode, i: number, candidates: Span[], onCircle: Crossing[]): void {
     const ma = a.re[i] * a.re[i] + a.im[i] * a.im[i]
     const mb = b.re[i] * b.re[i] + b.im[i] * b.im[i]
     if (ma > 1 !== mb > 1) onCircle.push(this.root(a, b, i, 'circle'))
     const pa = fromMinusOne(a.re[i], a.im[i])
     const pb = fromMinusOne(b.re[i], b.im[i])
-    if (pa > 0 !== pb > 0 && Math.abs(pa - pb) < Math.PI) onAxis.push(this.root(a, b, i, 'axis'))
+    if (pa > 0 !== pb > 0 && Math.abs(pa - pb) < Math.PI) {
+      const t = pa === pb ? 0.5 : pa / (pa - pb)
+      candidates.push({ a, b, i, about: Math.sqrt(ma) ** (1 - t) * Math.sqrt(mb) ** t })
+    }
+  }
+
+  /** Crossings of the negative axis that may be the first on either side of −1, by their size as the chord shows it. */
+  contenders(candidates: readonly Span[]): Crossing[] {
+    let below = 0
+    let above = Infinity
+    for (const { about } of candidates) {
+      if (about < 1) below = Math.max(below, about)
+      else above = Math.min(above, about)
+    }
+    return candidates
+      .filter(({ about }) => (about > below / CONTENDER && about < CONTENDER) || (about < above * CONTENDER && about > 1 / CONTENDER))
+      .map(({ a, b, i }) => this.root(a, b, i, 'axis'))
   }
 
   /** Illinois' variant of regula falsi in ψ, halved when it stalls. */
@@ -194,7 +227,7 @@ class CrossingFinder {
       const point = this.near(psi, left, right)
       const f = value(point.re, point.im)
       best = point
-      if (Math.abs(f) < 1e-13) break
+      if (Math.abs(f) < 1e-11) break
       if (f > 0 === fr > 0) {
         right = point
         fr = f
@@ -231,7 +264,7 @@ class CrossingFinder {
 
 const GOLDEN = 0.5 * (Math.sqrt(5) - 1)
 
-/** Maximum of f on [low, high] by golden section to 1e-7 of the interval: the peak's value is then exact to rounding. */
+/** Maximum of f on [low, high] by golden section to 2e-4 of the interval; the value errs by the square of that. */
 function goldenPeak(f: (psi: number) => number, low: number, high: number): { readonly psi: number; readonly value: number } {
   let a = low
   let b = high
@@ -239,7 +272,7 @@ function goldenPeak(f: (psi: number) => number, low: number, high: number): { re
   let y = a + GOLDEN * (b - a)
   let fx = f(x)
   let fy = f(y)
-  for (let step = 0; step < 34; step++) {
+  for (let step = 0; step < 18; step++) {
     if (fx > fy) {
       b = y
       y = x
@@ -257,59 +290,56 @@ function goldenPeak(f: (psi: number) => number, low: number, high: number): { re
   return fx > fy ? { psi: x, value: fx } : { psi: y, value: fy }
 }
 
-/** Candidates within this factor of the best node's value are refined. */
-const NEAR_PEAK = 0.8
+/** A locus of settled nodes leaves its chord by at most this share of its modulus. */
+const CHORD_ERROR = 0.06
 
-interface Peak {
-  readonly psi: number
-  readonly value: number
-  readonly hz: number
+/** Distance of −1 from the chord of locus i between two nodes. */
+function toMinusOne(a: LocusNode, b: LocusNode, i: number): number {
+  const ar = a.re[i] + 1
+  const dr = b.re[i] - a.re[i]
+  const di = b.im[i] - a.im[i]
+  const length = dr * dr + di * di
+  const t = length === 0 ? 0 : Math.min(1, Math.max(0, -(ar * dr + a.im[i] * di) / length))
+  return Math.hypot(ar + t * dr, a.im[i] + t * di)
 }
 
 function sensitivityPeak(source: MarginSource, nodes: readonly LocusNode[], toHz: number): Peak {
   const { q } = source
-  const inverse = (node: LocusNode, i: number): number => 1 / Math.hypot(1 + node.re[i], node.im[i])
-  let best = 0
-  let bestAt: Crossing = { psi: nodes[0].psi, re: nodes[0].re[0], im: nodes[0].im[0] }
-  for (const node of nodes) {
-    for (let i = 0; i < q; i++) {
-      const value = inverse(node, i)
-      if (value > best) {
-        best = value
-        bestAt = { psi: node.psi, re: node.re[i], im: node.im[i] }
-      }
-    }
-  }
   const re = new Float64Array(q)
   const im = new Float64Array(q)
-  const floor = best * NEAR_PEAK
-  for (let k = 0; k < nodes.length; k++) {
+  const most = (psi: number): number => {
+    source.evaluate(psi, re, im)
+    let least = Infinity
+    for (let c = 0; c < q; c++) least = Math.min(least, (1 + re[c]) ** 2 + im[c] ** 2)
+    return 1 / Math.sqrt(least)
+  }
+  let best = { psi: nodes[0].psi, value: 0 }
+  for (const node of nodes) {
     for (let i = 0; i < q; i++) {
-      const here = inverse(nodes[k], i)
-      if (here < floor) continue
-      if (k > 0 && inverse(nodes[k - 1], i) > here) continue
-      if (k < nodes.length - 1 && inverse(nodes[k + 1], i) > here) continue
-      const low = nodes[Math.max(0, k - 1)].psi
-      const high = nodes[Math.min(nodes.length - 1, k + 1)].psi
-      const peak = goldenPeak((psi) => {
-        source.evaluate(psi, re, im)
-        let most = 0
-        for (let c = 0; c < q; c++) {
-          const value = 1 / Math.hypot(1 + re[c], im[c])
-          if (value > most) most = value
-        }
-        return most
-      }, low, high)
-      if (peak.value > best) {
-        best = peak.value
-        source.evaluate(peak.psi, re, im)
-        let at = 0
-        for (let c = 1; c < q; c++) if (Math.hypot(1 + re[c], im[c]) < Math.hypot(1 + re[at], im[at])) at = c
-        bestAt = { psi: peak.psi, re: re[at], im: im[at] }
-      }
+      const value = 1 / Math.hypot(1 + node.re[i], node.im[i])
+      if (value > best.value) best = { psi: node.psi, value }
     }
   }
-  return { psi: bestAt.psi, value: best, hz: Math.abs(source.strongest(bestAt.psi, bestAt.re, bestAt.im)) * toHz }
+  // Intervals by the least distance from −1 that their chords allow; those that cannot beat the best are left.
+  const intervals: { readonly k: number; readonly allowed: number }[] = []
+  for (let k = 1; k < nodes.length; k++) {
+    let allowed = Infinity
+    for (let i = 0; i < q; i++) {
+      const size = Math.max(Math.hypot(nodes[k].re[i], nodes[k].im[i]), Math.hypot(nodes[k - 1].re[i], nodes[k - 1].im[i]))
+      allowed = Math.min(allowed, toMinusOne(nodes[k - 1], nodes[k], i) - CHORD_ERROR * size)
+    }
+    intervals.push({ k, allowed })
+  }
+  intervals.sort((a, b) => a.allowed - b.allowed)
+  for (const { k, allowed } of intervals) {
+    if (allowed * best.value >= 1) break
+    const peak = goldenPeak(most, nodes[k - 1].psi, nodes[k].psi)
+    if (peak.value > best.value) best = peak
+  }
+  most(best.psi)
+  let at = 0
+  for (let c = 1; c < q; c++) if (Math.hypot(1 + re[c], im[c]) < Math.hypot(1 + re[at], im[at])) at = c
+  return { ...best, hz: Math.abs(source.strongest(best.psi, re[at], im[at])) * toHz }
 }
 
 /** The norm peaks beside M_s, and is at least as high; from there and from nodes whose bound lets them be higher. */
@@ -318,7 +348,8 @@ function liftedPeak(source: MarginSource, nodes: readonly LocusNode[], M_s: Peak
   const norm = (psi: number): number => source.sensitivityNorm(psi, 0)
   let best = climb(norm, M_s.psi, M_s.psi / (10 * M_s.value))
   const floor = best.value * 0.95
-  const values = nodes.map((node) => source.sensitivityNorm(node.psi, floor))
+  // Where every eigenvalue is tiny or huge, S is near a projection and its norm near 1.
+  const values = nodes.map((node) => (nearOne(node) ? source.sensitivityNorm(node.psi, floor) : 0))
   for (let k = 0; k < nodes.length; k++) {
     if (values[k] < floor) continue
     if (k > 0 && values[k - 1] > values[k]) continue
@@ -330,6 +361,14 @@ function liftedPeak(source: MarginSource, nodes: readonly LocusNode[], M_s: Peak
     if (peak.value > best.value) best = peak
   }
   return { ...best, hz: (best.psi * toHz) / source.q }
+}
+
+function nearOne(node: LocusNode): boolean {
+  for (let i = 0; i < node.re.length; i++) {
+    const size = node.re[i] ** 2 + node.im[i] ** 2
+    if (size > 1e-3 && size < 1e3) return true
+  }
+  return false
 }
 
 /** Peak of f near ψ: steps grow on both sides until f falls, then golden section. */

@@ -1,0 +1,424 @@
+import { complexMatrix, solveComplex, type ComplexMatrix } from './complex-matrix.ts'
+import { balance } from './eigenvalues.ts'
+import type { LiftedPlant } from './lifted-plant.ts'
+import type { Firmware } from './model.ts'
+
+/**
+ * The characteristic polynomial det(λI − Φ) of the outer closures, built without Φ.
+ *
+ * With λ given, the window's W old samples are the same q samples of this hyperperiod divided by powers of λ, and the integrators are
+ * geometric sums; what is left is a q × q determinant over the lifted plant. It is evaluated on the unit circle, half-way
+ * between the roots of unity (the integrators' pole at 1 is no node), and its coefficients follow by a discrete Fourier sum.
+ * The polynomial is monic of known degree, so its leading coefficient tells how exact the rest is.
+ *
+ * Cost: (W + n)/2 determinants of q × q, against 10·(W + n)³ for all eigenvalues of Φ.
+ */
+export class Characteristic {
+  readonly degree: number
+  /** Coefficients c[k] of λ^k after `expand`. */
+  readonly c: Float64Array
+  private readonly q: number
+  private readonly n: number
+  private readonly W: number
+  private readonly position: boolean
+  private readonly integrators: number
+  private readonly nodes: number
+  // Nodes in the upper half plane and their powers.
+  private readonly nodeRe: Float64Array
+  private readonly nodeIm: Float64Array
+  private readonly fourier: Float64Array
+  private readonly valueRe: Float64Array
+  private readonly valueIm: Float64Array
+  // Numerators N_k of χ(λ)·P(λ) = Σ N_k·λ^k, χ, and both at the nodes.
+  private readonly numerators: Float64Array
+  private readonly chi: Float64Array
+  private readonly nodeN: Float64Array
+  private readonly nodeChi: Float64Array
+  // Where sample k − W falls in the hyperperiod (1…q), and how many hyperperiods ago.
+  private readonly source: Int32Array
+  private readonly age: Int32Array
+  private readonly ages: Int32Array
+  private readonly oldestAge: number
+  private readonly agePower: Float64Array
+  private readonly matrix: ComplexMatrix
+  private readonly column: Float64Array
+  private readonly det = { re: 0, im: 0 }
+  private readonly scratch: Float64Array
+  private readonly A: Float64Array
+  private readonly B: Float64Array
+  private readonly C: Float64Array
+  private readonly scale: Float64Array
+  private readonly R: Float64Array
+  private readonly AR: Float64Array
+  private readonly V: Float64Array
+  private readonly AV: Float64Array
+  private readonly resolvent: ComplexMatrix
+  private readonly drive: ComplexMatrix
+  private readonly lambda = { re: 0, im: 0 }
+  private lifted: LiftedPlant | null = null
+  private gains: Firmware | null = null
+  private T_o = 0
+
+  constructor(q: number, n: number, W: number, position: boolean, integrators: number) {
+    this.q = q
+    this.n = n
+    this.W = W
+    this.position = position
+    this.integrators = integrators
+    this.degree = n + W + integrators
+    this.c = new Float64Array(this.degree + 1)
+    // An even number of nodes, at least degree + 1, none of them real.
+    this.nodes = 2 * Math.ceil((this.degree + 1) / 2)
+    const half = this.nodes / 2
+    this.nodeRe = Float64Array.from({ length: half }, (_, j) => Math.cos((Math.PI * (2 * j + 1)) / this.nodes))
+    this.nodeIm = Float64Array.from({ length: half }, (_, j) => Math.sin((Math.PI * (2 * j + 1)) / this.nodes))
+    this.fourier = new Float64Array(2 * half * (this.degree + 1))
+    for (let j = 0; j < half; j++) {
+      for (let k = 0; k <= this.degree; k++) {
+        const angle = (Math.PI * (((2 * j + 1) * k) % (2 * this.nodes))) / this.nodes
+        const at = 2 * (k * half + j)
+        this.fourier[at] = (2 / this.nodes) * Math.cos(angle)
+        this.fourier[at + 1] = (2 / this.nodes) * Math.sin(angle)
+      }
+    }
+    this.valueRe = new Float64Array(half)
+    this.valueIm = new Float64Array(half)
+    this.numerators = new Float64Array((n + 1) * q * q)
+    this.chi = new Float64Array(n + 1)
+    this.nodeN = new Float64Array(2 * half * q * q)
+    this.nodeChi = new Float64Array(2 * half)
+    this.source = new Int32Array(q + 1)
+    this.age = new Int32Array(q + 1)
+    for (let k = 1; k <= q; k++) {
+      // Shift k − W by whole hyperperiods into 1…q.
+      const age = Math.max(0, Math.ceil((1 - (k - W)) / q))
+      this.age[k] = age
+      this.source[k] = k - W + age * q
+    }
+    this.ages = Int32Array.from(new Set(this.age.subarray(1)))
+    this.oldestAge = Math.max(...this.ages)
+    this.agePower = new Float64Array(2 * (this.oldestAge + 1))
+    this.matrix = complexMatrix(q)
+    this.column = new Float64Array(2 * (q + 1))
+    this.scratch = new Float64Array(2 * q * q)
+    this.A = new Float64Array(n * n)
+    this.B = new Float64Array(n * q)
+    this.C = new Float64Array(q * n)
+    this.scale = new Float64Array(n)
+    this.R = new Float64Array(n * n)
+    this.AR = new Float64Array(n * n)
+    this.V = new Float64Array(n * q)
+    this.AV = new Float64Array(n * q)
+    this.resolvent = complexMatrix(n)
+    this.drive = { n, re: new Float64Array(n * q), im: new Float64Array(n * q) }
+  }
+
+  /** Takes a plant: numerators by Faddeev and Leverrier's recursion on the balanced matrix, then their values at the nodes. */
+  setPlant(lifted: LiftedPlant): void {
+    const { n, q, A, B, C, R, AR, V, AV, chi, numerators, scale } = this
+    this.lifted = lifted
+    A.set(lifted.A)
+    balance(A, n, scale)
+    for (let i = 0; i < n; i++) {
+      for (let j = 0; j < q; j++) {
+        B[i * q + j] = lifted.B[i * q + j] / scale[i]
+        C[j * n + i] = lifted.C[j * n + i] * scale[i]
+      }
+    }
+    R.fill(0)
+    for (let i = 0; i < n; i++) R[i * n + i] = 1
+    V.set(B)
+    chi[n] = 1
+    this.addNumerator(n, null)
+    for (let k = n - 1; k >= 0; k--) {
+      let trace = 0
+      for (let i = 0; i < n; i++) {
+        for (let j = 0; j < n; j++) {
+          let sum = 0
+          for (let l = 0; l < n; l++) sum += A[i * n + l] * R[l * n + j]
+          AR[i * n + j] = sum
+        }
+        trace += AR[i * n + i]
+      }
+      const c = -trace / (n - k)
+      chi[k] = c
+      this.addNumerator(k, V)
+      if (k === 0) break
+      for (let i = 0; i < n; i++) {
+        for (let j = 0; j < n; j++) R[i * n + j] = AR[i * n + j]
+        R[i * n + i] += c
+      }
+      for (let i = 0; i < n; i++) {
+        for (let j = 0; j < q; j++) {
+          let sum = c * B[i * q + j]
+          for (let l = 0; l < n; l++) sum += A[i * n + l] * V[l * q + j]
+          AV[i * q + j] = sum
+        }
+      }
+      V.set(AV)
+    }
+    const size = q * q
+    const half = this.nodes / 2
+    for (let j = 0; j < half; j++) {
+      const lr = this.nodeRe[j]
+      const li = this.nodeIm[j]
+      const at = 2 * j * size
+      for (let e = 0; e < size; e++) {
+        // Horner in λ with real coefficients.
+        let re = numerators[n * size + e]
+        let im = 0
+        for (let k = n - 1; k >= 0; k--) {
+          const t = re * lr - im * li + numerators[k * size + e]
+          im = re * li + im * lr
+          re = t
+        }
+        this.nodeN[at + 2 * e] = re
+        this.nodeN[at + 2 * e + 1] = im
+      }
+      let re = 1
+      let im = 0
+      for (let k = n - 1; k >= 0; k--) {
+        const t = re * lr - im * li + chi[k]
+        im = re * li + im * lr
+        re = t
+      }
+      this.nodeChi[2 * j] = re
+      this.nodeChi[2 * j + 1] = im
+    }
+  }
+
+  /** N_k = C·V + χ_k·D. */
+  private addNumerator(k: number, V: Float64Array | null): void {
+    const { q, n, C, chi, numerators } = this
+    const { D } = this.lifted as LiftedPlant
+    const at = k * q * q
+    for (let a = 0; a < q; a++) {
+      for (let b = 0; b < q; b++) {
+        let sum = chi[k] * D[a * q + b]
+        if (V) for (let i = 0; i < n; i++) sum += C[a * n + i] * V[i * q + b]
+        numerators[at + a * q + b] = sum
+      }
+    }
+  }
+
+  setLaws(gains: Firmware, T_o: number): void {
+    this.gains = gains
+    this.T_o = T_o
+  }
+
+  /**
+   * Computes the coefficients.
+   *
+   * @returns  error of the coefficients relative to the largest, as the leading one shows it
+   */
+  expand(): number {
+    const { degree, c, fourier, valueRe, valueIm, q } = this
+    const half = this.nodes / 2
+    for (let j = 0; j < half; j++) {
+      this.lambda.re = this.nodeRe[j]
+      this.lambda.im = this.nodeIm[j]
+      this.determinant(this.nodeN, 2 * j * q * q, this.nodeChi[2 * j], this.nodeChi[2 * j + 1])
+      valueRe[j] = this.det.re
+      valueIm[j] = this.det.im
+    }
+    let largest = 0
+    for (let k = 0; k <= degree; k++) {
+      let sum = 0
+      const row = 2 * k * half
+      for (let j = 0; j < half; j++) sum += valueRe[j] * fourier[row + 2 * j] + valueIm[j] * fourier[row + 2 * j + 1]
+      c[k] = sum
+      const s = Math.abs(sum)
+      if (s > largest) largest = s
+    }
+    const off = Math.abs(c[degree] - 1) / largest
+    c[degree] = 1
+    return Math.max(off, 1e-15)
+  }
+
+  /**
+   * det(λI − Φ) at one λ without expanding: as exact as solving with λI − A is.
+   *
+   * @param out  receives the value
+   */
+  valueAt(re: number, im: number, out: { re: number; im: number }): void {
+    const { q, n, resolvent, drive, scratch } = this
+    const { A, B, C, D } = this.lifted as LiftedPlant
+    for (let i = 0; i < n; i++) {
+      for (let j = 0; j < n; j++) {
+        resolvent.re[i * n + j] = -A[i * n + j]
+        resolvent.im[i * n + j] = 0
+      }
+      resolvent.re[i * n + i] += re
+      resolvent.im[i * n + i] += im
+    }
+    drive.re.set(B)
+    drive.im.fill(0)
+    solveComplex(resolvent, drive, q, this.det)
+    const cr = this.det.re
+    const ci = this.det.im
+    for (let a = 0; a < q; a++) {
+      for (let b = 0; b < q; b++) {
+        let sr = D[a * q + b]
+        let si = 0
+        for (let i = 0; i < n; i++) {
+          sr += C[a * n + i] * drive.re[i * q + b]
+          si += C[a * n + i] * drive.im[i * q + b]
+        }
+        const at = 2 * (a * q + b)
+        scratch[at] = sr * cr - si * ci
+        scratch[at + 1] = sr * ci + si * cr
+      }
+    }
+    this.lambda.re = re
+    this.lambda.im = im
+    this.determinant(scratch, 0, cr, ci)
+    out.re = this.det.re
+    out.im = this.det.im
+  }
+
+  /**
+   * λ^W·(λ − 1)^integrators·det(χI + K·N)/χ^(q−1) into `det`: K are the laws and the window, N = χ·P.
+   *
+   * Row k (1…q) of K·N is i_ref's law at tick k; tick q is tick 0 of the next hyperperiod, hence the division by λ.
+   */
+  private determinant(N: Float64Array, from: number, chiRe: number, chiIm: number): void {
+    const { q, W, matrix, column, source, age, agePower, position, T_o } = this
+    const { K_pp, K_ip, K_pv, K_iv } = this.gains as Firmware
+    const lr = this.lambda.re
+    const li = this.lambda.im
+    const size = 1 / (lr * lr + li * li)
+    const ir = lr * size
+    const ii = -li * size
+    // 1/(λ − 1)
+    const mr = lr - 1
+    const msize = 1 / (mr * mr + li * li)
+    const gr = mr * msize
+    const gi = -li * msize
+    agePower[0] = 1
+    agePower[1] = 0
+    for (let a = 1; a <= this.oldestAge; a++) {
+      const pr = agePower[2 * a - 2]
+      const pi = agePower[2 * a - 1]
+      agePower[2 * a] = pr * ir - pi * ii
+      agePower[2 * a + 1] = pr * ii + pi * ir
+    }
+    const toSpeed = 1 / (W * T_o)
+    const kp = position ? K_pp : 0
+    const ki = position ? K_ip * T_o : 0
+    const kv = K_iv * T_o
+    for (let j = 0; j < q; j++) {
+      // θ_k for k = 1…q: cumulative increments from θ_0 = (their sum)/(λ − 1).
+      let sr = 0
+      let si = 0
+      for (let k = 0; k < q; k++) {
+        sr += N[from + 2 * (k * q + j)]
+        si += N[from + 2 * (k * q + j) + 1]
+        column[2 * k + 2] = sr
+        column[2 * k + 3] = si
+      }
+      const tr = sr * gr - si * gi
+      const ti = sr * gi + si * gr
+      for (let k = 1; k <= q; k++) {
+        column[2 * k] += tr
+        column[2 * k + 1] += ti
+      }
+      // Position integrator, from its own geometric sum; then the velocity law likewise.
+      let pr = 0
+      let pi = 0
+      if (ki !== 0) {
+        let ar = 0
+        let ai = 0
+        for (let k = 1; k <= q; k++) {
+          ar += column[2 * k]
+          ai += column[2 * k + 1]
+        }
+        pr = ki * (ar * gr - ai * gi)
+        pi = ki * (ar * gi + ai * gr)
+      }
+      let xr = 0
+      let xi = 0
+      for (let k = 1; k <= q; k++) {
+        const th = column[2 * k]
+        const ti2 = column[2 * k + 1]
+        const o = source[k]
+        const a = 2 * age[k]
+        const wr = column[2 * o] * agePower[a] - column[2 * o + 1] * agePower[a + 1]
+        const wi = column[2 * o] * agePower[a + 1] + column[2 * o + 1] * agePower[a]
+        let er = (th - wr) * toSpeed + kp * th
+        let ei = (ti2 - wi) * toSpeed + kp * ti2
+        if (ki !== 0) {
+          pr += ki * th
+          pi += ki * ti2
+          er += pr
+          ei += pi
+        }
+        xr += er
+        xi += ei
+        const at = (k === q ? 0 : k) * q + j
+        matrix.re[at] = K_pv * er + kv * xr
+        matrix.im[at] = K_pv * ei + kv * xi
+      }
+      if (kv !== 0) {
+        const vr = kv * (xr * gr - xi * gi)
+        const vi = kv * (xr * gi + xi * gr)
+        for (let k = 0; k < q; k++) {
+          matrix.re[k * q + j] += vr
+          matrix.im[k * q + j] += vi
+        }
+      }
+    }
+    for (let j = 0; j < q; j++) {
+      const re = matrix.re[j]
+      const im = matrix.im[j]
+      matrix.re[j] = re * ir - im * ii
+      matrix.im[j] = re * ii + im * ir
+    }
+    for (let k = 0; k < q; k++) {
+      matrix.re[k * q + k] += chiRe
+      matrix.im[k * q + k] += chiIm
+    }
+    solveComplex(matrix, null, 0, this.det)
+    // Factors that do not depend on the joint's values: λ^W and (λ − 1) for each integrator.
+    let dr = this.det.re
+    let di = this.det.im
+    const wholeRe = this.powerOf(lr, li, W)
+    const wr = wholeRe.re
+    const wi = wholeRe.im
+    let t = dr * wr - di * wi
+    di = dr * wi + di * wr
+    dr = t
+    for (let k = 0; k < this.integrators; k++) {
+      t = dr * mr - di * li
+      di = dr * li + di * mr
+      dr = t
+    }
+    const csize = 1 / (chiRe * chiRe + chiIm * chiIm)
+    for (let k = 1; k < q; k++) {
+      t = (dr * chiRe + di * chiIm) * csize
+      di = (di * chiRe - dr * chiIm) * csize
+      dr = t
+    }
+    this.det.re = dr
+    this.det.im = di
+  }
+
+  private readonly powered = { re: 1, im: 0 }
+  private powerOf(re: number, im: number, exponent: number): { re: number; im: number } {
+    const out = this.powered
+    out.re = 1
+    out.im = 0
+    let br = re
+    let bi = im
+    for (let left = exponent; left > 0; left >>= 1) {
+      if (left & 1) {
+        const t = out.re * br - out.im * bi
+        out.im = out.re * bi + out.im * br
+        out.re = t
+      }
+      const t = br * br - bi * bi
+      bi = 2 * br * bi
+      br = t
+    }
+    return out
+  }
+}
