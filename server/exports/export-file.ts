@@ -2,7 +2,7 @@ import { encodeImage, type EncodedImage } from '../../shared/registers/encode-im
 import type { ParameterSchema, ParameterValues } from '../../shared/registers/parameter-schema.ts'
 import type { ValueProblem } from '../../shared/registers/value-check.ts'
 import { writeCHeader } from './c-header.ts'
-import { EXPORTER_VERSION, fileStem, releaseNumber, titleLine, type ExportContext } from './export-context.ts'
+import { BENCH_MARK, EXPORTER_VERSION, fileStem, releaseNumber, type ExportContext } from './export-context.ts'
 import { imageRuns } from './image-runs.ts'
 import { writeIntelHex } from './intel-hex.ts'
 import { writeRecord } from './record.ts'
@@ -44,7 +44,10 @@ const FORMS: Readonly<Record<ExportFormat, Form>> = {
 }
 
 /** Header of the S-record: empty for a release (its bytes are named by its hash), the mark for anything else. */
-const headerText = (context: ExportContext): string => (context.status.kind === 'release' ? '' : titleLine(context).slice(-40))
+function headerText({ status }: ExportContext): string {
+  if (status.kind === 'release') return ''
+  return status.kind === 'bench' ? `${BENCH_MARK}, ${status.board}` : 'unreleased'
+}
 
 /** One file from an image that is already encoded. The same input gives the same bytes, always. */
 export function writeExport(format: ExportFormat, schema: ParameterSchema, encoded: EncodedImage, context: ExportContext): ExportedFile {

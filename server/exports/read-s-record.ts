@@ -39,13 +39,13 @@ export function readSRecordLine(line: string, number: number): SRecord | FileFau
 const pair = (byte: number): string => byte.toString(16).toUpperCase().padStart(2, '0')
 
 /**
- * A whole S-record file: S0 only first, one kind of data record, addresses that rise, no byte twice, a count that
- * agrees where there is one, the end record that belongs to the data, and nothing after it.
+ * A whole S-record file: S0 only first, addresses that rise, no byte twice, a count that agrees, nothing after the end
+ * record. One of count and end record must be there. S1, S2 and S3 may follow each other, and a record may run past
+ * its kind's last start address, since srec_cat writes both.
  */
 export function readSRecord(text: string): FileReading {
   const runs: { address: number; bytes: Uint8Array; line: number }[] = []
   let last: { address: number; length: number; line: number } | null = null
-  let kind: number | null = null
   let count = 0
   let counted = false
   const lines = linesOf(text)
@@ -58,11 +58,9 @@ export function readSRecord(text: string): FileReading {
       if (number > 1) return fault(`Line ${number} is a header (S0), which may only come first.`, { line: number, column: 1 })
     } else if (type <= 3) {
       if (counted) return fault(`Line ${number} has data after the count of line ${number - 1}.`, { line: number, column: 1 })
-      if (kind !== null && kind !== type) return fault(`Line ${number} is S${type} among S${kind} records.`, { line: number, column: 1 })
       const wrong = faultOfOrder(last, address, number)
       if (wrong) return wrong
-      if (address + data.length > 256 ** WIDTHS[type]) return fault(`Line ${number} runs over the last address of an S${type} record.`, { line: number, address })
-      kind = type
+      if (address + data.length > 2 ** 32) return fault(`Line ${number} runs over the last address, 0xFFFFFFFF.`, { line: number, address })
       count += 1
       if (data.length === 0) continue
       last = { address, length: data.length, line: number }
@@ -72,10 +70,11 @@ export function readSRecord(text: string): FileReading {
       if (address !== count) return fault(`Line ${number} counts ${address} data records; there are ${count}.`, { line: number, column: 5 })
       counted = true
     } else {
-      if (kind !== null && type !== 10 - kind) return fault(`Line ${number} ends with S${type}; S${kind} records end with S${10 - kind}.`, { line: number, column: 1 })
       if (number < lines.length) return fault(`Line ${number + 1} follows the end record.`, { line: number + 1, column: 1 })
       return { kind: 'bytes', runs }
     }
   }
-  return fault('The file has no end record (S9, S8 or S7); it may be cut off.', { line: lines.length + 1 })
+  // srec_cat writes no end record when it knows no start address; the count proves the file whole as well
+  if (counted) return { kind: 'bytes', runs }
+  return fault('The file has neither an end record (S9, S8 or S7) nor a count (S5 or S6); it may be cut off.', { line: lines.length + 1 })
 }
