@@ -1,5 +1,8 @@
-import { token } from '../charts/tokens.ts'
+import { token as asWritten } from '../charts/tokens.ts'
 import { monaco } from './monaco-setup.ts'
+
+/** Six digits: a build may shorten #FFFFFF to #fff, which the editor refuses. */
+const token = (name: string) => asWritten(name).replace(/^#(.)(.)(.)$/, '#$1$1$2$2$3$3')
 
 /** The editor in the page's colours: keys in ink, text in slate, numbers in brass, comments quiet. */
 export function showTheme(key: string): string {

@@ -100,7 +100,7 @@ function Legend({ image }: { image: ParameterSchema['image'] }) {
           {image.checksum.algorithm} over <span className="num">{formatHex(image.checksum.from)}</span> to <span className="num">{formatHex(image.checksum.to)}</span>
         </span>
       )}
-      <span>{image.byteOrder} byte first, filled with <span className="num">{formatHex(image.fill)}</span></span>
+      <span>{image.byteOrder === 'little' ? 'low' : 'high'} byte first, filled with <span className="num">{formatHex(image.fill)}</span></span>
     </p>
   )
 }
