@@ -1,6 +1,7 @@
 /** What the model would have done with a log's own set-point, beside what was measured. */
 import { NumericError } from '../errors.ts'
 import type { JointModel } from '../model.ts'
+import { encoderCount } from '../plant.ts'
 import { simulateEveryTick } from '../simulation/simulate.ts'
 import { checkLog } from './bench-log.ts'
 import type { BenchLog } from './bench-log.ts'
@@ -51,7 +52,7 @@ export function predictLog(model: JointModel, log: BenchLog, options: PredictOpt
     profile: 'samples',
     times,
     values: set_point,
-    theta_0: position?.[0] ?? 0,
+    theta_0: startAngle(position?.[0] ?? 0, encoderCount(model.plant)),
     t_end: times[times.length - 1] + 2 / model.firmware.f_c,
     encoder_quantised: true,
     current_quantised: true,
@@ -85,6 +86,12 @@ export function predictLog(model: JointModel, log: BenchLog, options: PredictOpt
     repairs: checked.repairs,
     startsMoving: Math.abs(speed?.[0] ?? 0) > 0.05 * spanOfSpeed || Math.abs(current[0]) > 0.2 * spanOf(current),
   }
+}
+
+/** A counted position stands for anything up to the next count: the middle is the best guess, and no edge for rounding to fall off. */
+function startAngle(position: number, count: number): number {
+  const counts = position / count
+  return Math.abs(counts - Math.round(counts)) < 1e-6 ? position + count / 2 : position
 }
 
 /** Mean of the held samples over one row from each tick on, rows being `ticks` long. */
