@@ -86,7 +86,7 @@ export function findRuleProblems(schema: ParameterSchema, values: ParameterValue
   }
   const { allOf, ...rest } = root
   if (Array.isArray(allOf)) allOf.forEach((node, k) => judge(node, `/allOf/${k}`))
-  if (Object.keys(rest).length > 0) judge(rest, Object.keys(rest).map((key) => `/${key}`).join(', '))
+  judge(rest, Object.keys(rest).filter((key) => key !== '$defs').map((key) => `/${key}`).join(', '))
   return problems
 }
 
