@@ -35,7 +35,6 @@ export function Component() {
     <>
       <ChangeHead
         change={change}
-        middle={query.data && <Summary check={query.data} />}
         actions={
           <Button className="no-print ml-auto" onClick={() => window.print()}>
             Print
@@ -43,6 +42,7 @@ export function Component() {
         }
       />
       <div className="mt-4">
+        {query.data && <Summary check={query.data} />}
         <Region query={query} what="the check" lines={8} isEmpty={(c) => c.joints.length === 0} empty={<EmptyState title="No joint to check yet">The check begins with the first joint of the change.</EmptyState>}>
           {(check) => <Report check={check} change={change} stale={query.isPlaceholderData} />}
         </Region>
@@ -53,7 +53,7 @@ export function Component() {
 
 function Summary({ check }: { check: CheckView }) {
   return (
-    <div className="flex flex-wrap items-start gap-x-8 gap-y-2">
+    <div className="mb-6 flex flex-wrap items-start gap-x-10 gap-y-2">
       {check.verdict ? <VerdictMark verdict={check.verdict} size={34} className="text-28 font-medium max-sm:text-20" /> : <span className="text-20 text-ink-2">no verdict</span>}
       <KeyValueList
         entries={[

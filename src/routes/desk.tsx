@@ -1,11 +1,14 @@
-import { useQuery } from '@tanstack/react-query'
+import { useInfiniteQuery, useQuery } from '@tanstack/react-query'
 import { paths } from '../app/paths.ts'
 import type { ChangeSummary } from '../../shared/contract/changes.ts'
+import { subjectWords } from '../components/layout/acts.tsx'
 import { Region } from '../components/layout/region.tsx'
 import { PageHead } from '../components/layout/page-head.tsx'
 import { EmptyState } from '../components/ui/empty-state.tsx'
+import { Hash } from '../components/ui/hash.tsx'
 import { LinkButton } from '../components/ui/link-button.tsx'
 import { SectionHeading } from '../components/ui/section-heading.tsx'
+import { SmallRail } from '../components/ui/small-rail.tsx'
 import { TextLink } from '../components/ui/text-link.tsx'
 import { Time } from '../components/ui/time.tsx'
 import { ChangeTable } from '../features/changes/components/change-table.tsx'
@@ -13,6 +16,7 @@ import { WaitingChange } from '../features/changes/components/waiting-change.tsx
 import { changesQuery } from '../features/changes/queries.ts'
 import { waitingFor } from '../features/changes/waiting-for.ts'
 import { CheckBrief } from '../features/checks/components/check-brief.tsx'
+import { ledgerQuery } from '../features/ledger/queries.ts'
 import { count } from '../lib/format.ts'
 import { holds, useMe } from '../lib/me.ts'
 import { queryClient } from '../lib/query-client.ts'
@@ -49,10 +53,17 @@ export function Component() {
       <Region query={changes} what="what waits for you" lines={6} isEmpty={(all) => all.length === 0} empty={<EmptyState title="No change yet" action={<LinkButton to={paths.machines()}>To the machines</LinkButton>}>The first change gives a machine its buses, families and joints.</EmptyState>}>
         {() => (
           <>
-            <Group title="To read and sign" changes={waiting.toSign} act="Read and sign" now={now} />
-            <Group title="To release" changes={waiting.toRelease} act="Read and release" now={now} />
-            <Group title="Returned to you" changes={waiting.returned} act="Take it up again" now={now} toDraft />
-            <Group title="Your drafts" changes={waiting.drafts} act="Go on" now={now} toDraft />
+            <div className="grid gap-x-12 gap-y-8 xl:grid-cols-[minmax(0,1fr)_400px]">
+              <div className="min-w-0">
+                <Group title="To read and sign" changes={waiting.toSign} act="Read and sign" now={now} />
+                <Group title="To release" changes={waiting.toRelease} act="Read and release" now={now} />
+                <Group title="Returned to you" changes={waiting.returned} act="Take it up again" now={now} toDraft />
+                <Group title="Your drafts" changes={waiting.drafts} act="Go on" now={now} toDraft />
+                {total + waiting.drafts.length === 0 && <EmptyState title="Nothing waits for you">Changes land here when they are submitted for your review, approved for your release, or returned to you.</EmptyState>}
+                {waiting.away.length > 0 && <Away changes={waiting.away} />}
+              </div>
+              <LastActs />
+            </div>
             <section className="mt-8">
               <SectionHeading aux={`${open.length} of ${count(changes.data?.length ?? 0, 'change')}`} actions={<TextLink to={paths.changes()}>all changes</TextLink>}>
                 Not yet released
@@ -80,6 +91,56 @@ function Group({ title, changes, act, now, toDraft = false }: { title: string; c
           </WaitingChange>
         ))}
       </ul>
+    </section>
+  )
+}
+
+/** Own changes that others read now. */
+function Away({ changes }: { changes: readonly ChangeSummary[] }) {
+  return (
+    <section className="mb-6">
+      <SectionHeading aux="with others">Yours, on their way</SectionHeading>
+      <ul>
+        {changes.map((c) => (
+          <li key={c.key} className="flex flex-wrap items-center gap-x-4 border-b border-hairline py-2">
+            <span className="num w-[3ch] text-ink-2">{c.number}</span>
+            <TextLink to={paths.changeReview(c.key)} className="!border-0 !text-ink">
+              {c.title}
+            </TextLink>
+            <span className="text-13 text-ink-2">{c.machineName}</span>
+            <span className="ml-auto">
+              <SmallRail state={c.life} />
+            </span>
+          </li>
+        ))}
+      </ul>
+    </section>
+  )
+}
+
+/** The last acts of the workplace, as the ledger has them. */
+function LastActs() {
+  const ledger = useInfiniteQuery(ledgerQuery({ act: '', machine: '', person: '' }))
+  return (
+    <section aria-label="last acts">
+      <SectionHeading actions={<TextLink to={paths.ledger()}>ledger</TextLink>}>Last acts</SectionHeading>
+      <Region query={ledger} what="the last acts" lines={5}>
+        {(data) => (
+          <ul>
+            {data.pages[0].entries.slice(0, 8).map((e) => (
+              <li key={e.sequence} className="grid grid-cols-[12ch_minmax(0,1fr)_auto] items-baseline gap-x-3 border-b border-hairline py-[6px] text-13">
+                <span className="text-ink-2">
+                  <Time at={e.at} />
+                </span>
+                <span>
+                  {e.person} <span className="text-ink-2">{e.act}{subjectWords(e) && `, ${subjectWords(e)}`}</span>
+                </span>
+                <Hash hash={e.hash} bytes={4} className="!text-12" />
+              </li>
+            ))}
+          </ul>
+        )}
+      </Region>
     </section>
   )
 }

@@ -22,16 +22,23 @@ export interface ValueAt {
   own: Value | undefined
   /** effective value of the same place in the base release; undefined when the place is new */
   released: Value | undefined
+  /** what stood at the pointer itself in the base release */
+  releasedOwn: Value | undefined
+  /** what would count without a value of its own; null when there is neither value nor default */
+  inherited: { value: Value; origin: Origin } | null
   changed: boolean
   /** the value gives way to what is inherited, or the other way round, with the same effect */
   originChanged: boolean
 }
 
-export const jointsOf = (set: MachineSet, family: string): string[] =>
-  Object.entries(set.joints)
+/** Joints of a family by bus, in the order the set names them, and address. */
+export function jointsOf(set: MachineSet, family: string): string[] {
+  const buses = Object.keys(set.buses)
+  return Object.entries(set.joints)
     .filter(([, j]) => j.family === family)
-    .sort(([, a], [, b]) => a.bus.localeCompare(b.bus) || a.address - b.address)
+    .sort(([, a], [, b]) => buses.indexOf(a.bus) - buses.indexOf(b.bus) || a.address - b.address)
     .map(([key]) => key)
+}
 
 /** Schemas of a family's firmware versions, the most used first. */
 export function schemasOfFamily(set: MachineSet, family: string, schemas: Schemas): ParameterSchema[] {
@@ -69,6 +76,12 @@ function effective(set: MachineSet, place: Place, parameter: Parameter): { value
   return { value: found?.value, origin: found?.origin ?? 'firmware', own: owned(set.joints[place.joint].values, parameter.name) }
 }
 
+function inheritedAt(set: MachineSet, place: Place, parameter: Parameter): ValueAt['inherited'] {
+  const family = place.kind === 'joint' ? owned(set.families[place.family]?.values, parameter.name) : undefined
+  if (family !== undefined) return { value: family, origin: 'family' }
+  return parameter.default === null ? null : { value: parameter.default, origin: 'firmware' }
+}
+
 /** The parameter as the base release's firmware version had it, so that its default is that version's. */
 function inBase(base: MachineSet, place: Place, parameter: Parameter, schemas: Schemas): Parameter {
   const joint = place.kind === 'joint' ? place.joint : jointsOf(base, place.family)[0]
@@ -86,6 +99,8 @@ export function valueAtPlace(set: MachineSet, base: MachineSet, place: Place, pa
     ...here,
     pointer,
     released: before?.value,
+    releasedOwn: before?.own,
+    inherited: inheritedAt(set, place, parameter),
     changed: before === null || !same(before.value, here.value),
     originChanged: before !== null && before.origin !== here.origin,
   }

@@ -6,6 +6,8 @@ export type LoopName = (typeof loopNames)[number]
 export interface Figure {
   loop: LoopName
   name: string
+  /** where there is little room */
+  brief: string
   unit: string
   before: number | null
   after: number | null
@@ -21,6 +23,7 @@ export interface Figure {
 
 interface Kind {
   name: string
+  brief: string
   unit: string
   finding: string
   value: (f: LoopFigures) => number | null
@@ -29,10 +32,10 @@ interface Kind {
 }
 
 const kinds: readonly Kind[] = [
-  { name: 'phase', unit: '°', finding: 'phase margin', value: (f) => f.phaseMarginDeg, reads: (f) => f.phaseMarginReads, range: [0, 90] },
-  { name: 'gain', unit: 'dB', finding: 'gain margin', value: (f) => f.gainMarginDb, reads: (f) => f.gainMarginReads, range: [0, 30] },
-  { name: 'sensitivity peak', unit: '', finding: 'sensitivity peak', value: (f) => f.sensitivityPeak, reads: () => '', range: [1, 4] },
-  { name: 'bandwidth', unit: 'Hz', finding: 'bandwidth', value: (f) => f.bandwidthHz, reads: () => '', range: 'log' },
+  { name: 'phase', brief: 'phase', unit: '°', finding: 'phase margin', value: (f) => f.phaseMarginDeg, reads: (f) => f.phaseMarginReads, range: [0, 90] },
+  { name: 'gain', brief: 'gain', unit: 'dB', finding: 'gain margin', value: (f) => f.gainMarginDb, reads: (f) => f.gainMarginReads, range: [0, 30] },
+  { name: 'sensitivity peak', brief: 'peak', unit: '', finding: 'sensitivity peak', value: (f) => f.sensitivityPeak, reads: () => '', range: [1, 4] },
+  { name: 'bandwidth', brief: 'bandwidth', unit: 'Hz', finding: 'bandwidth', value: (f) => f.bandwidthHz, reads: () => '', range: 'log' },
 ]
 
 const rangeOf = (kind: Kind, values: readonly number[]): [number, number] => {
@@ -52,7 +55,7 @@ export function figuresOf(check: JointCheck, findings: readonly Finding[]): Figu
       if (before === null && after === null && !beforeReads && !afterReads) return []
       const judged = findings.find((f) => f.kind === kind.finding && f.loop === loop && f.limit !== null && (f.joints.length === 0 || f.joints.includes(check.joint)))
       const values = [before, after].filter((v): v is number => v !== null)
-      return [{ loop, name: kind.name, unit: kind.unit, before, after, beforeReads, afterReads, range: rangeOf(kind, values.length > 0 ? values : [1]), policy: judged?.limit ?? null, missed: judged !== undefined && judged.level !== 'pass' }]
+      return [{ loop, name: kind.name, brief: kind.brief, unit: kind.unit, before, after, beforeReads, afterReads, range: rangeOf(kind, values.length > 0 ? values : [1]), policy: judged?.limit ?? null, missed: judged !== undefined && judged.level !== 'pass' }]
     }),
   )
 }

@@ -33,7 +33,7 @@ export function BusesTable({ set, base, onEdit, onAdd }: BusesTableProps) {
   return (
     <section aria-label="buses">
       <SectionHeading actions={onEdit && <Button small onClick={onAdd}>Add a bus</Button>}>Buses</SectionHeading>
-      <div className="table-frame mt-2 overflow-x-auto">
+      <div className="table-frame mt-2">
         <table className="table table-dense">
           <thead>
             <tr>
@@ -54,9 +54,9 @@ export function BusesTable({ set, base, onEdit, onAdd }: BusesTableProps) {
               const before = base.buses[key] as BusSettings | undefined
               return (
                 <tr key={key}>
-                  <th scope="row" className="!border-hairline !bg-transparent !text-14 !text-ink">
+                  <td role="rowheader" className="font-medium">
                     <PlainInput label={`name of the bus ${bus.name}`} value={bus.name} onSettle={onEdit && ((v) => v !== '' && put(key, 'name', v))} />
-                  </th>
+                  </td>
                   {figures.map((f) => (
                     <td key={f.field} className="end">
                       <QuantityInput

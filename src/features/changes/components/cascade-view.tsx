@@ -45,7 +45,7 @@ export function CascadeView({ set, base, schemas, family, joint, onEdit, driveTr
   if (values.length === 0) return <EmptyState title="No values yet">Give the family a joint with a firmware version; its parameters then stand here.</EmptyState>
 
   const byRole = new Map(values.flatMap((v) => (v.parameter.role ? [[v.parameter.role, v] as const] : [])))
-  const cells = (roles: readonly Role[]) => roles.flatMap((r) => byRole.get(r) ?? []).map((at) => <EditableValue key={at.pointer} at={at} set={set} onEdit={onEdit} />)
+  const cells = (roles: readonly Role[], title?: string) => roles.flatMap((r) => byRole.get(r) ?? []).map((at) => <EditableValue key={at.pointer} at={at} set={set} onEdit={onEdit} title={title} />)
   const clamp = (role: Role, factor = 1) => {
     const at = byRole.get(role)
     const n = numberOf(at?.value)
@@ -70,7 +70,7 @@ export function CascadeView({ set, base, schemas, family, joint, onEdit, driveTr
         position={{ note: clamp('speed.limit'), children: cells(blocks.position) }}
         velocity={{ note: clamp('current.limit'), children: cells(blocks.velocity) }}
         current={{ note: voltageClamp(byRole), children: cells(blocks.current) }}
-        velocityWindow={byRole.has('velocity.window') ? { note: lag(byRole), children: cells(blocks.window) } : undefined}
+        velocityWindow={byRole.has('velocity.window') ? { note: lag(byRole), children: cells(blocks.window, 'Samples') } : undefined}
         sensor={{
           note: `on the ${driveTrain.encoder}, ${driveTrain.bits} bit`,
           children: <div className="grid sm:grid-cols-2">{joint || onEdit === null ? cells(blocks.sensor) : <SensorOfFamily set={set} base={base} schemas={schemas} family={family} byRole={byRole} onEdit={onEdit} />}</div>,
@@ -112,7 +112,7 @@ function voltageClamp(byRole: ByRole) {
 /** The window lags by half its span. */
 function lag(byRole: ByRole) {
   const [window, rate] = [si(byRole, 'velocity.window'), si(byRole, 'rate.outer')]
-  return window !== null && rate !== null && rate > 0 ? <>lags <Num value={window / rate / 2} unit="s" /></> : undefined
+  return window !== null && rate !== null && rate > 0 ? <span className="whitespace-nowrap">lags <Num value={window / rate / 2} unit="s" /></span> : undefined
 }
 
 function torque(byRole: ByRole, set: MachineSet, family: string): number | null {
@@ -124,12 +124,14 @@ function torque(byRole: ByRole, set: MachineSet, family: string): number | null 
 /** Offset and direction differ by joint, mostly: the family's own value with what each joint has. */
 function SensorOfFamily({ set, base, schemas, family, byRole, onEdit }: Pick<CascadeViewProps, 'set' | 'base' | 'schemas' | 'family' | 'onEdit'> & { byRole: ByRole }) {
   return blocks.sensor.flatMap((role) => byRole.get(role) ?? []).map((at) => {
-    const joints = jointsOf(set, family).flatMap((joint) => {
+    const all = jointsOf(set, family).map((joint) => {
       const p = parameterOfJoint(set, joint, at.parameter.name, schemas)
-      const own = p && valueAtPlace(set, base, { kind: 'joint', joint, family }, p, schemas)
-      return own?.own === undefined ? [] : [{ joint, value: own.value }]
+      return p && valueAtPlace(set, base, { kind: 'joint', joint, family }, p, schemas)
     })
+    const joints = all.flatMap((v) => (v?.own === undefined || v.place.kind !== 'joint' ? [] : [{ joint: v.place.joint, value: v.value }]))
     if (joints.length === 0) return <EditableValue key={at.pointer} at={at} set={set} onEdit={onEdit} />
+    const [only] = all
+    if (all.length === 1 && only) return <EditableValue key={at.pointer} at={only} set={set} onEdit={onEdit} />
     return (
       <div key={at.pointer} className="value-cell">
         <p className="text-13">{at.parameter.title}</p>

@@ -11,14 +11,12 @@ export interface ChangeHeadProps {
   title?: ReactNode
   /** after the base release: what it proposes */
   proposes?: ReactNode
-  /** between title and rail, as a verdict */
-  middle?: ReactNode
   /** at the end of the line of views */
   actions?: ReactNode
 }
 
 /** The head of every page of a change: what it is, its life as a rail, and the ways to look at it. */
-export function ChangeHead({ change, title, proposes, middle, actions }: ChangeHeadProps) {
+export function ChangeHead({ change, title, proposes, actions }: ChangeHeadProps) {
   return (
     <header className="border-b border-hairline pt-3 pb-3">
       <title>{`${change.machineName} ${change.number}, ${change.title} · Detent`}</title>
@@ -30,7 +28,6 @@ export function ChangeHead({ change, title, proposes, middle, actions }: ChangeH
           </p>
           {title ?? <h1 className="max-sm:text-20">{change.title}</h1>}
         </div>
-        {middle}
         <div className="w-full md:w-[min(620px,50%)]">
           <Rail {...railOf(change)} />
         </div>

@@ -13,7 +13,7 @@ export function DriveTrainBlock({ driveTrain, before, editTo, torque }: { driveT
   const lines = shown.map((letter) => letterLines.find((l) => l.letter === letter)!).filter((l) => driveTrain[l.letter] !== undefined)
   return (
     <div className="px-3 pt-2 pb-3">
-      <dl className="grid grid-cols-[auto_1fr_auto] items-baseline gap-x-2 text-13 leading-[21px]">
+      <dl className="grid grid-cols-[auto_minmax(0,1fr)_auto] items-baseline gap-x-2 text-13 leading-[21px]">
         {lines.map((l) => {
           const stored = driveTrain[l.letter]
           const altered = before !== undefined && !same(stored, before[l.letter])
@@ -24,7 +24,7 @@ export function DriveTrainBlock({ driveTrain, before, editTo, torque }: { driveT
                 <LetterSymbol line={l} />
               </dt>
               <dd className={`text-right ${altered ? 'text-brass' : ''}`}>
-                <Num value={partOf(stored, 'value')} unit={l.unit ?? ''} />
+                <Num {...inGrams(partOf(stored, 'value'), l.unit)} />
               </dd>
               <dd className="num text-right text-12 text-ink-2">{t && (Math.abs(t.low + t.high) < 0.05 ? <>±{formatFixed(t.high, 0)}</> : <>{formatFixed(t.low, 0, { plus: true })}<br />{formatFixed(t.high, 0, { plus: true })}</>)}</dd>
             </div>
@@ -44,3 +44,10 @@ export function DriveTrainBlock({ driveTrain, before, editTo, torque }: { driveT
   )
 }
 
+
+/** An inertia in g·m² or mg·m²: kilograms take no prefix, and powers of ten do not fit here. */
+function inGrams(value: number | string | undefined, unit: string | null): { value: number | string | undefined; unit: string } {
+  if (unit !== 'kg·m²' || typeof value !== 'number' || value === 0) return { value, unit: unit ?? '' }
+  if (Math.abs(value) >= 1) return { value, unit }
+  return Math.abs(value) >= 1e-3 ? { value: value * 1e3, unit: 'g·m²' } : { value: value * 1e6, unit: 'mg·m²' }
+}

@@ -28,7 +28,7 @@ export function DriveTrainTable({ set, base, family, onEdit }: DriveTrainTablePr
   return (
     <section id="drive-train" aria-label={`drive train of the ${name} family`} className="scroll-mt-4">
       <SectionHeading aux="SI; bounds are what the tolerance sweep walks">Drive train of the {name} family</SectionHeading>
-      <div className="table-frame mt-2 overflow-x-auto">
+      <div className="table-frame mt-2">
         <table className="table table-dense">
           <thead>
             <tr>
@@ -81,9 +81,9 @@ function LetterRow({ line, driveTrain, before, onPut }: { line: LetterLine; driv
   )
   return (
     <tr>
-      <th scope="row" className="!border-hairline !bg-transparent !text-14 !font-normal !text-ink">
+      <td role="rowheader">
         <LetterSymbol line={line} />
-      </th>
+      </td>
       <td className="text-13 text-ink-2">{line.words}</td>
       <td className="text-13 text-ink-2">{line.unit}</td>
       <td className="end">{part('value', 'value')}</td>

@@ -5,8 +5,9 @@ import { OriginMark } from '../../../components/ui/origin-mark.tsx'
 import { ValueCell } from '../../../components/ui/value-cell.tsx'
 import { percentChange } from '../../../lib/format.ts'
 import { rulerRange, stepOf } from '../ruler-range.ts'
-import { numberOf, rangeText, registerText, shownValue, valueText } from '../typed-value.ts'
-import { editTo, useTypedValue } from '../use-typed-value.ts'
+import { numberOf, rangeText, shownValue, valueText } from '../typed-value.ts'
+import { useTypedValue } from '../use-typed-value.ts'
+import { waysBack } from '../ways-back.ts'
 import { ownValuesOf, type ValueAt } from '../value-cells.ts'
 
 export interface EditableValueProps {
@@ -73,26 +74,25 @@ function Notes({ at, own, onEdit, onClear, bare }: { at: ValueAt; own: number; o
     own > 0 && `${own === 1 ? 'one joint has' : `${own} joints have`} a value of its own`.replace('have a value of its own', 'have values of their own'),
     bare && rangeText(at.parameter),
   ].filter(Boolean)
-  const back = onEdit && at.own !== undefined && (at.place.kind === 'joint' || at.released !== at.value)
-  if (parts.length === 0 && !back) return null
+  const ways = onEdit ? waysBack(at) : []
+  if (parts.length === 0 && ways.length === 0) return null
   return (
     <>
       {parts.join('; ')}
-      {back && (
+      {ways.map((way) => (
         <button
+          key={way.words}
           type="button"
-          className="link ml-1 text-12"
-          title={`register ${registerText(at.parameter)}`}
+          className="link mr-3 text-12"
           onClick={() => {
             onClear()
-            const edit = editTo(at, undefined)
-            if (edit) onEdit([edit])
+            onEdit?.([way.edit])
           }}
         >
-          set back to {at.place.kind === 'joint' ? 'inherited' : 'firmware'}
+          {way.words}
           <span className="sr-only">, {at.parameter.title}</span>
         </button>
-      )}
+      ))}
     </>
   )
 }

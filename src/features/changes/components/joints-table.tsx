@@ -26,7 +26,7 @@ export function JointsTable({ set, base, family, firmware, onEdit, onAdd }: Join
   return (
     <section aria-label="joints of the family">
       <SectionHeading actions={onEdit && <Button small onClick={onAdd}>Add a joint</Button>}>Joints</SectionHeading>
-      <div className="table-frame mt-2 overflow-x-auto">
+      <div className="table-frame mt-2">
         <table className="table table-dense">
           <thead>
             <tr>
@@ -71,10 +71,10 @@ function JointRow({ joint, set, before, firmware, onEdit }: { joint: string; set
   const versions = firmware.includes(settings.firmware) ? firmware : [settings.firmware, ...firmware]
   return (
     <tr>
-      <th scope="row" className="!border-hairline !bg-transparent !text-14 !text-ink">
+      <td role="rowheader" className="font-medium">
         <PlainInput label={`name of ${settings.name}`} value={settings.name} className={tone('name')} onSettle={onEdit && ((v) => v !== '' && put('name', v))} />
         <span className="block text-12 font-normal text-ink-2">{before === undefined ? 'new' : ''}</span>
-      </th>
+      </td>
       <td>
         {onEdit ? (
           <select aria-label={`bus of ${settings.name}`} className={`bg-transparent ${tone('bus')}`} value={settings.bus} onChange={(e) => put('bus', e.target.value)}>

@@ -85,7 +85,7 @@ export function ValueGrid({ set, base, schemas, family, joint, showing, onEdit }
   return (
     <>
       {at && <ValueInspector key={at.pointer} at={at} set={set} schemas={schemas} onEdit={onEdit} />}
-      <div className="table-frame mt-2 overflow-x-auto">
+      <div className={`table-frame mt-2 ${joints.length > 7 ? 'overflow-x-auto' : ''}`}>
         <table ref={table} role="grid" aria-label={`values of the ${set.families[family].name} family`} aria-readonly={onEdit === null} className="table table-dense" onKeyDown={onKey}>
           <thead>
             <tr>
@@ -116,9 +116,9 @@ export function ValueGrid({ set, base, schemas, family, joint, showing, onEdit }
                 const r = index
                 return (
                   <tr key={parameter.name}>
-                    <th scope="row" className="!border-hairline !bg-transparent !text-14 !font-normal !text-ink" title={parameter.description || undefined}>
+                    <td role="rowheader" title={parameter.description || undefined}>
                       {parameter.title}
-                    </th>
+                    </td>
                     <td className="text-13 text-ink-2">{parameter.unit}</td>
                     {cells.map((cell, c) => (
                       <ValueGridCell

@@ -7,7 +7,8 @@ import { Ruler } from '../../../components/ui/ruler.tsx'
 import { percentChange } from '../../../lib/format.ts'
 import { rulerRange, stepOf } from '../ruler-range.ts'
 import { heldText, numberOf, rangeText, registerText, shownValue } from '../typed-value.ts'
-import { editTo, useTypedValue } from '../use-typed-value.ts'
+import { useTypedValue } from '../use-typed-value.ts'
+import { waysBack } from '../ways-back.ts'
 import { ownValuesOf, type Schemas, type ValueAt } from '../value-cells.ts'
 
 export interface ValueInspectorProps {
@@ -27,8 +28,7 @@ export function ValueInspector({ at, set, onEdit }: ValueInspectorProps) {
   const before = numberOf(at.released)
   const change = now !== null && before !== null ? percentChange(before, now) : null
   const familyValue = set.families[place.family].values[parameter.name] as Value | undefined
-  const inherited = place.kind === 'joint' ? (familyValue ?? parameter.default ?? undefined) : (parameter.default ?? undefined)
-  const from = place.kind === 'joint' && familyValue !== undefined ? 'family' : 'firmware'
+  const ways = onEdit ? waysBack(at) : []
   const unit = parameter.unit ?? ''
   return (
     <section aria-label="chosen value" className="sheet grid items-start gap-x-6 gap-y-2 px-4 py-3 md:grid-cols-[minmax(180px,auto)_minmax(160px,1fr)_auto]">
@@ -66,19 +66,21 @@ export function ValueInspector({ at, set, onEdit }: ValueInspectorProps) {
         </p>
         {parameter.description && <p className="text-12 text-ink-2">{parameter.description}</p>}
       </div>
-      {onEdit && at.own !== undefined && (
+      {onEdit && (
         <div className="flex flex-col items-start gap-2">
-          <Button
-            small
-            onClick={() => {
-              typed.cancel()
-              const edit = editTo(at, undefined)
-              if (edit) onEdit([edit])
-            }}
-          >
-            Set back to {from}, {shownValue(inherited)}
-          </Button>
-          {place.kind === 'joint' && (
+          {ways.map((way) => (
+            <Button
+              key={way.words}
+              small
+              onClick={() => {
+                typed.cancel()
+                onEdit([way.edit])
+              }}
+            >
+              {`${way.words[0].toUpperCase()}${way.words.slice(1)}`}
+            </Button>
+          ))}
+          {place.kind === 'joint' && at.own !== undefined && (
             <Button small onClick={() => onEdit(promoted(at, place.family, familyValue))}>
               Give to the whole family
             </Button>

@@ -5,12 +5,12 @@ import { count, formatNumber } from '../../../lib/format.ts'
 import { figuresOf, worstOf } from '../figures.ts'
 import { BeforeAfter } from './before-after.tsx'
 
-/** What the altered values do all together: verdict, ρ, margins before and after of the worst joint among those given. */
+/** What the altered values do all together: verdict, ρ, and the margins that moved or miss policy, of the worst joint among those given. */
 export function AllTogether({ check, joints, nameOf }: { check: CheckView; joints: readonly string[]; nameOf: (joint: string) => string }) {
   const among: JointCheck[] = check.joints.filter((j) => joints.includes(j.joint))
   const worst = worstOf(among)
   if (!worst?.candidate) return null
-  const figures = figuresOf(worst, check.findings).filter((f) => f.name === 'phase' || f.name === 'gain' || (f.name === 'bandwidth' && f.loop === 'velocity'))
+  const figures = figuresOf(worst, check.findings).filter((f) => f.name !== 'sensitivity peak' && (f.name !== 'bandwidth' || f.loop === 'velocity') && (f.before !== f.after || f.beforeReads !== f.afterReads || f.missed))
   return (
     <div className="flex flex-wrap border-b border-ink">
       <div className="min-w-[150px] px-[10px] py-3">
@@ -25,7 +25,7 @@ export function AllTogether({ check, joints, nameOf }: { check: CheckView; joint
         <Cell key={`${f.loop} ${f.name}`} title={`${f.loop} ${f.name === 'bandwidth' ? f.name : `${f.name} margin`}`} note={f.policy === null ? undefined : `policy ${formatNumber(f.policy)}`}>
           <BeforeAfter before={f.before ?? f.beforeReads} after={f.after ?? f.afterReads} unit={f.unit} className={`text-16 ${f.missed ? 'text-plum' : ''}`} />
           {f.after !== null && (
-            <EffectRuler label={`${f.loop} ${f.name}`} before={f.before} after={f.after} min={f.range[0]} max={f.range[1]} unit={f.unit} scale={f.unit === 'Hz' ? 'log' : 'linear'} policy={f.policy === null ? undefined : { limit: f.policy, forbidden: 'below' }} />
+            <EffectRuler label={`${f.loop} ${f.name}`} before={f.before} after={f.after} min={f.range[0]} max={f.range[1]} unit={f.unit} scale={f.unit === 'Hz' ? 'log' : 'linear'} policy={f.policy === null ? undefined : { limit: f.policy, forbidden: 'below' }} width={108} />
           )}
         </Cell>
       ))}
@@ -35,7 +35,7 @@ export function AllTogether({ check, joints, nameOf }: { check: CheckView; joint
 
 function Cell({ title, note, children }: { title: string; note?: string; children: React.ReactNode }) {
   return (
-    <div className="border-l border-hairline px-4 py-3">
+    <div className="border-l border-hairline px-3 py-3">
       <p className="text-13 text-ink-2">{title}</p>
       {children}
       {note && <p className="text-12 text-ink-2">{note}</p>}

@@ -6,16 +6,18 @@ import type { Figure } from '../figures.ts'
 const shown = (value: number | null, reads: string, unit: string) => (value === null ? reads || '–' : unit === 'Hz' || unit === '' ? formatNumber(value) : value.toFixed(1))
 
 /** Margins and bandwidth of each loop, before and after, with policy on the ruler. */
-export function FigureRows({ figures, label }: { figures: readonly Figure[]; label: string }) {
+export function FigureRows({ figures, label, oneLoop = false }: { figures: readonly Figure[]; label: string; oneLoop?: boolean }) {
   return (
     <table className="table table-dense" aria-label={label}>
       <tbody>
         {figures.map((f, i) => (
           <tr key={`${f.loop} ${f.name}`}>
-            <th scope="row" className="!border-hairline !bg-transparent !px-0 !text-14 !text-ink">
-              <span className={i > 0 && figures[i - 1].loop === f.loop ? 'sr-only' : ''}>{f.loop}</span>
-            </th>
-            <td className="!px-2 text-13 text-ink-2">{f.name}</td>
+            <td role="rowheader" className="!px-0">
+              <span className={oneLoop || (i > 0 && figures[i - 1].loop === f.loop) ? 'sr-only' : ''}>{f.loop}</span>
+            </td>
+            <td className={`${oneLoop ? '!pl-0' : '!px-2'} text-13 text-ink-2`} title={f.name}>
+              {oneLoop ? f.name : f.brief}
+            </td>
             <td className="end num !px-0 text-13">{shown(f.before, f.beforeReads, f.unit)}</td>
             <td className="!px-0 text-center">
               <Arrow />
@@ -33,7 +35,7 @@ export function FigureRows({ figures, label }: { figures: readonly Figure[]; lab
                   unit={f.unit}
                   scale={f.unit === 'Hz' ? 'log' : 'linear'}
                   policy={f.policy === null ? undefined : { limit: f.policy, forbidden: f.name === 'sensitivity peak' ? 'above' : 'below' }}
-                  width={108}
+                  width={oneLoop ? 122 : 104}
                 />
               )}
             </td>

@@ -27,9 +27,8 @@ export function FindingList({ findings, nameOf, narrow = false, note }: FindingL
         <FindingRow key={f.key} finding={f} nameOf={nameOf} narrow={narrow} note={note?.(f)} />
       ))}
       {passed.length > 0 && !open && (
-        <li className="flex items-baseline gap-3 border-t border-hairline py-[6px] text-13">
-          <FindingMark level="pass" size={15} />
-          <span className="text-ink-2">{count(passed.length, 'finding')} without fault</span>
+        <li className="flex items-center gap-3 border-t border-hairline py-[6px] text-13">
+          <FindingMark level="pass" size={15}>{count(passed.length, 'finding')} without fault</FindingMark>
           <button type="button" className="link ml-auto" onClick={() => setOpen(true)}>
             show<span className="sr-only"> what passes</span>
           </button>
@@ -44,13 +43,13 @@ function FindingRow({ finding, nameOf, narrow, note }: { finding: Finding; nameO
   const limit =
     finding.limit !== null ? (
       <>
-        limit <Num value={finding.limit} unit={finding.unit} digits={4} />
+        limit <Num value={String(Number(finding.limit.toPrecision(6)))} unit={finding.unit} />
       </>
     ) : null
   if (narrow)
     return (
       <li className="grid grid-cols-[18px_1fr] gap-x-3 border-t border-hairline py-[6px] text-13">
-        <FindingMark level={finding.level} size={15}>
+        <FindingMark level={finding.level} size={15} className="self-start pt-[2px]">
           <span className="sr-only">{finding.level}</span>
         </FindingMark>
         <div>

@@ -19,7 +19,13 @@ export function JointReport({ joint, check, nameOf, base }: { joint: JointCheck;
   const figures = figuresOf(joint, check.findings)
   const loops = loopNames.filter((l) => figures.some((f) => f.loop === l))
   return (
-    <div className="grid gap-x-10 gap-y-6 lg:grid-cols-[minmax(0,1fr)_minmax(0,1fr)] 2xl:grid-cols-[minmax(0,1fr)_minmax(0,1fr)_minmax(0,1fr)]">
+    <div className="grid gap-x-10 gap-y-6 lg:grid-cols-2 xl:grid-cols-3">
+      {loops.map((loop) => (
+        <section key={loop}>
+          <SectionHeading aux={brokenAt[loop]}>{`${loop[0].toUpperCase()}${loop.slice(1)} loop`}</SectionHeading>
+          <FigureRows figures={figures.filter((f) => f.loop === loop)} label={`${loop} loop of ${nameOf(joint.joint)}`} oneLoop />
+        </section>
+      ))}
       <section>
         <SectionHeading aux={joint.touched ? (base ? `against ${base}` : 'no release before') : 'not touched by this change'}>Closed loop</SectionHeading>
         <VerdictMark verdict={candidate.verdict} size={30} className="mt-2 text-20 font-medium" />
@@ -30,12 +36,6 @@ export function JointReport({ joint, check, nameOf, base }: { joint: JointCheck;
           </p>
         )}
       </section>
-      {loops.map((loop) => (
-        <section key={loop}>
-          <SectionHeading aux={brokenAt[loop]}>{`${loop[0].toUpperCase()}${loop.slice(1)} loop`}</SectionHeading>
-          <FigureRows figures={figures.filter((f) => f.loop === loop)} label={`${loop} loop of ${nameOf(joint.joint)}`} />
-        </section>
-      ))}
       <PolePlot
         aux={`largest ${candidate.rho.toFixed(6)}`}
         hideLegend={!joint.touched || released === null}

@@ -19,7 +19,8 @@ export interface ReleaseSheetProps {
 export function ReleaseSheet({ release, rail }: ReleaseSheetProps) {
   const fresh = release.items.filter((i) => i.isNew).length
   return (
-    <article className="release-sheet border border-hairline bg-sheet p-2 sm:p-5" aria-label={`release sheet of ${release.machineName} ${release.version}`}>
+    <article className="sheet relative !rounded-none p-2 sm:p-[23px]" aria-label={`release sheet of ${release.machineName} ${release.version}`}>
+      <Zones />
       <div className="border border-ink">
         <header className="flex flex-wrap items-start gap-x-8 gap-y-3 border-b border-ink px-4 py-4 sm:px-5">
           <div className="min-w-0 flex-1 basis-72">
@@ -101,6 +102,28 @@ export function ReleaseSheet({ release, rail }: ReleaseSheetProps) {
         </footer>
       </div>
     </article>
+  )
+}
+
+/** The zones of a drawing sheet, by which people name a place on it. Decorative. */
+function Zones() {
+  return (
+    <div aria-hidden="true" className="hidden text-12 text-ink-2 sm:block">
+      <div className="absolute top-0 right-[23px] left-[23px] grid h-[23px] grid-cols-6">
+        {[1, 2, 3, 4, 5, 6].map((n) => (
+          <span key={n} className="num border-r border-rule text-center leading-[23px] last:border-0">
+            {n}
+          </span>
+        ))}
+      </div>
+      <div className="absolute top-[23px] bottom-[23px] left-0 grid w-[23px] grid-rows-5">
+        {['A', 'B', 'C', 'D', 'E'].map((z) => (
+          <span key={z} className="grid place-items-center border-b border-rule last:border-0">
+            {z}
+          </span>
+        ))}
+      </div>
+    </div>
   )
 }
 

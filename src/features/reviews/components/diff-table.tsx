@@ -71,9 +71,9 @@ export function DiffTable({ group, nameOf, baseVersion, label }: DiffTableProps)
               </tr>
               {s.rows.map((r) => (
                 <tr key={r.parameter}>
-                  <th scope="row" className="!border-hairline !bg-transparent !text-14 !font-normal !text-ink">
+                  <td role="rowheader">
                     {r.title}
-                  </th>
+                  </td>
                   <td className="text-13 whitespace-nowrap text-ink-2">{r.unit}</td>
                   <td className="end">{aligned(sideText(r.before), before)}</td>
                   <td className="end font-medium text-brass">{aligned(sideText(r.after), after)}</td>

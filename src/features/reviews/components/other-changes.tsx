@@ -61,9 +61,9 @@ function Rows({ label, rows }: { label: string; rows: readonly Row[] }) {
       <tbody>
         {rows.map((r) => (
           <tr key={r.key}>
-            <th scope="row" className="!border-hairline !bg-transparent !text-14 !font-normal !whitespace-normal !text-ink">
+            <td role="rowheader" className="!whitespace-normal">
               {r.head}
-            </th>
+            </td>
             <td>
               <span className="num">{content(r.before)}</span>
               <Arrow />
