@@ -24,35 +24,35 @@ export function readParameter(root: Json, name: string, leaf: unknown, mapOrder:
     return null
   }
   const before = list.problems.length
-  const merged = followRef(root, leaf, pointer, list)
-  if (!merged) return null
-  if (merged.type === 'object' || merged.properties !== undefined) {
+  const stated = followRef(root, leaf, pointer, list)
+  if (!stated) return null
+  if (stated.type === 'object' || stated.properties !== undefined) {
     list.add(pointer, 'nested', `${name} is a group. Parameters stand directly under the root's properties.`)
     return null
   }
-  list.onlyKeys(merged, pointer, KEYS)
-  const shape = readShape(merged, pointer, list)
+  list.onlyKeys(stated, pointer, KEYS)
+  const shape = readShape(stated, pointer, list)
   if (!shape) return null
-  const register = merged['x-register'] === undefined
+  const register = stated['x-register'] === undefined
     ? null
-    : readRegister(merged['x-register'], under(pointer, 'x-register'), shape, mapOrder, list)
-  if (merged['x-register'] !== undefined && !register) return null
-  const unit = readUnit(merged, pointer, shape.kind, list)
-  const role = readRole(merged, pointer, list)
-  const perTick = merged['x-per-tick'] === undefined ? null : list.oneOf(merged, 'x-per-tick', pointer, ['current', 'outer'] as const)
-  if (merged['x-bound'] !== undefined) list.oneOf(merged, 'x-bound', pointer, ['board'])
+    : readRegister(stated['x-register'], under(pointer, 'x-register'), shape, mapOrder, list)
+  if (stated['x-register'] !== undefined && !register) return null
+  const unit = readUnit(stated, pointer, shape.kind, list)
+  const role = readRole(stated, pointer, list)
+  const perTick = stated['x-per-tick'] === undefined ? null : list.oneOf(stated, 'x-per-tick', pointer, ['current', 'outer'] as const)
+  if (stated['x-bound'] !== undefined) list.oneOf(stated, 'x-bound', pointer, ['board'])
   if (role) checkRole(role, perTick !== null, unit, shape.kind, pointer, list)
   if (perTick && (!role || !PER_TICK_ROLES.includes(role))) {
     list.add(under(pointer, 'x-per-tick'), 'per-tick-without-gain', 'Only a gain with a role (…kp, …ki) can say x-per-tick.')
   }
-  const bounds = readBounds(merged, pointer, shape.kind, register?.codec ?? null, list)
+  const bounds = readBounds(stated, pointer, shape.kind, register?.codec ?? null, list)
   if (list.problems.length > before) return null
-  const constant = isValue(merged.const) ? merged.const : null
+  const constant = isValue(stated.const) ? stated.const : null
   return {
-    name, pointer, title: list.text(merged, 'title', pointer) || name,
-    description: list.text(merged, 'description', pointer),
-    kind: shape.kind, unit, role, perTick, boardBound: merged['x-bound'] === 'board',
-    default: isValue(merged.default) ? merged.default : constant,
+    name, pointer, title: list.text(stated, 'title', pointer) || name,
+    description: list.text(stated, 'description', pointer),
+    kind: shape.kind, unit, role, perTick, boardBound: stated['x-bound'] === 'board',
+    default: isValue(stated.default) ? stated.default : constant,
     bounds, choices: shape.choices, constant, register,
   }
 }
@@ -63,7 +63,7 @@ export const isValue = (value: unknown): value is ParameterValue =>
 /** A leaf with what its `$ref` chain says: own annotations win, an assertion may be stated once. */
 function followRef(root: Json, leaf: unknown, pointer: string, list: ProblemList): Json | null {
   if (isObject(leaf) && leaf.$ref === undefined) return leaf
-  let merged: Record<string, unknown> = {}
+  let stated: Record<string, unknown> = {}
   let node = leaf
   for (;;) {
     if (!isObject(node)) {
@@ -71,13 +71,13 @@ function followRef(root: Json, leaf: unknown, pointer: string, list: ProblemList
       return null
     }
     for (const key of ASSERTIONS) {
-      if (merged[key] !== undefined && node[key] !== undefined && JSON.stringify(merged[key]) !== JSON.stringify(node[key])) {
+      if (stated[key] !== undefined && node[key] !== undefined && JSON.stringify(stated[key]) !== JSON.stringify(node[key])) {
         list.add(under(pointer, key), 'stated-twice', `${key} is stated here and, differently, in the schema that $ref points at.`)
       }
     }
     const ref: unknown = node.$ref
-    merged = { ...node, ...merged }
-    if (typeof ref !== 'string') return merged
+    stated = { ...node, ...stated }
+    if (typeof ref !== 'string') return stated
     node = targetOf(root, ref)
   }
 }
