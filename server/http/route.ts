@@ -11,7 +11,7 @@ import { Person } from '../modules/people/person.entity.ts'
 import { DomainError } from './errors.ts'
 import { Receipt } from './receipt.entity.ts'
 import type { Services } from './services.ts'
-import { validBody } from './validate.ts'
+import { keepable, validBody } from './validate.ts'
 
 /** Where a request points: the machine it belongs to (null: none), and what was found on the way. */
 export interface Place {
@@ -81,19 +81,53 @@ export function mustMatch(call: { ifMatch: number }, revision: number) {
     throw new DomainError('precondition-failed', 'It was altered since you read it. Nothing was done; what you typed is still with you. Reload, look at what is new, then do it again.', { extra: { revision } })
 }
 
-async function transactWithReceipt(em: EntityManager, req: Request, person: Person, now: Date, work: (em: EntityManager) => Promise<Answer>): Promise<Answer> {
+/** Members of bodies that are secret: no fast hash of them is kept. */
+const secrets = new Set(['password', 'current', 'next', 'secret'])
+
+/** Names a request, so that a repeat under the same key is told from another one. */
+function requestHash(req: Request, body: unknown): string {
+  const open = typeof body === 'object' && body !== null ? Object.fromEntries(Object.entries(body).filter(([name]) => !secrets.has(name))) : null
+  return createHash('sha256').update(canonicalize({ method: req.method, path: req.originalUrl, body: open })!).digest('hex')
+}
+
+/** The same role asked again inside the transaction: what was ended or held meanwhile stops the act. */
+async function mustStillBeAllowed(em: EntityManager, spec: RouteSpec, person: Person, place: Place) {
+  const fresh = await em.findOneOrFail(Person, { id: person.id }, { refresh: true })
+  if (fresh.disabledAt) throw new DomainError('not-signed-in', 'This person was disabled meanwhile. Nothing was done.')
+  if (spec.access !== 'signed-in') mustBeAllowed(await heldRoles(em, fresh), spec, place)
+}
+
+function mustBeAllowed(held: readonly HeldRole[], spec: RouteSpec, place: Place) {
+  if (spec.access === 'signed-in') return
+  const answer = may(held, spec.access, place.machine)
+  if (answer.allowed) return
+  throw new DomainError(answer.why.startsWith('Your signing role') ? 'signing-right-unconfirmed' : 'not-permitted', `${answer.why} Nothing was done.`, { recorded: spec.method !== 'get' })
+}
+
+interface Acting {
+  spec: RouteSpec
+  req: Request
+  person: Person
+  place: Place
+  body: unknown
+  now: Date
+}
+
+/** Runs an act in one transaction; under an Idempotency-Key its answer is kept there for a repeat of the same request. */
+async function transact(em: EntityManager, acting: Acting, work: (em: EntityManager) => Promise<Answer>): Promise<Answer> {
+  const { spec, req, person, place, body, now } = acting
   const key = req.headers['idempotency-key']
-  if (key === undefined) return em.transactional(work)
-  if (typeof key !== 'string' || !/^[\w-]{8,80}$/.test(key)) throw new DomainError('invalid-request', 'Idempotency-Key takes 8 to 80 letters, digits, hyphens and underscores. Nothing was done.')
-  const requestHash = createHash('sha256').update(canonicalize({ method: req.method, path: req.originalUrl, body: (req.body as unknown) ?? null })!).digest('hex')
+  if (key !== undefined && (typeof key !== 'string' || !/^[\w-]{8,80}$/.test(key))) throw new DomainError('invalid-request', 'Idempotency-Key takes 8 to 80 letters, digits, hyphens and underscores. Nothing was done.')
   return em.transactional(async (tx) => {
-    const earlier = await tx.findOne(Receipt, { personId: person.id, key })
+    const hash = key === undefined ? '' : requestHash(req, body)
+    const earlier = key === undefined ? null : await tx.findOne(Receipt, { personId: person.id, key })
     if (earlier) {
-      if (earlier.requestHash !== requestHash) throw new DomainError('key-reused', 'This Idempotency-Key belongs to another request. Nothing was done; use a new key.')
+      if (earlier.requestHash !== hash) throw new DomainError('key-reused', 'This Idempotency-Key belongs to another request. Nothing was done; use a new key.')
       return JSON.parse(earlier.body) as Answer
     }
+    await mustStillBeAllowed(tx, spec, person, place)
     const answer = await work(tx)
-    tx.create(Receipt, { personId: person.id, key, requestHash, status: answer.status ?? 200, body: JSON.stringify(answer), createdAt: now })
+    if (key !== undefined) tx.create(Receipt, { personId: person.id, key, requestHash: hash, status: answer.status ?? 200, body: JSON.stringify(answer), createdAt: now })
     return answer
   })
 }
@@ -123,15 +157,14 @@ async function answerTo(services: Services, spec: RouteSpec, req: Request): Prom
   const person = await em.findOneOrFail(Person, { id: personOf(req).id })
   const held = await heldRoles(em, person)
   const params = req.params as Record<string, string>
+  const query = req.query as Record<string, string>
+  if (![...Object.values(params), ...Object.values(query)].every((v) => typeof v === 'string' && keepable(v))) throw new DomainError('invalid-request', "The address holds a character that can't stand in it, or names something twice. Nothing was done.")
   const place = await (spec.place ?? nowhere)(em, params)
   if (place.machine !== null && !may(held, 'read', place.machine).allowed)
     throw new DomainError('not-found', 'There is nothing at this address that you may read. Check the address, or ask an administrator for a role on the machine.')
   try {
-    if (spec.access !== 'signed-in') {
-      const answer = may(held, spec.access, place.machine)
-      if (!answer.allowed)
-        throw new DomainError(answer.why.startsWith('Your signing role') ? 'signing-right-unconfirmed' : 'not-permitted', `${answer.why} Nothing was done.`, { recorded: spec.method !== 'get' })
-    }
+    mustBeAllowed(held, spec, place)
+    const body: unknown = spec.body ? validBody(spec.body, (req.body as unknown) ?? {}) : undefined
     return await spec.handle({
       services,
       em,
@@ -139,12 +172,12 @@ async function answerTo(services: Services, spec: RouteSpec, req: Request): Prom
       held,
       place,
       params,
-      query: req.query as Record<string, string>,
-      body: spec.body ? validBody(spec.body, (req.body as unknown) ?? {}) : undefined,
+      query,
+      body,
       ifMatch: spec.ifMatch ? readIfMatch(req) : 0,
       now,
       session: req.session,
-      act: (work) => transactWithReceipt(em, req, person, now, work),
+      act: (work) => transact(em, { spec, req, person, place, body, now }, work),
     })
   } catch (error) {
     if (error instanceof DomainError && error.recorded) await record(services, spec, error, person, place, now)

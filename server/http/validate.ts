@@ -41,23 +41,34 @@ export function problemsOf(schema: TSchema, data: unknown): FieldProblem[] {
   return told.map((e) => ({ pointer: pointerOf(e), detail: e.keyword === 'anyOf' ? 'fits none of the allowed forms' : words(e) }))
 }
 
-/** Deepest nesting a body may have; deeper is refused before anything walks it. */
+/** Deepest nesting a body may have; deeper is refused before anything else walks it. */
 const deepest = 40
 
-function tooDeep(value: unknown): boolean {
-  const stack: [unknown, number][] = [[value, 0]]
+/** Halves of a surrogate pair and the character NUL: neither the database nor a file gives them back as they were. */
+const unkept = /\0|[\ud800-\udbff](?![\udc00-\udfff])|(?<![\ud800-\udbff])[\udc00-\udfff]/
+
+export const keepable = (text: string) => !unkept.test(text)
+
+/** What makes a body unfit before any schema is asked, with its place; null when nothing does. */
+function unfit(body: unknown): FieldProblem | null {
+  const stack: { value: unknown; pointer: string; depth: number }[] = [{ value: body, pointer: '', depth: 0 }]
   for (let next = stack.pop(); next; next = stack.pop()) {
-    const [here, depth] = next
-    if (typeof here !== 'object' || here === null) continue
-    if (depth >= deepest) return true
-    for (const child of Object.values(here)) stack.push([child, depth + 1])
+    const { value, pointer, depth } = next
+    if (typeof value === 'string' && !keepable(value)) return { pointer, detail: 'holds a character that text can\'t keep' }
+    if (typeof value !== 'object' || value === null) continue
+    if (depth >= deepest) return { pointer: pointer.slice(0, 200), detail: `is nested deeper than ${deepest} levels` }
+    for (const [key, child] of Object.entries(value)) {
+      if (!keepable(key)) return { pointer, detail: 'holds a name with a character that text can\'t keep' }
+      stack.push({ value: child, pointer: `${pointer}/${key.replaceAll('~', '~0').replaceAll('/', '~1')}`, depth: depth + 1 })
+    }
   }
-  return false
+  return null
 }
 
 /** @throws DomainError invalid-request, with a pointer for each problem */
 export function validBody<T>(schema: TSchema, body: unknown): T {
-  if (tooDeep(body)) throw new DomainError('invalid-request', `The body is nested deeper than ${deepest} levels. Nothing was saved.`)
+  const bad = unfit(body)
+  if (bad) throw new DomainError('invalid-request', `The body can't be taken: ${bad.pointer || 'it'} ${bad.detail}. Nothing was saved.`, { fields: [bad] })
   const fields = problemsOf(schema, body)
   if (fields.length > 0) throw new DomainError('invalid-request', `The request has ${fields.length === 1 ? 'one field that does not fit' : `${fields.length} fields that do not fit`}. Nothing was saved; correct what is named and send it again.`, { fields })
   return body as T
