@@ -187,6 +187,11 @@ export class Characteristic {
     }
   }
 
+  /** Whether this very lift was taken last. */
+  holds(lifted: LiftedPlant): boolean {
+    return this.lifted === lifted
+  }
+
   /** N_k = C·V + χ_k·D. */
   private addNumerator(k: number, V: Float64Array | null): void {
     const { q, n, C, chi, numerators } = this

@@ -13,17 +13,26 @@ export interface LiftedPlant {
   readonly D: Float64Array
 }
 
-/** Lifts the outer steps over the hyperperiod (control-model.md §4). */
-export function liftPlant(steps: OuterSteps): LiftedPlant {
+export function emptyLift(q: number, n: number): LiftedPlant {
+  return { q, n, A: new Float64Array(n * n), B: new Float64Array(n * q), C: new Float64Array(q * n), D: new Float64Array(q * q) }
+}
+
+let scratch: readonly [Float64Array, Float64Array, Float64Array] = [new Float64Array(0), new Float64Array(0), new Float64Array(0)]
+
+/**
+ * Lifts the outer steps over the hyperperiod (control-model.md §4).
+ *
+ * @param into  a lift of the same q and n to overwrite, for sweeps
+ */
+export function liftPlant(steps: OuterSteps, into: LiftedPlant = emptyLift(steps.q, steps.start.length)): LiftedPlant {
   const { q, nz, start, shift } = steps
-  const n = start.length
+  const { n, A, B, C, D } = into
   const width = n + q
-  let Z = new Float64Array(nz * width)
-  let next = new Float64Array(nz * width)
+  if (scratch[0].length < nz * width) scratch = [new Float64Array(nz * width), new Float64Array(nz * width), new Float64Array(width)]
+  let [Z, next] = scratch
+  const delta = scratch[2].length < width ? new Float64Array(width) : scratch[2]
+  Z.fill(0, 0, nz * width)
   for (let i = 0; i < n; i++) Z[start[i] * width + i] = 1
-  const C = new Float64Array(q * n)
-  const D = new Float64Array(q * q)
-  const delta = new Float64Array(width)
   for (let k = 0; k < q; k++) {
     const P = steps.powers[steps.length[k]]
     const g = steps.inputs[steps.length[k]]
@@ -54,11 +63,9 @@ export function liftPlant(steps: OuterSteps): LiftedPlant {
     for (let c = 0; c < n; c++) C[k * n + c] = delta[c]
     for (let c = 0; c <= k; c++) D[k * q + c] = delta[n + c]
   }
-  const A = new Float64Array(n * n)
-  const B = new Float64Array(n * q)
   for (let i = 0; i < n; i++) {
     for (let c = 0; c < n; c++) A[i * n + c] = Z[start[i] * width + c]
     for (let c = 0; c < q; c++) B[i * q + c] = Z[start[i] * width + n + c]
   }
-  return { q, n, A, B, C, D }
+  return into
 }

@@ -1,3 +1,4 @@
+import { matrixPower, matrixProduct } from './matrix-power.ts'
 import type { SampledJoint } from './sampled-joint.ts'
 
 /**
@@ -31,9 +32,9 @@ export function outerSteps(joint: SampledJoint): OuterSteps {
     one[i * size + nz] = joint.G[i]
   }
   one[size * size - 1] = 1
-  const before = power(one, size, shortest - 1)
-  const short = product(one, before, size)
-  const whole = q > 1 ? [short, product(one, short, size)] : [short]
+  const before = matrixPower(one, size, shortest - 1)
+  const short = matrixProduct(one, before, size)
+  const whole = q > 1 ? [short, matrixProduct(one, short, size)] : [short]
   const partial = q > 1 ? [before, short] : [before]
   const length = new Uint8Array(q)
   const H = new Float64Array(q * nz)
@@ -74,30 +75,4 @@ function pick(M: Float64Array, n: number, size: number): Float64Array {
   const out = new Float64Array(n * n)
   for (let i = 0; i < n; i++) for (let j = 0; j < n; j++) out[i * n + j] = M[i * size + j]
   return out
-}
-
-function product(X: Float64Array, Y: Float64Array, n: number): Float64Array {
-  const out = new Float64Array(n * n)
-  for (let i = 0; i < n; i++) {
-    for (let k = 0; k < n; k++) {
-      const x = X[i * n + k]
-      if (x === 0) continue
-      for (let j = 0; j < n; j++) out[i * n + j] += x * Y[k * n + j]
-    }
-  }
-  return out
-}
-
-/** Mⁿ by repeated squaring. */
-function power(M: Float64Array, n: number, exponent: number): Float64Array {
-  let result: Float64Array = new Float64Array(n * n)
-  for (let i = 0; i < n; i++) result[i * n + i] = 1
-  let base: Float64Array = M
-  let left = exponent
-  while (left > 0) {
-    if (left % 2 === 1) result = product(base, result, n)
-    left = Math.floor(left / 2)
-    if (left > 0) base = product(base, base, n)
-  }
-  return result
 }

@@ -26,8 +26,7 @@ export class OuterTransfer {
   private readonly middle: ComplexMatrix
   private readonly cosine: Float64Array
   private readonly sine: Float64Array
-  private readonly baseRe: Float64Array
-  private readonly baseIm: Float64Array
+  private readonly wave: ComplexMatrix
   private readonly det = { re: 0, im: 0 }
   private readonly work: ComplexMatrix
   private readonly sensitivity: ComplexMatrix
@@ -50,52 +49,32 @@ export class OuterTransfer {
     this.sensitivity = complexMatrix(q)
     this.cosine = Float64Array.from({ length: q }, (_, k) => Math.cos((2 * Math.PI * k) / q))
     this.sine = Float64Array.from({ length: q }, (_, k) => Math.sin((2 * Math.PI * k) / q))
-    this.baseRe = new Float64Array(q + 1)
-    this.baseIm = new Float64Array(q + 1)
+    this.wave = { n: q, re: new Float64Array(q * (q + 1)), im: new Float64Array(q * (q + 1)) }
   }
 
-  /** Evaluates everything at z = radius·e^{jθ}. */
-  at(theta: number, radius = 1): void {
-    this.plantAt(theta, radius)
-    this.lawsAt(theta, radius)
+  /** Evaluates everything at z = e^{jθ}. */
+  at(theta: number): void {
+    this.plantAt(theta)
+    this.lawsAt(theta)
   }
 
-  private lawsAt(theta: number, radius: number): void {
+  private lawsAt(theta: number): void {
     const { q } = this
     const { W, K_pp, K_ip, K_pv, K_iv } = this.joint.model.firmware
     const { T_o } = this.joint.timing
     for (let m = 0; m < q; m++) {
       const t = theta + (2 * Math.PI * m) / q
-      // d = 1 − 1/z and w = (1 − z^{−W})/d, free of cancellation on the unit circle.
-      let dr: number
-      let di: number
-      let wr: number
-      let wi: number
-      if (radius === 1) {
-        const s = Math.sin(t / 2)
-        dr = 2 * s * s
-        di = Math.sin(t)
-        const kernel = s === 0 ? W : Math.sin((W * t) / 2) / s
-        const turn = (-(W - 1) * t) / 2
-        wr = kernel * Math.cos(turn)
-        wi = kernel * Math.sin(turn)
-      } else {
-        const inverse = 1 / radius
-        dr = 1 - inverse * Math.cos(t)
-        di = inverse * Math.sin(t)
-        const power = radius ** -W
-        const nr = 1 - power * Math.cos(W * t)
-        const ni = power * Math.sin(W * t)
-        const scale = 1 / (dr * dr + di * di)
-        wr = (nr * dr + ni * di) * scale
-        wi = (ni * dr - nr * di) * scale
-      }
-      const scale = 1 / (W * T_o)
-      this.window.re[m] = wr * scale
-      this.window.im[m] = wi * scale
-      const size = dr * dr + di * di
-      const ir = dr / size
-      const ii = -di / size
+      // d = 1 − 1/z and w = (1 − z^{−W})/d, free of cancellation.
+      const s = Math.sin(t / 2)
+      const dr = 2 * s * s
+      const di = 2 * s * Math.cos(t / 2)
+      const kernel = (s === 0 ? W : Math.sin((W * t) / 2) / s) / (W * T_o)
+      const turn = (-(W - 1) * t) / 2
+      this.window.re[m] = kernel * Math.cos(turn)
+      this.window.im[m] = kernel * Math.sin(turn)
+      const size = 1 / (dr * dr + di * di)
+      const ir = dr * size
+      const ii = -di * size
       this.velocityLaw.re[m] = K_pv + (K_iv === 0 ? 0 : K_iv * T_o * ir)
       this.velocityLaw.im[m] = K_iv === 0 ? 0 : K_iv * T_o * ii
       const pr = K_pp + (K_ip === 0 ? 0 : K_ip * T_o * ir)
@@ -105,14 +84,13 @@ export class OuterTransfer {
     }
   }
 
-  private plantAt(theta: number, radius: number): void {
+  private plantAt(theta: number): void {
     const { q, P } = this
     const { n, A, B, C, D } = this.plant
-    const { resolvent, drive, read, baseRe, baseIm, cosine, sine } = this
+    const { resolvent, drive, read, wave } = this
     const turn = q * theta
-    const grow = radius === 1 ? 1 : radius ** q
-    const lr = grow * Math.cos(turn)
-    const li = grow * Math.sin(turn)
+    const lr = Math.cos(turn)
+    const li = Math.sin(turn)
     for (let i = 0; i < n; i++) {
       for (let j = 0; j < n; j++) {
         resolvent.re[i * n + j] = -A[i * n + j]
@@ -134,15 +112,12 @@ export class OuterTransfer {
         si += C[i] * drive.im[i]
       }
       // The increment is read one outer tick after the reference acts.
-      P.re[0] = (sr * lr + si * li) / (grow * grow)
-      P.im[0] = (si * lr - sr * li) / (grow * grow)
+      P.re[0] = sr * lr + si * li
+      P.im[0] = si * lr - sr * li
       return
     }
-    for (let k = 0; k <= q; k++) {
-      const r = radius === 1 ? 1 : radius ** k
-      baseRe[k] = r * Math.cos(k * theta)
-      baseIm[k] = r * Math.sin(k * theta)
-    }
+    this.waves(theta)
+    // Inputs at ticks 0…q−1 carry z_m^k, outputs at ticks 1…q are read with z_m^{−k}.
     const each = 1 / q
     for (let i = 0; i < n; i++) {
       for (let m = 0; m < q; m++) {
@@ -150,23 +125,13 @@ export class OuterTransfer {
         let si = 0
         let tr = 0
         let ti = 0
-        let at = 0
         for (let k = 0; k < q; k++) {
-          // z_m^k acts on inputs at ticks 0…q−1, z_m^{−k} reads outputs at ticks 1…q.
-          const xr = baseRe[k] * cosine[at] - baseIm[k] * sine[at]
-          const xi = baseRe[k] * sine[at] + baseIm[k] * cosine[at]
           const b = B[i * q + k]
-          sr += b * xr
-          si += b * xi
-          at += m
-          if (at >= q) at -= q
-          const k1 = k + 1
-          const size = baseRe[k1] * baseRe[k1] + baseIm[k1] * baseIm[k1]
-          const yr = (baseRe[k1] * cosine[at] - baseIm[k1] * sine[at]) / size
-          const yi = -(baseRe[k1] * sine[at] + baseIm[k1] * cosine[at]) / size
+          sr += b * wave.re[k * q + m]
+          si += b * wave.im[k * q + m]
           const c = C[k * n + i]
-          tr += c * yr
-          ti += c * yi
+          tr += c * wave.re[(k + 1) * q + m]
+          ti -= c * wave.im[(k + 1) * q + m]
         }
         drive.re[i * q + m] = sr
         drive.im[i * q + m] = si
@@ -194,21 +159,33 @@ export class OuterTransfer {
     }
   }
 
+  /** wave[k][m] = e^{j(θ + 2πm/q)k}, k = 0…q. */
+  private waves(theta: number): void {
+    const { q, wave, cosine, sine } = this
+    for (let k = 0; k <= q; k++) {
+      const br = Math.cos(k * theta)
+      const bi = Math.sin(k * theta)
+      let at = 0
+      for (let m = 0; m < q; m++) {
+        wave.re[k * q + m] = br * cosine[at] - bi * sine[at]
+        wave.im[k * q + m] = br * sine[at] + bi * cosine[at]
+        at += k
+        while (at >= q) at -= q
+      }
+    }
+  }
+
   /** P ← D in the basis of exponentials. */
   private directPart(D: Float64Array): void {
-    const { q, P, inner, baseRe, baseIm, cosine, sine } = this
-    // Columns first: inner[k][m] = Σ_c D[k][c]·z_m^c.
-    for (let m = 0; m < q; m++) {
-      for (let k = 0; k < q; k++) {
+    const { q, P, inner, wave } = this
+    for (let k = 0; k < q; k++) {
+      for (let m = 0; m < q; m++) {
         let sr = 0
         let si = 0
-        let at = 0
         for (let c = 0; c <= k; c++) {
           const d = D[k * q + c]
-          sr += d * (baseRe[c] * cosine[at] - baseIm[c] * sine[at])
-          si += d * (baseRe[c] * sine[at] + baseIm[c] * cosine[at])
-          at += m
-          if (at >= q) at -= q
+          sr += d * wave.re[c * q + m]
+          si += d * wave.im[c * q + m]
         }
         inner.re[k * q + m] = sr
         inner.im[k * q + m] = si
@@ -219,18 +196,13 @@ export class OuterTransfer {
       for (let b = 0; b < q; b++) {
         let sr = 0
         let si = 0
-        let at = 0
         for (let k = 0; k < q; k++) {
-          at += a
-          if (at >= q) at -= q
-          const k1 = k + 1
-          const size = baseRe[k1] * baseRe[k1] + baseIm[k1] * baseIm[k1]
-          const yr = (baseRe[k1] * cosine[at] - baseIm[k1] * sine[at]) / size
-          const yi = -(baseRe[k1] * sine[at] + baseIm[k1] * cosine[at]) / size
+          const yr = wave.re[(k + 1) * q + a]
+          const yi = wave.im[(k + 1) * q + a]
           const dr = inner.re[k * q + b]
           const di = inner.im[k * q + b]
-          sr += yr * dr - yi * di
-          si += yr * di + yi * dr
+          sr += yr * dr + yi * di
+          si += yr * di - yi * dr
         }
         P.re[a * q + b] = sr * each
         P.im[a * q + b] = si * each
@@ -277,24 +249,6 @@ export class OuterTransfer {
   loop(closure: 'velocity' | 'position', out: ComplexMatrix): void {
     if (closure === 'velocity') this.velocityLoop(out)
     else this.positionLoop(out)
-  }
-
-  /** det(I + everything closed): zero exactly where z^q is an eigenvalue of Φ. */
-  closedDeterminant(closure: 'velocity' | 'position', det: { re: number; im: number }): void {
-    const { q, P, window, velocityLaw, positionLaw, work } = this
-    for (let a = 0; a < q; a++) {
-      let ur = window.re[a]
-      let ui = window.im[a]
-      if (closure === 'position') {
-        ur += positionLaw.re[a]
-        ui += positionLaw.im[a]
-      }
-      const vr = velocityLaw.re[a]
-      const vi = velocityLaw.im[a]
-      scaleRow(P, work, a, vr * ur - vi * ui, vr * ui + vi * ur)
-      work.re[a * q + a] += 1
-    }
-    solveComplex(work, null, 0, det)
   }
 
   /**

@@ -2,13 +2,15 @@ import { liftPlant } from './lifted-plant.ts'
 import { currentSource, OuterSource } from './margin-sources.ts'
 import { marginsOf, UNSTABLE_MARGINS, type LoopMargins } from './margins.ts'
 import type { ControlMode, JointModel } from './model.ts'
+import { validateJointModel } from './model.ts'
 import { closuresOf } from './monodromy.ts'
 import { outerSteps } from './outer-steps.ts'
 import { OuterTransfer } from './outer-transfer.ts'
-import { sampleJoint } from './sampled-joint.ts'
+import { withValues, type ParameterName } from './parameters.ts'
+import { closedMode, sampleJoint, type SampledJoint } from './sampled-joint.ts'
 import { stabilityOf, type Verdict } from './stability.ts'
 import { resonances } from './resonances.ts'
-import { verdictOfSampled, type StabilityVerdict } from './verdict.ts'
+import { verdictOfSampled, type PreparedOuter, type StabilityVerdict } from './verdict.ts'
 
 export interface LoopPoint extends LoopMargins {
   readonly verdict: Verdict
@@ -16,27 +18,55 @@ export interface LoopPoint extends LoopMargins {
 
 /** One point of a tolerance box or a map. */
 export interface PointResult extends StabilityVerdict {
+  /** Empty where margins were not asked for. */
   readonly loops: Readonly<Partial<Record<ControlMode, LoopPoint>>>
 }
 
-/** Verdict of a point and, where asked, each loop's gain, phase and delay margins. */
+/** Verdict of a joint and, where asked, each loop's gain, phase and delay margins. */
 export function evaluatePoint(model: JointModel, withMargins: boolean): PointResult {
   const joint = sampleJoint(model)
-  const whole = verdictOfSampled(joint)
+  return evaluateSampled(joint, joint.closes === 'current' ? null : prepare(joint), withMargins)
+}
+
+/** Laws of the outer task: what the sampled joint and its lift do not depend on. */
+const OUTER_LAWS: readonly ParameterName[] = ['K_pp', 'K_ip', 'K_pv', 'K_iv']
+
+/**
+ * Evaluates many points that differ in the named values alone.
+ *
+ * Where only laws of the outer task vary, the joint is sampled and lifted once for all points.
+ */
+export function pointEvaluator(model: JointModel, names: readonly ParameterName[], withMargins: boolean): (values: ArrayLike<number>) => PointResult {
+  if (!names.every((name) => OUTER_LAWS.includes(name))) return (values) => evaluatePoint(withValues(model, names, values), withMargins)
+  const base = sampleJoint(model)
+  const prepared = prepare(base)
+  return (values) => {
+    const changed = withValues(model, names, values)
+    validateJointModel(changed)
+    const closes = closedMode(changed)
+    return evaluateSampled({ ...base, model: changed, closes }, closes === 'current' ? null : prepared, withMargins)
+  }
+}
+
+function prepare(joint: SampledJoint): PreparedOuter {
+  const steps = outerSteps(joint)
+  return { steps, lifted: liftPlant(steps) }
+}
+
+function evaluateSampled(joint: SampledJoint, prepared: PreparedOuter | null, withMargins: boolean): PointResult {
+  const whole = verdictOfSampled(joint, prepared)
   if (!withMargins) return { ...whole, loops: {} }
   const loops: Partial<Record<ControlMode, LoopPoint>> = {}
-  const steps = joint.closes === 'current' ? null : outerSteps(joint)
-  const plant = steps ? liftPlant(steps) : null
-  const transfer = plant ? new OuterTransfer(joint, plant) : null
+  const transfer = prepared ? new OuterTransfer(joint, prepared.lifted) : null
   for (const closure of closuresOf(joint.closes)) {
-    const stability = stabilityOf(joint, steps, closure)
+    const stability = stabilityOf(joint, prepared?.steps ?? null, closure)
     if (stability.verdict !== 'stable') {
       loops[closure] = { ...UNSTABLE_MARGINS, verdict: stability.verdict }
       continue
     }
     const marks = resonances(stability)
     if (closure === 'current') loops.current = { ...marginsOf(currentSource(joint, undefined, marks), 'gain-and-phase'), verdict: 'stable' }
-    else if (plant && transfer) loops[closure] = { ...marginsOf(new OuterSource(joint, plant, closure, marks, transfer), 'gain-and-phase'), verdict: 'stable' }
+    else if (prepared && transfer) loops[closure] = { ...marginsOf(new OuterSource(joint, prepared.lifted, closure, marks, transfer), 'gain-and-phase'), verdict: 'stable' }
   }
   return { ...whole, loops }
 }

@@ -1,4 +1,5 @@
 import { expm, expmWorkspace, type ExpmWorkspace } from './discretise.ts'
+import { matrixPower } from './matrix-power.ts'
 import type { ControlMode, JointModel } from './model.ts'
 import { validateJointModel } from './model.ts'
 import { plantMatrices, supplyFactor } from './plant.ts'
@@ -44,6 +45,9 @@ export function closedMode(model: JointModel): ControlMode {
   return f.mode !== 'current' && velocity ? 'velocity' : 'current'
 }
 
+/** Powers up to this keep the exponential's accuracy. */
+const POWER_LIMIT = 8
+
 const workspaces = new Map<number, ExpmWorkspace>()
 function workspaceOf(n: number): ExpmWorkspace {
   let work = workspaces.get(n)
@@ -81,8 +85,10 @@ export function sampleValidJoint(model: JointModel, timing: Timing): SampledJoin
   // The angle kept is the one that the encoder reads, so that it is exactly 0 right after an outer sample.
   for (let j = 0; j < n; j++) block[(n - 1) * size + j] = C_omega[j]
   const work = workspaceOf(size)
-  const step = expm(block, size, timing.T_c, new Float64Array(size * size), work)
   const s = firmware.sensor_delay ?? 0
+  // The step over a whole current period is the q-th power of the part between offsets where both are needed and q is small.
+  const part = s === 0 && timing.q > 1 ? expm(block, size, timing.T_c / timing.q, new Float64Array(size * size), work) : null
+  const step = part && timing.q <= POWER_LIMIT ? matrixPower(part, size, timing.q) : expm(block, size, timing.T_c, new Float64Array(size * size), work)
   const so = firmware.outer_delay ?? 0
   const integrates = firmware.K_ic !== 0
   const { D } = firmware
@@ -145,7 +151,7 @@ export function sampleValidJoint(model: JointModel, timing: Timing): SampledJoin
   const rows = new Float64Array(q * nz)
   const direct = new Float64Array(q)
   const between = new Uint8Array(q)
-  const offsetRows = s === 0 && q > 1 ? rowsAtOffsets(block, size, timing, work) : null
+  const offsetRows = part ? rowsAtOffsets(part, size, q) : null
   for (let k = 0; k < q; k++) {
     const row = k * nz
     if (s > 0) {
@@ -172,16 +178,14 @@ export function sampleValidJoint(model: JointModel, timing: Timing): SampledJoin
   return { model, timing, closes, gamma, nz, F, G, theta, shift, nx, Ad, Bd, rows, direct, between }
 }
 
-/** The angle's row of e^{A·m·T_c/q}, m = 0…q−1, over the plant's states and the voltage: one exponential, then products. */
-function rowsAtOffsets(block: Float64Array, size: number, timing: Timing, work: ExpmWorkspace): Float64Array {
-  const { q, T_c } = timing
-  const E = expm(block, size, T_c / q, new Float64Array(size * size), work)
+/** The angle's row of e^{A·m·T_c/q}, m = 0…q−1, over the plant's states and the voltage, by products. */
+function rowsAtOffsets(part: Float64Array, size: number, q: number): Float64Array {
   const rows = new Float64Array(q * size)
   rows[size - 2] = 1
   for (let m = 1; m < q; m++) {
     for (let j = 0; j < size; j++) {
       let sum = 0
-      for (let k = 0; k < size; k++) sum += rows[(m - 1) * size + k] * E[k * size + j]
+      for (let k = 0; k < size; k++) sum += rows[(m - 1) * size + k] * part[k * size + j]
       rows[m * size + j] = sum
     }
   }

@@ -1,7 +1,7 @@
 import { NumericError } from './errors.ts'
 import { guardInteger, guardNumber, type JointModel } from './model.ts'
-import { parameterNamed, valueOf, withValues, type ParameterName } from './parameters.ts'
-import { evaluatePoint, type PointResult } from './point.ts'
+import { parameterNamed, valueOf, type ParameterName } from './parameters.ts'
+import { pointEvaluator, type PointResult } from './point.ts'
 import type { Verdict } from './stability.ts'
 
 /** Cells of the largest map. */
@@ -56,7 +56,7 @@ export class StabilityMap {
   readonly x: Float64Array
   readonly y: Float64Array
   private readonly names: readonly [ParameterName, ParameterName]
-  private readonly model: JointModel
+  private readonly evaluate: (values: ArrayLike<number>) => PointResult
   private readonly margins: boolean
   private readonly rho: Float64Array
   private readonly verdicts: Uint8Array
@@ -66,7 +66,6 @@ export class StabilityMap {
 
   /** @throws NumericError bounds-crossed, not-finite, unknown-parameter, too-large, bad-input */
   constructor(model: JointModel, x: MapAxis, y: MapAxis, options: { readonly margins: boolean }) {
-    this.model = model
     this.margins = options.margins
     this.names = [parameterNamed(x.parameter), parameterNamed(y.parameter)]
     if (this.names[0] === this.names[1]) throw new NumericError('bad-input', { field: 'y', value: y.parameter, text: `Both axes are ${y.parameter}; a map needs two parameters. Nothing was computed.` })
@@ -75,6 +74,7 @@ export class StabilityMap {
     this.y = axisValues('y', y)
     this.total = this.x.length * this.y.length
     if (this.total > CELLS_LIMIT) throw new NumericError('too-large', { field: 'map', value: this.total, limit: CELLS_LIMIT, text: `The map has ${this.total} cells, at most ${CELLS_LIMIT} are computed; nothing was computed. Ask for a coarser grid.` })
+    this.evaluate = pointEvaluator(model, this.names, options.margins)
     this.rho = new Float64Array(this.total)
     this.verdicts = new Uint8Array(this.total)
   }
@@ -89,7 +89,7 @@ export class StabilityMap {
     const width = this.x.length
     for (; this.count < end; this.count++) {
       const values = [this.x[this.count % width], this.y[Math.floor(this.count / width)]]
-      const point = evaluatePoint(withValues(this.model, this.names, values), this.margins)
+      const point = this.evaluate(values)
       this.rho[this.count] = point.rho
       this.verdicts[this.count] = MAP_VERDICTS.indexOf(point.verdict)
       if (this.margins) {

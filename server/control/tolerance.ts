@@ -1,7 +1,7 @@
 import { NumericError } from './errors.ts'
 import { guardInteger, guardNumber, type ControlMode, type JointModel } from './model.ts'
-import { parameterNamed, valueOf, withValues, type ParameterName } from './parameters.ts'
-import { evaluatePoint, type PointResult } from './point.ts'
+import { parameterNamed, valueOf, type ParameterName } from './parameters.ts'
+import { pointEvaluator, type PointResult } from './point.ts'
 import { latinHypercube } from './random.ts'
 import { rankBySensitivity, type Sensitivity } from './sensitivity.ts'
 import type { Verdict } from './stability.ts'
@@ -78,14 +78,13 @@ export class ToleranceSweep {
   readonly total: number
   readonly names: readonly ParameterName[]
   readonly vertexNames: readonly ParameterName[]
-  private readonly model: JointModel
+  private readonly evaluate: (values: ArrayLike<number>) => PointResult
   private readonly low: Float64Array
   private readonly high: Float64Array
   private readonly nominal: Float64Array
   private readonly vertexBits: Int32Array
   private readonly vertexCount: number
   private readonly cube: Float64Array
-  private readonly options: ToleranceOptions
   private readonly ranking: readonly Sensitivity[] | null
   private readonly rho: Float64Array
   private readonly verdicts: Verdict[] = []
@@ -97,8 +96,6 @@ export class ToleranceSweep {
    * @throws NumericError bounds-crossed, not-finite, unknown-parameter (each names the bound), too-large
    */
   constructor(model: JointModel, box: ToleranceBox, options: ToleranceOptions) {
-    this.model = model
-    this.options = options
     this.names = Object.keys(box).map(parameterNamed)
     const n = this.names.length
     if (n > BOUNDS_LIMIT) throw new NumericError('too-large', { field: 'box', value: n, limit: BOUNDS_LIMIT, text: `${n} bounded values, at most ${BOUNDS_LIMIT} are swept; nothing was computed.` })
@@ -121,6 +118,7 @@ export class ToleranceSweep {
     const samples = options.samples ?? (n > VERTEX_BOUNDS_LIMIT ? 1024 : 256)
     guardInteger('samples', samples, 0, SAMPLES_LIMIT)
     guardInteger('seed', options.seed, 0, 0xffffffff)
+    this.evaluate = pointEvaluator(model, this.names, options.margins)
     this.ranking = n > VERTEX_BOUNDS_LIMIT ? rankBySensitivity(model, this.names, this.low, this.high, options.margins) : null
     const chosen = this.ranking ? new Set(this.ranking.slice(0, VERTEX_BOUNDS_LIMIT).map((s) => s.name)) : null
     const bits: number[] = []
@@ -147,7 +145,7 @@ export class ToleranceSweep {
     while (this.done < end) {
       const index = this.done
       this.valuesAt(index, this.values)
-      this.take(index, evaluatePoint(withValues(this.model, this.names, this.values), this.options.margins))
+      this.take(index, this.evaluate(this.values))
     }
     return this.done === this.total
   }

@@ -1,6 +1,6 @@
 import { Characteristic } from './characteristic.ts'
 import { evaluatePolynomial, largestRoot, rootWorkspace, type RootWorkspace } from './largest-root.ts'
-import { liftPlant } from './lifted-plant.ts'
+import { emptyLift, liftPlant, type LiftedPlant } from './lifted-plant.ts'
 import type { JointModel } from './model.ts'
 import { outerSteps, type OuterSteps } from './outer-steps.ts'
 import { sampleJoint, type SampledJoint } from './sampled-joint.ts'
@@ -27,6 +27,7 @@ const CORRECTION = 1e-7
 interface Engine {
   readonly characteristic: Characteristic
   readonly work: RootWorkspace
+  readonly lifted: LiftedPlant
   /** Root of the last joint of this shape: its neighbour in a sweep is near. */
   readonly guess: { re: number; im: number }
   primed: boolean
@@ -51,11 +52,18 @@ export function verdict(model: JointModel): StabilityVerdict {
   return verdictOfSampled(sampleJoint(model))
 }
 
+/** Outer steps and their lift, computed once for many laws on one sampled joint. */
+export interface PreparedOuter {
+  readonly steps: OuterSteps
+  readonly lifted: LiftedPlant
+}
+
 /** As verdict, for a joint already sampled. */
-export function verdictOfSampled(joint: SampledJoint, steps: OuterSteps | null = joint.closes === 'current' ? null : outerSteps(joint)): StabilityVerdict {
+export function verdictOfSampled(joint: SampledJoint, prepared: PreparedOuter | null = null): StabilityVerdict {
   const { closes, timing } = joint
-  if (closes !== 'current' && steps && timing.q <= POLYNOMIAL_Q && steps.start.length <= POLYNOMIAL_STATES) {
-    const rho = radiusByPolynomial(joint, steps, closes)
+  const steps = closes === 'current' ? null : (prepared?.steps ?? outerSteps(joint))
+  if (closes !== 'current' && steps) {
+    const rho = radiusByPolynomial(joint, steps, closes, prepared?.lifted ?? null)
     if (rho >= 0 && Math.abs(rho - 1) > NEAR) return { rho, verdict: verdictOf(rho, EPSILON), epsilon: EPSILON, route: 'polynomial' }
   }
   const stability = stabilityOf(joint, steps, closes)
@@ -63,10 +71,12 @@ export function verdictOfSampled(joint: SampledJoint, steps: OuterSteps | null =
   return { rho, verdict: verdictOf(rho, stability.epsilon), epsilon: stability.epsilon, route: 'eigenvalues' }
 }
 
-/** ρ, or −1 where the route proves nothing. */
-function radiusByPolynomial(joint: SampledJoint, steps: OuterSteps, closure: 'velocity' | 'position'): number {
+/** ρ of an outer closure, or −1 where the polynomial route proves nothing or is not worth its cost. */
+export function radiusByPolynomial(joint: SampledJoint, steps: OuterSteps, closure: 'velocity' | 'position', lifted: LiftedPlant | null): number {
+  if (steps.q > POLYNOMIAL_Q || steps.start.length > POLYNOMIAL_STATES) return -1
   const engine = engineFor(joint, steps, closure)
-  engine.characteristic.setPlant(liftPlant(steps))
+  if (!lifted) engine.characteristic.setPlant(liftPlant(steps, engine.lifted))
+  else if (!engine.characteristic.holds(lifted)) engine.characteristic.setPlant(lifted)
   return radiusOf(engine, joint)
 }
 
@@ -103,7 +113,7 @@ function engineFor(joint: SampledJoint, steps: OuterSteps, closure: 'velocity' |
   if (!engine) {
     if (engines.size >= ENGINES_KEPT) engines.delete(engines.keys().next().value as string)
     const characteristic = new Characteristic(steps.q, steps.start.length, W, position, integrators)
-    engine = { characteristic, work: rootWorkspace(characteristic.degree), guess: { re: 1, im: 0 }, primed: false }
+    engine = { characteristic, lifted: emptyLift(steps.q, steps.start.length), work: rootWorkspace(characteristic.degree), guess: { re: 1, im: 0 }, primed: false }
     engines.set(key, engine)
   }
   return engine
