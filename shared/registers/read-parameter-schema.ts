@@ -98,11 +98,11 @@ function checkParameter(parameter: Parameter, root: Json, list: ProblemList): vo
   for (const key of ['default', 'const']) {
     if (stated[key] !== undefined && typeof stated[key] === 'object') list.add(under(parameter.pointer, key), 'wrong-type', `${shown(stated[key])} is no value.`)
   }
-  if (readOnly && stated.default !== undefined) {
+  if (readOnly && parameter.default !== null) {
     list.add(under(parameter.pointer, 'default'), 'read-only', 'A read-only register has no default: the board writes it.')
   } else if (parameter.default !== null) {
     const wrong = problemOfValue(parameter, parameter.default)
-    if (wrong) list.add(under(parameter.pointer, stated.default === undefined ? 'const' : 'default'), `default-${wrong.code}`, wrong.message)
+    if (wrong) list.add(under(parameter.pointer, parameter.default === parameter.constant ? 'const' : 'default'), `default-${wrong.code}`, wrong.message)
   } else if (!parameter.register) {
     list.add(parameter.pointer, 'constant-without-value', 'A parameter without x-register is a constant of the firmware and needs a const or a default.')
   }

@@ -49,6 +49,8 @@ const REFUSED: [string, unknown, string, string][] = [
   ['default the register cannot hold', schemaJson({ a: { ...u8(0), default: 256 } }), 'default-out-of-range', '/properties/a/default'],
   ['maximum below minimum', schemaJson({ a: { ...u8(0), minimum: 2, maximum: 1 } }), 'empty-range', '/properties/a/maximum'],
   ['default on a read-only register', schemaJson({ a: u8(0, { access: 'ro' }) }), 'read-only', '/properties/a/default'],
+  ['default from a reference on a read-only register', schemaJson({ a: { $ref: '#/$defs/d', 'x-register': { address: 0, encoding: 'u8', access: 'ro' } } }, {}, { $defs: { d: { type: 'number', default: 1 } } }), 'read-only', '/properties/a/default'],
+  ['constant outside its register', schemaJson({ a: { type: 'number', const: 300, 'x-register': { address: 0, encoding: 'u8' } } }), 'default-out-of-range', '/properties/a/const'],
   ['constant without a value', schemaJson({ a: { type: 'number' } }), 'constant-without-value', '/properties/a'],
   ['a text parameter', schemaJson({ a: { type: 'string' } }), 'bad-type', '/properties/a/type'],
   ['a group', schemaJson({ a: { type: 'object', properties: {} } }), 'nested', '/properties/a'],
