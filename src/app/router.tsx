@@ -26,6 +26,7 @@ const pages: RouteObject[] = [
   { path: 'machines/:machine/families/:family', lazy: () => import('../routes/family.tsx') },
   { path: 'firmware', lazy: () => import('../routes/firmware.tsx') },
   { path: 'firmware/:line/:version', lazy: () => import('../routes/firmware-version.tsx') },
+  { path: 'search', lazy: () => import('../routes/search.tsx') },
 ]
 
 export const routes: RouteObject[] = [

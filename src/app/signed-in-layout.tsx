@@ -17,9 +17,10 @@ import { machineItems, machineOfPath, personItems, placesFor, rolesInWords } fro
 
 /** Whoever is not signed in goes to the sign-in page, and back here after it. */
 export async function signedInLoader({ request }: LoaderFunctionArgs) {
-  void queryClient.prefetchQuery(machinesQuery)
   try {
-    return await queryClient.ensureQueryData(meQuery)
+    const me = await queryClient.ensureQueryData(meQuery)
+    void queryClient.prefetchQuery(machinesQuery)
+    return me
   } catch (error) {
     if (!(error instanceof ApiProblem) || error.code !== 'not-signed-in') throw error
     const { pathname, search } = new URL(request.url)

@@ -6,6 +6,7 @@ import { Waiting } from '../ui/waiting.tsx'
 import type { EditorMarker, JsonEditorProps } from './editor-props.ts'
 import { bindSchema, modelPath, monaco } from './monaco-setup.ts'
 import { showTheme } from './monaco-theme.ts'
+import './monaco.css'
 
 type CodeEditor = Parameters<OnMount>[0]
 type Model = NonNullable<ReturnType<CodeEditor['getModel']>>

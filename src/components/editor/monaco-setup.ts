@@ -9,6 +9,9 @@ self.MonacoEnvironment = { getWorker: (_id, label) => (label === 'json' ? new Js
 // Shipped with the application; the loader would otherwise fetch the editor from another host.
 loader.config({ monaco: monaco as never })
 
+/** The address of a text's model; a schema is bound to it by name. */
+export const modelPath = (path: string) => `inmemory://text/${path}`
+
 const schemas = new Map<string, object>()
 
 function tell() {
@@ -18,13 +21,15 @@ function tell() {
     trailingCommas: 'error',
     schemaValidation: 'warning',
     enableSchemaRequest: false,
-    schemas: [...schemas].map(([path, schema]) => ({ uri: `inmemory://schema/${path}`, fileMatch: [`inmemory://text/${path}`], schema })),
+    schemaRequest: 'ignore',
+    schemas: [...new Set(schemas.values())].map((schema) => {
+      const paths = [...schemas].filter(([, s]) => s === schema).map(([path]) => path)
+      // A text that names its schema by $schema is judged by the one with that name alone.
+      return { uri: '$id' in schema && typeof schema.$id === 'string' ? schema.$id : `inmemory://schema/${paths[0]}`, fileMatch: paths.map(modelPath), schema }
+    }),
   })
 }
 tell()
-
-/** The address of a text's model; a schema is bound to it by name. */
-export const modelPath = (path: string) => `inmemory://text/${path}`
 
 /** Binds a schema to a text. Returns the way to take it back. */
 export function bindSchema(path: string, schema: object): () => void {

@@ -13,7 +13,7 @@ function inOne(): object {
       }),
     )
   }
-  const { $schema: _dialect, $id: _id, $vocabulary: _vocabulary, $defs, ...rest } = metaSchema
+  const { $schema: _dialect, $vocabulary: _vocabulary, $defs, ...rest } = metaSchema
   const words = Object.fromEntries(Object.entries(vocabulary.$defs).map(([name, v]) => [`vocabulary-${name}`, rename(v, false)]))
   return { ...(rename(rest, true) as object), $defs: { ...(rename($defs, true) as object), ...words } }
 }

@@ -41,7 +41,8 @@ export function SchemaEditor({ version, draft, reading }: SchemaEditorProps) {
         reveal={reveal}
         height="min(64vh, 720px)"
       />
-      <p className="help">Ctrl+Space completes, hovering explains, Ctrl+M lets Tab leave the text.</p>
+      <p className="help lg:hidden">The editor wants a screen of 1024 px; here it serves for reading.</p>
+      <p className="help max-lg:hidden">Ctrl+Space completes, hovering explains, Ctrl+M lets Tab leave the text.</p>
       <div className="mt-3 flex flex-wrap items-center gap-3">
         <Button kind="primary" unavailable={draft.dirty ? null : 'Nothing is altered since it was saved.'} pending={draft.saving} onClick={draft.save}>
           Save the draft
