@@ -27,13 +27,14 @@ export interface Record {
 }
 
 /**
- * At most about `points` of a run's samples, true ones, in order.
+ * At most about `points` of a run's samples, true ones, in order; none for 0.
  *
  * Of each bucket the samples with the least and greatest current and request are kept, so that a peak of a
  * single tick stays visible; the first and last samples always.
  */
 export function decimate(record: Record, points: number): Traces {
-  const { count, T_c } = record
+  const { T_c } = record
+  const count = points === 0 ? 0 : record.count
   const kept = count <= points ? null : keptTicks(record, Math.max(1, Math.floor(points / 4)))
   const n = kept === null ? count : kept.length
   const pick = (from: Float64Array): Float64Array => {
