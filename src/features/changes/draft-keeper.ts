@@ -37,7 +37,7 @@ export interface Sender {
   fresh(): Promise<ChangeView>
 }
 
-const VALUES_PAUSE = 350
+const VALUES_PAUSE = 150
 const TEXT_PAUSE = 800
 const KEEP_PAUSE = 250
 const RETRIES = [1000, 2000, 4000, 8000, 15_000]

@@ -20,7 +20,9 @@ export function readTyped(parameter: Parameter, text: string): TypedValue {
   const read = read1(parameter, text.trim())
   if (read.kind === 'refused') return read
   const problem = problemOfValue(parameter, read.value)
-  return problem ? { kind: 'refused', message: problem.message } : read
+  if (!problem) return read
+  // The register's own range is worth saying where it is what refuses; beside the schema's bound it only lengthens the sentence.
+  return { kind: 'refused', message: problem.code === 'out-of-range' ? problem.message : problem.message.replace(/ Its register \(.*$/, '') }
 }
 
 function read1(parameter: Parameter, text: string): TypedValue {

@@ -70,7 +70,7 @@ export function CascadeView({ set, base, schemas, family, joint, onEdit, driveTr
         position={{ note: clamp('speed.limit'), children: cells(blocks.position) }}
         velocity={{ note: clamp('current.limit'), children: cells(blocks.velocity) }}
         current={{ note: voltageClamp(byRole), children: cells(blocks.current) }}
-        velocityWindow={byRole.has('velocity.window') ? { note: lag(byRole), children: cells(blocks.window, 'Samples') } : undefined}
+        velocityWindow={byRole.has('velocity.window') ? { children: <>{cells(blocks.window, 'Samples')}{lag(byRole)}</> } : undefined}
         sensor={{
           note: `on the ${driveTrain.encoder}, ${driveTrain.bits} bit`,
           children: <div className="grid sm:grid-cols-2">{joint || onEdit === null ? cells(blocks.sensor) : <SensorOfFamily set={set} base={base} schemas={schemas} family={family} byRole={byRole} onEdit={onEdit} />}</div>,
@@ -112,7 +112,7 @@ function voltageClamp(byRole: ByRole) {
 /** The window lags by half its span. */
 function lag(byRole: ByRole) {
   const [window, rate] = [si(byRole, 'velocity.window'), si(byRole, 'rate.outer')]
-  return window !== null && rate !== null && rate > 0 ? <span className="whitespace-nowrap">lags <Num value={window / rate / 2} unit="s" /></span> : undefined
+  return window !== null && rate !== null && rate > 0 ? <p className="px-3 pb-2 text-12 text-ink-2">lags the speed by <Num value={window / rate / 2} unit="s" /></p> : undefined
 }
 
 function torque(byRole: ByRole, set: MachineSet, family: string): number | null {

@@ -56,7 +56,9 @@ export function ChangeEditor({ change, personId, people, firmware, useCheck, onS
   useUndoKeys(keeper)
 
   const altered = useMemo(() => alteredIn(set, view.base), [set, view.base])
-  const scope = scopeOf(search, set, altered.most)
+  // Chosen once: the page does not move to another family because a value fell back into its notch.
+  const [first] = useState(altered.most)
+  const scope = scopeOf(search, set, first)
   const names = useMemo(() => firmwareNames(view.set, view.base), [view.set, view.base])
   const schemas = useQuery(schemasQuery(view.key, names)).data ?? {}
   const { check, stale, panel, proposes } = useCheck({ state, joints: jointsInScope(scope, set) })

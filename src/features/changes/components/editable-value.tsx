@@ -74,7 +74,8 @@ function Notes({ at, own, onEdit, onClear, bare }: { at: ValueAt; own: number; o
     own > 0 && `${own === 1 ? 'one joint has' : `${own} joints have`} a value of its own`.replace('have a value of its own', 'have values of their own'),
     bare && rangeText(at.parameter),
   ].filter(Boolean)
-  const ways = onEdit ? waysBack(at) : []
+  // A family's values stand above firmware defaults as a rule; only what alters is worth a line here.
+  const ways = onEdit && (at.place.kind === 'joint' || at.changed) ? waysBack(at).slice(0, 1) : []
   if (parts.length === 0 && ways.length === 0) return null
   return (
     <>

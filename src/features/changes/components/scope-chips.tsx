@@ -5,18 +5,19 @@ import { HexAddress } from '../../../components/ui/hex-address.tsx'
 import { Menu } from '../../../components/ui/menu.tsx'
 import { count } from '../../../lib/format.ts'
 import { scopeQuery, type Scope } from '../scope.ts'
-import { jointsOf } from '../value-cells.ts'
+import { jointsOf, parameterOfJoint, type Schemas } from '../value-cells.ts'
 
 export interface ScopeChipsProps {
   scope: Scope
   set: MachineSet
   base: MachineSet
+  schemas: Schemas
   /** families and joints that the change alters, by key */
   altered: { families: ReadonlySet<string>; joints: ReadonlySet<string> }
 }
 
 /** What is looked at: a family, or one of its joints. A joint says when it holds values of its own, or has just given them up. */
-export function ScopeChips({ scope, set, base, altered }: ScopeChipsProps) {
+export function ScopeChips({ scope, set, base, schemas, altered }: ScopeChipsProps) {
   const { family } = scope
   if (!family) return null
   const joints = jointsOf(set, family)
@@ -45,7 +46,7 @@ export function ScopeChips({ scope, set, base, altered }: ScopeChipsProps) {
           current={scope.joint === joint}
           strong={set.joints[joint].name}
           quiet={<HexAddress address={set.joints[joint].address} />}
-          note={ownWords(joint, set, base)}
+          note={ownWords(joint, set, base, schemas)}
           altered={altered.joints.has(joint)}
         />
       ))}
@@ -63,11 +64,16 @@ function Chip({ to, current, strong, quiet, note, altered = false }: { to: strin
   )
 }
 
-/** "own velocityGain given up", "2 of its own". Short: the table names them. */
-function ownWords(joint: string, set: MachineSet, base: MachineSet): string | undefined {
-  const now = Object.keys(set.joints[joint].values)
-  const before = Object.keys(base.joints[joint]?.values ?? {})
+/** "own velocity gain", "2 of its own, 1 given up". Values bound to its board are a joint's own by nature and not counted. */
+function ownWords(joint: string, set: MachineSet, base: MachineSet, schemas: Schemas): string | undefined {
+  const free = (names: string[]) => names.filter((n) => !parameterOfJoint(set, joint, n, schemas)?.boardBound)
+  const now = free(Object.keys(set.joints[joint].values))
+  const before = free(Object.keys(base.joints[joint]?.values ?? {}))
   const given = before.filter((n) => !now.includes(n))
-  const parts = [now.length > 0 ? `${now.length} of its own` : '', given.length > 0 ? `${given.length} given up` : ''].filter(Boolean)
+  const title = (name: string) => (parameterOfJoint(set, joint, name, schemas)?.title ?? name).toLowerCase()
+  const parts = [
+    now.length === 1 ? `own ${title(now[0])}` : now.length > 1 ? `${now.length} of its own` : '',
+    given.length === 1 ? `own ${title(given[0])} given up` : given.length > 1 ? `${given.length} given up` : '',
+  ].filter(Boolean)
   return parts.join(', ') || undefined
 }

@@ -46,7 +46,7 @@ export function ValueViews(props: ValueViewsProps) {
     <>
       <div className="flex flex-wrap items-center gap-x-4 gap-y-2 border-b border-hairline pb-3">
         <ViewSwitch label="views of the values" views={editViews.map((view) => ({ label: view, to: scopeQuery(scope, { view }), current: scope.view === view }))} />
-        <ScopeChips scope={scope} set={state.set} base={base} altered={altered} />
+        <ScopeChips scope={scope} set={state.set} base={base} schemas={props.schemas} altered={altered} />
       </div>
       <p className="mt-2 text-13 text-ink-2 lg:hidden">The editor wants a screen 1024 px wide; reading and signing work here.</p>
       <div className="mt-3">

@@ -19,7 +19,7 @@ export interface WaitingChangeProps {
 export function WaitingChange({ change, to, act, now, children }: WaitingChangeProps) {
   const others = change.writers.filter((w) => w !== change.author)
   return (
-    <li className="grid gap-x-8 gap-y-3 border-b border-hairline py-4 md:grid-cols-[minmax(0,1fr)_minmax(200px,auto)]">
+    <li className="grid gap-x-8 gap-y-3 border-b border-hairline py-4 md:grid-cols-[minmax(0,1fr)_390px]">
       <div className="min-w-0">
         <h3 className="text-20 font-medium">
           <span className="num mr-2 text-16 font-normal text-ink-2">{change.number}</span>
