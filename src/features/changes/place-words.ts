@@ -1,6 +1,8 @@
+import type { Edit } from '../../../shared/parameters/edits.ts'
 import { fromPointer } from '../../../shared/parameters/paths.ts'
 import type { MachineSet, Value } from '../../../shared/parameters/machine-set.ts'
 import type { Parameter } from '../../../shared/registers/parameter-schema.ts'
+import { formatHex } from '../../lib/format.ts'
 import { lineOfLetter } from './drive-train-letters.ts'
 import { shownValue } from './typed-value.ts'
 import type { Schemas } from './value-cells.ts'
@@ -35,13 +37,20 @@ export const unitOfPlace = (pointer: string, schemas: Schemas): string => {
   return (part === 'driveTrain' ? lineOfLetter(name)?.unit : parameterNamed(name, schemas)?.unit) ?? ''
 }
 
-/** What stands at a place, short: a value, a quantity with its bounds, "nothing", or "as a whole". */
-export function contentWords(content: unknown): string {
+/** What stands at a place, short: a value, a quantity with its bounds, "nothing", or the name of a joint, family or bus. */
+export function contentWords(content: unknown, pointer = ''): string {
   if (content === undefined || content === null) return 'nothing of its own'
+  if (typeof content === 'number' && pointer.endsWith('/address')) return formatHex(content)
   if (typeof content !== 'object') return shownValue(content as Value)
   if ('value' in content && 'low' in content && 'high' in content) {
     const q = content as { value: number; low: number; high: number }
     return `${shownValue(q.value)} (${shownValue(q.low)} to ${shownValue(q.high)})`
   }
-  return 'as a whole'
+  return 'name' in content ? String(content.name) : 'as a whole'
+}
+
+/** A joint, family or bus that came or went as a whole: "R4 knee added"; null for any other edit. */
+export function wholeWords({ pointer, from, to }: Edit): string | null {
+  if (fromPointer(pointer).length !== 2) return null
+  return to === undefined || to === null ? `${contentWords(from)} removed` : from === undefined || from === null ? `${contentWords(to)} added` : null
 }

@@ -3,13 +3,10 @@ import type { Parameter } from '../../../shared/registers/parameter-schema.ts'
 import { toDouble } from '../../../shared/registers/rational.ts'
 import { roundingError, toPhysical } from '../../../shared/registers/encoding.ts'
 import { problemOfValue, readValue } from '../../../shared/registers/value-check.ts'
-import { readQuantity } from '../../../shared/units/quantity.ts'
 import { formatExact, formatHex, formatNumber } from '../../lib/format.ts'
+import { readTypedQuantity } from './display-unit.ts'
 
 export type TypedValue = { kind: 'value'; value: Value } | { kind: 'refused'; message: string }
-
-/** Digits kept of a value that a change of unit makes endless (deg to rad): more than any register tells apart. */
-const ENDLESS_DIGITS = 12
 
 /**
  * What a person typed for a parameter, such as `350 mA`, `12 deg`, `60 rpm`, `5.6`, as a value of the set.
@@ -17,7 +14,7 @@ const ENDLESS_DIGITS = 12
  * @returns the value in the parameter's unit, or what is wrong with it in words: unit, type, register range, the schema's bounds
  */
 export function readTyped(parameter: Parameter, text: string): TypedValue {
-  const read = read1(parameter, text.trim())
+  const read = readKind(parameter, text.trim())
   if (read.kind === 'refused') return read
   const problem = problemOfValue(parameter, read.value)
   if (!problem) return read
@@ -25,7 +22,7 @@ export function readTyped(parameter: Parameter, text: string): TypedValue {
   return { kind: 'refused', message: problem.code === 'out-of-range' ? problem.message : problem.message.replace(/ Its register \(.*$/, '') }
 }
 
-function read1(parameter: Parameter, text: string): TypedValue {
+function readKind(parameter: Parameter, text: string): TypedValue {
   if (parameter.kind === 'boolean') {
     if (text === 'true' || text === 'on') return { kind: 'value', value: true }
     if (text === 'false' || text === 'off') return { kind: 'value', value: false }
@@ -35,10 +32,7 @@ function read1(parameter: Parameter, text: string): TypedValue {
     const choice = parameter.choices?.find((c) => String(c) === text)
     return choice === undefined ? { kind: 'refused', message: `${parameter.title} is one of ${(parameter.choices ?? []).join(', ')}.` } : { kind: 'value', value: choice }
   }
-  const quantity = readQuantity(text, parameter.unit)
-  if (quantity.kind === 'refused') return quantity
-  const value = quantity.rounded && typeof quantity.value === 'number' ? Number(quantity.value.toPrecision(ENDLESS_DIGITS)) : quantity.value
-  return { kind: 'value', value }
+  return readTypedQuantity(text, parameter.unit)
 }
 
 /** A value as it stands in a field: every digit of it. */

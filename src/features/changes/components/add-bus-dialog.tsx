@@ -1,9 +1,9 @@
 import { useState } from 'react'
 import { toPointer } from '../../../../shared/parameters/paths.ts'
-import { readQuantity } from '../../../../shared/units/quantity.ts'
 import { Button } from '../../../components/ui/button.tsx'
 import { Dialog } from '../../../components/ui/dialog.tsx'
 import { TextField } from '../../../components/ui/text-field.tsx'
+import { readTypedQuantity } from '../display-unit.ts'
 import { makeKey } from '../make-key.ts'
 import type { AddDialogProps } from './add-joint-dialog.tsx'
 
@@ -22,7 +22,7 @@ export function AddBusDialog({ set, onEdit, onClose }: AddDialogProps) {
   const [pressed, setPressed] = useState(false)
   const key = makeKey(name, Object.keys(set.buses))
   const read = (f: (typeof fields)[number]) => {
-    const q = readQuantity(typed[f.key], f.unit === 'bit/s' ? null : f.unit)
+    const q = readTypedQuantity(typed[f.key], f.unit === 'bit/s' ? null : f.unit)
     if (q.kind === 'refused') return { error: q.message, value: 0 }
     if (typeof q.value !== 'number' || !(q.value > 0 && q.value >= f.low && q.value <= f.high)) return { error: f.high === Infinity ? 'It must be above 0.' : `It is ${f.low} to ${f.high}.`, value: 0 }
     return { error: null, value: q.value }

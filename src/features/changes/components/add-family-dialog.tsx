@@ -1,12 +1,12 @@
 import { useState } from 'react'
 import type { DriveTrain } from '../../../../shared/parameters/machine-set.ts'
 import { toPointer } from '../../../../shared/parameters/paths.ts'
-import { readQuantity } from '../../../../shared/units/quantity.ts'
 import { Button } from '../../../components/ui/button.tsx'
 import { Dialog } from '../../../components/ui/dialog.tsx'
 import { Select } from '../../../components/ui/select.tsx'
 import { TextField } from '../../../components/ui/text-field.tsx'
 import { letterLines, type LetterLine } from '../drive-train-letters.ts'
+import { readTypedQuantity } from '../display-unit.ts'
 import { makeKey } from '../make-key.ts'
 import type { AddDialogProps } from './add-joint-dialog.tsx'
 
@@ -64,7 +64,7 @@ export function AddFamilyDialog({ set, onEdit, onClose, onAdded }: AddDialogProp
 
 function read(line: LetterLine, text: string): number | string | null {
   if (line.choices) return text
-  const q = readQuantity(text, line.unit)
+  const q = readTypedQuantity(text, line.unit)
   return q.kind === 'value' && typeof q.value === 'number' ? q.value : null
 }
 

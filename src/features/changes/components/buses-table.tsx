@@ -41,7 +41,7 @@ export function BusesTable({ set, base, onEdit, onAdd }: BusesTableProps) {
               {figures.map((f) => (
                 <th key={f.field} scope="col" className="end">
                   {f.head}
-                  {f.unit && <span className="unit block font-normal">{f.unit}</span>}
+                  {f.unit && <span className="unit block font-normal">{f.field === 'capacitance' ? 'pF' : f.unit}</span>}
                 </th>
               ))}
               <th scope="col">
@@ -63,6 +63,7 @@ export function BusesTable({ set, base, onEdit, onAdd }: BusesTableProps) {
                         label={`${f.head.toLowerCase()} of ${bus.name}`}
                         value={bus[f.field]}
                         unit={f.unit}
+                        shownIn={f.field === 'capacitance' ? 'pF' : f.unit}
                         changed={before !== undefined && !same(before[f.field], bus[f.field])}
                         mayBeEmpty={!f.needed}
                         onSettle={onEdit && ((v) => (v !== undefined || !f.needed) && put(key, f.field, v))}

@@ -26,10 +26,10 @@ export function ConflictsPanel({ conflicts, sets, schemas, whoAt, onDecide }: Co
             <p className="text-13">{placeWords(c.pointer, sets, schemas)}</p>
             <p className="mt-1 flex flex-wrap gap-x-5 text-13">
               <span>
-                theirs <span className="num font-medium">{contentWords(c.now)}</span> <span className="unit">{unit}</span>
+                theirs <span className="num font-medium">{contentWords(c.now, c.pointer)}</span> <span className="unit">{unit}</span>
               </span>
               <span>
-                yours <span className="num font-medium">{contentWords(c.yours)}</span> <span className="unit">{unit}</span>
+                yours <span className="num font-medium">{contentWords(c.yours, c.pointer)}</span> <span className="unit">{unit}</span>
               </span>
             </p>
             <div className="mt-2 flex gap-2">

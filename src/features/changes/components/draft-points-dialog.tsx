@@ -9,7 +9,7 @@ import { Dialog } from '../../../components/ui/dialog.tsx'
 import { EmptyState } from '../../../components/ui/empty-state.tsx'
 import { Time } from '../../../components/ui/time.tsx'
 import { count } from '../../../lib/format.ts'
-import { contentWords, placeWords, unitOfPlace } from '../place-words.ts'
+import { contentWords, placeWords, unitOfPlace, wholeWords } from '../place-words.ts'
 import type { Schemas } from '../value-cells.ts'
 
 export interface DraftPointsDialogProps {
@@ -43,9 +43,13 @@ export function DraftPointsDialog({ query, sets, schemas, onGoBack, onClose, pen
                     {p.edits.length === 0 && <li>{p.number === 1 ? 'as it was drafted' : 'comments or layout only'}</li>}
                     {p.edits.slice(0, 4).map((e) => (
                       <li key={e.pointer}>
-                        {placeWords(e.pointer, sets, schemas)}: <span className="num">{contentWords(e.from)}</span>
-                        <Arrow />
-                        <span className="num">{contentWords(e.to)}</span> {unitOfPlace(e.pointer, schemas)}
+                        {wholeWords(e) ?? (
+                          <>
+                            {placeWords(e.pointer, sets, schemas)}: <span className="num">{contentWords(e.from, e.pointer)}</span>
+                            <Arrow />
+                            <span className="num">{contentWords(e.to, e.pointer)}</span> {unitOfPlace(e.pointer, schemas)}
+                          </>
+                        )}
                       </li>
                     ))}
                     {p.edits.length > 4 && <li>and {count(p.edits.length - 4, 'place')} more</li>}

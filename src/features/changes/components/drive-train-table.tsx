@@ -3,10 +3,12 @@ import type { Edit } from '../../../../shared/parameters/edits.ts'
 import { same } from '../../../../shared/parameters/edits.ts'
 import type { DriveTrain, MachineSet } from '../../../../shared/parameters/machine-set.ts'
 import { toPointer } from '../../../../shared/parameters/paths.ts'
-import { Num } from '../../../components/ui/num.tsx'
 import { SectionHeading } from '../../../components/ui/section-heading.tsx'
 import { letterGroups, partOf, toleranceOf, type Filled, type LetterLine, withPart } from '../drive-train-letters.ts'
+import { displayUnit, inUnit } from '../display-unit.ts'
 import { LetterSymbol } from './letter-symbol.tsx'
+import { formatFixed } from '../../../lib/format.ts'
+import { shownValue } from '../typed-value.ts'
 import { QuantityInput } from './quantity-input.tsx'
 
 export interface DriveTrainTableProps {
@@ -27,7 +29,7 @@ export function DriveTrainTable({ set, base, family, onEdit }: DriveTrainTablePr
   }
   return (
     <section id="drive-train" aria-label={`drive train of the ${name} family`} className="scroll-mt-4">
-      <SectionHeading aux="SI; bounds are what the tolerance sweep walks">Drive train of the {name} family</SectionHeading>
+      <SectionHeading aux="typed with any unit; the bounds are what the tolerance sweep walks">Drive train of the {name} family</SectionHeading>
       <div className="table-frame mt-2">
         <table className="table table-dense">
           <thead>
@@ -38,6 +40,7 @@ export function DriveTrainTable({ set, base, family, onEdit }: DriveTrainTablePr
               <th scope="col" className="end">Value</th>
               <th scope="col" className="end">Low</th>
               <th scope="col" className="end">High</th>
+              <th scope="col" className="end">Tolerance</th>
               <th scope="col" className="end">Released</th>
             </tr>
           </thead>
@@ -47,7 +50,7 @@ export function DriveTrainTable({ set, base, family, onEdit }: DriveTrainTablePr
             return (
               <tbody key={group.title}>
                 <tr>
-                  <th scope="rowgroup" colSpan={7} className="!border-hairline !pt-3">
+                  <th scope="rowgroup" colSpan={8} className="!border-hairline !pt-3">
                     {group.title}
                   </th>
                 </tr>
@@ -68,11 +71,15 @@ function LetterRow({ line, driveTrain, before, onPut }: { line: LetterLine; driv
   const stored = driveTrain[line.letter]
   const altered = before !== undefined && !same(stored, before[line.letter])
   const tolerance = toleranceOf(stored)
+  const nominal = partOf(stored ?? before?.[line.letter], 'value')
+  const unit = displayUnit(line.unit, typeof nominal === 'number' ? nominal : undefined)
+  const released = partOf(before?.[line.letter], 'value')
   const part = (p: 'value' | 'low' | 'high', label: string) => (
     <QuantityInput
       label={`${line.words}, ${label}`}
       value={partOf(stored, p)}
       unit={line.unit}
+      shownIn={unit}
       choices={line.choices}
       changed={altered && before !== undefined && partOf(before[line.letter], p) !== partOf(stored, p)}
       mayBeEmpty={p !== 'value' || !line.needed}
@@ -85,13 +92,12 @@ function LetterRow({ line, driveTrain, before, onPut }: { line: LetterLine; driv
         <LetterSymbol line={line} />
       </td>
       <td className="text-13 text-ink-2">{line.words}</td>
-      <td className="text-13 text-ink-2">{line.unit}</td>
+      <td className="text-13 text-ink-2">{unit}</td>
       <td className="end">{part('value', 'value')}</td>
       <td className="end">{line.bounded && part('low', 'low')}</td>
       <td className="end">{line.bounded && part('high', 'high')}</td>
-      <td className={`end text-13 ${altered ? 'text-ink' : 'text-ink-2'}`}>
-        {altered ? <Num value={partOf(before?.[line.letter], 'value')} digits={4} /> : tolerance ? <span className="num">{`${tolerance.low.toFixed(0)} to +${tolerance.high.toFixed(0)} %`.replace('-', '\u2212')}</span> : ''}
-      </td>
+      <td className="end num text-13 text-ink-2">{tolerance && `${formatFixed(tolerance.low, 0, { plus: true })} to ${formatFixed(tolerance.high, 0, { plus: true })} %`}</td>
+      <td className="end num text-13">{altered && (released === undefined ? 'none' : shownValue(typeof released === 'number' ? inUnit(released, line.unit, unit) : released))}</td>
     </tr>
   )
 }
@@ -129,7 +135,7 @@ function AddLetter({ lines, onAdd }: { lines: readonly LetterLine[]; onAdd: (lin
           />
         )}
       </td>
-      <td colSpan={3} />
+      <td colSpan={4} />
     </tr>
   )
 }

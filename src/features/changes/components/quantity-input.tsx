@@ -1,11 +1,14 @@
 import { useId, useState } from 'react'
-import { readQuantity } from '../../../../shared/units/quantity.ts'
+import { inUnit, readTypedQuantity } from '../display-unit.ts'
 import { shownValue, valueText } from '../typed-value.ts'
 
 export interface QuantityInputProps {
   label: string
   value: number | string | undefined
+  /** as it is stored */
   unit: string | null
+  /** as it is shown, and taken when typed without a unit */
+  shownIn?: string | null
   changed: boolean
   choices?: readonly string[]
   /** an empty field takes the value away */
@@ -16,12 +19,13 @@ export interface QuantityInputProps {
 }
 
 /** A quantity typed in a table, in its own unit or another of the same kind ("0.42 mH"). Settled on Enter or leaving; Esc takes it back. */
-export function QuantityInput({ label, value, unit, changed, choices, mayBeEmpty, autoFocus = false, onSettle }: QuantityInputProps) {
+export function QuantityInput({ label, value, unit, shownIn = unit, changed, choices, mayBeEmpty, autoFocus = false, onSettle }: QuantityInputProps) {
   const [typed, setTyped] = useState<string | null>(null)
   const [error, setError] = useState<string | null>(null)
   const id = useId()
+  const shown = typeof value === 'number' ? inUnit(value, unit, shownIn) : value
   const tone = changed ? 'font-medium text-brass' : ''
-  if (!onSettle) return <span className={`num ${tone}`}>{value === undefined ? '' : shownValue(value)}</span>
+  if (!onSettle) return <span className={`num ${tone}`}>{shown === undefined ? '' : shownValue(shown)}</span>
   if (choices)
     return (
       <select aria-label={label} className={`bg-transparent ${tone}`} value={String(value ?? '')} onChange={(e) => onSettle(e.target.value)}>
@@ -41,14 +45,14 @@ export function QuantityInput({ label, value, unit, changed, choices, mayBeEmpty
       setError(null)
       return
     }
-    const read = readQuantity(text, unit)
+    const read = readTypedQuantity(text, unit, shownIn)
     if (read.kind === 'refused' || typeof read.value !== 'number') {
       setError(read.kind === 'refused' ? read.message : 'This has more digits than a model value holds.')
       return
     }
     setTyped(null)
     setError(null)
-    onSettle(read.rounded ? Number(read.value.toPrecision(12)) : read.value)
+    onSettle(read.value)
   }
   return (
     <span className="relative inline-block">
@@ -62,7 +66,7 @@ export function QuantityInput({ label, value, unit, changed, choices, mayBeEmpty
         placeholder={mayBeEmpty ? '–' : undefined}
         aria-invalid={error ? true : undefined}
         aria-describedby={error ? id : undefined}
-        value={typed ?? valueText(value)}
+        value={typed ?? valueText(shown)}
         onChange={(e) => {
           setTyped(e.target.value)
           setError(null)
@@ -78,7 +82,7 @@ export function QuantityInput({ label, value, unit, changed, choices, mayBeEmpty
       />
       {error && (
         <span id={id} role="alert" className="field-error absolute top-full right-0 z-10 w-56 border border-oxide bg-sheet px-2 py-1 text-left whitespace-normal">
-          {error} {value === undefined ? '' : `${shownValue(value)} is kept.`}
+          {error} {shown === undefined ? '' : `${shownValue(shown)} is kept.`}
         </span>
       )}
     </span>

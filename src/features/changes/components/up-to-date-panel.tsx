@@ -42,13 +42,13 @@ export function UpToDatePanel({ query, baseVersion, sets, schemas, signed, onBri
                 <fieldset key={c.pointer} className="mt-2 border-t border-hairline pt-2 text-13">
                   <legend className="float-left mr-4 font-medium">{placeWords(c.pointer, sets, schemas)}</legend>
                   <span className="mr-4 text-ink-2">
-                    was <span className="num">{contentWords(c.base)}</span> {unitOfPlace(c.pointer, schemas)}
+                    was <span className="num">{contentWords(c.base, c.pointer)}</span> {unitOfPlace(c.pointer, schemas)}
                   </span>
                   {(['yours', 'theirs'] as const).map((side) => (
                     <label key={side} className="mr-4 inline-flex items-baseline gap-2">
                       <input type="radio" name={c.pointer} checked={kept[c.pointer] === side} onChange={() => setKept({ ...kept, [c.pointer]: side })} />
                       <span>
-                        {side === 'yours' ? 'this change' : newest}: <span className="num">{contentWords(c[side])}</span>
+                        {side === 'yours' ? 'this change' : newest}: <span className="num">{contentWords(c[side], c.pointer)}</span>
                       </span>
                     </label>
                   ))}

@@ -85,7 +85,7 @@ export function ValueGrid({ set, base, schemas, family, joint, showing, onEdit }
   return (
     <>
       {at && <ValueInspector key={at.pointer} at={at} set={set} schemas={schemas} onEdit={onEdit} />}
-      <div className={`table-frame mt-2 ${joints.length > 7 ? 'overflow-x-auto' : ''}`}>
+      <div className={`table-frame mt-2 ${joints.length > 6 ? 'overflow-x-auto' : ''}`}>
         <table ref={table} role="grid" aria-label={`values of the ${set.families[family].name} family`} aria-readonly={onEdit === null} className="table table-dense" onKeyDown={onKey}>
           <thead>
             <tr>
