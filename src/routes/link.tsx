@@ -14,7 +14,7 @@ export function Component() {
   const secret = useParams().secret!
   const link = useQuery(linkQuery(secret))
   const [used, setUsed] = useState<LinkUsed | null>(null)
-  const title = used ? 'Your password is set' : link.data?.kind === 'invitation' ? 'Invitation' : 'New password'
+  const title = used ? 'Your password is set' : link.isError ? 'This link cannot be used' : link.data?.kind === 'invitation' ? 'Invitation' : 'New password'
   return (
     <DoorPage title={title}>
       {used ? (

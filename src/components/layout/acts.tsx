@@ -11,9 +11,9 @@ export const subjectWords = ({ subject }: LedgerEntryView): string =>
 /** Entries of the ledger in few words, newest first. */
 export function Acts({ entries }: { entries: readonly LedgerEntryView[] }) {
   return (
-    <ul>
+    <ul className="@container">
       {entries.map((e) => (
-        <li key={e.sequence} className="grid grid-cols-[6.5rem_minmax(0,1fr)] items-baseline gap-x-3 border-b border-hairline py-[6px] text-13 last:border-rule sm:grid-cols-[6.5rem_minmax(0,1fr)_9rem_5rem]">
+        <li key={e.sequence} className="grid grid-cols-[6.5rem_minmax(0,1fr)] items-baseline gap-x-3 border-b border-hairline py-[6px] text-13 last:border-rule @lg:grid-cols-[6.5rem_minmax(0,1fr)_9rem_5rem]">
           <span className="text-ink-2">
             <Time at={e.at} />
           </span>
@@ -21,8 +21,8 @@ export function Acts({ entries }: { entries: readonly LedgerEntryView[] }) {
             {e.act}
             {subjectWords(e) && <span className="text-13 text-ink-2"> {subjectWords(e)}</span>}
           </span>
-          <span className="text-ink-2 max-sm:col-start-2">{e.person}</span>
-          <Hash hash={e.hash} bytes={4} className="text-right max-sm:hidden" />
+          <span className="text-ink-2 col-start-2 @lg:col-start-auto">{e.person}</span>
+          <Hash hash={e.hash} bytes={4} className="hidden text-right @lg:inline" />
         </li>
       ))}
     </ul>

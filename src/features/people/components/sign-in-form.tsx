@@ -32,18 +32,23 @@ export function SignInForm({ email, password, onEmail, onPassword, fixedEmail = 
         if (complete && !signIn.isPending) signIn.mutate({ email: email.trim(), password }, { onSuccess: onSignedIn })
       }}
     >
-      <TextField
-        label="E-mail"
-        type="email"
-        autoComplete="username"
-        autoCapitalize="none"
-        spellCheck={false}
-        readOnly={fixedEmail}
-        value={email}
-        onChange={onEmail}
-        error={missing && email.trim() === '' ? 'Write your e-mail address.' : null}
-      />
+      {fixedEmail ? (
+        <p className="text-13 text-ink-2">as {email}</p>
+      ) : (
+        <TextField
+          label="E-mail"
+          type="email"
+          autoComplete="username"
+          autoCapitalize="none"
+          spellCheck={false}
+          value={email}
+          onChange={onEmail}
+          error={missing && email.trim() === '' ? 'Write your e-mail address.' : null}
+        />
+      )}
       <PasswordField label="Password" purpose="present" value={password} onChange={onPassword} error={missing && password === '' ? 'Write your password.' : null} />
+      {/* Tells a password store whose password this is; after the field that takes the focus. */}
+      {fixedEmail && <input type="email" autoComplete="username" value={email} readOnly hidden />}
       <ProblemPanel problem={signIn.error} />
       <div className="mt-1 flex flex-wrap items-center gap-4">
         <Button type="submit" kind="primary" pending={signIn.isPending}>
