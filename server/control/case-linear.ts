@@ -1,5 +1,6 @@
 import { analyse, type LinearReport, type LoopReport } from './analyse.ts'
-import { Tally, type Figure } from './case-tally.ts'
+import type { Tally} from './case-tally.ts';
+import { type Figure } from './case-tally.ts'
 import { frequencyResponse } from './frequency-response.ts'
 import { limitAbove } from './limit-search.ts'
 import type { ControlMode, JointModel } from './model.ts'

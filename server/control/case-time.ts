@@ -1,4 +1,5 @@
-import { Tally, type Figure } from './case-tally.ts'
+import type { Tally} from './case-tally.ts';
+import { type Figure } from './case-tally.ts'
 import { cancellingIntegral, integratorLimit, integratorLimitByEigenvalues, lockedRotorLimit, windingPole, windowDelay } from './closed-forms.ts'
 import { NumericError } from './errors.ts'
 import type { Firmware, JointModel, Plant } from './model.ts'
