@@ -6,6 +6,7 @@ export interface LedgerSubject {
   change?: string
   release?: string
   joint?: string
+  board?: string
   firmware?: string
   person?: string
   policy?: number
