@@ -57,7 +57,7 @@ export function SignedInLayout() {
         home={paths.desk()}
         places={placesFor(me)}
         machines={machineItems(machines.data ?? [], machineKey)}
-        machine={machine?.name}
+        machine={machine?.name ?? 'Machines'}
         onSearch={(text) => text && void navigate(paths.search(text))}
         person={{ name: me.name, roles: rolesInWords(me.roles) }}
         personItems={personItems({ theme, mayKeepPeople: holds(me, 'keep people'), mayKeepMail: holds(me, 'keep mail'), signOut: () => signOut.mutate() })}

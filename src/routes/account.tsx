@@ -30,8 +30,8 @@ export function Component() {
       <PageHead title={me.name} documentTitle="Account" kicker="account">
         {me.email}
       </PageHead>
-      <div className="grid gap-x-14 gap-y-8 lg:grid-cols-2">
-        <div className="grid content-start gap-8">
+      <div className="grid grid-cols-[minmax(0,1fr)] gap-x-14 gap-y-8 lg:grid-cols-2">
+        <div className="grid min-w-0 grid-cols-[minmax(0,1fr)] content-start gap-8">
           <section aria-labelledby="roles">
             <SectionHeading id="roles">Roles</SectionHeading>
             {me.signingHold && <p className="py-1 text-13 text-plum">Your signatures wait until another signer confirms you: {me.signingHold}.</p>}
@@ -44,7 +44,7 @@ export function Component() {
             </Region>
           </section>
         </div>
-        <div className="grid content-start gap-8">
+        <div className="grid min-w-0 grid-cols-[minmax(0,1fr)] content-start gap-8">
           <section aria-labelledby="password">
             <SectionHeading id="password" className="mb-3">Password</SectionHeading>
             <ChangePasswordForm email={me.email} />

@@ -8,6 +8,9 @@ const short = (value: string | number) => (/^[0-9a-f]{64}$/.test(String(value)) 
 export const subjectWords = ({ subject }: LedgerEntryView): string =>
   Object.entries(subject).filter(([k]) => k !== 'machine').map(([k, v]) => `${k} ${short(v)}`).join(', ')
 
+/** The act, and for a refusal what was asked. */
+export const actWords = ({ act, details }: LedgerEntryView): string => (act === 'refused' && typeof details.asked === 'string' ? `refused: ${details.asked}` : act)
+
 /** Entries of the ledger in few words, newest first. */
 export function Acts({ entries }: { entries: readonly LedgerEntryView[] }) {
   return (
@@ -18,7 +21,7 @@ export function Acts({ entries }: { entries: readonly LedgerEntryView[] }) {
             <Time at={e.at} />
           </span>
           <span className="text-14">
-            {e.act}
+            <span className={e.act === 'refused' ? 'text-oxide' : ''}>{actWords(e)}</span>
             {subjectWords(e) && <span className="text-13 text-ink-2"> {subjectWords(e)}</span>}
           </span>
           <span className="text-ink-2 col-start-2 @lg:col-start-auto">{e.person}</span>

@@ -18,8 +18,8 @@ const columns: Column<FirmwareVersionSummary>[] = [
   { key: 'state', head: 'State', cell: (v) => <VersionState state={v.state} /> },
   { key: 'parameters', head: 'Parameters', align: 'end', className: 'num', cell: (v) => v.parameters },
   { key: 'image', head: 'Image', align: 'end', className: 'num', cell: (v) => formatBytes(v.imageBytes) },
-  { key: 'author', head: 'Uploaded by', cell: (v) => v.uploadedBy },
-  { key: 'published', head: 'Published', cell: (v) => v.publishedAt && <>{v.publishedBy} <span className="text-13 text-ink-2"><Time at={v.publishedAt} style="date" /></span></> },
+  { key: 'author', head: 'Uploaded by', className: 'whitespace-nowrap', cell: (v) => v.uploadedBy },
+  { key: 'published', head: 'Published', className: 'whitespace-nowrap', cell: (v) => v.publishedAt && <>{v.publishedBy} <span className="text-13 text-ink-2"><Time at={v.publishedAt} style="date" /></span></> },
   { key: 'hash', head: 'Schema', align: 'end', cell: (v) => <Hash hash={v.schemaHash} bytes={4} /> },
 ]
 

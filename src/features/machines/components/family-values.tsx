@@ -24,7 +24,7 @@ export function FamilyValues({ machine, values, joints }: { machine: string; val
       head: 'Joints that depart',
       sortBy: (v) => -v.own.length,
       cell: (v) => (
-        <span className="flex flex-wrap gap-x-3">
+        <span className="flex min-w-[20rem] flex-wrap gap-x-3">
           {v.own.map((o) => (
             <span key={o.joint} className="text-13">
               <TextLink to={paths.joint(machine, o.joint)}>{nameOf.get(o.joint) ?? o.joint}</TextLink> <span className="num">{valueText(o.value)}</span>

@@ -8,6 +8,7 @@ const columns: Column<MachineSummary>[] = [
   {
     key: 'name',
     head: 'Machine',
+    className: 'whitespace-nowrap',
     sortBy: (m) => m.name,
     cell: (m) => (
       <>
@@ -16,7 +17,7 @@ const columns: Column<MachineSummary>[] = [
       </>
     ),
   },
-  { key: 'description', head: 'What it is', cell: (m) => m.description, className: 'text-ink-2' },
+  { key: 'description', head: 'What it is', cell: (m) => <span className="block min-w-[14rem]">{m.description}</span>, className: 'text-ink-2' },
   { key: 'joints', head: 'Joints', align: 'end', className: 'num', sortBy: (m) => m.joints, cell: (m) => m.joints },
   { key: 'buses', head: 'Buses', align: 'end', className: 'num', sortBy: (m) => m.buses, cell: (m) => m.buses },
   { key: 'version', head: 'Release', className: 'num', sortBy: (m) => m.currentVersion, cell: (m) => <Num value={m.currentVersion} /> },

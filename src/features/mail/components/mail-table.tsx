@@ -5,10 +5,10 @@ import { Time } from '../../../components/ui/time.tsx'
 import { count } from '../../../lib/format.ts'
 
 const columns: Column<MailView>[] = [
-  { key: 'subject', head: 'Subject', sortBy: (m) => m.subject, cell: (m) => m.subject },
-  { key: 'to', head: 'To', sortBy: (m) => m.person ?? m.to, cell: (m) => <>{m.person ?? ''} <span className="text-13 text-ink-2">{m.to}</span></> },
+  { key: 'subject', head: 'Subject', className: 'whitespace-nowrap', sortBy: (m) => m.subject, cell: (m) => m.subject },
+  { key: 'to', head: 'To', className: 'whitespace-nowrap', sortBy: (m) => m.person ?? m.to, cell: (m) => <>{m.person ?? ''} <span className="text-13 text-ink-2">{m.to}</span></> },
   { key: 'at', head: 'Queued', sortBy: (m) => m.createdAt, cell: (m) => <Time at={m.createdAt} style="long" /> },
-  { key: 'state', head: 'State', sortBy: (m) => m.state, cell: (m) => <MailState mail={m} /> },
+  { key: 'state', head: 'State', className: 'whitespace-nowrap', sortBy: (m) => m.state, cell: (m) => <MailState mail={m} /> },
 ]
 
 export function MailState({ mail }: { mail: MailView }) {

@@ -11,10 +11,10 @@ export const roleWords = (person: PersonView, machineName: (key: string) => stri
 export function PeopleTable({ people, machineName }: { people: readonly PersonView[]; machineName: (key: string) => string }) {
   const [sort, setSort] = useUrlSort()
   const columns: Column<PersonView>[] = [
-    { key: 'name', head: 'Name', sortBy: (p) => p.name, cell: (p) => p.name },
-    { key: 'roles', head: 'Roles', sortBy: (p) => roleWords(p, machineName), cell: (p) => roleWords(p, machineName) || <span className="text-ink-2">none</span> },
+    { key: 'name', head: 'Name', className: 'whitespace-nowrap', sortBy: (p) => p.name, cell: (p) => p.name },
+    { key: 'roles', head: 'Roles', className: 'whitespace-nowrap', sortBy: (p) => roleWords(p, machineName), cell: (p) => roleWords(p, machineName) || <span className="text-ink-2">none</span> },
     { key: 'email', head: 'E-mail', sortBy: (p) => p.email, cell: (p) => p.email, className: 'text-ink-2' },
-    { key: 'state', head: 'State', sortBy: (p) => p.state, cell: (p) => <StateOfPerson person={p} /> },
+    { key: 'state', head: 'State', className: 'whitespace-nowrap', sortBy: (p) => p.state, cell: (p) => <StateOfPerson person={p} /> },
   ]
   const withEmail = people.some((p) => p.email !== null)
   return (
