@@ -49,7 +49,7 @@ export function Component() {
   return (
     <>
       <ChangeHead change={change} />
-      <div className="mt-4 grid gap-x-6 gap-y-8 xl:grid-cols-[minmax(0,1fr)_340px]">
+      <div className="mt-4 grid grid-cols-[minmax(0,1fr)] gap-x-6 gap-y-8 xl:grid-cols-[minmax(0,1fr)_340px]">
         <div className="min-w-0">
           <Reason change={change} />
           <Differences change={change} diff={diff} check={check.data} />

@@ -53,7 +53,7 @@ export function Component() {
       <Region query={changes} what="what waits for you" lines={6} isEmpty={(all) => all.length === 0} empty={<EmptyState title="No change yet" action={<LinkButton to={paths.machines()}>To the machines</LinkButton>}>The first change gives a machine its buses, families and joints.</EmptyState>}>
         {() => (
           <>
-            <div className="grid gap-x-12 gap-y-8 xl:grid-cols-[minmax(0,1fr)_400px]">
+            <div className="grid grid-cols-[minmax(0,1fr)] gap-x-12 gap-y-8 xl:grid-cols-[minmax(0,1fr)_400px]">
               <div className="min-w-0">
                 <Group title="To read and sign" changes={waiting.toSign} act="Read and sign" now={now} />
                 <Group title="To release" changes={waiting.toRelease} act="Read and release" now={now} />

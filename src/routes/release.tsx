@@ -22,10 +22,10 @@ export function Component() {
   const [withdrawing, setWithdrawing] = useState(false)
   const { withdraw } = release.may
   return (
-    <div className="grid gap-6 pt-4 lg:grid-cols-[minmax(0,1fr)_340px]">
+    <div className="grid grid-cols-[minmax(0,1fr)] gap-6 pt-4 lg:grid-cols-[minmax(0,1fr)_340px]">
       <title>{`${release.machineName} ${release.version} · Detent`}</title>
       <ReleaseSheet release={release} rail={change && <Rail {...railOf(change)} />} />
-      <aside className="no-print grid content-start gap-6">
+      <aside className="no-print grid content-start gap-6 max-lg:order-first">
         <BenchDownloads release={release} />
         <div className="flex flex-wrap gap-2">
           <Button onClick={() => window.print()}>Print the sheet</Button>

@@ -89,9 +89,9 @@ export function ChangeEditor({ change, personId, people, firmware, useCheck, onS
     <>
       <ChangeHead change={view} proposes={proposes} title={<TitleField title={view.title} onSave={(title) => describe.mutate({ title })} error={fieldError(describe.error, '/title')} />} />
       {outdated && <UpToDatePanel query={newer} baseVersion={view.baseVersion} sets={sets} schemas={schemas} signed={false} onBring={(d) => bring.mutate(d)} pending={bring.isPending} problem={bring.error} />}
-      <div className="mt-3 grid gap-x-4 gap-y-8 xl:grid-cols-[minmax(0,1fr)_392px]">
+      <div className="mt-3 grid grid-cols-[minmax(0,1fr)] gap-x-4 gap-y-8 xl:grid-cols-[minmax(0,1fr)_392px]">
         <div className="min-w-0">
-          {state.conflicts.length > 0 && <ConflictsPanel conflicts={state.conflicts} sets={sets} schemas={schemas} onDecide={(c, keep) => keeper.decide(c, keep)} whoAt={(p) => points.data?.find((d) => d.edits.some((e) => e.pointer === p || p.startsWith(`${e.pointer}/`)))?.by ?? null} />}
+          {state.conflicts.length > 0 && <div className="sticky top-2 z-20 mb-3"><ConflictsPanel conflicts={state.conflicts} sets={sets} schemas={schemas} onDecide={(c, keep) => keeper.decide(c, keep)} whoAt={(p) => points.data?.find((d) => d.edits.some((e) => e.pointer === p || p.startsWith(`${e.pointer}/`)))?.by ?? null} /></div>}
           {state.refusal && (
             <div className="mb-3">
               <ProblemPanel problem={state.refusal} onRetry={() => keeper.retry()}>

@@ -47,7 +47,7 @@ export function ChangeReader({ change, findings, panel }: ChangeReaderProps) {
           </Button>
         )}
       </div>
-      <div className="grid gap-x-4 gap-y-8 xl:grid-cols-[minmax(0,1fr)_392px]">
+      <div className="grid grid-cols-[minmax(0,1fr)] gap-x-4 gap-y-8 xl:grid-cols-[minmax(0,1fr)_392px]">
         <div className="min-w-0">
           <ValueViews
             changeKey={change.key}

@@ -5,12 +5,15 @@ import { count, formatNumber } from '../../../lib/format.ts'
 import { figuresOf, worstOf } from '../figures.ts'
 import { BeforeAfter } from './before-after.tsx'
 
+/** Figures in the line; the full report has them all. */
+const MOST = 5
+
 /** What the altered values do all together: verdict, ρ, and the margins that moved or miss policy, of the worst joint among those given. */
 export function AllTogether({ check, joints, nameOf }: { check: CheckView; joints: readonly string[]; nameOf: (joint: string) => string }) {
   const among: JointCheck[] = check.joints.filter((j) => joints.includes(j.joint))
   const worst = worstOf(among)
   if (!worst?.candidate) return null
-  const figures = figuresOf(worst, check.findings).filter((f) => f.name !== 'sensitivity peak' && (f.name !== 'bandwidth' || f.loop === 'velocity') && (f.before !== f.after || f.beforeReads !== f.afterReads || f.missed))
+  const figures = figuresOf(worst, check.findings).filter((f) => f.name !== 'sensitivity peak' && (f.name !== 'bandwidth' || f.loop === 'velocity') && (f.before !== f.after || f.beforeReads !== f.afterReads || f.missed)).toSorted((a, b) => Number(b.missed) - Number(a.missed)).slice(0, MOST)
   return (
     <div className="flex flex-wrap border-b border-ink">
       <div className="min-w-[150px] px-[10px] py-3">

@@ -19,7 +19,7 @@ export function JointReport({ joint, check, nameOf, base }: { joint: JointCheck;
   const figures = figuresOf(joint, check.findings)
   const loops = loopNames.filter((l) => figures.some((f) => f.loop === l))
   return (
-    <div className="grid gap-x-10 gap-y-6 lg:grid-cols-2 xl:grid-cols-3">
+    <div className="grid grid-cols-[minmax(0,1fr)] gap-x-10 gap-y-6 lg:grid-cols-2 xl:grid-cols-3">
       {loops.map((loop) => (
         <section key={loop}>
           <SectionHeading aux={brokenAt[loop]}>{`${loop[0].toUpperCase()}${loop.slice(1)} loop`}</SectionHeading>

@@ -3,6 +3,7 @@ import { paths } from '../../../app/paths.ts'
 import type { ReleaseSummary } from '../../../../shared/contract/releases.ts'
 import { ReleaseMark } from '../../../components/ui/release-mark.tsx'
 import { Table, type Column, type Sort } from '../../../components/ui/table.tsx'
+import { TextLink } from '../../../components/ui/text-link.tsx'
 import { Time } from '../../../components/ui/time.tsx'
 
 export interface ReleaseTableProps {
@@ -13,8 +14,35 @@ export interface ReleaseTableProps {
   onSort: (sort: Sort | null) => void
 }
 
-/** Releases in rows, newest first. */
-export function ReleaseTable({ releases, oneMachine, empty, sort, onSort }: ReleaseTableProps) {
+/** Releases in rows, newest first. Narrow screens read them as a list. */
+export function ReleaseTable(props: ReleaseTableProps) {
+  return (
+    <>
+      <div className="hidden md:block">
+        <Rows {...props} />
+      </div>
+      <ul className="border-t border-ink md:hidden" aria-label="releases">
+        {props.releases.length === 0 && <li className="py-3 text-ink-2">{props.empty ?? 'Nothing here.'}</li>}
+        {props.releases.map((r) => (
+          <li key={`${r.machine} ${r.version}`} className="border-b border-hairline py-2">
+            <p className="flex flex-wrap items-baseline gap-x-3">
+              <TextLink to={paths.release(r.machine, r.version)} className="!border-0 font-medium !text-ink">
+                {r.machineName} <span className="num">{r.version}</span>
+              </TextLink>
+              <ReleaseMark state={r.state} size={15} className="ml-auto text-13" />
+            </p>
+            <p className="text-13">{r.title}</p>
+            <p className="text-13 text-ink-2">
+              {r.releasedBy}, <Time at={r.releasedAt} />
+            </p>
+          </li>
+        ))}
+      </ul>
+    </>
+  )
+}
+
+function Rows({ releases, oneMachine, empty, sort, onSort }: ReleaseTableProps) {
   const columns: Column<ReleaseSummary>[] = [
     { key: 'version', head: 'Release', cell: (r) => <>{oneMachine ? '' : `${r.machineName} `}<span className="num">{r.version}</span></>, sortBy: (r) => `${r.machineName} ${String(r.sequence).padStart(8, '0')}` },
     { key: 'state', head: 'State', cell: (r) => <ReleaseMark state={r.state} />, sortBy: (r) => r.state },
