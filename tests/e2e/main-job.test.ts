@@ -36,6 +36,7 @@ beforeAll(async () => {
   server = await startServer()
   browser = await openBrowser()
   page = browser.pages()[0]
+  page.setDefaultTimeout(15_000)
   page.on('pageerror', (error) => errors.push(error.message))
 })
 afterAll(async () => {
@@ -54,7 +55,7 @@ describe('the main job, in a browser', () => {
     await page.waitForURL(/\/changes\/dunlin-\d+/)
     change = new URL(page.url()).pathname
     await page.goto(`${server.url}${change}?view=cascade&family=knee`)
-    await type('Velocity window', '40')
+    await type('Samples', '40')
     await type('Velocity gain', '7.9')
     await page.getByText('unstable', { exact: true }).first().waitFor()
     await page.getByText(/finding blocks|findings block/).waitFor()
@@ -63,7 +64,7 @@ describe('the main job, in a browser', () => {
   })
 
   it('lowers it, and submits', async () => {
-    await type('Velocity window', '14')
+    await type('Samples', '14')
     await type('Velocity gain', '3.4')
     await page.getByText('stable', { exact: true }).first().waitFor()
     const submit = page.getByRole('button', { name: 'Submit' })
