@@ -10,7 +10,7 @@ import { withValues, type ParameterName } from './parameters.ts'
 import { closedMode, sampleJoint, type SampledJoint } from './sampled-joint.ts'
 import { stabilityOf, type Verdict } from './stability.ts'
 import { resonances } from './resonances.ts'
-import { verdictOfSampled, type PreparedOuter, type StabilityVerdict } from './verdict.ts'
+import { verdictOfSampled, type PreparedOuter, type RootGuess, type StabilityVerdict } from './verdict.ts'
 
 export interface LoopPoint extends LoopMargins {
   readonly verdict: Verdict
@@ -25,26 +25,34 @@ export interface PointResult extends StabilityVerdict {
 /** Verdict of a joint and, where asked, each loop's gain, phase and delay margins. */
 export function evaluatePoint(model: JointModel, withMargins: boolean): PointResult {
   const joint = sampleJoint(model)
-  return evaluateSampled(joint, joint.closes === 'current' ? null : prepare(joint), withMargins)
+  return evaluateSampled(joint, withMargins && joint.closes !== 'current' ? prepare(joint) : null, withMargins, null)
 }
 
 /** Laws of the outer task: what the sampled joint and its lift do not depend on. */
 const OUTER_LAWS: readonly ParameterName[] = ['K_pp', 'K_ip', 'K_pv', 'K_iv']
+
+/** Evaluates points of one sweep. */
+export type PointEvaluator = (values: ArrayLike<number>, guess: RootGuess) => PointResult
 
 /**
  * Evaluates many points that differ in the named values alone.
  *
  * Where only laws of the outer task vary, the joint is sampled and lifted once for all points.
  */
-export function pointEvaluator(model: JointModel, names: readonly ParameterName[], withMargins: boolean): (values: ArrayLike<number>) => PointResult {
-  if (!names.every((name) => OUTER_LAWS.includes(name))) return (values) => evaluatePoint(withValues(model, names, values), withMargins)
+export function pointEvaluator(model: JointModel, names: readonly ParameterName[], withMargins: boolean): PointEvaluator {
+  if (!names.every((name) => OUTER_LAWS.includes(name))) {
+    return (values, guess) => {
+      const joint = sampleJoint(withValues(model, names, values))
+      return evaluateSampled(joint, withMargins && joint.closes !== 'current' ? prepare(joint) : null, withMargins, guess)
+    }
+  }
   const base = sampleJoint(model)
   const prepared = prepare(base)
-  return (values) => {
+  return (values, guess) => {
     const changed = withValues(model, names, values)
     validateJointModel(changed)
     const closes = closedMode(changed)
-    return evaluateSampled({ ...base, model: changed, closes }, closes === 'current' ? null : prepared, withMargins)
+    return evaluateSampled({ ...base, model: changed, closes }, closes === 'current' ? null : prepared, withMargins, guess)
   }
 }
 
@@ -53,8 +61,8 @@ function prepare(joint: SampledJoint): PreparedOuter {
   return { steps, lifted: liftPlant(steps) }
 }
 
-function evaluateSampled(joint: SampledJoint, prepared: PreparedOuter | null, withMargins: boolean): PointResult {
-  const whole = verdictOfSampled(joint, prepared)
+function evaluateSampled(joint: SampledJoint, prepared: PreparedOuter | null, withMargins: boolean, guess: RootGuess | null): PointResult {
+  const whole = verdictOfSampled(joint, prepared, guess)
   if (!withMargins) return { ...whole, loops: {} }
   const loops: Partial<Record<ControlMode, LoopPoint>> = {}
   const transfer = prepared ? new OuterTransfer(joint, prepared.lifted) : null

@@ -1,7 +1,7 @@
 import { NumericError } from './errors.ts'
 import { guardInteger, guardNumber, type JointModel } from './model.ts'
 import { parameterNamed, valueOf, type ParameterName } from './parameters.ts'
-import { pointEvaluator, type PointResult } from './point.ts'
+import { pointEvaluator, type PointEvaluator, type PointResult } from './point.ts'
 import type { Verdict } from './stability.ts'
 
 /** Cells of the largest map. */
@@ -46,8 +46,15 @@ export interface MapReport {
   readonly gainMarginDb: readonly CellMargin[] | null
 }
 
+export interface MapOptions {
+  /** Margins of every cell too; about a hundred times the cost of ρ. */
+  readonly margins: boolean
+  /** Rows [from, to) alone, for several workers; `joinMaps` puts them together. */
+  readonly rows?: readonly [number, number]
+}
+
 /**
- * A grid over two parameters, worked off in pieces.
+ * A grid over two parameters, worked off in pieces. Each row by itself gives the same figures as in the whole.
  *
  * @source control-model.md §5
  */
@@ -56,7 +63,9 @@ export class StabilityMap {
   readonly x: Float64Array
   readonly y: Float64Array
   private readonly names: readonly [ParameterName, ParameterName]
-  private readonly evaluate: (values: ArrayLike<number>) => PointResult
+  private readonly evaluate: PointEvaluator
+  private readonly guess = { re: 1, im: 0 }
+  private readonly firstRow: number
   private readonly margins: boolean
   private readonly rho: Float64Array
   private readonly verdicts: Uint8Array
@@ -65,15 +74,20 @@ export class StabilityMap {
   private count = 0
 
   /** @throws NumericError bounds-crossed, not-finite, unknown-parameter, too-large, bad-input */
-  constructor(model: JointModel, x: MapAxis, y: MapAxis, options: { readonly margins: boolean }) {
+  constructor(model: JointModel, x: MapAxis, y: MapAxis, options: MapOptions) {
     this.margins = options.margins
     this.names = [parameterNamed(x.parameter), parameterNamed(y.parameter)]
     if (this.names[0] === this.names[1]) throw new NumericError('bad-input', { field: 'y', value: y.parameter, text: `Both axes are ${y.parameter}; a map needs two parameters. Nothing was computed.` })
     for (const name of this.names) valueOf(model, name)
     this.x = axisValues('x', x)
     this.y = axisValues('y', y)
-    this.total = this.x.length * this.y.length
-    if (this.total > CELLS_LIMIT) throw new NumericError('too-large', { field: 'map', value: this.total, limit: CELLS_LIMIT, text: `The map has ${this.total} cells, at most ${CELLS_LIMIT} are computed; nothing was computed. Ask for a coarser grid.` })
+    const cells = this.x.length * this.y.length
+    if (cells > CELLS_LIMIT) throw new NumericError('too-large', { field: 'map', value: cells, limit: CELLS_LIMIT, text: `The map has ${cells} cells, at most ${CELLS_LIMIT} are computed; nothing was computed. Ask for a coarser grid.` })
+    const [from, to] = options.rows ?? [0, this.y.length]
+    guardInteger('rows[0]', from, 0, this.y.length - 1)
+    guardInteger('rows[1]', to, from + 1, this.y.length)
+    this.firstRow = from
+    this.total = (to - from) * this.x.length
     this.evaluate = pointEvaluator(model, this.names, options.margins)
     this.rho = new Float64Array(this.total)
     this.verdicts = new Uint8Array(this.total)
@@ -88,8 +102,13 @@ export class StabilityMap {
     const end = Math.min(this.total, this.count + count)
     const width = this.x.length
     for (; this.count < end; this.count++) {
-      const values = [this.x[this.count % width], this.y[Math.floor(this.count / width)]]
-      const point = this.evaluate(values)
+      const column = this.count % width
+      if (column === 0) {
+        this.guess.re = 1
+        this.guess.im = 0
+      }
+      const values = [this.x[column], this.y[this.firstRow + Math.floor(this.count / width)]]
+      const point = this.evaluate(values, this.guess)
       this.rho[this.count] = point.rho
       this.verdicts[this.count] = MAP_VERDICTS.indexOf(point.verdict)
       if (this.margins) {
@@ -105,7 +124,7 @@ export class StabilityMap {
       xParameter: this.names[0],
       yParameter: this.names[1],
       x: this.x,
-      y: this.y,
+      y: this.y.slice(this.firstRow, this.firstRow + this.total / this.x.length),
       rho: this.rho,
       verdicts: this.verdicts,
       phaseMarginDeg: this.margins ? this.phase : null,
@@ -115,10 +134,26 @@ export class StabilityMap {
 }
 
 /** The whole map at once. */
-export function stabilityMap(model: JointModel, x: MapAxis, y: MapAxis, options: { readonly margins: boolean }): MapReport {
+export function stabilityMap(model: JointModel, x: MapAxis, y: MapAxis, options: MapOptions): MapReport {
   const map = new StabilityMap(model, x, y, options)
   map.step(map.total)
   return map.report()
+}
+
+/** Reports of consecutive rows, in order, as one. */
+export function joinMaps(parts: readonly MapReport[]): MapReport {
+  if (parts.length === 0) throw new NumericError('bad-input', { field: 'parts', text: 'No parts of a map to join.' })
+  const rows = (read: (part: MapReport) => Float64Array): Float64Array => Float64Array.from(parts.flatMap((part) => [...read(part)]))
+  const cells = (read: (part: MapReport) => readonly CellMargin[] | null): readonly CellMargin[] | null =>
+    parts.every((part) => read(part) !== null) ? parts.flatMap((part) => read(part) ?? []) : null
+  return {
+    ...parts[0],
+    y: rows((part) => part.y),
+    rho: rows((part) => part.rho),
+    verdicts: Uint8Array.from(parts.flatMap((part) => [...part.verdicts])),
+    phaseMarginDeg: cells((part) => part.phaseMarginDeg),
+    gainMarginDb: cells((part) => part.gainMarginDb),
+  }
 }
 
 /** Axis values: given, or between two bounds in equal steps, in equal ratios where high/low exceeds 20. */

@@ -1,10 +1,12 @@
 import { NumericError } from './errors.ts'
 import { guardInteger, guardNumber, type ControlMode, type JointModel } from './model.ts'
 import { parameterNamed, valueOf, type ParameterName } from './parameters.ts'
-import { pointEvaluator, type PointResult } from './point.ts'
+import { pointEvaluator, type PointEvaluator, type PointResult } from './point.ts'
 import { latinHypercube } from './random.ts'
 import { rankBySensitivity, type Sensitivity } from './sensitivity.ts'
+import { sampleJoint } from './sampled-joint.ts'
 import type { Verdict } from './stability.ts'
+import { verdictOfSampled } from './verdict.ts'
 
 /** Bounds of the tolerance box by parameter name, each [low, high]. */
 export type ToleranceBox = Readonly<Record<string, readonly [number, number]>>
@@ -78,7 +80,8 @@ export class ToleranceSweep {
   readonly total: number
   readonly names: readonly ParameterName[]
   readonly vertexNames: readonly ParameterName[]
-  private readonly evaluate: (values: ArrayLike<number>) => PointResult
+  private readonly evaluate: PointEvaluator
+  private readonly start: { readonly re: number; readonly im: number }
   private readonly low: Float64Array
   private readonly high: Float64Array
   private readonly nominal: Float64Array
@@ -119,6 +122,9 @@ export class ToleranceSweep {
     guardInteger('samples', samples, 0, SAMPLES_LIMIT)
     guardInteger('seed', options.seed, 0, 0xffffffff)
     this.evaluate = pointEvaluator(model, this.names, options.margins)
+    const start = { re: 1, im: 0 }
+    verdictOfSampled(sampleJoint(model), null, start)
+    this.start = start
     this.ranking = n > VERTEX_BOUNDS_LIMIT ? rankBySensitivity(model, this.names, this.low, this.high, options.margins) : null
     const chosen = this.ranking ? new Set(this.ranking.slice(0, VERTEX_BOUNDS_LIMIT).map((s) => s.name)) : null
     const bits: number[] = []
@@ -145,7 +151,8 @@ export class ToleranceSweep {
     while (this.done < end) {
       const index = this.done
       this.valuesAt(index, this.values)
-      this.take(index, this.evaluate(this.values))
+      // Every point starts from the nominal joint's root: its result does not depend on the order.
+      this.take(index, this.evaluate(this.values, { ...this.start }))
     }
     return this.done === this.total
   }

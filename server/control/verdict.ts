@@ -28,9 +28,12 @@ interface Engine {
   readonly characteristic: Characteristic
   readonly work: RootWorkspace
   readonly lifted: LiftedPlant
-  /** Root of the last joint of this shape: its neighbour in a sweep is near. */
-  readonly guess: { re: number; im: number }
-  primed: boolean
+}
+
+/** Where a neighbouring joint has its largest root; the caller keeps it, so that results do not depend on what ran before. */
+export interface RootGuess {
+  re: number
+  im: number
 }
 
 /** One engine for each shape of joint met lately. */
@@ -58,12 +61,16 @@ export interface PreparedOuter {
   readonly lifted: LiftedPlant
 }
 
-/** As verdict, for a joint already sampled. */
-export function verdictOfSampled(joint: SampledJoint, prepared: PreparedOuter | null = null): StabilityVerdict {
+/**
+ * As verdict, for a joint already sampled.
+ *
+ * @param guess  starts the search for the root, and receives the root found
+ */
+export function verdictOfSampled(joint: SampledJoint, prepared: PreparedOuter | null = null, guess: RootGuess | null = null): StabilityVerdict {
   const { closes, timing } = joint
   const steps = closes === 'current' ? null : (prepared?.steps ?? outerSteps(joint))
   if (closes !== 'current' && steps) {
-    const rho = radiusByPolynomial(joint, steps, closes, prepared?.lifted ?? null)
+    const rho = radiusByPolynomial(joint, steps, closes, prepared?.lifted ?? null, guess)
     if (rho >= 0 && Math.abs(rho - 1) > NEAR) return { rho, verdict: verdictOf(rho, EPSILON), epsilon: EPSILON, route: 'polynomial' }
   }
   const stability = stabilityOf(joint, steps, closes)
@@ -72,24 +79,25 @@ export function verdictOfSampled(joint: SampledJoint, prepared: PreparedOuter | 
 }
 
 /** ρ of an outer closure, or −1 where the polynomial route proves nothing or is not worth its cost. */
-export function radiusByPolynomial(joint: SampledJoint, steps: OuterSteps, closure: 'velocity' | 'position', lifted: LiftedPlant | null): number {
+export function radiusByPolynomial(joint: SampledJoint, steps: OuterSteps, closure: 'velocity' | 'position', lifted: LiftedPlant | null, guess: RootGuess | null): number {
   if (steps.q > POLYNOMIAL_Q || steps.start.length > POLYNOMIAL_STATES) return -1
   const engine = engineFor(joint, steps, closure)
   if (!lifted) engine.characteristic.setPlant(liftPlant(steps, engine.lifted))
   else if (!engine.characteristic.holds(lifted)) engine.characteristic.setPlant(lifted)
-  return radiusOf(engine, joint)
+  return radiusOf(engine, joint, guess)
 }
 
-function radiusOf(engine: Engine, joint: SampledJoint): number {
-  const { characteristic, work, guess } = engine
+function radiusOf(engine: Engine, joint: SampledJoint, guess: RootGuess | null): number {
+  const { characteristic, work } = engine
   characteristic.setLaws(joint.model.firmware, joint.timing.T_o)
   const noise = characteristic.expand()
   if (!(noise < 1e-9)) return -1
-  if (!largestRoot(characteristic.c, characteristic.degree, noise, engine.primed ? guess : null, work)) return -1
+  if (!largestRoot(characteristic.c, characteristic.degree, noise, guess, work)) return -1
   const { root, value } = work
-  guess.re = root.re
-  guess.im = root.im
-  engine.primed = true
+  if (guess) {
+    guess.re = root.re
+    guess.im = root.im
+  }
   evaluatePolynomial(characteristic.c, characteristic.degree, root.re, root.im, value)
   const { slopeRe, slopeIm } = value
   characteristic.valueAt(root.re, root.im, exact)
@@ -113,7 +121,7 @@ function engineFor(joint: SampledJoint, steps: OuterSteps, closure: 'velocity' |
   if (!engine) {
     if (engines.size >= ENGINES_KEPT) engines.delete(engines.keys().next().value as string)
     const characteristic = new Characteristic(steps.q, steps.start.length, W, position, integrators)
-    engine = { characteristic, lifted: emptyLift(steps.q, steps.start.length), work: rootWorkspace(characteristic.degree), guess: { re: 1, im: 0 }, primed: false }
+    engine = { characteristic, lifted: emptyLift(steps.q, steps.start.length), work: rootWorkspace(characteristic.degree) }
     engines.set(key, engine)
   }
   return engine
