@@ -138,7 +138,7 @@ describe('the main job, in a browser', () => {
   it('left an entry for each act in the ledger, and the chain holds', async () => {
     const number = change.split('/').at(-1)!
     await page.goto(`${server.url}/ledger`)
-    for (const act of ['change drafted', 'change submitted', 'change peer review', 'change approved', 'change released', 'release made']) await page.getByText(act).first().waitFor()
+    for (const act of ['change drafted', 'change submitted', 'change peer review', 'change approved', 'change released', 'release made']) await page.locator('main').getByText(act).locator('visible=true').first().waitFor()
     const verdict = await page.evaluate(async () => (await fetch('/api/ledger/verify')).json() as Promise<{ holds: boolean }>)
     expect(verdict.holds).toBe(true)
     const refused = await page.evaluate(async (key) => {
