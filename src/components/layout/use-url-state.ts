@@ -1,10 +1,19 @@
+import { useState } from 'react'
 import { useSearchParams } from 'react-router'
 import type { Sort } from '../ui/table.tsx'
 
-/** One value of the query; setting it to '' takes it away. The page stays where it is, and going back skips it. */
+/**
+ * One value of the query; setting it to '' takes it away. The page stays where it is, and going back skips it.
+ *
+ * The address follows a moment later; what was set is shown at once, so that a field loses nothing while it is typed in.
+ */
 export function useUrlText(name: string): [string, (value: string) => void] {
   const [search, setSearch] = useSearchParams()
-  const set = (value: string) =>
+  const inAddress = search.get(name) ?? ''
+  const [onItsWay, setOnItsWay] = useState<string | null>(null)
+  if (onItsWay === inAddress) setOnItsWay(null)
+  const set = (value: string) => {
+    setOnItsWay(value)
     setSearch(
       (before) => {
         const next = new URLSearchParams(before)
@@ -14,7 +23,8 @@ export function useUrlText(name: string): [string, (value: string) => void] {
       },
       { replace: true, preventScrollReset: true },
     )
-  return [search.get(name) ?? '', set]
+  }
+  return [onItsWay ?? inAddress, set]
 }
 
 /** A table's sort in the query: "address", or "-address" from the greatest down. */
