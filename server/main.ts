@@ -12,7 +12,9 @@ import { openDatabase } from './db/orm.ts'
 import { makeDemo } from './demo/make-demo.ts'
 import { serveClient } from './http/serve-client.ts'
 import type { Services } from './http/services.ts'
+import { JobBoard } from './jobs/job-board.ts'
 import { onWorkers } from './jobs/on-workers.ts'
+import { analysisStore } from './modules/checks/analysis-store.ts'
 import { startMailSender } from './modules/mail/send-mail.ts'
 import { Person } from './modules/people/person.entity.ts'
 
@@ -32,7 +34,11 @@ async function start() {
   const release = holdDatabase(database)
   const orm = await openDatabase(database)
   const here = fileURLToPath(new URL('.', import.meta.url))
-  const checks = onWorkers(join(here, 'worker.js'), Math.max(1, availableParallelism() - 1))
+  const checks = new JobBoard({
+    threads: onWorkers({ workerFile: join(here, 'worker.js'), threads: availableParallelism() }),
+    store: analysisStore(orm, () => new Date()),
+    warn: (error) => log.error(error, 'a result was not stored'),
+  })
   let wake = () => {}
   const services: Services = { config, orm, now: () => new Date(), checks, mailQueued: () => wake() }
   if (config.mode === 'demo' && (await orm.em.fork().count(Person)) === 0) await makeDemo(services)

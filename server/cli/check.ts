@@ -2,28 +2,30 @@ import { parseArgs } from 'node:util'
 import { defaultPolicy } from '../../shared/contract/policy.ts'
 import { emptySet } from '../../shared/parameters/machine-set.ts'
 import { MODEL_VERSION } from '../control/model-version.ts'
-import { runCheck } from '../modules/checks/run-check.ts'
+import { computeHere } from '../jobs/flows.ts'
+import type { StoredOutcome } from '../jobs/job-board.ts'
+import { assembleCheck } from '../modules/checks/assemble-check.ts'
+import type { CheckInputs } from '../modules/checks/check-inputs.ts'
+import { nominalRequests, prepareCheck, toleranceRequests } from '../modules/checks/prepare-check.ts'
+import { hashOf } from '../modules/firmware/schema-cache.ts'
+import { printCheck } from './print-check.ts'
 import { readSetFile } from './read-set-file.ts'
 import { Usage } from './usage.ts'
 
-/** Checks every joint of a file under the default policy. Exit code 0: nothing blocks; 1: something does. */
+/** Checks every joint of a file under the default policy, tolerances included. Exit code 0: nothing blocks; 1: something does. */
 export async function check(args: string[]): Promise<number> {
   const { values, positionals } = parseArgs({ args, allowPositionals: true, options: { json: { type: 'boolean' }, schemas: { type: 'string' } } })
   if (positionals.length !== 1) throw new Usage('check takes one file.')
-  const { set, documents } = readSetFile(positionals[0], values.schemas)
-  const result = runCheck({ modelVersion: MODEL_VERSION, policyNumber: 0, policy: defaultPolicy, candidate: set, base: emptySet(), schemas: documents, firmwareStates: Object.fromEntries(Object.keys(documents).map((name) => [name, 'published' as const])) })
-  const blocks = result.counts.block > 0
-  if (values.json) {
-    process.stdout.write(`${JSON.stringify(result, null, 2)}\n`)
-    return blocks ? 1 : 0
+  const { set, schemas, documents } = readSetFile(positionals[0], values.schemas)
+  const inputs: CheckInputs = {
+    modelVersion: MODEL_VERSION, policyNumber: 0, policy: defaultPolicy, candidate: set, base: emptySet(),
+    schemas: Object.fromEntries([...schemas].map(([name, schema]) => [name, { schema, hash: hashOf(documents[name]) }])),
+    firmwareStates: Object.fromEntries([...schemas.keys()].map((name) => [name, 'published' as const])),
   }
-  const lines = [
-    ...result.joints.map((j) => (j.candidate ? `${j.joint}: ${j.candidate.verdict}, rho ${j.candidate.rho.toPrecision(9)} over ${Number((j.candidate.hyperperiodS * 1e3).toPrecision(6))} ms` : `${j.joint}: not analysed`)),
-    '',
-    ...result.findings.map((f) => `${f.level}: ${f.kind}${f.loop ? `, ${f.loop} loop` : ''}${f.joints.length > 0 ? ` (${f.joints.join(', ')})` : ''}: ${f.text}${f.remedy ? ` ${f.remedy}` : ''}`),
-    '',
-    `${Object.entries(result.counts).map(([level, n]) => `${n} ${level}`).join(', ')}`,
-  ]
-  process.stdout.write(`${lines.join('\n')}\n`)
-  return blocks ? 1 : 0
+  const prepared = prepareCheck(inputs)
+  const known = new Map<string, StoredOutcome>()
+  for (const asked of [...nominalRequests(prepared), ...toleranceRequests(prepared)]) known.set(asked.hash, await computeHere(asked))
+  const result = assembleCheck(prepared, known)
+  process.stdout.write(values.json ? `${JSON.stringify(result, null, 2)}\n` : printCheck(result, set))
+  return result.counts.block > 0 ? 1 : 0
 }

@@ -3,6 +3,7 @@ import { ChangeEvent } from '../modules/changes/change-event.entity.ts'
 import { Change } from '../modules/changes/change.entity.ts'
 import { DraftPoint } from '../modules/changes/draft-point.entity.ts'
 import { CheckReport } from '../modules/checks/check-report.entity.ts'
+import { JointAnalysis } from '../modules/checks/joint-analysis.entity.ts'
 import { FirmwareLine } from '../modules/firmware/firmware-line.entity.ts'
 import { FirmwareVersion } from '../modules/firmware/firmware-version.entity.ts'
 import { LedgerEntry } from '../modules/ledger/ledger-entry.entity.ts'
@@ -24,9 +25,9 @@ import { Withdrawal } from '../modules/releases/withdrawal.entity.ts'
 import { Signature } from '../modules/reviews/signature.entity.ts'
 
 export const entities = [
-  Bus, Change, ChangeEvent, CheckReport, DraftPoint, DriveTrain, Family, FirmwareLine, FirmwareVersion, Joint, LedgerEntry, Link, Machine, Mail,
+  Bus, Change, ChangeEvent, CheckReport, DraftPoint, DriveTrain, Family, FirmwareLine, FirmwareVersion, Joint, JointAnalysis, LedgerEntry, Link, Machine, Mail,
   Person, PolicyVersion, Receipt, Release, ReleaseJoint, Revision, RoleGrant, SessionRecord, Signature, Withdrawal,
 ]
 
 /** Rows of these are written once: a flush that alters one is refused, and so is SQL that goes around the flush (triggers). */
-export const immutable = [ChangeEvent, CheckReport, DraftPoint, DriveTrain, LedgerEntry, Release, ReleaseJoint, Revision, Signature, Withdrawal]
+export const immutable = [ChangeEvent, CheckReport, DraftPoint, DriveTrain, JointAnalysis, LedgerEntry, Release, ReleaseJoint, Revision, Signature, Withdrawal]

@@ -19,10 +19,17 @@ export interface Place {
   subject: LedgerSubject
 }
 
-/** The answer of a route: JSON, or bytes with a name. */
+/** Where a stream of events goes: each one is sent as JSON; `end` closes it. */
+export interface EventSink {
+  send(event: unknown): void
+  end(): void
+}
+
+/** The answer of a route: JSON, bytes with a name, or events for as long as somebody listens (`stream` begins, and answers how to leave off). */
 export type Answer =
   | { status?: number; body: unknown; etag?: number; headers?: Record<string, string> }
   | { status?: number; bytes: Uint8Array; type: string; fileName: string; headers?: Record<string, string> }
+  | { status?: number; stream: (sink: EventSink) => () => void }
 
 export interface Call<B, P extends Place> {
   services: Services
@@ -132,8 +139,31 @@ async function transact(em: EntityManager, acting: Acting, work: (em: EntityMana
   })
 }
 
+/** Longest that one stream is kept: the browser opens it anew then, and session and rights are asked again. */
+const streamMs = 10 * 60_000
+/** A line now and then keeps proxies from closing a silent stream. */
+const breathMs = 20_000
+
+/** Server-sent events as the HTML standard frames them. */
+function sendEvents(res: Response, begin: (sink: EventSink) => () => void) {
+  res.status(200).set({ 'Content-Type': 'text/event-stream', 'Cache-Control': 'no-store', 'X-Accel-Buffering': 'no' })
+  res.flushHeaders()
+  const leave = begin({ send: (event) => res.write(`data: ${JSON.stringify(event)}\n\n`), end: () => res.end() })
+  const breath = setInterval(() => res.write(':\n\n'), breathMs)
+  const last = setTimeout(() => res.end(), streamMs)
+  res.on('close', () => {
+    clearInterval(breath)
+    clearTimeout(last)
+    leave()
+  })
+}
+
 /** Sends an answer; downloads carry their name by RFC 6266. */
 function send(res: Response, answer: Answer) {
+  if ('stream' in answer) {
+    sendEvents(res, answer.stream)
+    return
+  }
   res.status(answer.status ?? 200).set({ 'Cache-Control': 'no-store', ...answer.headers })
   if ('bytes' in answer) {
     const ascii = answer.fileName.replace(/[^\x20-\x7e]|["\\]/g, '_')

@@ -1,15 +1,40 @@
+import { MessageChannel } from 'node:worker_threads'
 import { Piscina } from 'piscina'
-import type { CheckResult } from '../../shared/contract/checks.ts'
-import type { CheckRunner } from './check-runner.ts'
+import type { Outcome, Task, TaskResult, Told } from './task.ts'
+import { TimeLimit, WorkerLost, type Threads } from './threads.ts'
 
-/** How long one check may take before it is ended; far beyond any honest one. */
-const limitMs = 120_000
+export interface WorkerOptions {
+  workerFile: string
+  threads: number
+  /** how long one task may take before its thread is ended, ms; pieces are cut to a fraction of it */
+  limitMs?: number
+  /** MiB of heap a thread may grow to */
+  heapMiB?: number
+  execArgv?: string[]
+}
 
-/** Checks on worker threads, one for each core but one, at most a hundred waiting. */
-export function onWorkers(workerFile: string, threads: number): CheckRunner {
-  const pool = new Piscina<unknown, CheckResult>({ filename: workerFile, minThreads: 1, maxThreads: threads, maxQueue: 100, idleTimeout: 60_000 })
+/** Worker threads, one task each at a time; a thread that ends or is ended is replaced by the next task. */
+export function onWorkers({ workerFile, threads, limitMs = 60_000, heapMiB = 512, execArgv }: WorkerOptions): Threads {
+  const pool = new Piscina<unknown, unknown>({
+    filename: workerFile, minThreads: 1, maxThreads: threads, concurrentTasksPerWorker: 1, idleTimeout: 60_000,
+    resourceLimits: { maxOldGenerationSizeMb: heapMiB }, ...(execArgv ? { execArgv } : {}),
+  })
   return {
-    run: (inputs) => pool.run(inputs, { signal: AbortSignal.timeout(limitMs) }),
-    close: () => pool.close(),
+    width: threads,
+    async run<T extends Task>(task: T, told?: Told, stopped?: AbortSignal) {
+      const limit = AbortSignal.timeout(limitMs)
+      const channel = task.kind === 'retune' && told ? new MessageChannel() : null
+      channel?.port1.on('message', told!)
+      try {
+        const signal = stopped ? AbortSignal.any([limit, stopped]) : limit
+        return (await pool.run({ task, port: channel?.port2 ?? null }, { signal, ...(channel ? { transferList: [channel.port2] } : {}) })) as Outcome<TaskResult<T>>
+      } catch (error) {
+        if (limit.aborted) throw new TimeLimit(`a piece took longer than ${limitMs / 1000} s`)
+        throw new WorkerLost((error as Error).message)
+      } finally {
+        channel?.port1.close()
+      }
+    },
+    close: () => pool.close({ force: true }),
   }
 }

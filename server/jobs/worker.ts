@@ -1,5 +1,5 @@
-import type { CheckInputs } from '../modules/checks/check-inputs.ts'
-import { runCheck } from '../modules/checks/run-check.ts'
+import type { MessagePort } from 'node:worker_threads'
+import { perform, type Task } from './task.ts'
 
 /** Runs on a worker thread; never opens the database. */
-export default (inputs: CheckInputs) => runCheck(inputs)
+export default ({ task, port }: { task: Task; port: MessagePort | null }) => perform(task, (done) => port?.postMessage(done))

@@ -71,7 +71,8 @@ export interface StepFigures {
   rmsCurrentA: number
   peakVoltageRequestV: number
   peakSpeed: number
-  /** peak to peak over the last fifth */
+  /** peak to peak over the last fifth, of the commanded signal in its unit */
+  rippleOfResponse: number
   rippleOfPosition: number
   rippleOfCurrentA: number
 }

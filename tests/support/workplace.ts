@@ -7,6 +7,8 @@ import { readConfig } from '../../server/config.ts'
 import { openDatabase, type Orm } from '../../server/db/orm.ts'
 import type { Services } from '../../server/http/services.ts'
 import { inPlace } from '../../server/jobs/in-place.ts'
+import { JobBoard } from '../../server/jobs/job-board.ts'
+import { analysisStore } from '../../server/modules/checks/analysis-store.ts'
 import { Machine } from '../../server/modules/machines/machine.entity.ts'
 import { hashPassword } from '../../server/modules/people/passwords.ts'
 import { Person } from '../../server/modules/people/person.entity.ts'
@@ -47,7 +49,7 @@ export async function aWorkplace(env: NodeJS.ProcessEnv = {}): Promise<Workplace
     config: readConfig({ DETENT_MODE: 'workplace', ...env }),
     orm,
     now: () => time,
-    checks: inPlace,
+    checks: new JobBoard({ threads: inPlace(), store: analysisStore(orm, () => time) }),
     mailQueued: () => {},
   }
   const app = buildApp({ services, log: pino({ level: 'silent' }), sessionSecret: 'a secret for tests alone' })
@@ -86,7 +88,10 @@ export async function aWorkplace(env: NodeJS.ProcessEnv = {}): Promise<Workplace
       const list: [Role, string | null][] = typeof roles === 'string' ? [[roles, null]] : roles
       return workplace.signIn(await workplace.person(`Person ${count}`, list))
     },
-    close: () => orm.close(true),
+    close: async () => {
+      await services.checks.close()
+      await orm.close(true)
+    },
   }
   afterAll(() => workplace.close())
   return workplace

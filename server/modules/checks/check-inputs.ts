@@ -1,5 +1,6 @@
 import type { PolicyContent } from '../../../shared/contract/policy.ts'
 import type { MachineSet } from '../../../shared/parameters/machine-set.ts'
+import type { ParameterSchema } from '../../../shared/registers/parameter-schema.ts'
 
 /** Everything a check depends on, and nothing else: equal inputs give equal results. */
 export interface CheckInputs {
@@ -8,8 +9,8 @@ export interface CheckInputs {
   policy: PolicyContent
   candidate: MachineSet
   base: MachineSet
-  /** parameter schemas by firmware name, for every joint of both sets */
-  schemas: Record<string, unknown>
+  /** by firmware name, for every joint of both sets; the hash names the document that the schema was read from */
+  schemas: Record<string, { schema: ParameterSchema; hash: string }>
   /** state of each of those firmware versions */
   firmwareStates: Record<string, 'draft' | 'published' | 'retired'>
 }

@@ -17,7 +17,7 @@ export const sha256 = (bytes: Uint8Array | string) => createHash('sha256').updat
 const takesValue = (schema: ParameterSchema) => schema.parameters.filter((p) => p.register !== null && p.register.access !== 'ro')
 
 /** Where a value of a joint stands in the set, for a person to be led to. */
-function pointerOf(set: MachineSet, joint: string, parameter: string): string {
+export function pointerOf(set: MachineSet, joint: string, parameter: string): string {
   const { family, values } = set.joints[joint]
   if (Object.hasOwn(values, parameter)) return toPointer(['joints', joint, 'values', parameter])
   if (Object.hasOwn(set.families[family]?.values ?? {}, parameter)) return toPointer(['families', family, 'values', parameter])

@@ -14,18 +14,22 @@ export function fold(raw: readonly RawFinding[]): Finding[] {
   const groups = new Map<string, RawFinding[]>()
   for (const f of raw) {
     const key = [f.kind, f.loop, f.place].filter(Boolean).join('/')
-    groups.set(key, [...(groups.get(key) ?? []), f])
+    const group = groups.get(key)
+    if (group) group.push(f)
+    else groups.set(key, [f])
   }
   const folded = [...groups].map(([key, list]): Finding => {
     const level = findingLevels[Math.max(...list.map((f) => rank(f.level)))]
     const atLevel = list.filter((f) => f.level === level)
-    const { place: _place, joint: _joint, ...worst } = atLevel.reduce((a, b) => (distance(b) > distance(a) ? b : a))
+    // Of those that miss, the one that misses by most; of those that pass, the one nearest to its limit.
+    const further = level === 'pass' ? -1 : 1
+    const { place: _place, joint: _joint, ...worst } = atLevel.reduce((a, b) => (further * (distance(b) - distance(a)) > 0 ? b : a))
     return { ...worst, key, joints: [...new Set(atLevel.flatMap((f) => (f.joint ? [f.joint] : [])))] }
   })
   return folded.sort((a, b) => rank(b.level) - rank(a.level) || a.key.localeCompare(b.key))
 }
 
-/** How far a figure misses its limit, relative to the limit; 0 where there is none. */
+/** How far a figure lies from its limit, relative to the limit; 0 where there is none. */
 const distance = (f: RawFinding) => (f.value === null || f.limit === null ? 0 : Math.abs(f.value - f.limit) / (Math.abs(f.limit) || 1))
 
 /** A number as a sentence shows it: four significant digits, no exponent where none is needed. */

@@ -1,10 +1,10 @@
-import type { JointFigures, LoopFigures } from '../../../shared/contract/checks.ts'
-import { analyse, type LoopReport } from '../../control/analyse.ts'
+import type { JointFigures, LoopFigures, Verdict } from '../../../shared/contract/checks.ts'
+import type { LinearReport, LoopReport } from '../../control/analyse.ts'
 import type { GainMargin } from '../../control/margins.ts'
-import type { ControlMode, JointModel } from '../../control/model.ts'
+import type { ControlMode } from '../../control/model.ts'
 import type { Verdict as ControlVerdict } from '../../control/stability.ts'
 
-const verdictWords: Record<ControlVerdict, JointFigures['verdict']> = { stable: 'stable', unstable: 'unstable', boundary: 'on the boundary' }
+export const verdictWords: Record<ControlVerdict, Verdict> = { stable: 'stable', unstable: 'unstable', boundary: 'on the boundary' }
 
 const reads = (margin: GainMargin): string => (margin.kind === 'unstable' ? 'unstable' : margin.kind === 'none-within' ? `above ${margin.limitDb} dB` : '')
 
@@ -26,20 +26,19 @@ function loopFigures(loop: LoopReport): LoopFigures {
   }
 }
 
-/** The figures of one joint's closed cascade, as a check carries them. */
-export function figuresOf(model: JointModel): JointFigures {
-  const report = analyse(model)
+/** A rate that a document can hold: a loop that is done within one hyperperiod decays without bound. */
+const finite = (rate: number) => Math.max(-1e300, Math.min(1e300, rate))
+
+/** The linear report as a check carries it. */
+export function linearFigures(report: LinearReport): Omit<JointFigures, 'step' | 'heat' | 'tolerance'> {
   const loops = Object.entries(report.loops) as [ControlMode, LoopReport][]
   return {
     verdict: verdictWords[report.verdict],
     rho: report.rho,
     hyperperiodS: report.T_h,
-    decayRate: report.decayRate,
+    decayRate: finite(report.decayRate),
     slowestTimeConstantS: report.slowestTimeConstant,
-    eigenvalues: report.eigenvalues.map((e) => ({ re: e.re, im: e.im, decayRate: e.decayRate, frequencyHz: e.foldedHz })),
+    eigenvalues: report.eigenvalues.map((e) => ({ re: e.re, im: e.im, decayRate: finite(e.decayRate), frequencyHz: e.foldedHz })),
     loops: Object.fromEntries(loops.map(([name, loop]) => [name, loopFigures(loop)])),
-    step: null,
-    heat: null,
-    tolerance: null,
   }
 }

@@ -1,0 +1,50 @@
+import type { LoopCurve, LoopName } from '../../../shared/contract/checks.ts'
+import { frequencyResponses } from '../../control/frequency-response.ts'
+import { closuresOf } from '../../control/monodromy.ts'
+import { sampleJoint } from '../../control/sampled-joint.ts'
+import type { CurvesInputs } from './requests.ts'
+
+export type CurvesResult = Partial<Record<LoopName, LoopCurve>>
+
+const points = 300
+
+/** Frequencies of a loop's curve: in equal ratios up to half the rate of its own task. */
+function frequencies(loop: LoopName, f_c: number, f_o: number): Float64Array {
+  const high = (loop === 'current' ? f_c : f_o) / 2
+  const low = high / (loop === 'current' ? 1e3 : 1e4)
+  return Float64Array.from({ length: points }, (_, k) => low * (high / low) ** (k / (points - 1)))
+}
+
+const decibels = (re: number, im: number) => Math.max(-300, 20 * Math.log10(Math.hypot(re, im)))
+
+/** Phase along a curve, degrees, without jumps; it begins within ±180°. */
+function unwrapped(re: Float64Array, im: Float64Array): number[] {
+  const out: number[] = []
+  let turns = 0
+  let before = 0
+  for (let k = 0; k < re.length; k += 1) {
+    const here = (Math.atan2(im[k], re[k]) * 180) / Math.PI
+    if (k > 0 && here - before > 180) turns -= 360
+    if (k > 0 && here - before < -180) turns += 360
+    before = here
+    out.push(Number((here + turns).toPrecision(6)))
+  }
+  return out
+}
+
+/** Bode curves of every loop the joint closes. @throws NumericError */
+export function curvesAnalysis({ model }: CurvesInputs): CurvesResult {
+  const { f_c, f_o } = model.firmware
+  const six = (v: number) => Number(v.toPrecision(6))
+  const curve = (loop: LoopName): LoopCurve => {
+    const [r] = frequencyResponses(model, [loop], frequencies(loop, f_c, f_o))
+    return {
+      hz: Array.from(r.hz, six),
+      openDb: Array.from(r.L_re, (re, k) => six(decibels(re, r.L_im[k]))),
+      openPhaseDeg: unwrapped(r.L_re, r.L_im),
+      closedDb: Array.from(r.T_re, (re, k) => six(decibels(re, r.T_im[k]))),
+      closedPhaseDeg: unwrapped(r.T_re, r.T_im),
+    }
+  }
+  return Object.fromEntries(closuresOf(sampleJoint(model).closes).map((loop) => [loop, curve(loop)]))
+}

@@ -1,0 +1,21 @@
+import type { Orm } from '../../db/orm.ts'
+import type { ResultStore, StoredOutcome } from '../../jobs/job-board.ts'
+import { JointAnalysis } from './joint-analysis.entity.ts'
+
+/** SQLite binds at most 32766 values; a machine has 1000 joints with three analyses on two sides. */
+const atOnce = 500
+
+/** Results of analyses in the database, each written once. */
+export const analysisStore = (orm: Orm, now: () => Date): ResultStore => ({
+  async load(hashes) {
+    const found = new Map<string, StoredOutcome>()
+    for (let k = 0; k < hashes.length; k += atOnce)
+      for (const row of await orm.em.fork().find(JointAnalysis, { hash: { $in: hashes.slice(k, k + atOnce) } }, { disableIdentityMap: true })) found.set(row.hash, row.outcome)
+    return found
+  },
+  async save({ hash, kind, outcome }) {
+    const em = orm.em.fork()
+    // Two requests may have computed the same at once: equal inputs, equal results, the first one stays.
+    await em.getConnection().execute('insert or ignore into joint_analysis (hash, kind, outcome, created_at) values (?, ?, ?, ?)', [hash, kind, JSON.stringify(outcome), now().getTime()])
+  },
+})
