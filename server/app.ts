@@ -3,11 +3,14 @@ import express, { Router, type Express, type RequestHandler } from 'express'
 import helmet from 'helmet'
 import type { Logger } from 'pino'
 import { pinoHttp } from 'pino-http'
+import { acceptBenchKeys } from './http/bench-key.ts'
 import { errorHandler, notFound } from './http/error-handler.ts'
 import { mount, type RouteSpec } from './http/route.ts'
 import { sameSite } from './http/same-site.ts'
 import type { Services } from './http/services.ts'
 import { useSessions } from './http/session.ts'
+import { benchKeyRoutes } from './modules/bench-keys/routes.ts'
+import { boardRoutes } from './modules/boards/routes.ts'
 import { changeRoutes } from './modules/changes/routes.ts'
 import { checkRoutes } from './modules/checks/routes.ts'
 import { firmwareRoutes } from './modules/firmware/routes.ts'
@@ -21,7 +24,7 @@ import { reviewRoutes } from './modules/reviews/routes.ts'
 
 /** Every route of the API that a signed-in person reaches; tests walk it. */
 export const routeTable: readonly RouteSpec[] = [
-  ...peopleRoutes, ...machineRoutes, ...firmwareRoutes, ...policyRoutes, ...changeRoutes, ...checkRoutes, ...reviewRoutes, ...releaseRoutes, ...ledgerRoutes, ...mailRoutes,
+  ...peopleRoutes, ...machineRoutes, ...firmwareRoutes, ...policyRoutes, ...changeRoutes, ...checkRoutes, ...reviewRoutes, ...releaseRoutes, ...boardRoutes, ...benchKeyRoutes, ...ledgerRoutes, ...mailRoutes,
 ]
 
 const contentSecurity = (secure: boolean) =>
@@ -63,6 +66,7 @@ export function buildApp({ services, log, sessionSecret, client }: AppParts): Ex
   const api = Router()
   api.use(express.json({ limit: '4mb', strict: true }))
   const passport = useSessions(app, services, sessionSecret)
+  api.use(acceptBenchKeys(services))
   api.use(sameSite(() => services.config.baseUrl))
   publicPeopleRoutes(api, services, passport)
   mount(api, services, routeTable)

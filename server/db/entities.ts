@@ -1,4 +1,7 @@
 import { Receipt } from '../http/receipt.entity.ts'
+import { BenchKey } from '../modules/bench-keys/bench-key.entity.ts'
+import { BoardEvent } from '../modules/boards/board-event.entity.ts'
+import { Board } from '../modules/boards/board.entity.ts'
 import { ChangeEvent } from '../modules/changes/change-event.entity.ts'
 import { Change } from '../modules/changes/change.entity.ts'
 import { DraftPoint } from '../modules/changes/draft-point.entity.ts'
@@ -25,9 +28,9 @@ import { Withdrawal } from '../modules/releases/withdrawal.entity.ts'
 import { Signature } from '../modules/reviews/signature.entity.ts'
 
 export const entities = [
-  Bus, Change, ChangeEvent, CheckReport, DraftPoint, DriveTrain, Family, FirmwareLine, FirmwareVersion, Joint, JointAnalysis, LedgerEntry, Link, Machine, Mail,
+  BenchKey, Board, BoardEvent, Bus, Change, ChangeEvent, CheckReport, DraftPoint, DriveTrain, Family, FirmwareLine, FirmwareVersion, Joint, JointAnalysis, LedgerEntry, Link, Machine, Mail,
   Person, PolicyVersion, Receipt, Release, ReleaseJoint, Revision, RoleGrant, SessionRecord, Signature, Withdrawal,
 ]
 
 /** Rows of these are written once: a flush that alters one is refused, and so is SQL that goes around the flush (triggers). */
-export const immutable = [ChangeEvent, CheckReport, DraftPoint, DriveTrain, JointAnalysis, LedgerEntry, Release, ReleaseJoint, Revision, Signature, Withdrawal]
+export const immutable = [BoardEvent, ChangeEvent, CheckReport, DraftPoint, DriveTrain, JointAnalysis, LedgerEntry, Release, ReleaseJoint, Revision, Signature, Withdrawal]

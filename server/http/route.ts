@@ -8,6 +8,7 @@ import type { LedgerSubject } from '../modules/ledger/ledger-entry.entity.ts'
 import { heldRoles } from '../modules/people/held-roles.ts'
 import { may, type Act, type HeldRole } from '../modules/people/permissions.ts'
 import { Person } from '../modules/people/person.entity.ts'
+import { benchKeyOf, rightsOf } from './bench-key.ts'
 import { DomainError } from './errors.ts'
 import { Receipt } from './receipt.entity.ts'
 import type { Services } from './services.ts'
@@ -36,6 +37,8 @@ export interface Call<B, P extends Place> {
   em: EntityManager
   person: Person
   held: HeldRole[]
+  /** name of the bench key that speaks for the person; null for the person in a session */
+  benchKey: string | null
   place: P
   params: Record<string, string>
   query: Record<string, string>
@@ -59,6 +62,8 @@ export interface RouteSpec<B extends TSchema = TSchema, P extends Place = Place>
   place?: (em: EntityManager, params: Record<string, string>) => Promise<P>
   body?: B
   ifMatch?: boolean
+  /** a bench key may take it too; every other route refuses one */
+  benchKey?: true
   handle: (call: Call<Static<B>, P>) => Promise<Answer>
 }
 
@@ -98,10 +103,11 @@ function requestHash(req: Request, body: unknown): string {
 }
 
 /** The same role asked again inside the transaction: what was ended or held meanwhile stops the act. */
-async function mustStillBeAllowed(em: EntityManager, spec: RouteSpec, person: Person, place: Place) {
+async function mustStillBeAllowed(em: EntityManager, { spec, req, person, place, now }: Acting) {
   const fresh = await em.findOneOrFail(Person, { id: person.id }, { refresh: true })
   if (fresh.disabledAt) throw new DomainError('not-signed-in', 'This person was disabled meanwhile. Nothing was done.')
-  if (spec.access !== 'signed-in') mustBeAllowed(await heldRoles(em, fresh), spec, place)
+  const held = await rightsOf(em, benchKeyOf(req), await heldRoles(em, fresh), now)
+  if (spec.access !== 'signed-in') mustBeAllowed(held, spec, place)
 }
 
 function mustBeAllowed(held: readonly HeldRole[], spec: RouteSpec, place: Place) {
@@ -122,7 +128,7 @@ interface Acting {
 
 /** Runs an act in one transaction; under an Idempotency-Key its answer is kept there for a repeat of the same request. */
 async function transact(em: EntityManager, acting: Acting, work: (em: EntityManager) => Promise<Answer>): Promise<Answer> {
-  const { spec, req, person, place, body, now } = acting
+  const { req, person, body, now } = acting
   const key = req.headers['idempotency-key']
   if (key !== undefined && (typeof key !== 'string' || !/^[\w-]{8,80}$/.test(key))) throw new DomainError('invalid-request', 'Idempotency-Key takes 8 to 80 letters, digits, hyphens and underscores. Nothing was done.')
   return em.transactional(async (tx) => {
@@ -132,7 +138,7 @@ async function transact(em: EntityManager, acting: Acting, work: (em: EntityMana
       if (earlier.requestHash !== hash) throw new DomainError('key-reused', 'This Idempotency-Key belongs to another request. Nothing was done; use a new key.')
       return JSON.parse(earlier.body) as Answer
     }
-    await mustStillBeAllowed(tx, spec, person, place)
+    await mustStillBeAllowed(tx, acting)
     const answer = await work(tx)
     if (key !== undefined) tx.create(Receipt, { personId: person.id, key, requestHash: hash, status: answer.status ?? 200, body: JSON.stringify(answer), createdAt: now })
     return answer
@@ -185,7 +191,13 @@ async function answerTo(services: Services, spec: RouteSpec, req: Request): Prom
   const em = services.orm.em.fork()
   const now = services.now()
   const person = await em.findOneOrFail(Person, { id: personOf(req).id })
-  const held = await heldRoles(em, person)
+  const key = benchKeyOf(req)
+  if (key && !spec.benchKey) {
+    const refusal = new DomainError('not-permitted', 'A bench key reads machines, releases, boards and firmware, and records flashes; nothing else. Nothing was done; sign in for this.')
+    if (spec.method !== 'get') await record(services, spec, refusal, person, await nowhere(), now)
+    throw refusal
+  }
+  const held = await rightsOf(em, key, await heldRoles(em, person), now)
   const params = req.params as Record<string, string>
   const query = req.query as Record<string, string>
   if (![...Object.values(params), ...Object.values(query)].every((v) => typeof v === 'string' && keepable(v))) throw new DomainError('invalid-request', "The address holds a character that can't stand in it, or names something twice. Nothing was done.")
@@ -200,6 +212,7 @@ async function answerTo(services: Services, spec: RouteSpec, req: Request): Prom
       em,
       person,
       held,
+      benchKey: key?.name ?? null,
       place,
       params,
       query,

@@ -38,5 +38,6 @@ export interface BenchKeys {
 /** The key itself is in this answer and nowhere else. */
 export interface MadeBenchKey extends BenchKeys {
   made: BenchKeyView
-  secret: string
+  /** null in the answer to a repeat: it is told once */
+  secret: string | null
 }

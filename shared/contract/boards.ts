@@ -1,5 +1,5 @@
 import { Type, type Static } from '@sinclair/typebox'
-import { FirmwareName, Key, type Value } from '../parameters/machine-set.ts'
+import { Key, type Value } from '../parameters/machine-set.ts'
 import type { Allowed } from './people.ts'
 
 const strict = { additionalProperties: false }
@@ -44,21 +44,17 @@ export type ReadBoardBack = Static<typeof ReadBoardBack>
 export const CompareDump = Type.Object({ release: Version, dump: Dump }, strict)
 export type CompareDump = Static<typeof CompareDump>
 
-export const MoveBoard = Type.Object({ machine: Key, joint: Type.Union([Key, Type.Null()], { description: 'null: off its joint' }), note: Type.Optional(Note) }, strict)
-export type MoveBoard = Static<typeof MoveBoard>
+/** Where a board sits, known or new. */
+export const SeatBoard = Type.Object({ serial: SerialNumber, joint: Type.Union([Key, Type.Null()], { description: 'null: off its joint' }), note: Type.Optional(Note) }, strict)
+export type SeatBoard = Static<typeof SeatBoard>
 
 export const RetireBoard = Type.Object({ serial: Type.String({ maxLength: 40, description: 'the serial number, typed again' }), reason: Type.String({ minLength: 1, maxLength: 500, pattern: '\\S' }) }, strict)
 export type RetireBoard = Static<typeof RetireBoard>
 
-/** The text of a table of boards; `decidedOn` is the hash of the preview that was looked at. */
 export const BoardTable = Type.Object({ text: Type.String({ minLength: 1, maxLength: 1_000_000 }) }, strict)
+/** `decidedOn` is the hash of the preview that was looked at. */
 export const ImportBoards = Type.Object({ text: Type.String({ minLength: 1, maxLength: 1_000_000 }), decidedOn: Type.String({ pattern: '^[0-9a-f]{64}$' }) }, strict)
 export type ImportBoards = Static<typeof ImportBoards>
-
-export const TakeBenchImage = Type.Object({ serial: SerialNumber, joint: Key, format: Type.Union([Type.Literal('bin'), Type.Literal('hex'), Type.Literal('srec'), Type.Literal('write-list')]) }, strict)
-export type TakeBenchImage = Static<typeof TakeBenchImage>
-
-export { FirmwareName }
 
 /** Where a board sits: the joint as the newest release of its machine has it; `bus` and `address` are null for a joint that this release left out. */
 export interface BoardPlace {
@@ -272,12 +268,4 @@ export interface BenchTask {
   why: string
   /** version to flash; null when there is none */
   flash: string | null
-}
-
-export interface BenchImage {
-  fileName: string
-  /** base64 */
-  content: string
-  sha256: string
-  bytes: number
 }

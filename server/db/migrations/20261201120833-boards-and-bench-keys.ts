@@ -9,6 +9,7 @@ export class Migration20261201120833 extends Migration {
     this.addSql('create table `board` (`id` integer not null primary key autoincrement, `serial` text not null, `serial_key` text not null, `machine_id` integer not null, `joint_id` integer null, `firmware` text null, `release_id` integer null, `image_of_id` integer null, `known` text null, `known_at` datetime null, `known_by` text null, `bench_set` text null, `read_back` text null, `created_at` datetime not null, `retired_at` datetime null, constraint `board_machine_id_foreign` foreign key(`machine_id`) references `machine`(`id`) on update cascade, constraint `board_joint_id_foreign` foreign key(`joint_id`) references `joint`(`id`) on delete set null on update cascade, constraint `board_release_id_foreign` foreign key(`release_id`) references `release`(`id`) on delete set null on update cascade, constraint `board_image_of_id_foreign` foreign key(`image_of_id`) references `joint`(`id`) on delete set null on update cascade);')
     this.addSql('create unique index `board_serial_key_unique` on `board` (`serial_key`);')
     this.addSql('create index `board_machine_id_index` on `board` (`machine_id`);')
+    this.addSql('create index `board_joint_id_index` on `board` (`joint_id`);')
     this.addSql('create unique index `board_joint_id_unique` on `board` (`joint_id`);')
     this.addSql('create index `board_release_id_index` on `board` (`release_id`);')
     this.addSql('create index `board_image_of_id_index` on `board` (`image_of_id`);')

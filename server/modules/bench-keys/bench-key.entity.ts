@@ -12,7 +12,7 @@ export const BenchKey = defineEntity({
     /** SHA-256 of the secret: it has 256 random bits, so a slow hash would protect nothing more */
     secretHash: p.string().length(64).unique(),
     /** first characters of the secret, to tell keys apart */
-    begins: p.string().length(16),
+    begins: p.string().length(24),
     /** keys of the machines it reaches */
     machines: p.json<string[]>(),
     createdAt: p.datetime(),

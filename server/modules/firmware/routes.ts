@@ -46,6 +46,7 @@ export const firmwareRoutes: readonly RouteSpec[] = [
     path: '/firmware',
     summary: 'firmware lines with their versions',
     access: 'read',
+    benchKey: true,
     handle: async ({ em, held }) => ({ body: await presentLines(em, await em.find(FirmwareLine, {}), held) }),
   }),
   route({
@@ -82,6 +83,7 @@ export const firmwareRoutes: readonly RouteSpec[] = [
     path: '/firmware/:line/:version',
     summary: 'a firmware version with its parameter schema',
     access: 'read',
+    benchKey: true,
     place: onVersion,
     handle: (call) => versionAnswer(call.em, call.place.version, call),
   }),

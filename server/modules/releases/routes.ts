@@ -17,6 +17,7 @@ export const releaseRoutes: readonly RouteSpec[] = [
     path: '/releases',
     summary: 'list releases',
     access: 'signed-in',
+    benchKey: true,
     handle: async ({ em, held, query }) => {
       const readable = (await em.find(Machine, query.machine ? { key: query.machine } : {})).filter((m) => may(held, 'read', m.key).allowed)
       const releases = await em.find(Release, { machine: { $in: readable.map((m) => m.id) } }, { populate: ['machine', 'releasedBy'], orderBy: { releasedAt: 'desc' }, limit: 500 })
@@ -28,6 +29,7 @@ export const releaseRoutes: readonly RouteSpec[] = [
     path: '/machines/:machine/releases/:version',
     summary: 'read a release',
     access: 'read',
+    benchKey: true,
     place: onRelease,
     handle: async ({ em, place, held }) => ({ body: await presentRelease(em, place.release, held) }),
   }),
@@ -36,13 +38,14 @@ export const releaseRoutes: readonly RouteSpec[] = [
     path: '/machines/:machine/releases/:version/joints/:joint/image.:format',
     summary: 'download an image',
     access: 'download',
+    benchKey: true,
     place: onRelease,
-    handle: async ({ em, place, params, held }) => {
+    handle: async ({ em, place, params, query, held }) => {
       if (!isExportFormat(params.format)) throw new DomainError('not-found', `Images come as ${EXPORT_FORMATS.join(', ')}. Nothing was downloaded.`)
       const [{ state }] = await presentReleases(em, [place.release])
       const allowed = mayDownload(place.machine, held, state)
       if (!allowed.allowed) throw new DomainError('not-permitted', `${allowed.why} Nothing was downloaded.`, { recorded: true })
-      const { bytes, type, fileName, sha256 } = await takeFile(em, place.release, params.joint, params.format, state)
+      const { bytes, type, fileName, sha256 } = await takeFile(em, place.release, params.joint, params.format, state, query.board)
       return { bytes, type, fileName, headers: { 'X-Detent-SHA256': sha256 } }
     },
   }),

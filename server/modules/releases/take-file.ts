@@ -4,6 +4,7 @@ import { encodeImage } from '../../../shared/registers/encode-image.ts'
 import { writeExport, type ExportFormat } from '../../exports/export-file.ts'
 import { DomainError } from '../../http/errors.ts'
 import { TOOL_VERSION } from '../../tool-version.ts'
+import { boardBindingProblem } from '../boards/board-binding.ts'
 import { sha256 } from '../checks/resolve-joint.ts'
 import { splitFirmwareName } from '../firmware/firmware-authors.ts'
 import { schemasFor } from '../firmware/schemas-for.ts'
@@ -25,12 +26,16 @@ const equalBytes = (a: Uint8Array, b: Uint8Array) => a.length === b.length && a.
  * One file of a joint, made from the stored bytes, which are proven again before they leave: by their SHA-256, by encoding the signed
  * values anew, and by the second decoder.
  *
- * @throws DomainError not-found, verification-failed
+ * @param inHand  serial number of the board it is for, when the builder named it; else the board recorded at the joint counts
+ * @throws DomainError not-found, verification-failed; wrong-state when its board-bound values belong to another board
  */
-export async function takeFile(em: EntityManager, release: Release, jointKey: string, format: ExportFormat, state: ReleaseSummary['state']): Promise<TakenFile> {
+export async function takeFile(em: EntityManager, release: Release, jointKey: string, format: ExportFormat, state: ReleaseSummary['state'], inHand?: string): Promise<TakenFile> {
   const joint = await em.findOne(Joint, { machine: release.machine, key: jointKey })
   const row = joint && (await em.findOne(ReleaseJoint, { release, joint }, { populate: ['image', 'revision'] }))
   if (!row) throw new DomainError('not-found', `${release.machine.name} ${release.version} has no joint "${jointKey}". Nothing was downloaded.`)
+  // A withdrawn release's files are for analysis, not for a board.
+  const unfit = state === 'withdrawn' ? null : await boardBindingProblem(em, release, jointKey, inHand)
+  if (unfit) throw new DomainError('wrong-state', `${unfit} Nothing was downloaded.`)
   const image = new Uint8Array(row.image)
   const { firmware, address, values } = row.revision.content
   const { documents, schemas } = await schemasFor(em, release.set)

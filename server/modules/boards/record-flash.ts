@@ -1,0 +1,37 @@
+import type { EntityManager } from '@mikro-orm/core'
+import type { Joint } from '../machines/joint.entity.ts'
+import type { Machine } from '../machines/machine.entity.ts'
+import type { Release } from '../releases/release.entity.ts'
+import { flash, type Board } from './board.entity.ts'
+import type { ComparedDump } from './compare-dump.ts'
+import { firmwareIn } from './locate.ts'
+import { boardOf, seatAt } from './seat-board.ts'
+import { tell, type Speaker } from './speaker.ts'
+import { takeReadBack } from './take-read-back.ts'
+
+export interface Flash {
+  machine: Machine
+  joint: Joint
+  release: Release
+  serial: string
+  /** the dump read back after it, compared already with this release at this joint */
+  readBack: ComparedDump | null
+}
+
+/**
+ * Records that a board was flashed with a release at a joint, with its read-back when there is one.
+ *
+ * It records what happened, be the release withdrawn or outdated: the state says so. The board that sat at the joint leaves it.
+ *
+ * @throws DomainError wrong-state for a retired board or machine; not-permitted when the board is on record where the speaker may not record
+ */
+export async function recordFlash(em: EntityManager, { machine, joint, release, serial, readBack }: Flash, speaker: Speaker): Promise<Board> {
+  const firmware = firmwareIn(release, joint, '/joint')
+  const { board, isNew } = await boardOf(em, machine, serial, speaker)
+  const { moved, from } = await seatAt(em, board, machine, joint, speaker)
+  if (moved && !isNew) await tell(em, board, speaker, { kind: 'moved', joint, from })
+  flash(board, { release, imageOf: joint, firmware }, { by: speaker.person.name, at: speaker.now })
+  await tell(em, board, speaker, { kind: 'flash recorded', joint, release, details: { firmware, readBack: readBack ? readBack.result.verdict : 'none' } })
+  if (readBack) await takeReadBack(em, board, readBack, speaker)
+  return board
+}
