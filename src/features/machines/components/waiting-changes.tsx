@@ -11,7 +11,7 @@ export function WaitingChanges({ changes }: { changes: readonly ChangeSummary[] 
         <li key={c.key} className="grid grid-cols-[2.5rem_minmax(0,1fr)] items-baseline gap-x-2 border-b border-hairline py-[6px] last:border-rule sm:grid-cols-[2.5rem_minmax(0,1fr)_12rem]">
           <span className="num text-13 text-ink-2">{c.number}</span>
           <span>
-            <Link className="row-link" to={paths.change(c.key)}>
+            <Link className="row-link" to={c.state === 'draft' ? paths.change(c.key) : paths.changeReview(c.key)}>
               {c.title}
             </Link>{' '}
             <span className="text-13 text-ink-2">{c.author}</span>
