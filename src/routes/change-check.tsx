@@ -17,6 +17,7 @@ import { changeQuery } from '../features/changes/queries.ts'
 import { FindingList } from '../features/checks/components/finding-list.tsx'
 import { JointReport } from '../features/checks/components/joint-report.tsx'
 import { JointVerdicts } from '../features/checks/components/joint-verdicts.tsx'
+import { ToleranceWalk } from '../features/checks/components/tolerance-walk.tsx'
 import { countsText, worstOf } from '../features/checks/figures.ts'
 import { checkQuery } from '../features/checks/queries.ts'
 import { queryClient } from '../lib/query-client.ts'
@@ -43,6 +44,7 @@ export function Component() {
       />
       <div className="mt-4">
         {query.data && <Summary check={query.data} />}
+        {query.data && <ToleranceWalk change={change.key} check={query.data} className="mb-4 max-w-[640px]" />}
         <Region query={query} what="the check" lines={8} isEmpty={(c) => c.joints.length === 0} empty={<EmptyState title="No joint to check yet">The check begins with the first joint of the change.</EmptyState>}>
           {(check) => <Report check={check} change={change} stale={query.isPlaceholderData} />}
         </Region>

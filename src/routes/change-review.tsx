@@ -18,6 +18,7 @@ import { lineOfLetter } from '../features/changes/drive-train-letters.ts'
 import { acceptChange, changeQuery } from '../features/changes/queries.ts'
 import { AllTogether } from '../features/checks/components/all-together.tsx'
 import { FindingList } from '../features/checks/components/finding-list.tsx'
+import { ToleranceWalk } from '../features/checks/components/tolerance-walk.tsx'
 import { countsText } from '../features/checks/figures.ts'
 import { checkQuery } from '../features/checks/queries.ts'
 import { ConcessionCard } from '../features/reviews/components/concession-card.tsx'
@@ -59,7 +60,7 @@ export function Component() {
             </SectionHeading>
             <div className="mt-1">
               <Region query={check} what="the check">
-                {(c) => <FindingList findings={c.findings} nameOf={nameIn(change)} note={(f) => (change.concessions.some((r) => r.finding === f.key) ? <p className="text-plum">concession {change.concessions.findIndex((r) => r.finding === f.key) + 1}</p> : null)} />}
+                {(c) => <><ToleranceWalk change={change.key} check={c} className="my-2 max-w-[640px]" /><FindingList findings={c.findings} nameOf={nameIn(change)} note={(f) => (change.concessions.some((r) => r.finding === f.key) ? <p className="text-plum">concession {change.concessions.findIndex((r) => r.finding === f.key) + 1}</p> : null)} /></>}
               </Region>
             </div>
           </section>

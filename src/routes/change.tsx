@@ -49,12 +49,12 @@ function useLiveCheck({ state, joints }: Looked) {
   return {
     check: query.data,
     stale,
-    panel: <CheckPanel query={query} stale={stale && query.data !== undefined} joints={joints} nameOf={nameIn({ set: state.set, base: view.base })} reportTo={paths.changeCheck(view.key)} note={(f) => (view.concessions.some((c) => c.finding === f.key) ? <p className="text-12 text-plum">concession requested</p> : null)} />,
+    panel: <CheckPanel change={view.key} query={query} stale={stale && query.data !== undefined} joints={joints} nameOf={nameIn({ set: state.set, base: view.base })} reportTo={paths.changeCheck(view.key)} note={(f) => (view.concessions.some((c) => c.finding === f.key) ? <p className="text-12 text-plum">concession requested</p> : null)} />,
     proposes: version && !stale ? <>, proposes <span className="num">{version.version}</span></> : null,
   }
 }
 
 function Reading({ change }: { change: ChangeView }) {
   const query = useQuery(checkQuery(change.key, change.revision))
-  return <ChangeReader change={change} findings={query.data?.findings ?? []} panel={(joints) => <CheckPanel query={query} stale={query.isPlaceholderData} joints={joints} nameOf={nameIn(change)} reportTo={paths.changeCheck(change.key)} />} />
+  return <ChangeReader change={change} findings={query.data?.findings ?? []} panel={(joints) => <CheckPanel change={change.key} query={query} stale={query.isPlaceholderData} joints={joints} nameOf={nameIn(change)} reportTo={paths.changeCheck(change.key)} />} />
 }

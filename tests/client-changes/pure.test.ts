@@ -43,7 +43,7 @@ describe('typed values', () => {
   it.each([
     ['velocityWindow', '72', /above the maximum 64/],
     ['velocityWindow', '7.5', /whole number/],
-    ['currentLimit', '3 V', /V is .*this value is in A/],
+    ['currentLimit', '3 V', /^"V" does not fit a value in A\.$/],
     ['currentLimit', '3,2', /decimal comma/],
     ['currentLimit', '', /does not begin with a number/],
     ['controlMode', 'torque', /one of position, velocity, current/],
@@ -73,7 +73,7 @@ describe('values at their places', () => {
   })
 
   it('knows the family: its joints by bus and address, its parameters, who departs', () => {
-    expect(jointsOf(set, 'knee')).toEqual(['r3-knee', 'l1-knee'])
+    expect(jointsOf(set, 'knee')).toEqual(['l1-knee', 'r3-knee'])
     expect(ownValuesOf(set, 'knee', 'velocityGain')).toEqual([{ joint: 'r3-knee', value: 2.9 }])
     const names = parametersOfFamily(set, 'knee', schemas).map((p) => p.name)
     expect(names).toContain('velocityGain')
@@ -159,6 +159,11 @@ describe('what is needed before submitting', () => {
     expect(words).toEqual(["open: not everything is saved yet", "open: values don't fit the schema on L1 knee, R3 knee", 'open: 2 findings block', 'open: 1 concession still to be requested', 'open: the reason is still to be written'])
   })
   it('waits for a fresh check', () => expect(needs({ stale: true }).find((n) => n.words.includes('check'))?.state).toBe('waiting'))
+  it('waits for the tolerances, and says when nobody walks them', () => {
+    const walking = (state: 'running' | 'stopped') => needs({ check: check({ complete: false, progress: { done: 12, total: 256, state, problem: '' } }) })[1]
+    expect(walking('running')).toMatchObject({ state: 'waiting', words: 'the check is walking over the tolerances' })
+    expect(walking('stopped')).toMatchObject({ state: 'open', words: 'the check is not complete: go on with it' })
+  })
   it('takes a concession as requested', () => {
     const change = aChange({ concessions: [{ finding: finding.key, characteristic: 'x', limit: 'x', reason: 'x', until: null, count: 5 }] })
     expect(needs({ change, check: check({ findings: [finding] }) }).map((n) => n.words)).toContain('1 concession requested')

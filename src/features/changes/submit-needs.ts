@@ -49,7 +49,9 @@ export function submitNeeds({ change, set, schemas, saving, check, stale }: Stan
     !check || stale
       ? { state: 'waiting', level: 'block', words: 'the check is running on the values as they stand' }
       : blocks === 0
-        ? { state: 'met', level: 'block', words: 'check is fresh, nothing blocks' }
+        ? check.complete
+          ? { state: 'met', level: 'block', words: 'check is fresh, nothing blocks' }
+          : { state: check.progress.state === 'running' ? 'waiting' : 'open', level: 'block', words: check.progress.state === 'running' ? 'the check is walking over the tolerances' : 'the check is not complete: go on with it' }
         : { state: 'open', level: 'block', words: `${count(blocks, 'finding')} ${blocks === 1 ? 'blocks' : 'block'}` },
     !check || (open.length === 0 && change.concessions.length === 0) ? null
       : open.length === 0 ? { state: 'met', level: 'concession needed', words: `${count(change.concessions.length, 'concession')} requested` }

@@ -1,7 +1,4 @@
-import type { CheckResult, Finding, JointCheck, LoopFigures, Verdict } from '../../../shared/contract/checks.ts'
-
-export const loopNames = ['current', 'velocity', 'position'] as const
-export type LoopName = (typeof loopNames)[number]
+import { loopNames, type CheckResult, type Finding, type JointCheck, type LoopFigures, type LoopName, type Verdict } from '../../../shared/contract/checks.ts'
 
 export interface Figure {
   loop: LoopName

@@ -14,8 +14,10 @@ import { figuresOf, worstOf } from '../figures.ts'
 import { BeforeAfter } from './before-after.tsx'
 import { FigureRows } from './figure-rows.tsx'
 import { FindingList } from './finding-list.tsx'
+import { ToleranceWalk } from './tolerance-walk.tsx'
 
 export interface CheckPanelProps {
+  change: string
   query: UseQueryResult<CheckView>
   /** the values on the screen are newer than those checked */
   stale: boolean
@@ -28,7 +30,7 @@ export interface CheckPanelProps {
 }
 
 /** The live check beside the editor: what the values on the screen do. An older answer stays while the next is computed, and says so. */
-export function CheckPanel({ query, stale, joints, nameOf, reportTo, note }: CheckPanelProps) {
+export function CheckPanel({ change, query, stale, joints, nameOf, reportTo, note }: CheckPanelProps) {
   const check = query.data
   if (!check) return query.isError ? <ProblemPanel problem={query.error} onRetry={() => void query.refetch()} /> : <Waiting what="the check" lines={6} />
   const shown = check.joints.filter((j) => joints.includes(j.joint))
@@ -37,6 +39,7 @@ export function CheckPanel({ query, stale, joints, nameOf, reportTo, note }: Che
     <section aria-label="live check" aria-busy={stale} className={stale ? 'opacity-60' : ''}>
       {query.isError && <ProblemPanel className="mb-3" problem={query.error} onRetry={() => void query.refetch()} />}
       <Head check={check} joint={worst} stale={stale} among={shown.length} nameOf={nameOf} />
+      {!stale && <ToleranceWalk change={change} check={check} className="border-b border-hairline py-2" />}
       {worst?.candidate ? (
         <JointFiguresShown joint={worst} check={check} nameOf={nameOf} />
       ) : (
