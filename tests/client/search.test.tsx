@@ -25,7 +25,7 @@ describe('the search', () => {
     fireEvent.keyDown(document.body, { key: '/' })
     await waitFor(() => expect(document.activeElement?.getAttribute('aria-label')).toBe('search'))
     fireEvent.change(box, { target: { value: '0x3b' } })
-    fireEvent.submit(box)
+    fireEvent.submit(box.closest('form')!)
     await waitFor(() => expect(app.here()).toBe('/search?q=0x3b'))
     const joints = await screen.findByRole('region', { name: 'Joints' })
     expect(within(joints).getAllByRole('link').map((a) => a.getAttribute('href'))).toEqual(['/machines/dunlin/joints/r1-knee'])
