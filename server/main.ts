@@ -7,14 +7,17 @@ import { fileURLToPath } from 'node:url'
 import { pino } from 'pino'
 import { buildApp } from './app.ts'
 import { readConfig } from './config.ts'
+import { fileStore } from './db/file-store.ts'
 import { holdDatabase } from './db/only-process.ts'
 import { openDatabase } from './db/orm.ts'
-import { makeDemo } from './demo/make-demo.ts'
+import { demoBegins, makeDemo } from './demo/make-demo.ts'
 import { serveClient } from './http/serve-client.ts'
 import type { Services } from './http/services.ts'
 import { JobBoard } from './jobs/job-board.ts'
 import { onWorkers } from './jobs/on-workers.ts'
 import { analysisStore } from './modules/checks/analysis-store.ts'
+import { keyFiles } from './modules/keys/key-store.ts'
+import { openWorkplaceKeys } from './modules/keys/workplace-keys.ts'
 import { startMailSender } from './modules/mail/send-mail.ts'
 import { Person } from './modules/people/person.entity.ts'
 
@@ -40,8 +43,10 @@ async function start() {
     warn: (error) => log.error(error, 'a result was not stored'),
   })
   let wake = () => {}
-  const services: Services = { config, orm, now: () => new Date(), checks, mailQueued: () => wake() }
-  if (config.mode === 'demo' && (await orm.em.fork().count(Person)) === 0) await makeDemo(services)
+  const toldFirst = config.mode === 'demo' && (await orm.em.fork().count(Person)) === 0
+  const keys = await openWorkplaceKeys(orm.em.fork(), keyFiles(config.dataDir), toldFirst ? demoBegins(new Date()) : new Date())
+  const services: Services = { config, orm, now: () => new Date(), checks, files: fileStore(join(config.dataDir, 'files')), keys, mailQueued: () => wake() }
+  if (toldFirst) await makeDemo(services)
   const sender = startMailSender(services, log)
   wake = () => sender.wake()
   const app = buildApp({ services, log, sessionSecret: sessionSecret(config.dataDir), client: serveClient(join(here, '../client')) })

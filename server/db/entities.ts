@@ -9,6 +9,7 @@ import { CheckReport } from '../modules/checks/check-report.entity.ts'
 import { JointAnalysis } from '../modules/checks/joint-analysis.entity.ts'
 import { FirmwareLine } from '../modules/firmware/firmware-line.entity.ts'
 import { FirmwareVersion } from '../modules/firmware/firmware-version.entity.ts'
+import { WorkplaceKey } from '../modules/keys/workplace-key.entity.ts'
 import { LedgerEntry } from '../modules/ledger/ledger-entry.entity.ts'
 import { Bus } from '../modules/machines/bus.entity.ts'
 import { DriveTrain } from '../modules/machines/drive-train.entity.ts'
@@ -21,16 +22,18 @@ import { Person } from '../modules/people/person.entity.ts'
 import { RoleGrant } from '../modules/people/role-grant.entity.ts'
 import { SessionRecord } from '../modules/people/session.entity.ts'
 import { PolicyVersion } from '../modules/policy/policy-version.entity.ts'
+import { BenchImage } from '../modules/releases/bench-image.entity.ts'
 import { ReleaseJoint } from '../modules/releases/release-joint.entity.ts'
+import { ReleaseKit } from '../modules/releases/release-kit.entity.ts'
 import { Release } from '../modules/releases/release.entity.ts'
 import { Revision } from '../modules/releases/revision.entity.ts'
 import { Withdrawal } from '../modules/releases/withdrawal.entity.ts'
 import { Signature } from '../modules/reviews/signature.entity.ts'
 
 export const entities = [
-  BenchKey, Board, BoardEvent, Bus, Change, ChangeEvent, CheckReport, DraftPoint, DriveTrain, Family, FirmwareLine, FirmwareVersion, Joint, JointAnalysis, LedgerEntry, Link, Machine, Mail,
-  Person, PolicyVersion, Receipt, Release, ReleaseJoint, Revision, RoleGrant, SessionRecord, Signature, Withdrawal,
+  BenchImage, BenchKey, Board, BoardEvent, Bus, Change, ChangeEvent, CheckReport, DraftPoint, DriveTrain, Family, FirmwareLine, FirmwareVersion, Joint, JointAnalysis, LedgerEntry, Link, Machine, Mail,
+  Person, PolicyVersion, Receipt, Release, ReleaseJoint, ReleaseKit, Revision, RoleGrant, SessionRecord, Signature, Withdrawal, WorkplaceKey,
 ]
 
 /** Rows of these are written once: a flush that alters one is refused, and so is SQL that goes around the flush (triggers). */
-export const immutable = [BoardEvent, ChangeEvent, CheckReport, DraftPoint, DriveTrain, JointAnalysis, LedgerEntry, Release, ReleaseJoint, Revision, Signature, Withdrawal]
+export const immutable = [BenchImage, BoardEvent, ChangeEvent, CheckReport, DraftPoint, DriveTrain, JointAnalysis, LedgerEntry, Release, ReleaseJoint, ReleaseKit, Revision, Signature, Withdrawal, WorkplaceKey]

@@ -25,6 +25,9 @@ import { teaselStory } from './teasel-story.ts'
 /** How long ago the story begins. */
 const daysBack = 150
 
+/** When the story told at `now` begins. */
+export const demoBegins = (now: Date) => new Date(now.getTime() - daysBack * 86_400_000)
+
 const administrator = 'Silvan Okoro'
 
 /** The people, by invitation and link like anybody. Signers confirm each other, the first two by the founding rule. */
@@ -66,7 +69,7 @@ async function firmware(story: Story) {
       await story.act(async (em, now) => draftFirmwareVersion(em, { line: await em.findOneOrFail(FirmwareLine, { key }), version, schemaText, read: readSchema(schemaText), notes: '', person: await story.person(em, 'Tobias Oyelaran'), now }))
       await story.act(async (em, now) => {
         const drafted = await em.findOneOrFail(FirmwareVersion, { line: { key }, version }, { populate: ['line'] })
-        await publishFirmwareVersion(em, { version: drafted, schemaHash: drafted.schemaHash, person: await story.person(em, 'Rafiq Sandoval'), now })
+        await publishFirmwareVersion(em, { version: drafted, schemaHash: drafted.schemaHash, imageHash: drafted.imageSha256 ?? null, person: await story.person(em, 'Rafiq Sandoval'), now })
       })
     }
   }
@@ -74,7 +77,7 @@ async function firmware(story: Story) {
 
 /** Makes the demo workplace in an empty database, by the program's own acts, so that ledger, signatures and checks are real. */
 export async function makeDemo(services: Services): Promise<void> {
-  const story = new Story(services, new Date(services.now().getTime() - daysBack * 86_400_000))
+  const story = new Story(services, demoBegins(services.now()))
   await people(story, services)
   await firmware(story)
   for (const [key, name, description] of [

@@ -11,6 +11,7 @@ import { Person } from '../modules/people/person.entity.ts'
 import { benchKeyOf, rightsOf } from './bench-key.ts'
 import { DomainError } from './errors.ts'
 import { Receipt } from './receipt.entity.ts'
+import { receiveUpload, type Upload, type UploadSpec } from './receive-upload.ts'
 import type { Services } from './services.ts'
 import { keepable, validBody } from './validate.ts'
 
@@ -45,6 +46,8 @@ export interface Call<B, P extends Place> {
   body: B
   /** revision that the writer saw, from If-Match; only on routes that ask for it */
   ifMatch: number
+  /** the file received; only on routes that take one */
+  upload: Upload | null
   now: Date
   session: Request['session']
   /** Runs an act in one transaction and keeps its answer for a repeat of the same request. */
@@ -64,6 +67,8 @@ export interface RouteSpec<B extends TSchema = TSchema, P extends Place = Place>
   ifMatch?: boolean
   /** a bench key may take it too; every other route refuses one */
   benchKey?: true
+  /** the one file it takes, in a form; received when the person may, and thrown away again unless the handler keeps it */
+  upload?: UploadSpec
   handle: (call: Call<Static<B>, P>) => Promise<Answer>
 }
 
@@ -187,7 +192,7 @@ async function record(services: Services, spec: RouteSpec, error: DomainError, p
   await services.orm.em.fork().transactional((em) => appendEntry(em, { at: now, person, act: 'refused', subject: place.subject, details: { asked: spec.summary, refusal: error.code, why: error.message } }))
 }
 
-async function answerTo(services: Services, spec: RouteSpec, req: Request): Promise<Answer> {
+async function answerTo(services: Services, spec: RouteSpec, req: Request, res: Response): Promise<Answer> {
   const em = services.orm.em.fork()
   const now = services.now()
   const person = await em.findOneOrFail(Person, { id: personOf(req).id })
@@ -204,8 +209,11 @@ async function answerTo(services: Services, spec: RouteSpec, req: Request): Prom
   const place = await (spec.place ?? nowhere)(em, params)
   if (place.machine !== null && !may(held, 'read', place.machine).allowed)
     throw new DomainError('not-found', 'There is nothing at this address that you may read. Check the address, or ask an administrator for a role on the machine.')
+  let upload: Upload | null = null
   try {
     mustBeAllowed(held, spec, place)
+    const ifMatch = spec.ifMatch ? readIfMatch(req) : 0
+    if (spec.upload) upload = await receiveUpload(req, res, services.files, spec.upload)
     const body: unknown = spec.body ? validBody(spec.body, (req.body as unknown) ?? {}) : undefined
     return await spec.handle({
       services,
@@ -217,14 +225,17 @@ async function answerTo(services: Services, spec: RouteSpec, req: Request): Prom
       params,
       query,
       body,
-      ifMatch: spec.ifMatch ? readIfMatch(req) : 0,
+      ifMatch,
+      upload,
       now,
       session: req.session,
-      act: (work) => transact(em, { spec, req, person, place, body, now }, work),
+      act: (work) => transact(em, { spec, req, person, place, body: upload ? { file: upload.file.sha256, name: upload.name } : body, now }, work),
     })
   } catch (error) {
     if (error instanceof DomainError && error.recorded) await record(services, spec, error, person, place, now)
     throw error
+  } finally {
+    await upload?.file.discard()
   }
 }
 
@@ -232,7 +243,7 @@ async function answerTo(services: Services, spec: RouteSpec, req: Request): Prom
 export function mount(router: Router, services: Services, specs: readonly RouteSpec[]) {
   for (const spec of specs)
     router[spec.method](spec.path, (req, res, next) => {
-      answerTo(services, spec, req).then(
+      answerTo(services, spec, req, res).then(
         (answer) => {
           if (spec.method !== 'get') services.mailQueued()
           send(res, answer)

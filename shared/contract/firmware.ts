@@ -1,5 +1,8 @@
 import { Type, type Static } from '@sinclair/typebox'
-import type { Value } from '../parameters/machine-set.ts'
+import type { Edit } from '../parameters/edits.ts'
+import { Key, type Value } from '../parameters/machine-set.ts'
+import type { SchemaComparison } from '../registers/compare-schemas.ts'
+import type { CarryRules } from '../registers/parameter-schema.ts'
 import type { Allowed } from './people.ts'
 
 const strict = { additionalProperties: false }
@@ -19,9 +22,22 @@ export const DraftFirmwareVersion = Type.Object({ version: Type.String({ minLeng
 export type DraftFirmwareVersion = Static<typeof DraftFirmwareVersion>
 export const EditFirmwareVersion = Type.Object({ schemaText: SchemaText, notes: Notes }, strict)
 export type EditFirmwareVersion = Static<typeof EditFirmwareVersion>
-/** Publishing and retiring re-enter the password over the schema's hash. */
-export const SignFirmwareVersion = Type.Object({ password: Type.String({ minLength: 1, maxLength: 200 }), schemaHash: Type.String({ pattern: '^[0-9a-f]{64}$' }) }, strict)
+const Hash = Type.String({ pattern: '^[0-9a-f]{64}$' })
+/** Publishing and retiring re-enter the password over the hashes of the schema and of the firmware image; null where the version has no image. */
+export const SignFirmwareVersion = Type.Object({ password: Type.String({ minLength: 1, maxLength: 200 }), schemaHash: Hash, imageHash: Type.Union([Hash, Type.Null()]) }, strict)
 export type SignFirmwareVersion = Static<typeof SignFirmwareVersion>
+
+/** Most bytes a firmware image may have. */
+export const firmwareImageLimit = 8 * 1024 * 1024
+
+/** The firmware itself, as it was uploaded. */
+export interface FirmwareImageView {
+  sha256: string
+  bytes: number
+  format: 'bin' | 'hex'
+  /** as its uploader called it */
+  name: string
+}
 
 export interface FirmwareVersionSummary {
   line: string
@@ -34,6 +50,7 @@ export interface FirmwareVersionSummary {
   parameters: number
   /** length of the register image */
   imageBytes: number
+  firmwareImage: FirmwareImageView | null
 }
 
 export interface FirmwareLineView {
@@ -76,5 +93,65 @@ export interface FirmwareVersionView extends FirmwareVersionSummary {
   image: { base: number; length: number; addressWidth: 8 | 16 }
   /** what is allowed but worth a second look, with pointers into the schema */
   advice: { pointer: string; message: string }[]
-  may: { edit: Allowed; publish: Allowed; retire: Allowed }
+  may: { edit: Allowed; publish: Allowed; retire: Allowed; downloadImage: Allowed }
+}
+
+/** What differs between two versions of a line. */
+export interface FirmwareComparisonView extends SchemaComparison {
+  line: string
+  lineName: string
+  before: { version: string; state: FirmwareVersionSummary['state']; schemaHash: string }
+  after: { version: string; state: FirmwareVersionSummary['state']; schemaHash: string }
+  /** title and unit of every parameter that differs, as the later version has them (of a removed one, the earlier) */
+  titles: Record<string, { title: string; unit: string }>
+  /** the later version's rules for carrying a set over, when they start at the earlier one */
+  carry: CarryRules | null
+  schemaTextBefore: string
+  schemaTextAfter: string
+}
+
+/** Moves joints to another version of their firmware line: the named joints, or every joint of a family. */
+const CarryTarget = Type.String({ maxLength: 80, description: 'firmware line and version, such as "hinge 2.1.0"' })
+export const CarryOver = Type.Object(
+  {
+    to: CarryTarget,
+    joints: Type.Optional(Type.Array(Key, { minItems: 1, maxItems: 1000, uniqueItems: true })),
+    family: Type.Optional(Key),
+    /** `seen` of the preview that was read */
+    seen: Hash,
+  },
+  strict,
+)
+export type CarryOver = Static<typeof CarryOver>
+
+/** One value on its way to the other version. */
+export interface CarryRow {
+  /** whose value it is */
+  place: 'family' | 'joint'
+  key: string
+  kind: 'kept' | 'renamed' | 'converted' | 'added' | 'dropped'
+  /** name and unit before; null for an added value */
+  from: string | null
+  fromUnit: string
+  /** name and unit now; null for a dropped value */
+  to: string | null
+  toUnit: string
+  before: Value | null
+  after: Value | null
+  /** the change of unit has no finite decimal; the nearest double was taken */
+  rounded: boolean
+}
+
+export interface CarryOverPreview {
+  to: string
+  /** joints that move, with the version they come from */
+  joints: { joint: string; name: string; from: string }[]
+  rows: CarryRow[]
+  /** values that come from the firmware before and after, and differ: nobody typed them */
+  defaults: { parameter: string; title: string; unit: string; before: Value; after: Value; joints: string[] }[]
+  /** what needs a person: it stays as it stands */
+  problems: { pointer: string; detail: string }[]
+  edits: Edit[]
+  /** SHA-256 of the edits, to be sent with the acceptance */
+  seen: string
 }

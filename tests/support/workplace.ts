@@ -1,19 +1,26 @@
+import { randomUUID } from 'node:crypto'
+import { rm } from 'node:fs/promises'
+import { tmpdir } from 'node:os'
+import { join } from 'node:path'
 import type { Express } from 'express'
 import { pino } from 'pino'
 import supertest from 'supertest'
 import { afterAll } from 'vitest'
 import { buildApp } from '../../server/app.ts'
 import { readConfig } from '../../server/config.ts'
+import { fileStore } from '../../server/db/file-store.ts'
 import { openDatabase, type Orm } from '../../server/db/orm.ts'
 import type { Services } from '../../server/http/services.ts'
 import { inPlace } from '../../server/jobs/in-place.ts'
 import { JobBoard } from '../../server/jobs/job-board.ts'
 import { analysisStore } from '../../server/modules/checks/analysis-store.ts'
+import { keepPublicKey, makeKey, openWorkplaceKeys } from '../../server/modules/keys/workplace-keys.ts'
 import { Machine } from '../../server/modules/machines/machine.entity.ts'
 import { hashPassword } from '../../server/modules/people/passwords.ts'
 import { Person } from '../../server/modules/people/person.entity.ts'
 import { RoleGrant } from '../../server/modules/people/role-grant.entity.ts'
 import type { Me, Role } from '../../shared/contract/people.ts'
+import { keysInMemory } from './keys-in-memory.ts'
 
 export const password = 'a long enough password'
 let hash: Promise<string> | undefined
@@ -41,15 +48,27 @@ export interface Workplace {
   close(): Promise<void>
 }
 
+/** A first key, without its entry in the ledger, so that a test's own acts begin the chain. */
+async function firstKey(orm: Orm, from: Date) {
+  const key = makeKey()
+  const em = orm.em.fork()
+  keepPublicKey(em, key, { from, person: null })
+  await em.flush()
+  return keysInMemory(key)
+}
+
 /** The whole server on an in-memory database, with a clock that stands still. */
 export async function aWorkplace(env: NodeJS.ProcessEnv = {}): Promise<Workplace> {
   let time = new Date('2026-03-02T09:00:00Z')
   const orm = await openDatabase(':memory:')
+  const folder = join(tmpdir(), `detent-test-${randomUUID()}`)
   const services: Services = {
     config: readConfig({ DETENT_MODE: 'workplace', ...env }),
     orm,
     now: () => time,
     checks: new JobBoard({ threads: inPlace(), store: analysisStore(orm, () => time) }),
+    files: fileStore(folder),
+    keys: await openWorkplaceKeys(orm.em.fork(), await firstKey(orm, time), time),
     mailQueued: () => {},
   }
   const app = buildApp({ services, log: pino({ level: 'silent' }), sessionSecret: 'a secret for tests alone' })
@@ -91,6 +110,7 @@ export async function aWorkplace(env: NodeJS.ProcessEnv = {}): Promise<Workplace
     close: async () => {
       await services.checks.close()
       await orm.close(true)
+      await rm(folder, { recursive: true, force: true })
     },
   }
   afterAll(() => workplace.close())

@@ -4,6 +4,7 @@ import { DomainError } from '../../http/errors.ts'
 import { FirmwareLine } from './firmware-line.entity.ts'
 
 export type FirmwareState = 'draft' | 'published' | 'retired'
+export type FirmwareImageFormat = 'bin' | 'hex'
 
 /** A version of a firmware line with its parameter schema. Editable as a draft, immutable once published. */
 export const FirmwareVersion = defineEntity({
@@ -19,6 +20,12 @@ export const FirmwareVersion = defineEntity({
     /** SHA-256 of the schema's RFC 8785 form */
     schemaHash: p.string().length(64),
     notes: p.text(),
+    /** the firmware itself, where it was given: its SHA-256 names it in the file store */
+    imageSha256: p.string().length(64).nullable(),
+    imageBytes: p.integer().nullable(),
+    imageFormat: p.string().$type<FirmwareImageFormat>().nullable(),
+    /** as its uploader called it */
+    imageName: p.string().length(120).nullable(),
     uploadedBy: () => p.manyToOne(Person),
     /** everybody who wrote in it, the uploader first: none of them publishes or retires it */
     writers: p.json<number[]>(),
@@ -43,6 +50,25 @@ const refuse = (v: FirmwareVersion, act: string): never => {
 export function editSchema(v: FirmwareVersion, edit: { schemaText: string; schemaHash: string; notes: string }, by: Person) {
   if (v.state !== 'draft') refuse(v, 'edited; draft a new version instead')
   Object.assign(v, { schemaText: edit.schemaText, schemaHash: edit.schemaHash, notes: edit.notes })
+  if (!v.writers.includes(by.id)) v.writers = [...v.writers, by.id]
+  v.revision += 1
+}
+
+export interface FirmwareImage {
+  sha256: string
+  bytes: number
+  format: FirmwareImageFormat
+  name: string
+}
+
+/** The firmware image that belongs to the version; null where none was given. */
+export const imageOf = (v: FirmwareVersion): FirmwareImage | null =>
+  v.imageSha256 ? { sha256: v.imageSha256, bytes: v.imageBytes!, format: v.imageFormat!, name: v.imageName! } : null
+
+/** Gives a draft its firmware image, or takes it away. @throws DomainError wrong-state */
+export function attachImage(v: FirmwareVersion, image: FirmwareImage | null, by: Person) {
+  if (v.state !== 'draft') refuse(v, 'given another firmware image; draft a new version instead')
+  Object.assign(v, { imageSha256: image?.sha256 ?? null, imageBytes: image?.bytes ?? null, imageFormat: image?.format ?? null, imageName: image?.name ?? null })
   if (!v.writers.includes(by.id)) v.writers = [...v.writers, by.id]
   v.revision += 1
 }

@@ -6,7 +6,7 @@ import type { Bound, Parameter } from '../../../shared/registers/parameter-schem
 import { may, type HeldRole } from '../people/permissions.ts'
 import { Person } from '../people/person.entity.ts'
 import type { FirmwareLine } from './firmware-line.entity.ts'
-import { FirmwareVersion } from './firmware-version.entity.ts'
+import { FirmwareVersion, imageOf } from './firmware-version.entity.ts'
 import { schemaOf } from './read-schema.ts'
 
 const numberOf = (...bounds: (Bound | null)[]): number | null => {
@@ -48,6 +48,7 @@ function presentSummary(version: FirmwareVersion): FirmwareVersionSummary {
     publishedAt: version.publishedAt?.toISOString() ?? null,
     parameters: schema.parameters.length,
     imageBytes: schema.image.length,
+    firmwareImage: imageOf(version),
   }
 }
 
@@ -66,6 +67,12 @@ function presentLine(line: FirmwareLine, versions: readonly FirmwareVersion[], h
 export async function presentLines(em: EntityManager, lines: readonly FirmwareLine[], held: readonly HeldRole[]): Promise<FirmwareLineView[]> {
   const versions = await em.find(FirmwareVersion, { line: { $in: lines.map((l) => l.id) } }, { populate: ['line', 'uploadedBy', 'publishedBy'] })
   return [...lines].sort((a, b) => a.name.localeCompare(b.name, 'en')).map((line) => presentLine(line, versions.filter((v) => v.line.id === line.id), held))
+}
+
+/** Firmware belongs to no machine: whoever downloads for one machine may fetch it. */
+export const mayDownloadImage = (held: readonly HeldRole[]): Allowed => {
+  const answers = [...new Set(held.map((h) => h.machine))].map((machine) => may(held, 'download', machine))
+  return answers.find((a) => a.allowed) ?? may([], 'download', null)
 }
 
 /** "Not in this state" is told before "not your role", so that nobody asks for a role in vain. */
@@ -98,6 +105,7 @@ export async function presentVersion(em: EntityManager, version: FirmwareVersion
       edit: version.state === 'draft' ? may(held, 'draft firmware', null) : { allowed: false, why: `It is ${version.state}; draft a new version instead.` },
       publish: mayAct(version, held, person, 'published'),
       retire: mayAct(version, held, person, 'retired'),
+      downloadImage: version.imageSha256 ? mayDownloadImage(held) : { allowed: false, why: 'No firmware image was attached.' },
     },
   }
 }

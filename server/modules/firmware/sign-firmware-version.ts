@@ -9,23 +9,27 @@ interface Signing {
   version: FirmwareVersion
   /** of the schema that the signer read */
   schemaHash: string
+  /** of the firmware image that the signer saw; null for none */
+  imageHash: string | null
   /** signed in and password re-entered */
   person: Person
   now: Date
 }
 
-/** @throws DomainError content-differs when the schema is not the one that was read */
-function mustBeRead(version: FirmwareVersion, schemaHash: string, act: string) {
-  if (version.schemaHash !== schemaHash)
-    throw new DomainError('content-differs', `The schema of ${firmwareName(version)} is not the one you read. Nothing was ${act}; reload, read what is new, then decide again.`, { fields: [{ pointer: '/schemaHash', detail: `is ${version.schemaHash} now` }] })
+/** @throws DomainError content-differs when schema or image is not the one that was read */
+function mustBeRead({ version, schemaHash, imageHash }: Signing, act: string) {
+  const differs = (what: string, pointer: string, now: string) =>
+    new DomainError('content-differs', `The ${what} of ${firmwareName(version)} is not the one you read. Nothing was ${act}; reload, read what is new, then decide again.`, { fields: [{ pointer, detail: `is ${now} now` }] })
+  if (version.schemaHash !== schemaHash) throw differs('schema', '/schemaHash', version.schemaHash)
+  if ((version.imageSha256 ?? null) !== imageHash) throw differs('firmware image', '/imageHash', version.imageSha256 ?? 'none')
 }
 
 async function leaveTraces(em: EntityManager, { version, person, now }: Signing, act: 'published' | 'retired') {
   const name = firmwareName(version)
-  await appendEntry(em, { at: now, person, act: `firmware ${act}`, subject: { firmware: name }, details: { schemaHash: version.schemaHash } })
+  await appendEntry(em, { at: now, person, act: `firmware ${act}`, subject: { firmware: name }, details: { schemaHash: version.schemaHash, imageHash: version.imageSha256 ?? null } })
   const consequence = act === 'published' ? 'Its schema can no longer be edited; changes can move joints to it. You count as an author of those changes.' : 'Changes can no longer move joints to it; releases that hold it stay as they are.'
   for (const writer of await em.find(Person, { id: { $in: version.writers }, disabledAt: null }))
-    queueMail(em, { person: writer, subject: `${name} is ${act}`, text: `${person.name} ${act} ${name}, with the schema ${version.schemaHash}.\n\n${consequence}\n`, now })
+    queueMail(em, { person: writer, subject: `${name} is ${act}`, text: `${person.name} ${act} ${name}, with the schema ${version.schemaHash}${version.imageSha256 ? ` and the firmware image ${version.imageSha256}` : ' and without a firmware image'}.\n\n${consequence}\n`, now })
 }
 
 /**
@@ -35,7 +39,7 @@ async function leaveTraces(em: EntityManager, { version, person, now }: Signing,
  */
 export async function publishFirmwareVersion(em: EntityManager, signing: Signing): Promise<void> {
   publish(signing.version, em.getReference(Person, signing.person.id), signing.now)
-  mustBeRead(signing.version, signing.schemaHash, 'published')
+  mustBeRead(signing, 'published')
   await leaveTraces(em, signing, 'published')
 }
 
@@ -46,6 +50,6 @@ export async function publishFirmwareVersion(em: EntityManager, signing: Signing
  */
 export async function retireFirmwareVersion(em: EntityManager, signing: Signing): Promise<void> {
   retire(signing.version, em.getReference(Person, signing.person.id), signing.now)
-  mustBeRead(signing.version, signing.schemaHash, 'retired')
+  mustBeRead(signing, 'retired')
   await leaveTraces(em, signing, 'retired')
 }

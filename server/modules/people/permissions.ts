@@ -18,6 +18,7 @@ export const matrix = {
   'propose policy': ['administrator'],
   'keep people': ['administrator'],
   'keep mail': ['administrator'],
+  'keep keys': ['administrator'],
   'keep backups': ['administrator'],
 } as const satisfies Record<string, readonly Role[]>
 

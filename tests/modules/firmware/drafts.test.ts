@@ -74,7 +74,13 @@ describe('drafting a firmware version', () => {
 
   it.each([['a lone half of a surrogate pair', '\ud83d'], ['a NUL', '\0']])('refuses %s, which the database would not give back', async (_what, character) => {
     const { engineer } = await anEngineer()
-    const refused = await engineer.post(path, { ...draft, schemaText: `{}\n// ${character}` }).expect(422)
+    const refused = await engineer.post(path, { ...draft, schemaText: `{}\n// ${character}` }).expect(400)
+    expect(refused.body.errors).toEqual([{ pointer: '/schemaText', detail: expect.stringContaining("can't keep") }])
+  })
+
+  it('refuses a control character at its place', async () => {
+    const { engineer } = await anEngineer()
+    const refused = await engineer.post(path, { ...draft, schemaText: '{}\n// \u0001' }).expect(422)
     expect(refused.body.errors).toEqual([{ pointer: '', detail: expect.stringMatching(/^line 2, column 4: /) }])
   })
 

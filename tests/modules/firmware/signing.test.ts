@@ -18,14 +18,14 @@ describe.each([
     const w = await aWorkplace()
     const author = await w.person('Writer', [['controls engineer', null], ['release manager', null]])
     const { schemaHash } = await aFirmware(w, { state: from, uploadedBy: author })
-    return { w, author, manager: await w.as('release manager'), body: { password, schemaHash } }
+    return { w, author, manager: await w.as('release manager'), body: { password, schemaHash, imageHash: null } }
   }
 
   it('takes a release manager who had no part in it, and their password over the schema\'s hash', async () => {
     const { w, author, manager, body } = await aVersion()
     const signed = await manager.post(`${at}/${verb}`, body).expect(200)
     expect(signed.body).toMatchObject({ state: to, revision: 2, [`${to}By`]: manager.me.name, [`${to}At`]: '2026-03-02T09:00:00.000Z' })
-    expect(await lastEntries(w)).toEqual([{ act: `firmware ${to}`, subject: { firmware: 'hinge 2.1.0' }, details: { schemaHash: body.schemaHash }, personName: manager.me.name }])
+    expect(await lastEntries(w)).toEqual([{ act: `firmware ${to}`, subject: { firmware: 'hinge 2.1.0' }, details: { schemaHash: body.schemaHash, imageHash: null }, personName: manager.me.name }])
     expect(await mailsOf(w)).toEqual([{ to: author.email, subject: `hinge 2.1.0 is ${to}`, text: expect.stringContaining(body.schemaHash) }])
   })
 
@@ -84,21 +84,21 @@ describe('a firmware version', () => {
     await aFirmware(w, { state: 'draft' })
     const signedIn = await w.signIn(both)
     const saved = await signedIn.put(at, { schemaText: smallSchemaText, notes: '' }).set('If-Match', '"1"').expect(200)
-    expect((await signedIn.post(`${at}/publish`, { password, schemaHash: saved.body.schemaHash }).expect(403)).body).toMatchObject({ type: '/problems/own-work' })
+    expect((await signedIn.post(`${at}/publish`, { password, schemaHash: saved.body.schemaHash, imageHash: null }).expect(403)).body).toMatchObject({ type: '/problems/own-work' })
   })
 
   it('is retired by the one who published it, who wrote nothing in it', async () => {
     const w = await aWorkplace()
     const manager = await w.person('Manager', [['release manager', null]])
     const { schemaHash } = await aFirmware(w, { publishedBy: manager })
-    await (await w.signIn(manager)).post(`${at}/retire`, { password, schemaHash }).expect(200)
+    await (await w.signIn(manager)).post(`${at}/retire`, { password, schemaHash, imageHash: null }).expect(200)
   })
 
   it('that does not exist is not found', async () => {
     const w = await aWorkplace()
     await aFirmware(w)
     const manager = await w.as('release manager')
-    await manager.post('/api/firmware/hinge/9.9.9/publish', { password, schemaHash: 'a'.repeat(64) }).expect(404)
+    await manager.post('/api/firmware/hinge/9.9.9/publish', { password, schemaHash: 'a'.repeat(64), imageHash: null }).expect(404)
     await manager.get('/api/firmware/other/2.1.0').expect(404)
   })
 })

@@ -21,6 +21,7 @@ const table: Record<Act, string> = {
   'propose policy': '. . . . . x',
   'keep people': '. . . . . x',
   'keep mail': '. . . . . x',
+  'keep keys': '. . . . . x',
   'keep backups': '. . . . . x',
 }
 const cell = (act: Act, role: Role) => table[act].split(' ')[columns.indexOf(role)] === 'x'
