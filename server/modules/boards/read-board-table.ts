@@ -46,5 +46,5 @@ export function readBoardTable(text: string): TypedRow[] {
   }
   if (records.length === 0) refuse(1, 'the table has no row.')
   if (records.length > mostRows) refuse(mostRows + 2, `a table has at most ${mostRows} rows.`)
-  return records.map(({ record, info }) => ({ line: info.lines, ...(Object.fromEntries(columns.map((c) => [c, record[c] ?? ''])) as Record<(typeof columns)[number], string>) }))
+  return records.map(({ record, info }) => ({ line: info.lines, ...(Object.fromEntries(columns.map((c) => [c, (record[c] ?? '').trim()])) as Record<(typeof columns)[number], string>) }))
 }
