@@ -1,5 +1,6 @@
 import type { ErrorRequestHandler, RequestHandler } from 'express'
 import type { Logger } from 'pino'
+import { storageTrouble } from '../db/storage-errors.ts'
 import { DomainError, toProblem } from './errors.ts'
 
 type BodyError = Error & { type?: string; status?: number }
@@ -15,11 +16,21 @@ function asDomainError(error: unknown): DomainError | null {
   return null
 }
 
+/** What the disk refused, told so that it can be mended while the program runs on. */
+function asStorageError(error: unknown): DomainError | null {
+  const trouble = storageTrouble(error)
+  if (trouble === 'full') return new DomainError('storage-full', 'The disk that holds the database is full. Nothing of this request was saved; everything saved before stands. Tell your administrator to make room, then do it again: no restart is needed.')
+  if (trouble === 'failed') return new DomainError('storage-failed', 'The disk that holds the database could not be read or written. Nothing of this request was saved. Tell your administrator to look at the disk before anything else is done here.')
+  return null
+}
+
 /** RFC 9457 for every error; unknown ones are logged in full and answered opaquely. */
 export const errorHandler = (log: Logger): ErrorRequestHandler => (error, req, res, next) => {
   if (res.headersSent) return next(error)
   const requestId = String(req.id)
-  const known = asDomainError(error)
+  const storage = asStorageError(error)
+  if (storage) log.error({ err: error as Error, requestId }, 'the storage refused')
+  const known = asDomainError(error) ?? storage
   if (!known) log.error({ err: error as Error, requestId }, 'unexpected error')
   const problem = toProblem(known ?? new DomainError('unexpected', `This failed inside Detent and was logged as ${requestId}. What was saved before stands; nothing of this request was. Try again, and tell your administrator if it stays.`), requestId)
   res.status(problem.status).type('application/problem+json').set('Cache-Control', 'no-store').send(JSON.stringify(problem))

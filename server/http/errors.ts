@@ -31,6 +31,8 @@ const statusOf = {
   'precondition-required': 428,
   'too-many-requests': 429,
   'verification-failed': 500,
+  'storage-failed': 500,
+  'storage-full': 507,
   unexpected: 500,
 } as const
 
@@ -100,6 +102,8 @@ const titleOf: Record<ErrorCode, string> = {
   'precondition-required': 'The request must say which version it is for',
   'too-many-requests': 'Too many requests',
   'verification-failed': 'The verification failed',
+  'storage-failed': 'The disk failed',
+  'storage-full': 'The disk is full',
   unexpected: 'Something failed inside Detent',
 }
 
