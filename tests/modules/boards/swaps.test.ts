@@ -5,7 +5,7 @@ import type { BenchCard } from '../../../shared/contract/boards.ts'
 import { aRelease } from '../../support/a-release.ts'
 import { aBench, fileOf, flash, kneesWith, l1, readBoard } from './a-bench.ts'
 
-const image = (version: string, board?: string) => `/api/machines/dunlin/releases/${version}/joints/l1-knee/image.hex${board ? `?board=${board}` : ''}`
+const image = (version: string, board?: string) => `/api/machines/dunlin/releases/${version}/joints/l1-knee/image.hex?reason=tried+in+a+test${board ? `&board=${board}` : ''}`
 
 describe('board-bound values', () => {
   it('belong to the board they were measured on: after a swap the joint\'s downloads are refused until values of the new board are released', async () => {
