@@ -49,7 +49,7 @@ export async function dunlinStory(story: Story, set: MachineSet): Promise<void> 
   await story.cancel(pitch, tobias, 'The bus load finding shows room to spare; nothing gained.')
 
   story.day(141)
-  const yaw = await story.draft({ machine, title: 'Quieter yaw at rest', reason: 'The yaw joints tick at rest with the covers on.', author: tobias, content: [[value('yaw', 'velocityWindow'), 18]] })
+  const yaw = await story.draft({ machine, title: 'Quieter yaw at rest', reason: 'The yaw joints tick at rest with the covers on.', author: tobias, content: [[value('yaw', 'velocityWindow'), 15]] })
   await story.submit(yaw, tobias)
   await story.giveBack(yaw, rafiq, 'A log at rest, please: is it the window or the covers?')
 
@@ -69,9 +69,9 @@ export async function dunlinStory(story: Story, set: MachineSet): Promise<void> 
   const knee = await story.draft({
     machine,
     title: 'Stiffer knee for soft mud',
-    reason: 'On the Sandweer flats the shank sinks 4 to 6 cm and the knee gives way under the step load. The shorter window buys back the phase that the higher gains cost; the limit of 3.20 A stays under what the gear train bears.',
+    reason: 'On the Sandweer flats the shank sinks 4 to 6 cm and the knee gives way under the step load. The shorter window buys back the phase that the higher gains cost; the limit of 3.00 A stays under what the gear train bears.',
     author: mirela,
-    content: [[value('knee', 'velocityWindow'), 10], [value('knee', 'velocityGain'), 4.2], [value('knee', 'velocityIntegralGain'), 40], [value('knee', 'positionGain'), 46], [value('knee', 'currentLimit'), 3.2], [own('r3-knee', 'velocityGain'), undefined]],
+    content: [[value('knee', 'velocityWindow'), 10], [value('knee', 'velocityGain'), 4.4], [value('knee', 'velocityIntegralGain'), 48], [value('knee', 'positionGain'), 66], [value('knee', 'currentLimit'), 3], [own('r3-knee', 'velocityGain'), undefined]],
   })
   await story.submit(knee, mirela)
   await story.review(knee, rafiq)

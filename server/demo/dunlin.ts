@@ -11,26 +11,26 @@ const bus = (name: string, pullUp: number, picofarads: number): BusSettings => (
 })
 
 const legMotor = {
-  V_nom: 24, V_bus: range(24, 21, 26.4), R: percent(1.02, 8), R_on: 0.06, L: percent(0.00042, 15), k_t: percent(0.0318, 7),
+  V_nom: 24, V_bus: range(24, 21, 26.4), R: 1.02, R_on: 0.06, L: 0.00042, k_t: percent(0.0318, 7),
   i_lsb: 0.0016, T_winding: range(25, 15, 105), T_max: 125, T_amb: 25, R_th: 9.4, tau_th: 540, R_th_winding: 2.1, tau_th_winding: 14,
   I_driver: 6, I_sense: 5.2, I_demagnetisation: 11, peak_duty: 4, V_bus_max: 36, C_bus: 0.0022, source_resistance: 0.08,
 } satisfies Partial<DriveTrain>
 
 const knee: DriveTrain = {
-  ...legMotor, N: 64, eta: percent(0.8, 0, 10), J_rotor: percent(4.3e-6, 5), J_load: percent(0.0185, 30, 60), b_rotor: 1.1e-6, b_load: 0.02, tau_c: 0.11, tau_s: 0.15,
+  ...legMotor, N: 64, eta: 0.8, J_rotor: 4.3e-6, J_load: percent(0.0185, 30, 60), b_rotor: 1.1e-6, b_load: 0.02, tau_c: 0.11, tau_s: 0.15,
   encoder: 'output', bits: 16, tau_gear: 6.6, theta_stop_min: -1.6, theta_stop_max: 1.6, settling_target: 0.2, step: 0.2,
 }
 const hip: DriveTrain = { ...knee, N: 50, J_load: percent(0.031, 25, 40), tau_gear: 5.4, settling_target: 0.25, theta_stop_min: -1.3, theta_stop_max: 1.3 }
 const yaw: DriveTrain = { ...knee, N: 50, J_load: percent(0.024, 25, 40), tau_gear: 5.4, settling_target: 0.3, theta_stop_min: -1.0, theta_stop_max: 1.0 }
 
 const winch: DriveTrain = {
-  V_nom: 24, V_bus: range(24, 21, 26.4), R: percent(0.62, 8), R_on: 0.04, L: percent(0.00031, 15), k_t: percent(0.0462, 7), N: 26, eta: percent(0.74, 0, 12),
-  J_rotor: percent(1.9e-5, 5), J_load: percent(0.0042, 30, 120), b_rotor: 4e-6, b_load: 0.015, tau_c: 0.22, tau_s: 0.3, encoder: 'motor', bits: 12,
+  V_nom: 24, V_bus: range(24, 21, 26.4), R: 0.62, R_on: 0.04, L: 0.00031, k_t: percent(0.0462, 7), N: 26, eta: 0.74,
+  J_rotor: 1.9e-5, J_load: percent(0.0042, 30, 120), b_rotor: 4e-6, b_load: 0.015, tau_c: 0.22, tau_s: 0.3, encoder: 'motor', bits: 12,
   i_lsb: 0.003, T_winding: range(25, 5, 100), T_max: 130, T_amb: 20, R_th: 5.2, tau_th: 780, R_th_winding: 1.3, tau_th_winding: 22,
   I_driver: 12, I_sense: 10.5, I_demagnetisation: 24, peak_duty: 6, tau_gear: 9, step: 2, settling_target: 0.3,
 }
 
-const legValues = (own: Values): Values => ({ supplyNominal: 24, supplyCompensated: true, currentRate: 16000, outerRate: 2000, outputDelay: 1, dutyLimit: 0.95, currentGain: 1.2, currentIntegralGain: 3400, busWatchdog: 250, ...own })
+const legValues = (own: Values): Values => ({ supplyNominal: 24, supplyCompensated: true, currentRate: 16000, outerRate: 2000, outputDelay: 1, dutyLimit: 0.95, pwmCounts: 15000, currentGain: 1.2, currentIntegralGain: 3400, busWatchdog: 250, ...own })
 
 /** Hinge 2.0.0 knew the watchdog by another name; the first release was made on it. */
 export const hingeValues = {

@@ -6,20 +6,20 @@ const range = (value: number, low: number, high: number) => ({ value, low, high 
 const percent = (value: number, below: number, above = below) => range(value, Number((value * (1 - below / 100)).toPrecision(6)), Number((value * (1 + above / 100)).toPrecision(6)))
 
 const arm: DriveTrain = {
-  V_nom: 24, V_bus: range(24, 22.8, 25.2), R: percent(1.9, 8), R_on: 0.08, L: percent(0.0007, 15), k_t: percent(0.0385, 7), N: 80, eta: percent(0.75, 0, 10),
-  J_rotor: percent(3.1e-6, 5), J_load: percent(0.042, 20, 40), b_rotor: 9e-7, b_load: 0.03, tau_c: 0.14, tau_s: 0.2, encoder: 'output', bits: 16,
+  V_nom: 24, V_bus: range(24, 22.8, 25.2), R: 1.9, R_on: 0.08, L: 0.0007, k_t: percent(0.0385, 7), N: 80, eta: 0.75,
+  J_rotor: 3.1e-6, J_load: percent(0.042, 20, 40), b_rotor: 9e-7, b_load: 0.03, tau_c: 0.14, tau_s: 0.2, encoder: 'output', bits: 16,
   i_lsb: 0.0012, T_winding: range(25, 15, 95), T_max: 120, T_amb: 22, R_th: 12, tau_th: 480, R_th_winding: 3, tau_th_winding: 12,
   I_driver: 6, I_sense: 4.1, I_demagnetisation: 8, tau_gear: 8.4, theta_stop_min: -2.6, theta_stop_max: 2.6, settling_target: 0.35, step: 0.15, peak_duty: 3,
 }
-const wrist: DriveTrain = { ...arm, R: percent(6.8, 8), L: percent(0.0011, 15), k_t: percent(0.0214, 7), N: 60, J_rotor: percent(9e-7, 5), J_load: percent(0.0026, 20, 60), b_load: 0.008, tau_c: 0.04, tau_s: 0.06, tau_gear: 2.4, settling_target: 0.2 }
+const wrist: DriveTrain = { ...arm, R: 6.8, L: 0.0011, k_t: percent(0.0214, 7), N: 60, J_rotor: 9e-7, J_load: percent(0.0026, 20, 60), b_load: 0.008, tau_c: 0.04, tau_s: 0.06, tau_gear: 2.4, settling_target: 0.2 }
 const roller: DriveTrain = {
-  V_nom: 24, V_bus: range(24, 22.8, 25.2), R: percent(0.9, 8), R_on: 0.04, L: percent(0.00044, 15), k_t: percent(0.041, 7), N: 12, eta: percent(0.86, 0, 8),
-  J_rotor: percent(1.2e-5, 5), J_load: percent(0.0031, 10, 150), b_rotor: 3e-6, b_load: 0.006, tau_c: 0.05, encoder: 'motor', bits: 12,
+  V_nom: 24, V_bus: range(24, 22.8, 25.2), R: 0.9, R_on: 0.04, L: 0.00044, k_t: percent(0.041, 7), N: 12, eta: 0.86,
+  J_rotor: 1.2e-5, J_load: percent(0.0031, 10, 150), b_rotor: 3e-6, b_load: 0.006, tau_c: 0.05, encoder: 'motor', bits: 12,
   i_lsb: 0.002, T_winding: range(25, 15, 90), T_max: 120, T_amb: 22, R_th: 7.5, tau_th: 600, R_th_winding: 2, tau_th_winding: 18,
   I_driver: 12, I_sense: 9, I_demagnetisation: 16, tau_gear: 4, step: 3, settling_target: 0.4, peak_duty: 5,
 }
 
-const common: Values = { supplyNominal: 24, supplyCompensated: true, currentRate: 16000, outerRate: 2000, outputDelay: 1, dutyLimit: 0.95, busWatchdog: 100 }
+const common: Values = { supplyNominal: 24, supplyCompensated: true, currentRate: 16000, outerRate: 2000, outputDelay: 1, dutyLimit: 0.95, pwmCounts: 15000, busWatchdog: 100 }
 const joint = (name: string, family: string, address: number, board: string, encoderOffset: number): JointSettings => ({
   name, family, bus: 'arm', address, firmware: 'hinge 2.1.0', board, values: { encoderOffset, encoderDirection: 'forward', motorDirection: 'forward' },
 })

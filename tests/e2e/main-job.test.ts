@@ -65,7 +65,7 @@ describe('the main job, in a browser', () => {
 
   it('lowers it, and submits', async () => {
     await type('Samples', '14')
-    await type('Velocity gain', '3.4')
+    await type('Velocity gain', '3.3')
     await page.getByText('stable', { exact: true }).first().waitFor()
     const submit = page.getByRole('button', { name: 'Submit' })
     await expect.poll(async () => (await submit.isEnabled()) && (await submit.getAttribute('aria-disabled')) !== 'true', { timeout: 20_000 }).toBe(true)

@@ -19,14 +19,21 @@ export type KnownResults = ReadonlyMap<string, StoredOutcome>
 
 type Judged = { kind: 'figures'; figures: JointFigures } | { kind: 'refused'; text: string } | { kind: 'not yet' }
 
+/** Figures as put together before: joints built alike share one object. */
+const together = new WeakMap<StoredOutcome, { swept: StoredOutcome | null; figures: JointFigures }>()
+
 /** Figures of one side from its analyses; tolerances as far as they are known. */
 export function figuresOf(side: Side & { kind: 'model' }, known: KnownResults): Judged {
   const nominal = known.get(side.asked.nominal.hash)
   if (!nominal) return { kind: 'not yet' }
   if (nominal.kind === 'refused') return { kind: 'refused', text: nominal.text }
-  const swept = side.asked.tolerance && known.get(side.asked.tolerance.hash)
+  const swept = (side.asked.tolerance && known.get(side.asked.tolerance.hash)) ?? null
+  const before = together.get(nominal)
+  if (before && before.swept === swept) return { kind: 'figures', figures: before.figures }
   const tolerance = swept?.kind === 'result' ? (swept.result as ToleranceResult).figures : null
-  return { kind: 'figures', figures: { ...(nominal.result as NominalResult).figures, tolerance } }
+  const figures = { ...(nominal.result as NominalResult).figures, tolerance }
+  together.set(nominal, { swept, figures })
+  return { kind: 'figures', figures }
 }
 
 const figuresOrNull = (side: Side | null, known: KnownResults): JointFigures | null => {

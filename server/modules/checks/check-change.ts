@@ -6,6 +6,7 @@ import { assembleCheck } from './assemble-check.ts'
 import { CheckReport } from './check-report.entity.ts'
 import { prepareChange } from './gather-inputs.ts'
 import { hereIfQuick, worded } from './look-at-check.ts'
+import { packCheck, unpackCheck } from './pack-check.ts'
 import { nominalRequests, toleranceRequests } from './prepare-check.ts'
 
 /**
@@ -18,13 +19,13 @@ import { nominalRequests, toleranceRequests } from './prepare-check.ts'
 export async function checkChange(services: Services, em: EntityManager, change: Change): Promise<{ result: CheckResult; checkedAt: Date }> {
   const { hash, check } = await prepareChange(em, change)
   const stored = await em.findOne(CheckReport, { change, inputsHash: hash })
-  if (stored) return { result: stored.result, checkedAt: stored.createdAt }
+  if (stored) return { result: unpackCheck(stored.result), checkedAt: stored.createdAt }
   const known = await services.checks.settle([...nominalRequests(check), ...toleranceRequests(check)], { asker: change.author.id, here: hereIfQuick() }).catch(worded)
   const result = assembleCheck(check, known)
   const checkedAt = services.now()
   await services.orm.em.fork().transactional(async (tx) => {
     if (await tx.count(CheckReport, { change: change.id, inputsHash: hash })) return
-    tx.create(CheckReport, { change: tx.getReference(Change, change.id), inputsHash: hash, result, createdAt: checkedAt })
+    tx.create(CheckReport, { change: tx.getReference(Change, change.id), inputsHash: hash, result: packCheck(result), createdAt: checkedAt })
   })
   return { result, checkedAt }
 }

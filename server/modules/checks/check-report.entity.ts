@@ -1,6 +1,6 @@
 import { defineEntity, p, type InferEntity } from '@mikro-orm/core'
-import type { CheckResult } from '../../../shared/contract/checks.ts'
 import { Change } from '../changes/change.entity.ts'
+import type { PackedCheck } from './pack-check.ts'
 
 /** A finished check, kept by the hash of everything it depends on: equal inputs are answered from here. Immutable. */
 export const CheckReport = defineEntity({
@@ -10,7 +10,7 @@ export const CheckReport = defineEntity({
     id: p.integer().primary(),
     change: () => p.manyToOne(Change),
     inputsHash: p.string().length(64),
-    result: p.json<CheckResult>(),
+    result: p.json<PackedCheck>(),
     createdAt: p.datetime(),
   },
 })

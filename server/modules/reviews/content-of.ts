@@ -5,6 +5,7 @@ import type { MachineSet } from '../../../shared/parameters/machine-set.ts'
 import type { ParameterSchema } from '../../../shared/registers/parameter-schema.ts'
 import type { Change } from '../changes/change.entity.ts'
 import { setOf } from '../changes/read-set.ts'
+import { packCheck } from '../checks/pack-check.ts'
 import { resolveJoint, sha256, type ResolvedJoint } from '../checks/resolve-joint.ts'
 import { schemasFor } from '../firmware/schemas-for.ts'
 import { DomainError, type FieldProblem } from '../../http/errors.ts'
@@ -50,6 +51,7 @@ export async function contentOf(em: EntityManager, change: Change, check: CheckR
     else problems.push(...resolved.problems)
   }
   if (problems.length > 0) throw new DomainError('content-invalid', `The values of ${change.machine.name} do not fit their firmware schemas. The draft is kept as it is; correct the values named.`, { fields: problems })
+  const packed = packCheck(check)
   const content = {
     format: 'detent-content/1',
     machine: change.machine.key,
@@ -64,7 +66,7 @@ export async function contentOf(em: EntityManager, change: Change, check: CheckR
     buses: set.buses,
     modelVersion: check.modelVersion,
     policyNumber: check.policyNumber,
-    check: { inputsHash: check.inputsHash, findings: sixDigits(check.findings), joints: sixDigits(check.joints) },
+    check: { inputsHash: packed.inputsHash, findings: sixDigits(packed.findings), joints: packed.joints, figures: sixDigits(packed.figures) },
     concessions: change.concessions,
     reason: change.reason,
     evidence: [],

@@ -51,7 +51,7 @@ function worstMargin(c: JointContext, loop: LoopName, m: MarginKind): RawFinding
   if (!t || !swept) return []
   const base = { kind: `worst ${m.kind}`, loop, unit: m.unit, source: m.source, blame: gainOf[loop] }
   if (swept.unstable > 0)
-    return [about(c, { ...base, level: 'block', value: null, limit: m.worst, text: `The ${loop} loop alone is not stable at ${swept.unstable} of ${coverage(t)} of its tolerances, so it has no ${m.kind} there.`, remedy: 'Whatever opens the outer loop there sets it swinging; lower its gain until it stands alone.' })]
+    return [about(c, { ...base, level: 'block', value: null, limit: m.worst, text: `The ${loop} loop alone is not stable at ${swept.unstable} of ${t.vertices.points + t.samplesWithMargins} points of its tolerances, so it has no ${m.kind} there.`, remedy: 'Whatever opens the outer loop there sets it swinging; lower its gain until it stands alone.' })]
   const worst = m.worstOf(swept)
   if (!worst) return [about(c, { ...base, level: 'pass', value: null, limit: m.worst, text: `The ${loop} loop has no end to its ${m.kind} at any of ${coverage(t)}.`, remedy: '' })]
   const judged = levelOf(worst.value, m.worst, m.block)
