@@ -30,7 +30,7 @@ export const loader = ({ params }: LoaderFunctionArgs) => queryClient.ensureQuer
 
 /** Columns of the page: as many spines beside each other as there is room for, up to three. */
 const beside = (buses: number) =>
-  buses < 2 ? 'lg:grid-cols-[400px_minmax(0,1fr)]' : buses === 2 ? 'lg:grid-cols-[450px_minmax(0,1fr)]' : 'lg:grid-cols-[450px_minmax(0,1fr)] xl:grid-cols-[686px_minmax(0,1fr)]'
+  buses < 2 ? 'lg:grid-cols-[300px_minmax(0,1fr)] xl:grid-cols-[400px_minmax(0,1fr)]' : buses === 2 ? 'lg:grid-cols-[450px_minmax(0,1fr)]' : 'lg:grid-cols-[450px_minmax(0,1fr)] xl:grid-cols-[686px_minmax(0,1fr)]'
 
 export function Component() {
   const params = useParams()

@@ -57,5 +57,5 @@ export interface ParameterTableProps {
 
 export function ParameterTable({ parameters, chosen, onChoose }: ParameterTableProps) {
   const [sort, setSort] = useUrlSort()
-  return <Table dense label="parameters" rows={parameters} columns={columns} rowKey={(p) => p.name} chosen={(p) => p.name === chosen} onOpen={(p) => onChoose(p.name)} sort={sort} onSort={setSort} empty="No parameter fits the filter." />
+  return <Table dense className="max-xl:overflow-x-auto" label="parameters" rows={parameters} columns={columns} rowKey={(p) => p.name} chosen={(p) => p.name === chosen} onOpen={(p) => onChoose(p.name)} sort={sort} onSort={setSort} empty="No parameter fits the filter." />
 }

@@ -22,5 +22,5 @@ export function LedgerTable({ entries, machineName, onOpen, chosen }: LedgerTabl
     { key: 'subject', head: 'About', className: 'text-13 whitespace-nowrap', cell: (e) => subjectWords(e) },
     { key: 'hash', head: 'Hash', align: 'end', cell: (e) => <Hash hash={e.hash} bytes={4} /> },
   ]
-  return <Table dense label="ledger" rows={entries} columns={columns} rowKey={(e) => String(e.sequence)} onOpen={onOpen} chosen={(e) => e.sequence === chosen} empty="No entry fits the filter." />
+  return <Table dense className="max-xl:overflow-x-auto" label="ledger" rows={entries} columns={columns} rowKey={(e) => String(e.sequence)} onOpen={onOpen} chosen={(e) => e.sequence === chosen} empty="No entry fits the filter." />
 }

@@ -34,5 +34,5 @@ export function FamilyValues({ machine, values, joints }: { machine: string; val
       ),
     },
   ]
-  return <Table dense label="values" rows={values} columns={columns} rowKey={(v) => v.name} sort={sort} onSort={setSort} empty="No value fits the filter." />
+  return <Table dense className="max-xl:overflow-x-auto" label="values" rows={values} columns={columns} rowKey={(v) => v.name} sort={sort} onSort={setSort} empty="No value fits the filter." />
 }

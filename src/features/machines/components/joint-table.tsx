@@ -32,7 +32,7 @@ const columns: Column<JointSummary>[] = [
       </>
     ),
   },
-  { key: 'family', head: 'Family', sortBy: (j) => j.familyName, cell: (j) => j.familyName },
+  { key: 'family', head: 'Family', className: 'whitespace-nowrap', sortBy: (j) => j.familyName, cell: (j) => j.familyName },
   { key: 'firmware', head: 'Firmware', className: 'num text-13 whitespace-nowrap', sortBy: (j) => j.firmware, cell: (j) => j.firmware },
   { key: 'revision', head: 'Revision', className: 'num', sortBy: (j) => j.revision, cell: (j) => (j.revision === null ? <Num value={null} /> : `r${j.revision}`) },
   { key: 'own', head: 'Own', align: 'end', className: 'num', sortBy: (j) => j.ownValues, cell: (j) => j.ownValues || '' },
@@ -67,6 +67,7 @@ export function JointTable({ machine, joints, without = [] }: JointTableProps) {
   const [sort, setSort] = useUrlSort()
   return (
     <Table
+      className="max-xl:overflow-x-auto"
       label="joints"
       rows={joints}
       columns={columns.filter((c) => !without.includes(c.key))}

@@ -80,5 +80,5 @@ function formatPercent(relative: number): string {
 /** The effective values of a joint: where each comes from, where it lies in the registers, and what the board makes of it. */
 export function ValueTable({ values }: { values: readonly ParameterValue[] }) {
   const [sort, setSort] = useUrlSort()
-  return <Table dense label="values" rows={values} columns={columns} rowKey={(v) => v.name} sort={sort} onSort={setSort} empty="No value fits the filter." />
+  return <Table dense className="max-xl:overflow-x-auto" label="values" rows={values} columns={columns} rowKey={(v) => v.name} sort={sort} onSort={setSort} empty="No value fits the filter." />
 }

@@ -18,5 +18,5 @@ export function MailState({ mail }: { mail: MailView }) {
 }
 
 export function MailTable({ mails, chosen, onOpen }: { mails: readonly MailView[]; chosen: number | null; onOpen: (mail: MailView) => void }) {
-  return <Table label="mail" rows={mails} columns={columns} rowKey={(m) => String(m.id)} onOpen={onOpen} chosen={(m) => m.id === chosen} />
+  return <Table className="max-xl:overflow-x-auto" label="mail" rows={mails} columns={columns} rowKey={(m) => String(m.id)} onOpen={onOpen} chosen={(m) => m.id === chosen} />
 }

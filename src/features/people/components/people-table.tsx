@@ -18,7 +18,7 @@ export function PeopleTable({ people, machineName }: { people: readonly PersonVi
   ]
   const withEmail = people.some((p) => p.email !== null)
   return (
-    <Table label="people" rows={people} columns={columns.filter((c) => withEmail || c.key !== 'email')} rowKey={(p) => String(p.id)} rowTo={(p) => paths.person(p.id)} sort={sort} onSort={setSort} empty="Nobody fits the filter." />
+    <Table className="max-xl:overflow-x-auto" label="people" rows={people} columns={columns.filter((c) => withEmail || c.key !== 'email')} rowKey={(p) => String(p.id)} rowTo={(p) => paths.person(p.id)} sort={sort} onSort={setSort} empty="Nobody fits the filter." />
   )
 }
 
