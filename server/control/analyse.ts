@@ -1,13 +1,15 @@
-import { bandwidthsOf, currentResponse, dcGainOf, outerResponse, type Bandwidths } from './bandwidth.ts'
+import { bandwidthsOf, currentResponse, dcGainOf, longResponse, outerResponse, type Bandwidths } from './bandwidth.ts'
 import { CurrentTransfer } from './current-transfer.ts'
 import { NumericError } from './errors.ts'
 import { liftPlant } from './lifted-plant.ts'
 import { windowDelay } from './closed-forms.ts'
-import { currentSource, OuterSource } from './margin-sources.ts'
+import { currentSource } from './margin-sources.ts'
 import { marginsOf, UNSTABLE_MARGINS, type LoopMargins } from './margins.ts'
 import type { ControlMode, JointModel } from './model.ts'
 import { closuresOf } from './monodromy.ts'
 import { outerSteps } from './outer-steps.ts'
+import { LongResponse } from './long-source.ts'
+import { outerSource, SHORT_Q } from './outer-source.ts'
 import { OuterTransfer } from './outer-transfer.ts'
 import { velocityQuantum } from './plant.ts'
 import { resonances, unfold } from './resonances.ts'
@@ -92,9 +94,10 @@ export function analyse(model: JointModel): LinearReport {
       const current = new CurrentTransfer(joint)
       const margins = marginsOf(currentSource(joint, current, marks))
       loops.current = { ...base, ...margins, bandwidths: bandwidthsOf(currentResponse(current), dcGainOf(joint, null, 'current'), marks, timing.T_c) }
-    } else if (plant && transfer) {
-      const margins = marginsOf(new OuterSource(joint, plant, closure, marks, transfer))
-      const bandwidths = bandwidthsOf(outerResponse(transfer, closure), dcGainOf(joint, steps, closure), unfold(marks, timing.q), timing.T_o)
+    } else if (steps && plant && transfer) {
+      const long = timing.q > SHORT_Q
+      const margins = marginsOf(outerSource(joint, steps, plant, closure, marks, transfer))
+      const bandwidths = bandwidthsOf(long ? longResponse(new LongResponse(joint, steps, closure)) : outerResponse(transfer, closure), dcGainOf(joint, steps, closure), unfold(marks, timing.q), timing.T_o)
       loops[closure] = { ...base, ...margins, bandwidths }
     }
   }

@@ -2,6 +2,7 @@ import type { CurrentTransfer } from './current-transfer.ts'
 import { currentMonodromy, OuterCarrier, outerLayout, outerMonodromy } from './monodromy.ts'
 import { traceLoci, type LocusNode, type LocusSource } from './loci.ts'
 import { complexMatrix, solveComplex } from './complex-matrix.ts'
+import type { LongResponse } from './long-source.ts'
 import type { OuterSteps } from './outer-steps.ts'
 import type { OuterTransfer } from './outer-transfer.ts'
 import type { SampledJoint } from './sampled-joint.ts'
@@ -43,6 +44,8 @@ export const outerResponse = (transfer: OuterTransfer, closure: 'velocity' | 'po
   transfer.at(theta)
   transfer.fundamental(closure, out)
 }
+
+export const longResponse = (response: LongResponse): MeasuredOverReference => (theta, out) => response.at(theta, out)
 
 /**
  * First frequencies at which |T| falls to −3 dB of its value at zero frequency, and of 1.

@@ -4,6 +4,8 @@ import { liftPlant } from './lifted-plant.ts'
 import { guardNumber, type ControlMode, type JointModel } from './model.ts'
 import { closuresOf } from './monodromy.ts'
 import { outerSteps } from './outer-steps.ts'
+import { LongResponse } from './long-source.ts'
+import { SHORT_Q } from './outer-source.ts'
 import { OuterTransfer } from './outer-transfer.ts'
 import { sampleJoint } from './sampled-joint.ts'
 
@@ -45,7 +47,11 @@ export function frequencyResponses(model: JointModel, loops: readonly ControlMod
     if (!closed.includes(loop)) throw new NumericError('bad-input', { field: 'loop', value: loop, text: `The joint does not close a ${loop} loop; nothing was computed. It closes: ${closed.join(', ')}.` })
   }
   const responses = loops.map((loop) => emptyResponse(loop, hz))
-  const outer = joint.closes === 'current' ? null : new OuterTransfer(joint, liftPlant(outerSteps(joint)))
+  const steps = joint.closes === 'current' ? null : outerSteps(joint)
+  const long = steps !== null && steps.q > SHORT_Q
+  const outer = steps && !long ? new OuterTransfer(joint, liftPlant(steps)) : null
+  const whole = new Map<ControlMode, LongResponse>()
+  if (steps && long) for (const loop of loops) if (loop !== 'current') whole.set(loop, new LongResponse(joint, steps, loop))
   const current = new CurrentTransfer(joint)
   const point = { L_re: 0, L_im: 0, T_re: 0, T_im: 0 }
   const anyOuter = loops.some((loop) => loop !== 'current')
@@ -57,6 +63,7 @@ export function frequencyResponses(model: JointModel, loops: readonly ControlMod
         current.fundamental(point)
       } else {
         outer?.fundamental(response.loop, point)
+        whole.get(response.loop)?.at(2 * Math.PI * hz[k] * joint.timing.T_o, point)
       }
       response.L_re[k] = point.L_re
       response.L_im[k] = point.L_im

@@ -113,12 +113,37 @@ function largest(node: LocusNode): number {
   return most
 }
 
-/** The right node with its eigenvalues put in the left node's order: nearest relative distance first. */
+/** Up to this many loci the nearest pair of all is matched first; beyond, each locus in turn from the largest on. */
+const PAIRWISE_LIMIT = 12
+
+/** The right node with its eigenvalues put in the left node's order, by nearest relative distance. */
 export function ordered(left: LocusNode, right: LocusNode, permutation: Int32Array, taken: Uint8Array): LocusNode {
   const q = left.re.length
   if (q === 1) return right
   taken.fill(0)
   permutation.fill(-1)
+  if (q <= PAIRWISE_LIMIT) matchNearestFirst(left, right, permutation, taken)
+  else matchLargestFirst(left, right, permutation, taken)
+  let same = true
+  for (let i = 0; i < q && same; i++) same = permutation[i] === i
+  if (same) return right
+  const node = { psi: right.psi, re: new Float64Array(q), im: new Float64Array(q) }
+  for (let i = 0; i < q; i++) {
+    node.re[i] = right.re[permutation[i]]
+    node.im[i] = right.im[permutation[i]]
+  }
+  return node
+}
+
+function relativeDistance(left: LocusNode, i: number, right: LocusNode, k: number): number {
+  const dr = left.re[i] - right.re[k]
+  const di = left.im[i] - right.im[k]
+  const size = left.re[i] ** 2 + left.im[i] ** 2 + right.re[k] ** 2 + right.im[k] ** 2
+  return size === 0 ? 0 : (dr * dr + di * di) / size
+}
+
+function matchNearestFirst(left: LocusNode, right: LocusNode, permutation: Int32Array, taken: Uint8Array): void {
+  const q = left.re.length
   for (let round = 0; round < q; round++) {
     let best = Infinity
     let from = -1
@@ -127,10 +152,7 @@ export function ordered(left: LocusNode, right: LocusNode, permutation: Int32Arr
       if (permutation[i] >= 0) continue
       for (let k = 0; k < q; k++) {
         if (taken[k]) continue
-        const dr = left.re[i] - right.re[k]
-        const di = left.im[i] - right.im[k]
-        const size = left.re[i] ** 2 + left.im[i] ** 2 + right.re[k] ** 2 + right.im[k] ** 2
-        const distance = size === 0 ? 0 : (dr * dr + di * di) / size
+        const distance = relativeDistance(left, i, right, k)
         if (distance < best) {
           best = distance
           from = i
@@ -141,15 +163,25 @@ export function ordered(left: LocusNode, right: LocusNode, permutation: Int32Arr
     permutation[from] = to
     taken[to] = 1
   }
-  let same = true
-  for (let i = 0; i < q && same; i++) same = permutation[i] === i
-  if (same) return right
-  const node = { psi: right.psi, re: new Float64Array(q), im: new Float64Array(q) }
-  for (let i = 0; i < q; i++) {
-    node.re[i] = right.re[permutation[i]]
-    node.im[i] = right.im[permutation[i]]
+}
+
+function matchLargestFirst(left: LocusNode, right: LocusNode, permutation: Int32Array, taken: Uint8Array): void {
+  const q = left.re.length
+  const order = Array.from({ length: q }, (_, i) => i).sort((a, b) => Math.hypot(left.re[b], left.im[b]) - Math.hypot(left.re[a], left.im[a]))
+  for (const i of order) {
+    let best = Infinity
+    let to = -1
+    for (let k = 0; k < q; k++) {
+      if (taken[k]) continue
+      const distance = relativeDistance(left, i, right, k)
+      if (distance < best) {
+        best = distance
+        to = k
+      }
+    }
+    permutation[i] = to
+    taken[to] = 1
   }
-  return node
 }
 
 /** Whether every locus of interest runs straight between the ends, in ln λ or in λ itself. */

@@ -4,6 +4,7 @@ import type { LiftedPlant } from './lifted-plant.ts'
 import type { MarginSource } from './margins.ts'
 import { invertSensitivity, OuterTransfer } from './outer-transfer.ts'
 import type { SampledJoint } from './sampled-joint.ts'
+import { largestSingularValue, singularValueBound } from './singular-value.ts'
 
 /** The current loop as a source of margins; ψ in radians per current tick. */
 export function currentSource(joint: SampledJoint, transfer = new CurrentTransfer(joint), landmarks: readonly number[] = []): MarginSource {
@@ -24,9 +25,6 @@ export function currentSource(joint: SampledJoint, transfer = new CurrentTransfe
   }
 }
 
-/** Up to this size the norm comes from the eigenvalues of SᴴS, above it from power iteration. */
-const DIRECT_NORM = 12
-
 /** The velocity or position loop as a source of margins; ψ in radians per hyperperiod. */
 export class OuterSource implements MarginSource {
   readonly q: number
@@ -37,10 +35,7 @@ export class OuterSource implements MarginSource {
   private readonly L: ComplexMatrix
   private readonly S: ComplexMatrix
   private readonly vector: ComplexMatrix
-  private readonly image: ComplexMatrix
   private readonly det = { re: 0, im: 0 }
-  private readonly gramRe: Float64Array
-  private readonly gramIm: Float64Array
 
   constructor(joint: SampledJoint, plant: LiftedPlant, closure: 'velocity' | 'position', landmarks: readonly number[] = [], transfer = new OuterTransfer(joint, plant)) {
     this.q = plant.q
@@ -50,9 +45,6 @@ export class OuterSource implements MarginSource {
     this.L = complexMatrix(this.q)
     this.S = complexMatrix(this.q)
     this.vector = complexMatrix(this.q, 1)
-    this.image = complexMatrix(this.q, 1)
-    this.gramRe = new Float64Array(this.q)
-    this.gramIm = new Float64Array(this.q)
     this.landmarks = [...landmarks, ...windowLobes(joint, this.q)]
   }
 
@@ -93,32 +85,12 @@ export class OuterSource implements MarginSource {
   }
 
   sensitivityNorm(psi: number, floor: number): number {
-    const { q, L, S, vector, image } = this
+    const { q, L, S } = this
     this.transfer.at(psi / q)
     this.transfer.loop(this.closure, L)
     invertSensitivity(L, S, this.det)
-    if (floor > 0 && normBound(S) <= floor) return 0
-    if (q <= DIRECT_NORM) {
-      gram(S, L)
-      complexEigenvalues(L, this.gramRe, this.gramIm)
-      return Math.sqrt(Math.max(...this.gramRe))
-    }
-    // Power iteration on SᴴS: the value converges with the square of the vector.
-    for (let a = 0; a < q; a++) {
-      vector.re[a] = 1 + 0.1 * Math.cos(a)
-      vector.im[a] = 0.1 * Math.sin(2 * a)
-    }
-    normalise(vector)
-    let sigma = 0
-    for (let step = 0; step < 200; step++) {
-      multiply(S, vector, image)
-      const next = norm(image)
-      multiplyAdjoint(S, image, vector)
-      normalise(vector)
-      if (Math.abs(next - sigma) <= 1e-10 * next) return next
-      sigma = next
-    }
-    return sigma
+    if (floor > 0 && singularValueBound(S) <= floor) return 0
+    return largestSingularValue(S)
   }
 }
 
@@ -132,24 +104,6 @@ function windowLobes(joint: SampledJoint, q: number): number[] {
     if (psi > 1e-6 && psi < Math.PI) marks.add(psi)
   }
   return [...marks]
-}
-
-/** √(‖S‖₁·‖S‖∞), never below the largest singular value. */
-function normBound(S: ComplexMatrix): number {
-  const { n, re, im } = S
-  let rows = 0
-  let columns = 0
-  for (let i = 0; i < n; i++) {
-    let row = 0
-    let column = 0
-    for (let j = 0; j < n; j++) {
-      row += Math.sqrt(re[i * n + j] ** 2 + im[i * n + j] ** 2)
-      column += Math.sqrt(re[j * n + i] ** 2 + im[j * n + i] ** 2)
-    }
-    rows = Math.max(rows, row)
-    columns = Math.max(columns, column)
-  }
-  return Math.sqrt(rows * columns)
 }
 
 function normalise(x: ComplexMatrix): void {
@@ -166,60 +120,5 @@ function normalise(x: ComplexMatrix): void {
   for (let k = 0; k < x.n; k++) {
     x.re[k] *= scale
     x.im[k] *= scale
-  }
-}
-
-function norm(x: ComplexMatrix): number {
-  let sum = 0
-  for (let k = 0; k < x.n; k++) sum += x.re[k] ** 2 + x.im[k] ** 2
-  return Math.sqrt(sum)
-}
-
-/** out ← SᴴS. */
-function gram(S: ComplexMatrix, out: ComplexMatrix): void {
-  const { n, re, im } = S
-  for (let i = 0; i < n; i++) {
-    for (let j = 0; j < n; j++) {
-      let sr = 0
-      let si = 0
-      for (let k = 0; k < n; k++) {
-        const ar = re[k * n + i]
-        const ai = im[k * n + i]
-        const br = re[k * n + j]
-        const bi = im[k * n + j]
-        sr += ar * br + ai * bi
-        si += ar * bi - ai * br
-      }
-      out.re[i * n + j] = sr
-      out.im[i * n + j] = si
-    }
-  }
-}
-
-function multiply(M: ComplexMatrix, x: ComplexMatrix, y: ComplexMatrix): void {
-  const { n } = M
-  for (let i = 0; i < n; i++) {
-    let sr = 0
-    let si = 0
-    for (let k = 0; k < n; k++) {
-      sr += M.re[i * n + k] * x.re[k] - M.im[i * n + k] * x.im[k]
-      si += M.re[i * n + k] * x.im[k] + M.im[i * n + k] * x.re[k]
-    }
-    y.re[i] = sr
-    y.im[i] = si
-  }
-}
-
-function multiplyAdjoint(M: ComplexMatrix, x: ComplexMatrix, y: ComplexMatrix): void {
-  const { n } = M
-  for (let i = 0; i < n; i++) {
-    let sr = 0
-    let si = 0
-    for (let k = 0; k < n; k++) {
-      sr += M.re[k * n + i] * x.re[k] + M.im[k * n + i] * x.im[k]
-      si += M.re[k * n + i] * x.im[k] - M.im[k * n + i] * x.re[k]
-    }
-    y.re[i] = sr
-    y.im[i] = si
   }
 }

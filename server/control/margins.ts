@@ -40,6 +40,8 @@ export interface MarginSource extends LocusSource {
   strongest(psi: number, re: number, im: number): number
   /** Largest singular value of (I + L)⁻¹ at ψ, or 0 when its bound shows it to be at most `floor`. */
   sensitivityNorm(psi: number, floor: number): number
+  /** One locus at ψ, near a guess, cheaper than all of them; null where it is not found. */
+  follow?(psi: number, re: number, im: number): { readonly re: number; readonly im: number } | null
 }
 
 export const UNSTABLE_MARGINS: LoopMargins = {
@@ -245,10 +247,12 @@ class CrossingFinder {
 
   /** The locus at ψ nearest to the line between its two known points. */
   private near(psi: number, left: Crossing, right: Crossing): Crossing {
-    this.source.evaluate(psi, this.re, this.im)
     const t = (psi - left.psi) / (right.psi - left.psi)
     const wr = left.re + t * (right.re - left.re)
     const wi = left.im + t * (right.im - left.im)
+    const followed = this.source.follow?.(psi, wr, wi)
+    if (followed) return { psi, re: followed.re, im: followed.im }
+    this.source.evaluate(psi, this.re, this.im)
     let best = 0
     let least = Infinity
     for (let k = 0; k < this.re.length; k++) {
@@ -333,13 +337,24 @@ function sensitivityPeak(source: MarginSource, nodes: readonly LocusNode[], toHz
   intervals.sort((a, b) => a.allowed - b.allowed)
   for (const { k, allowed } of intervals) {
     if (allowed * best.value >= 1) break
-    const peak = goldenPeak(most, nodes[k - 1].psi, nodes[k].psi)
+    const peak = goldenPeak(source.follow ? alongChords(source, nodes[k - 1], nodes[k], most) : most, nodes[k - 1].psi, nodes[k].psi)
     if (peak.value > best.value) best = peak
   }
   most(best.psi)
   let at = 0
   for (let c = 1; c < q; c++) if (Math.hypot(1 + re[c], im[c]) < Math.hypot(1 + re[at], im[at])) at = c
   return { ...best, hz: Math.abs(source.strongest(best.psi, re[at], im[at])) * toHz }
+}
+
+/** 1/|1 + λ| of the locus whose chord passes nearest to −1, followed without the others. */
+function alongChords(source: MarginSource, a: LocusNode, b: LocusNode, all: (psi: number) => number): (psi: number) => number {
+  let near = 0
+  for (let i = 1; i < source.q; i++) if (toMinusOne(a, b, i) < toMinusOne(a, b, near)) near = i
+  return (psi) => {
+    const t = (psi - a.psi) / (b.psi - a.psi)
+    const at = source.follow?.(psi, a.re[near] + t * (b.re[near] - a.re[near]), a.im[near] + t * (b.im[near] - a.im[near]))
+    return at ? 1 / Math.hypot(1 + at.re, at.im) : all(psi)
+  }
 }
 
 /** The norm peaks beside M_s, and is at least as high; from there and from nodes whose bound lets them be higher. */

@@ -129,6 +129,10 @@ export class OuterCarrier {
   readonly injected: Float64Array
   /** Called at each outer tick with its index and the broken signal as it goes on: factor and injection included. */
   observe: ((k: number, broken: Float64Array) => void) | null = null
+  /** Called at each outer tick with the broken signal as its law computes it, before factor and injection. */
+  observeLaw: ((k: number, computed: Float64Array) => void) | null = null
+  /** Called before each outer tick's laws; sets what is injected. */
+  prepare: ((k: number, injected: Float64Array) => void) | null = null
 
   constructor(joint: SampledJoint, steps: OuterSteps, closure: 'position' | 'velocity', width: number) {
     this.joint = joint
@@ -179,6 +183,7 @@ export class OuterCarrier {
   /** Carries the columns through q outer ticks. */
   run(factor: BreakFactor): void {
     for (let k = 0; k < this.steps.q; k++) {
+      this.prepare?.(k, this.injected)
       this.laws(k, factor)
       this.step(k)
     }
@@ -197,6 +202,7 @@ export class OuterCarrier {
         reference[c] = xp[c] - K_pp * angle[c]
       }
       if (K_ip === 0) xp.fill(0)
+      this.observeLaw?.(k, reference)
       scaleBy(reference, factor)
       for (let c = 0; c < width; c++) reference[c] += injected[c]
       this.observe?.(k, reference)
@@ -208,6 +214,7 @@ export class OuterCarrier {
     }
     if (K_iv === 0) xv.fill(0)
     if (!position) {
+      this.observeLaw?.(k, reference)
       scaleBy(reference, factor)
       for (let c = 0; c < width; c++) reference[c] += injected[c]
       this.observe?.(k, reference)

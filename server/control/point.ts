@@ -1,10 +1,11 @@
 import { liftPlant } from './lifted-plant.ts'
-import { currentSource, OuterSource } from './margin-sources.ts'
+import { currentSource } from './margin-sources.ts'
 import { marginsOf, UNSTABLE_MARGINS, type LoopMargins } from './margins.ts'
 import type { ControlMode, JointModel } from './model.ts'
 import { validateJointModel } from './model.ts'
 import { closuresOf } from './monodromy.ts'
 import { outerSteps } from './outer-steps.ts'
+import { outerSource } from './outer-source.ts'
 import { OuterTransfer } from './outer-transfer.ts'
 import { withValues, type ParameterName } from './parameters.ts'
 import { closedMode, sampleJoint, type SampledJoint } from './sampled-joint.ts'
@@ -74,7 +75,7 @@ function evaluateSampled(joint: SampledJoint, prepared: PreparedOuter | null, wi
     }
     const marks = resonances(stability)
     if (closure === 'current') loops.current = { ...marginsOf(currentSource(joint, undefined, marks), 'gain-and-phase'), verdict: 'stable' }
-    else if (prepared && transfer) loops[closure] = { ...marginsOf(new OuterSource(joint, prepared.lifted, closure, marks, transfer), 'gain-and-phase'), verdict: 'stable' }
+    else if (prepared && transfer) loops[closure] = { ...marginsOf(outerSource(joint, prepared.steps, prepared.lifted, closure, marks, transfer), 'gain-and-phase'), verdict: 'stable' }
   }
   return { ...whole, loops }
 }
