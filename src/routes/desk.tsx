@@ -29,7 +29,8 @@ export const loader = () => {
 export function Component() {
   const me = useMe()
   const changes = useQuery({ ...changesQuery(), refetchOnWindowFocus: true })
-  const now = Date.now()
+  // How long things wait is read off when they were fetched: the page does not tick.
+  const now = changes.dataUpdatedAt
   const first = me.name.split(' ')[0]
   const waiting = waitingFor(changes.data ?? [], me.name, (act, machine) => holds(me, act, machine))
   const parts = [
@@ -48,7 +49,7 @@ export function Component() {
       >
         {parts.join(', ')}
         {parts.length > 0 && '. '}
-        <Time at={now} style="date" />
+        {changes.data && <Time at={now} style="date" />}
       </PageHead>
       <Region query={changes} what="what waits for you" lines={6} isEmpty={(all) => all.length === 0} empty={<EmptyState title="No change yet" action={<LinkButton to={paths.machines()}>To the machines</LinkButton>}>The first change gives a machine its buses, families and joints.</EmptyState>}>
         {() => (

@@ -15,7 +15,7 @@ import { Component as Releases } from '../../src/routes/releases.tsx'
 import { rawSchemas } from './a-change.ts'
 
 // The pages are large: whether each ancestor is hidden is not asked anew for every role.
-configure({ defaultHidden: true, asyncUtilTimeout: 4000 })
+configure({ defaultHidden: true, asyncUtilTimeout: 20_000 })
 
 export interface Asked {
   method: string

@@ -81,7 +81,7 @@ export function CascadeView({ set, base, schemas, family, joint, onEdit, driveTr
         <div className="mt-6 grid gap-x-6 gap-y-4 sm:grid-cols-2 xl:grid-cols-3">
           {rest.map(({ law, things }) => (
             <section key={law}>
-              <SectionHeading level={3}>{law}</SectionHeading>
+              <SectionHeading>{law}</SectionHeading>
               <div className="sheet mt-1">
                 {things.map(({ at }) => (
                   <EditableValue key={at.pointer} at={at} set={set} onEdit={onEdit} />

@@ -77,7 +77,8 @@ function FilledCell({ id, at, label, inTabOrder, emphasised, editing, onChoose, 
           onType={typed.type}
           onDone={(text, way) => {
             const taken = typed.settle(text)
-            if (taken || way === 'leave') (way === 'leave' ? onLeave() : onEnd(way))
+            if (way === 'leave') onLeave()
+            else if (taken) onEnd(way)
           }}
           onCancel={() => {
             typed.cancel()

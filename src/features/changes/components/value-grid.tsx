@@ -48,6 +48,7 @@ export function ValueGrid({ set, base, schemas, family, joint, showing, onEdit }
     .map(({ law, things }) => ({ law, rows: things.map((p) => ({ parameter: p, cells: cellsOf(p) })).filter((r) => wanted(r.parameter, r.cells)) }))
     .filter((g) => g.rows.length > 0)
   const rows = groups.flatMap((g) => g.rows)
+  const numberOf = new Map(rows.map((r, i) => [r.parameter.name, i]))
   const row = Math.min(chosen.row, rows.length - 1)
   const at = rows[row]?.cells[chosen.column] ?? null
 
@@ -81,7 +82,6 @@ export function ValueGrid({ set, base, schemas, family, joint, showing, onEdit }
     next[event.key]()
   }
 
-  let index = -1
   return (
     <>
       {at && <ValueInspector key={at.pointer} at={at} set={set} schemas={schemas} onEdit={onEdit} />}
@@ -112,8 +112,7 @@ export function ValueGrid({ set, base, schemas, family, joint, showing, onEdit }
                 </th>
               </tr>
               {g.rows.map(({ parameter, cells }) => {
-                index += 1
-                const r = index
+                const r = numberOf.get(parameter.name)!
                 return (
                   <tr key={parameter.name}>
                     <td role="rowheader" title={parameter.description || undefined}>

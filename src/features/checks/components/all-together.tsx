@@ -1,12 +1,12 @@
 import type { CheckView, JointCheck } from '../../../../shared/contract/checks.ts'
 import { EffectRuler } from '../../../components/ui/effect-ruler.tsx'
 import { VerdictMark } from '../../../components/ui/verdict-mark.tsx'
-import { count, formatNumber } from '../../../lib/format.ts'
+import { count } from '../../../lib/format.ts'
 import { figuresOf, worstOf } from '../figures.ts'
 import { BeforeAfter } from './before-after.tsx'
 
 /** Figures in the line; the full report has them all. */
-const MOST = 5
+const MOST = 4
 
 /** What the altered values do all together: verdict, ρ, and the margins that moved or miss policy, of the worst joint among those given. */
 export function AllTogether({ check, joints, nameOf }: { check: CheckView; joints: readonly string[]; nameOf: (joint: string) => string }) {
@@ -25,7 +25,7 @@ export function AllTogether({ check, joints, nameOf }: { check: CheckView; joint
         <BeforeAfter before={worst.released ? worst.released.rho.toFixed(5) : null} after={worst.candidate.rho.toFixed(5)} className="num text-16" />
       </Cell>
       {figures.map((f) => (
-        <Cell key={`${f.loop} ${f.name}`} title={`${f.loop} ${f.name === 'bandwidth' ? f.name : `${f.name} margin`}`} note={f.policy === null ? undefined : `policy ${formatNumber(f.policy)}`}>
+        <Cell key={`${f.loop} ${f.name}`} title={`${f.loop} ${f.name === 'bandwidth' ? f.name : `${f.name} margin`}`} note={f.policy === null ? undefined : `policy ${f.policy}`}>
           <BeforeAfter before={f.before ?? f.beforeReads} after={f.after ?? f.afterReads} unit={f.unit} className={`text-16 ${f.missed ? 'text-plum' : ''}`} />
           {f.after !== null && (
             <EffectRuler label={`${f.loop} ${f.name}`} before={f.before} after={f.after} min={f.range[0]} max={f.range[1]} unit={f.unit} scale={f.unit === 'Hz' ? 'log' : 'linear'} policy={f.policy === null ? undefined : { limit: f.policy, forbidden: 'below' }} width={108} />

@@ -22,8 +22,8 @@ export function FigureRows({ figures, label, oneLoop = false }: { figures: reado
             <td className="!px-0 text-center">
               <Arrow />
             </td>
-            <td className={`end num !px-0 text-13 font-medium ${f.missed ? 'text-plum' : ''}`}>{shown(f.after, f.afterReads, f.unit)}</td>
-            <td className="unit !px-1 text-13">{f.unit}</td>
+            <td className={`end num !px-0 text-13 font-medium ${f.after === null && f.afterReads === 'unstable' ? 'text-oxide' : f.missed ? 'text-plum' : ''}`}>{shown(f.after, f.afterReads, f.unit)}</td>
+            <td className="unit !px-1 text-13">{f.after !== null && f.unit}</td>
             <td className="!pr-0 !pl-1">
               {f.after !== null && (
                 <EffectRuler

@@ -61,7 +61,7 @@ function FindingRow({ finding, nameOf, narrow, note }: { finding: Finding; nameO
       </li>
     )
   return (
-    <li className="grid gap-x-4 gap-y-1 border-t border-hairline py-[7px] md:grid-cols-[150px_minmax(0,1fr)_minmax(120px,auto)]">
+    <li className="grid gap-x-4 gap-y-1 border-t border-hairline py-[7px] md:grid-cols-[150px_minmax(0,1fr)_minmax(0,260px)]">
       <FindingMark level={finding.level} className="self-start" />
       <div>
         {finding.text}
