@@ -22,7 +22,6 @@ import { Person } from '../modules/people/person.entity.ts'
 import { RoleGrant } from '../modules/people/role-grant.entity.ts'
 import { SessionRecord } from '../modules/people/session.entity.ts'
 import { PolicyVersion } from '../modules/policy/policy-version.entity.ts'
-import { BenchImage } from '../modules/releases/bench-image.entity.ts'
 import { ReleaseJoint } from '../modules/releases/release-joint.entity.ts'
 import { ReleaseKit } from '../modules/releases/release-kit.entity.ts'
 import { Release } from '../modules/releases/release.entity.ts'
@@ -31,9 +30,9 @@ import { Withdrawal } from '../modules/releases/withdrawal.entity.ts'
 import { Signature } from '../modules/reviews/signature.entity.ts'
 
 export const entities = [
-  BenchImage, BenchKey, Board, BoardEvent, Bus, Change, ChangeEvent, CheckReport, DraftPoint, DriveTrain, Family, FirmwareLine, FirmwareVersion, Joint, JointAnalysis, LedgerEntry, Link, Machine, Mail,
+  BenchKey, Board, BoardEvent, Bus, Change, ChangeEvent, CheckReport, DraftPoint, DriveTrain, Family, FirmwareLine, FirmwareVersion, Joint, JointAnalysis, LedgerEntry, Link, Machine, Mail,
   Person, PolicyVersion, Receipt, Release, ReleaseJoint, ReleaseKit, Revision, RoleGrant, SessionRecord, Signature, Withdrawal, WorkplaceKey,
 ]
 
 /** Rows of these are written once: a flush that alters one is refused, and so is SQL that goes around the flush (triggers). */
-export const immutable = [BenchImage, BoardEvent, ChangeEvent, CheckReport, DraftPoint, DriveTrain, JointAnalysis, LedgerEntry, Release, ReleaseJoint, ReleaseKit, Revision, Signature, Withdrawal, WorkplaceKey]
+export const immutable = [BoardEvent, ChangeEvent, CheckReport, DraftPoint, DriveTrain, JointAnalysis, LedgerEntry, Release, ReleaseJoint, ReleaseKit, Revision, Signature, Withdrawal, WorkplaceKey]

@@ -14,7 +14,7 @@ import { prepareSubmission, submitChange } from '../modules/changes/submit-chang
 import { checkChange } from '../modules/checks/check-change.ts'
 import { Machine } from '../modules/machines/machine.entity.ts'
 import { Person } from '../modules/people/person.entity.ts'
-import { prepare, releaseChange } from '../modules/releases/release-change.ts'
+import { prepare, proposalFor, releaseChange } from '../modules/releases/release-change.ts'
 import { Release } from '../modules/releases/release.entity.ts'
 import { withdrawRelease } from '../modules/releases/withdraw-release.ts'
 import { recompute } from '../modules/reviews/recompute.ts'
@@ -111,8 +111,11 @@ export class Story {
     const read = await again(em, change)
     await mustBeAnother(em, read, await this.person(em, by))
     const content = await recompute(this.then, em, read, read.contentHash!)
-    const prepared = await prepare(em, read, content)
-    await this.act(async (tx, now) => releaseChange(tx, await again(tx, change), prepared, { contentHash: content.hash, version: version ?? prepared.proposal.version, stepReason, person: await this.person(tx, by), now }))
+    const chosen = version ?? (await proposalFor(em, read, content)).version
+    this.hours += 0.4
+    const request = { contentHash: content.hash, version: chosen, stepReason, person: await this.person(em, by), now: this.now }
+    const prepared = await prepare(this.services, em, read, content, request)
+    await this.services.orm.em.fork().transactional(async (tx) => releaseChange(tx, await again(tx, change), prepared, request))
   }
 
   /** From draft to release in the usual four steps. */

@@ -21,9 +21,12 @@ export interface SignedManifest {
   readonly publicKey: string
 }
 
+/** Where a joint's file lies in a kit. */
+export const jointPath = (joint: string, name: string): string => `joints/${fileSlug(joint)}/${name}`
+
 /** Files of one joint in a kit: every export under `joints/NAME/`. */
 export const jointFiles = (schema: ParameterSchema, encoded: EncodedImage, context: ExportContext): KitFile[] =>
-  exportAll(schema, encoded, context).map(({ name, bytes }) => ({ path: `joints/${fileSlug(context.joint)}/${name}`, bytes }))
+  exportAll(schema, encoded, context).map(({ name, bytes }) => ({ path: jointPath(context.joint, name), bytes }))
 
 /** Where a firmware image lies in a kit. */
 export const firmwarePath = (line: string, version: string, ending: 'bin' | 'hex'): string =>

@@ -68,5 +68,11 @@ export interface ReleaseView extends ReleaseSummary {
   concessions: ConcessionRequest[]
   items: ReleaseJointView[]
   withdrawal: { reason: string; by: string; at: string } | null
+  /** the signed manifest that its kit proves itself by; null for a release made before kits were kept */
+  kit: { manifestSha256: string; keyId: string; bytes: number } | null
+  /** firmware versions of its joints whose firmware image lies in the kit */
+  firmwareImages: string[]
+  /** a download must say why: the release is superseded */
+  needsReason: boolean
   may: { download: Allowed; withdraw: Allowed }
 }

@@ -1,16 +1,11 @@
 import { Migration } from '@mikro-orm/migrations'
 
-const writtenOnce = ['bench_image', 'release_kit', 'workplace_key']
+const writtenOnce = ['release_kit', 'workplace_key']
 const columns = ['image_sha256', 'image_bytes', 'image_format', 'image_name']
 
-/** The workplace's public keys, what a release's kit is made again from, bench images taken, and firmware images of versions. */
+/** The workplace's public keys, what a release's kit is made again from, and firmware images of versions. */
 export class Migration20261201121144 extends Migration {
   override up(): void {
-    this.addSql('create table `bench_image` (`id` integer not null primary key autoincrement, `change_id` integer not null, `joint` text not null, `board` text not null, `image_sha256` text not null, `person_id` integer not null, `at` datetime not null, constraint `bench_image_change_id_foreign` foreign key(`change_id`) references `change`(`id`) on update cascade, constraint `bench_image_person_id_foreign` foreign key(`person_id`) references `person`(`id`) on update cascade);')
-    this.addSql('create index `bench_image_change_id_index` on `bench_image` (`change_id`);')
-    this.addSql('create index `bench_image_board_index` on `bench_image` (`board`);')
-    this.addSql('create index `bench_image_person_id_index` on `bench_image` (`person_id`);')
-
     this.addSql('create table `release_kit` (`id` integer not null primary key autoincrement, `release_id` integer not null, `manifest` text not null, `manifest_sha256` text not null, `signature` blob not null, `envelope` text not null, `sums_signature` blob not null, `public_key` text not null, `key_id` text not null, `zip_bytes` integer not null, constraint `release_kit_release_id_foreign` foreign key(`release_id`) references `release`(`id`) on update cascade);')
     this.addSql('create unique index `release_kit_release_id_unique` on `release_kit` (`release_id`);')
     this.addSql('create index `release_kit_key_id_index` on `release_kit` (`key_id`);')

@@ -1,13 +1,16 @@
-import { encodeImage } from '../../../shared/registers/encode-image.ts'
+import { encodeImage, type EncodedImage } from '../../../shared/registers/encode-image.ts'
+import type { ParameterSchema } from '../../../shared/registers/parameter-schema.ts'
 import { DomainError } from '../../http/errors.ts'
-import { differencesFound } from './prove-image.ts'
 import { sha256 } from '../checks/resolve-joint.ts'
 import type { Content } from '../reviews/content-of.ts'
+import { breathe } from './breathe.ts'
+import { differencesFound } from './prove-image.ts'
 
 /** The bytes for each board of a release, proven by the second decoder. */
 export interface PreparedJoint {
   joint: string
-  image: Uint8Array
+  schema: ParameterSchema
+  encoded: EncodedImage
   sha256: string
 }
 
@@ -16,14 +19,17 @@ export interface PreparedJoint {
  *
  * @throws DomainError verification-failed naming the joint, when the two ways of reading the bytes differ
  */
-export function prepareRelease(content: Content, sequence: number): PreparedJoint[] {
-  return [...content.joints].map(([joint, resolved]) => {
-    const given = Object.fromEntries(resolved.values.map((v) => [v.name, v.value]))
-    const encoded = encodeImage(resolved.schema, given, { release: sequence })
+export async function prepareJoints(content: Content, sequence: number): Promise<PreparedJoint[]> {
+  const prepared: PreparedJoint[] = []
+  for (const [joint, { schema, values }] of content.joints) {
+    const given = Object.fromEntries(values.map((v) => [v.name, v.value]))
+    const encoded = encodeImage(schema, given, { release: sequence })
     if (encoded.kind === 'refused') throw new DomainError('verification-failed', `${joint} could not be encoded for sequence number ${sequence}: ${encoded.problems[0].message} Nothing was released.`)
     const document = content.schemaDocuments[content.set.joints[joint].firmware]
     const found = differencesFound(document, encoded.image, given, sequence)
     if (found.length > 0) throw new DomainError('verification-failed', `The second decoder reads other values from the image of ${joint}: ${found[0]} Nothing was released; report this before anything is flashed.`)
-    return { joint, image: encoded.image, sha256: sha256(encoded.image) }
-  })
+    prepared.push({ joint, schema, encoded, sha256: sha256(encoded.image) })
+    await breathe()
+  }
+  return prepared
 }

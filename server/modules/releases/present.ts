@@ -1,12 +1,17 @@
 import type { EntityManager } from '@mikro-orm/core'
+import type { Allowed } from '../../../shared/contract/people.ts'
 import type { ReleaseJointView, ReleaseSummary, ReleaseView } from '../../../shared/contract/releases.ts'
 import { Change } from '../changes/change.entity.ts'
 import { presentSignature } from '../changes/present.ts'
+import { versionsNamed } from '../firmware/firmware-authors.ts'
+import { firmwareName } from '../firmware/firmware-version.entity.ts'
 import type { HeldRole } from '../people/permissions.ts'
 import { Signature } from '../reviews/signature.entity.ts'
 import { mayDownload, mayWithdraw } from './permissions.ts'
 import { ReleaseJoint } from './release-joint.entity.ts'
+import { ReleaseKit } from './release-kit.entity.ts'
 import { Release } from './release.entity.ts'
+import { expiredAt, standingConcessions } from './standing-concessions.ts'
 import { Withdrawal } from './withdrawal.entity.ts'
 
 /** Newest of its machine and not withdrawn: current; a withdrawal brings no older one back. */
@@ -30,7 +35,16 @@ export async function presentReleases(em: EntityManager, releases: readonly Rele
   }))
 }
 
-export async function presentRelease(em: EntityManager, release: Release, held: readonly HeldRole[]): Promise<ReleaseView> {
+/** Whether somebody may download, all told: by role and state, and by what the release stands on. */
+async function mayTake(em: EntityManager, release: Release, held: readonly HeldRole[], state: ReleaseSummary['state'], now: Date): Promise<Allowed> {
+  const role = mayDownload(release.machine.key, held, state)
+  if (!role.allowed) return role
+  await em.populate(release, ['content'] as never)
+  const [expired] = expiredAt(standingConcessions(release), now)
+  return expired ? { allowed: false, why: `The concession for ${expired.characteristic} held until ${expired.until}; it stops the downloads until it is renewed.` } : role
+}
+
+export async function presentRelease(em: EntityManager, release: Release, held: readonly HeldRole[], now: Date): Promise<ReleaseView> {
   const [summary] = await presentReleases(em, [release])
   const rows = await em.find(ReleaseJoint, { release }, { populate: ['joint', 'revision', 'image'] })
   const [before] = await em.find(Release, { machine: release.machine, sequence: { $lt: release.sequence } }, { orderBy: { sequence: 'desc' }, limit: 1, fields: ['id'] })
@@ -38,6 +52,8 @@ export async function presentRelease(em: EntityManager, release: Release, held: 
   const change = await em.findOneOrFail(Change, { machine: release.machine, number: release.changeNumber })
   const signatures = await em.find(Signature, { change, round: change.round }, { orderBy: { id: 'asc' } })
   const withdrawal = await em.findOne(Withdrawal, { release }, { populate: ['person'] })
+  const kit = await em.findOne(ReleaseKit, { release })
+  const versions = await versionsNamed(em, [...new Set(Object.values(release.set.joints).map((j) => j.firmware))])
   const items = rows.map((row): ReleaseJointView => {
     const j = release.set.joints[row.joint.key]
     return { joint: row.joint.key, name: j.name, family: release.set.families[j.family].name, bus: release.set.buses[j.bus].name, address: j.address, firmware: j.firmware, revision: row.revision.number, isNew: !earlier.has(row.revision.id), imageSha256: row.imageSha256, imageBytes: row.image.length }
@@ -53,6 +69,9 @@ export async function presentRelease(em: EntityManager, release: Release, held: 
     concessions: change.concessions,
     items,
     withdrawal: withdrawal ? { reason: withdrawal.reason, by: withdrawal.person.name, at: withdrawal.at.toISOString() } : null,
-    may: { download: mayDownload(release.machine.key, held, summary.state), withdraw: mayWithdraw(release.machine.key, held, summary.state) },
+    kit: kit && { manifestSha256: kit.manifestSha256, keyId: kit.keyId, bytes: kit.zipBytes },
+    firmwareImages: versions.filter((v) => v.imageSha256).map(firmwareName).sort(),
+    needsReason: summary.state === 'superseded',
+    may: { download: await mayTake(em, release, held, summary.state, now), withdraw: mayWithdraw(release.machine.key, held, summary.state) },
   }
 }

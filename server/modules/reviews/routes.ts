@@ -54,11 +54,12 @@ export const reviewRoutes: readonly RouteSpec[] = [
       await mustBeAnother(call.em, change, call.person)
       await mustReenter(call.em, call.person, call.body.password)
       const content = await recompute(call.services, call.em, change, call.body.contentHash)
-      const prepared = await prepare(call.em, change, content)
+      const request = { contentHash: call.body.contentHash, version: call.body.version, stepReason: call.body.stepReason ?? '', person: call.person, now: call.now }
+      const prepared = await prepare(call.services, call.em, change, content, request)
       return call.act(async (em) => {
         const fresh = await again(em, change)
         mustMatch(call, fresh.revision)
-        const release = await releaseChange(em, fresh, prepared, { contentHash: call.body.contentHash, version: call.body.version, stepReason: call.body.stepReason ?? '', person: call.person, now: call.now })
+        const release = await releaseChange(em, fresh, prepared, request)
         return { status: 201, body: { machine: fresh.machine.key, version: release.version } }
       })
     },
