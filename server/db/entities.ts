@@ -10,6 +10,7 @@ import { JointAnalysis } from '../modules/checks/joint-analysis.entity.ts'
 import { FirmwareLine } from '../modules/firmware/firmware-line.entity.ts'
 import { FirmwareVersion } from '../modules/firmware/firmware-version.entity.ts'
 import { WorkplaceKey } from '../modules/keys/workplace-key.entity.ts'
+import { LedgerCheckpoint } from '../modules/ledger/ledger-checkpoint.entity.ts'
 import { LedgerEntry } from '../modules/ledger/ledger-entry.entity.ts'
 import { Bus } from '../modules/machines/bus.entity.ts'
 import { DriveTrain } from '../modules/machines/drive-train.entity.ts'
@@ -30,9 +31,9 @@ import { Withdrawal } from '../modules/releases/withdrawal.entity.ts'
 import { Signature } from '../modules/reviews/signature.entity.ts'
 
 export const entities = [
-  BenchKey, Board, BoardEvent, Bus, Change, ChangeEvent, CheckReport, DraftPoint, DriveTrain, Family, FirmwareLine, FirmwareVersion, Joint, JointAnalysis, LedgerEntry, Link, Machine, Mail,
+  BenchKey, Board, BoardEvent, Bus, Change, ChangeEvent, CheckReport, DraftPoint, DriveTrain, Family, FirmwareLine, FirmwareVersion, Joint, JointAnalysis, LedgerCheckpoint, LedgerEntry, Link, Machine, Mail,
   Person, PolicyVersion, Receipt, Release, ReleaseJoint, ReleaseKit, Revision, RoleGrant, SessionRecord, Signature, Withdrawal, WorkplaceKey,
 ]
 
 /** Rows of these are written once: a flush that alters one is refused, and so is SQL that goes around the flush (triggers). */
-export const immutable = [BoardEvent, ChangeEvent, CheckReport, DraftPoint, DriveTrain, JointAnalysis, LedgerEntry, Release, ReleaseJoint, ReleaseKit, Revision, Signature, Withdrawal, WorkplaceKey]
+export const immutable = [BoardEvent, ChangeEvent, CheckReport, DraftPoint, DriveTrain, JointAnalysis, LedgerCheckpoint, LedgerEntry, Release, ReleaseJoint, ReleaseKit, Revision, Signature, Withdrawal, WorkplaceKey]

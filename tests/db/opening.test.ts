@@ -1,4 +1,5 @@
 import { join } from 'node:path'
+import type { SqlEntityManager } from '@mikro-orm/sqlite'
 import { describe, expect, it } from 'vitest'
 import { DatabaseInUse } from '../../server/db/only-process.ts'
 import { openDatabase, type Orm } from '../../server/db/orm.ts'
@@ -55,17 +56,18 @@ describe('a COMMIT that fails', () => {
     const file = join(aFolder(), 'detent.sqlite')
     const orm = await openDatabase(file)
     const line = (key: string) => `insert into firmware_line (key, name, description, created_at) values ('${key}', 'Line', '', 0)`
-    const failing = orm.em.fork().transactional(async (em) => {
+    const inTransaction = (work: (em: SqlEntityManager) => Promise<unknown>) => orm.em.fork().transactional((em) => work(em as SqlEntityManager))
+    const failing = inTransaction(async (em) => {
       await em.execute('pragma defer_foreign_keys = on')
       await em.execute(line('lost'))
       await em.execute("insert into role_grant (person_id, role, granted_at) values (77, 'observer', 0)")
     })
     // one waits for the connection while the other fails
-    const waiting = orm.em.fork().transactional((em) => em.execute(line('waiting')))
+    const waiting = inTransaction((em) => em.execute(line('waiting')))
     await expect(failing).rejects.toThrow('SQLITE_CONSTRAINT: FOREIGN KEY')
     await waiting
     await sql(orm, line('plain'))
-    await orm.em.fork().transactional((em) => em.execute(line('after')))
+    await inTransaction((em) => em.execute(line('after')))
     await orm.close(true)
     const again = await openDatabase(file)
     expect(await sql(again, 'select key from firmware_line order by id')).toEqual([{ key: 'waiting' }, { key: 'plain' }, { key: 'after' }])

@@ -12,6 +12,17 @@ export interface LedgerExport {
   entries: number
 }
 
+/** Every entry that somebody who holds these roles may read, oldest first, page by page. */
+export async function* entriesOldestFirst(em: EntityManager, held: readonly HeldRole[]): AsyncGenerator<LedgerEntry> {
+  let after = 0
+  for (;;) {
+    const page = await em.fork().find(LedgerEntry, { $and: [readable(held), { sequence: { $gt: after } }] }, { orderBy: { sequence: 'asc' }, limit: pageSize })
+    yield* page
+    if (page.length < pageSize) return
+    after = page[page.length - 1].sequence
+  }
+}
+
 /**
  * The ledger as JSON lines, oldest first, each line in RFC 8785 form.
  *
@@ -19,14 +30,7 @@ export interface LedgerExport {
  * chain without Detent. A reader of some machines gets their entries alone, each provable by itself, the chain with gaps.
  */
 export async function exportLedger(em: EntityManager, held: readonly HeldRole[]): Promise<LedgerExport> {
-  const pages: Buffer[] = []
-  let entries = 0
-  let after = 0
-  for (;;) {
-    const page = await em.fork().find(LedgerEntry, { $and: [readable(held), { sequence: { $gt: after } }] }, { orderBy: { sequence: 'asc' }, limit: pageSize })
-    pages.push(Buffer.from(page.map((entry) => `${canonicalize({ ...covered(entry), hash: entry.hash })}\n`).join('')))
-    entries += page.length
-    if (page.length < pageSize) return { bytes: Buffer.concat(pages), entries }
-    after = page[page.length - 1].sequence
-  }
+  const lines: Buffer[] = []
+  for await (const entry of entriesOldestFirst(em, held)) lines.push(Buffer.from(`${canonicalize({ ...covered(entry), hash: entry.hash })}\n`))
+  return { bytes: Buffer.concat(lines), entries: lines.length }
 }

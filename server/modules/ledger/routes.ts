@@ -1,8 +1,17 @@
+import { HeldCheckpoints } from '../../../shared/contract/ledger.ts'
+import { Nothing } from '../../../shared/contract/people.ts'
 import { route, type RouteSpec } from '../../http/route.ts'
+import { exportCsv } from './export-csv.ts'
 import { exportLedger } from './export-ledger.ts'
 import { readBefore, readWord } from './page-query.ts'
+import { exportCheckpoints, readCheckpoints } from './read-checkpoints.ts'
 import { readLedger } from './read-ledger.ts'
+import { signCheckpointNow } from './sign-checkpoint-now.ts'
+import { verifyCheckpointFile, verifyOwnCheckpoints } from './verify-checkpoints.ts'
 import { verifyLedger } from './verify-ledger.ts'
+
+const jsonLines = 'application/jsonl; charset=utf-8'
+const day = (now: Date) => now.toISOString().slice(0, 10)
 
 export const ledgerRoutes: readonly RouteSpec[] = [
   route({
@@ -20,7 +29,44 @@ export const ledgerRoutes: readonly RouteSpec[] = [
     access: 'read',
     async handle({ em, held, now }) {
       const { bytes } = await exportLedger(em, held)
-      return { bytes, type: 'application/jsonl; charset=utf-8', fileName: `detent-ledger-${now.toISOString().slice(0, 10)}.jsonl` }
+      return { bytes, type: jsonLines, fileName: `detent-ledger-${day(now)}.jsonl` }
     },
+  }),
+  route({
+    method: 'get',
+    path: '/ledger/export.csv',
+    summary: 'export the ledger as a table',
+    access: 'read',
+    handle: async ({ em, held, now }) => ({ bytes: await exportCsv(em, held), type: 'text/csv; charset=utf-8', fileName: `detent-ledger-${day(now)}.csv` }),
+  }),
+  route({ method: 'get', path: '/ledger/checkpoints', summary: 'read the checkpoints of the ledger', access: 'read', handle: async ({ em, held }) => ({ body: await readCheckpoints(em, held) }) }),
+  route({
+    method: 'get',
+    path: '/ledger/checkpoints.jsonl',
+    summary: 'export the checkpoints of the ledger',
+    access: 'read',
+    handle: async ({ em, now }) => ({ bytes: await exportCheckpoints(em), type: jsonLines, fileName: `detent-checkpoints-${day(now)}.jsonl` }),
+  }),
+  route({
+    method: 'post',
+    path: '/ledger/checkpoints',
+    summary: 'sign a checkpoint of the ledger',
+    access: 'keep backups',
+    body: Nothing,
+    handle: (call) =>
+      call.act(async (em) => {
+        await signCheckpointNow(em, { key: call.services.keys.current, person: call.person, now: call.now })
+        await em.flush()
+        return { status: 201, body: await readCheckpoints(em, call.held) }
+      }),
+  }),
+  route({ method: 'get', path: '/ledger/checkpoints/verify', summary: 'hold its own checkpoints against the ledger', access: 'read', handle: async ({ em }) => ({ body: await verifyOwnCheckpoints(em) }) }),
+  route({
+    method: 'post',
+    path: '/ledger/checkpoints/verify',
+    summary: 'hold a file of checkpoints against the ledger',
+    access: 'read',
+    body: HeldCheckpoints,
+    handle: async ({ em, body }) => ({ body: await verifyCheckpointFile(em, body.checkpoints) }),
   }),
 ]
