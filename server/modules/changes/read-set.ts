@@ -2,6 +2,7 @@ import { MachineSet } from '../../../shared/parameters/machine-set.ts'
 import { placeOf, readText, withNumericAddresses, type TextProblem } from '../../../shared/parameters/set-text.ts'
 import { DomainError } from '../../http/errors.ts'
 import { problemsOf } from '../../http/validate.ts'
+import { Recent } from '../../jobs/recent.ts'
 
 export type ReadSet = { ok: true; set: MachineSet } | { ok: false; problems: TextProblem[] }
 
@@ -30,10 +31,18 @@ export function readSet(text: string): ReadSet {
   return { ok: false, problems: problems.map((p) => ({ ...placeOf(text, offsetOf(p.pointer)), pointer: p.pointer, message: p.detail })) }
 }
 
+/** Sets by their text: one draft is read many times over, and reading a whole machine takes longer than most of what is done with it. Nobody alters a set that was read. */
+const known = new Recent<MachineSet>(40)
+
 /** @throws DomainError content-invalid with line, column and pointer of each problem */
 export function setOf(text: string): MachineSet {
+  const before = known.get(text)
+  if (before) return before
   const read = readSet(text)
-  if (read.ok) return read.set
+  if (read.ok) {
+    known.set(text, read.set)
+    return read.set
+  }
   throw new DomainError('content-invalid', `The text can't be read as a machine set: ${read.problems.length === 1 ? 'one place' : `${read.problems.length} places`} to correct. The last saved state stands; what you typed is still with you.`, {
     fields: read.problems.map((p) => ({ pointer: p.pointer, detail: `line ${p.line}, column ${p.column}: ${p.message}` })),
     extra: { problems: read.problems },

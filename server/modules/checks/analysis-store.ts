@@ -14,8 +14,7 @@ export const analysisStore = (orm: Orm, now: () => Date): ResultStore => ({
     return found
   },
   async save({ hash, kind, outcome }) {
-    const em = orm.em.fork()
     // Two requests may have computed the same at once: equal inputs, equal results, the first one stays.
-    await em.getConnection().execute('insert or ignore into joint_analysis (hash, kind, outcome, created_at) values (?, ?, ?, ?)', [hash, kind, JSON.stringify(outcome), now().getTime()])
+    await orm.em.fork().upsert(JointAnalysis, { hash, kind, outcome, createdAt: now() }, { onConflictFields: ['hash'], onConflictAction: 'ignore', disableIdentityMap: true })
   },
 })

@@ -1,5 +1,5 @@
 import type { EntityManager } from '@mikro-orm/core'
-import { emptySet, type MachineSet } from '../../../shared/parameters/machine-set.ts'
+import { emptySet } from '../../../shared/parameters/machine-set.ts'
 import { MODEL_VERSION } from '../../control/model-version.ts'
 import { Recent } from '../../jobs/recent.ts'
 import type { Change } from '../changes/change.entity.ts'
@@ -10,20 +10,9 @@ import type { CheckInputs } from './check-inputs.ts'
 import { inputsHash } from './inputs-hash.ts'
 import { prepareCheck, type PreparedCheck } from './prepare-check.ts'
 
-/** Sets by their text: a draft is read again at every look, and reading takes longer than checking. Nobody alters a set that was read. */
-const read = new Recent<MachineSet>(40)
-
-function candidateOf(change: Change): MachineSet {
-  const before = read.get(change.text)
-  if (before) return before
-  const set = setOf(change.text)
-  read.set(change.text, set)
-  return set
-}
-
 /** Everything the check of a change depends on, as it stands now. */
 export async function gatherInputs(em: EntityManager, change: Change): Promise<CheckInputs> {
-  const candidate = candidateOf(change)
+  const candidate = setOf(change.text)
   const base = change.baseRelease?.set ?? emptySet()
   const policy = await policyInForce(em, change.machine)
   const loaded = await schemasFor(em, { ...candidate, joints: { ...prefixed(base.joints), ...candidate.joints } })
