@@ -5,8 +5,12 @@ export interface RootWorkspace {
   readonly scaled: Float64Array
   readonly deflated: Float64Array
   readonly spare: Float64Array
+  readonly steps: Float64Array
   /** p and p′ at the last point of Newton's iteration. */
   readonly value: { re: number; im: number; slopeRe: number; slopeIm: number }
+  readonly step: { re: number; im: number }
+  /** Roots expected to be small: the delays of the window. */
+  small: number
   /** The root found. */
   readonly root: { re: number; im: number }
 }
@@ -16,7 +20,10 @@ export function rootWorkspace(degree: number): RootWorkspace {
     scaled: new Float64Array(degree + 1),
     deflated: new Float64Array(degree + 1),
     spare: new Float64Array(degree + 1),
+    steps: new Float64Array(ANGLES + 1),
     value: { re: 0, im: 0, slopeRe: 0, slopeIm: 0 },
+    step: { re: 0, im: 0 },
+    small: 0,
     root: { re: 0, im: 0 },
   }
 }
@@ -24,6 +31,7 @@ export function rootWorkspace(degree: number): RootWorkspace {
 const NEWTON_STEPS = 40
 const SHELL = 1.02
 const ANGLES = 64
+const STARTS = 6
 
 /**
  * Root of largest modulus of a real monic polynomial, with proof that no other is larger.
@@ -75,15 +83,30 @@ export function evaluatePolynomial(c: Float64Array, degree: number, re: number, 
   value.slopeIm = di
 }
 
+/**
+ * Newton's step for p(z)/z^few: p/(p′ − few·p/z). Many small roots (the window's) pull p's own step towards 0 and hide the large
+ * ones; divided by z^few their pull is gone, and the roots are the same.
+ */
+function newtonStep(work: RootWorkspace, re: number, im: number): void {
+  const { value, step } = work
+  const z = re * re + im * im
+  const few = z > 0 ? work.small / z : 0
+  // few·p/z = small·p·z̄/|z|²
+  const sr = value.slopeRe - few * (value.re * re + value.im * im)
+  const si = value.slopeIm - few * (value.im * re - value.re * im)
+  const size = sr * sr + si * si
+  step.re = (value.re * sr + value.im * si) / size
+  step.im = (value.im * sr - value.re * si) / size
+}
+
 function newton(c: Float64Array, degree: number, re: number, im: number, work: RootWorkspace): boolean {
   const { value, root } = work
   let last = Infinity
   for (let step = 0; step < NEWTON_STEPS; step++) {
     evaluatePolynomial(c, degree, re, im, value)
-    const size = value.slopeRe * value.slopeRe + value.slopeIm * value.slopeIm
-    if (!(size > 0)) return false
-    const dr = (value.re * value.slopeRe + value.im * value.slopeIm) / size
-    const di = (value.im * value.slopeRe - value.re * value.slopeIm) / size
+    newtonStep(work, re, im)
+    const dr = work.step.re
+    const di = work.step.im
     re -= dr
     im -= di
     const moved = Math.abs(dr) + Math.abs(di)
@@ -165,21 +188,24 @@ function searchCircle(c: Float64Array, degree: number, noise: number, work: Root
   }
   if (!(low > 0 && high > 0)) return false
   const at = Math.sqrt(low * high)
-  let before = Infinity
-  let here = Infinity
-  for (let k = 0; k <= ANGLES + 1; k++) {
-    let next = Infinity
-    if (k <= ANGLES) {
-      const angle = (Math.PI * k) / ANGLES
-      evaluatePolynomial(c, degree, at * Math.cos(angle), k === ANGLES || k === 0 ? 0 : at * Math.sin(angle), value)
-      next = Math.hypot(value.re, value.im)
-    }
-    if (k > 0 && here <= before && here <= next) {
-      const angle = (Math.PI * (k - 1)) / ANGLES
-      if (tryFrom(c, degree, noise, at * Math.cos(angle), at * Math.sin(angle), work)) return true
-    }
-    before = here
-    here = next
+  // Newton's step from a point is about its distance from the nearest root: starts on the circle, shortest step first.
+  const { steps } = work
+  for (let k = 0; k <= ANGLES; k++) {
+    const angle = (Math.PI * k) / ANGLES
+    const re = at * Math.cos(angle)
+    const im = k === ANGLES || k === 0 ? 0 : at * Math.sin(angle)
+    evaluatePolynomial(c, degree, re, im, value)
+    newtonStep(work, re, im)
+    steps[k] = Math.hypot(work.step.re, work.step.im)
+  }
+  const starts: number[] = []
+  for (let k = 0; k <= ANGLES; k++) {
+    if ((k === 0 || steps[k - 1] >= steps[k]) && (k === ANGLES || steps[k + 1] >= steps[k])) starts.push(k)
+  }
+  starts.sort((a, b) => steps[a] - steps[b])
+  for (const k of starts.slice(0, STARTS)) {
+    const angle = (Math.PI * k) / ANGLES
+    if (tryFrom(c, degree, noise, at * Math.cos(angle), k === 0 || k === ANGLES ? 0 : at * Math.sin(angle), work)) return true
   }
   return false
 }

@@ -121,7 +121,7 @@ function engineFor(joint: SampledJoint, steps: OuterSteps, closure: 'velocity' |
   if (!engine) {
     if (engines.size >= ENGINES_KEPT) engines.delete(engines.keys().next().value as string)
     const characteristic = new Characteristic(steps.q, steps.start.length, W, position, integrators)
-    engine = { characteristic, lifted: emptyLift(steps.q, steps.start.length), work: rootWorkspace(characteristic.degree) }
+    engine = { characteristic, lifted: emptyLift(steps.q, steps.start.length), work: { ...rootWorkspace(characteristic.degree), small: W } }
     engines.set(key, engine)
   }
   return engine
