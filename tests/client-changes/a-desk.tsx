@@ -1,6 +1,7 @@
 import { QueryClient, QueryClientProvider } from '@tanstack/react-query'
 import { cleanup, configure, render } from '@testing-library/react'
-import { Suspense } from 'react'
+import { Component, Suspense } from 'react'
+import type { ReactNode } from 'react'
 import { MemoryRouter, Route, Routes, useLocation } from 'react-router'
 import { afterEach, vi } from 'vitest'
 import type { Me } from '../../shared/contract/people.ts'
@@ -24,8 +25,14 @@ export interface Asked {
   ifMatch: string | null
 }
 
+interface Answer {
+  status?: number
+  body: unknown
+  headers?: Record<string, string>
+}
+
 /** An answer: JSON with 200, or a refusal as a problem document. */
-export type Reply = { status?: number; body: unknown } | ((asked: Asked) => { status?: number; body: unknown })
+export type Reply = Answer | ((asked: Asked) => Answer)
 
 export const refusal = (status: number, code: string, detail: string, extra: object = {}): Reply => ({ status, body: { type: `/problems/${code}`, title: code, status, detail, errors: [], ...extra } })
 
@@ -54,8 +61,8 @@ export function anApi(me: Me, replies: Record<string, Reply>) {
     const one: Asked = { method: init.method ?? 'GET', path, body: typeof init.body === 'string' ? JSON.parse(init.body) : undefined, ifMatch: new Headers(init.headers).get('If-Match') }
     asked.push(one)
     const reply = table[`${one.method} ${path}`] ?? table[`${one.method} ${path.split('?')[0]}`]
-    const { status = 200, body } = reply === undefined ? { status: 404, body: { type: '/problems/not-found', title: 'Not found', detail: `nothing at ${path}`, errors: [] } } : typeof reply === 'function' ? reply(one) : reply
-    return Promise.resolve(new Response(JSON.stringify(body), { status, headers: { 'Content-Type': status < 400 ? 'application/json' : 'application/problem+json' } }))
+    const { status = 200, body, headers = {} }: Answer = reply === undefined ? { status: 404, body: { type: '/problems/not-found', title: 'Not found', detail: `nothing at ${path}`, errors: [] } } : typeof reply === 'function' ? reply(one) : reply
+    return Promise.resolve(new Response(JSON.stringify(body), { status, headers: { 'Content-Type': status < 400 ? 'application/json' : 'application/problem+json', ...headers } }))
   })
   return { asked, table, acts: () => asked.filter((a) => a.method !== 'GET') }
 }
@@ -63,6 +70,15 @@ export function anApi(me: Me, replies: Record<string, Reply>) {
 let where = ''
 /** The address that the page shows now. */
 export const address = () => where
+
+/** Stands where the router's own error page would. */
+class Failed extends Component<{ children: ReactNode }, { failed: boolean }> {
+  override state = { failed: false }
+  static getDerivedStateFromError = () => ({ failed: true })
+  override render() {
+    return this.state.failed ? 'the page failed' : this.props.children
+  }
+}
 
 function Address() {
   const { pathname, search } = useLocation()
@@ -78,6 +94,7 @@ export function open(at: string) {
       <ToastHost>
         <MemoryRouter initialEntries={[at]}>
           <Address />
+          <Failed>
           <Suspense fallback="waiting">
             <Routes>
               <Route path="/" element={<Desk />} />
@@ -89,6 +106,7 @@ export function open(at: string) {
               <Route path="/machines/:machine/releases/:version" element={<Release />} />
             </Routes>
           </Suspense>
+          </Failed>
         </MemoryRouter>
       </ToastHost>
     </QueryClientProvider>,

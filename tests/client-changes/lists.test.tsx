@@ -1,7 +1,7 @@
 // @vitest-environment jsdom
 import '../components/setup-dom.ts'
 import { fireEvent, screen, waitFor, within } from '@testing-library/react'
-import { describe, expect, it } from 'vitest'
+import { describe, expect, it, vi } from 'vitest'
 import type { ChangeSummary } from '../../shared/contract/changes.ts'
 import type { ReleaseSummary, ReleaseView } from '../../shared/contract/releases.ts'
 import { railOf } from '../../src/features/changes/rail-of.ts'
@@ -164,6 +164,44 @@ describe('a release', () => {
     const bench = await screen.findByRole('region', { name: 'for the bench' })
     fireEvent.change(within(bench).getByLabelText('Joint'), { target: { value: 'winch' } })
     expect(within(bench).getByTitle(release.items[1].imageSha256)).toBeTruthy()
+  })
+
+  it('offers the signed kit with the hash of its manifest', async () => {
+    releaseApi({ kit: { manifestSha256: '7'.repeat(64), keyId: 'k', bytes: 412_000 } })
+    open('/machines/dunlin/releases/1.7.0')
+    const bench = await screen.findByRole('region', { name: 'for the bench' })
+    expect(within(bench).getByRole('button', { name: 'Download the kit, 2 joints' })).toBeTruthy()
+    expect(within(bench).getByTitle('7'.repeat(64))).toBeTruthy()
+    expect(bench.textContent).toContain('412 kB')
+  })
+
+  it('fetches a file, proves its bytes and says under which hash it was saved', async () => {
+    const { table } = releaseApi()
+    // SHA-256 of the seven bytes "[1,2,3]", by sha256sum of GNU coreutils.
+    const sha256 = 'a615eeaee21de5179de080de8c3052c8da901138406ba71c38c032845f7d54f4'
+    table['GET /machines/dunlin/releases/1.7.0/joints/l1-knee/image.bin'] = { body: [1, 2, 3], headers: { 'X-Detent-SHA256': sha256, 'Content-Disposition': 'attachment; filename="dunlin-1.7.0-l1-knee.bin"' } }
+    vi.stubGlobal('URL', Object.assign(URL, { createObjectURL: () => 'blob:x', revokeObjectURL: () => {} }))
+    const saved = vi.spyOn(HTMLAnchorElement.prototype, 'click').mockImplementation(() => {})
+    open('/machines/dunlin/releases/1.7.0')
+    fireEvent.click(await screen.findByRole('button', { name: 'Download Raw image of L1 knee' }))
+    expect(await screen.findByText('dunlin-1.7.0-l1-knee.bin')).toBeTruthy()
+    expect(screen.getByTitle(sha256)).toBeTruthy()
+    table['GET /machines/dunlin/releases/1.7.0/joints/l1-knee/image.hex'] = { body: [1], headers: { 'X-Detent-SHA256': sha256 } }
+    fireEvent.click(screen.getByRole('button', { name: 'Download Intel HEX of L1 knee' }))
+    expect(await screen.findByText('The bytes arrived altered')).toBeTruthy()
+    expect(saved).toHaveBeenCalledTimes(1)
+    saved.mockRestore()
+  })
+
+  it('asks why a superseded release is needed, and hands the reason along', async () => {
+    const { asked } = releaseApi({ state: 'superseded', needsReason: true })
+    open('/machines/dunlin/releases/1.7.0')
+    const take = await screen.findByRole('button', { name: 'Download Intel HEX of L1 knee' })
+    expect(take.getAttribute('aria-description')).toBe('Write why you need a superseded release first.')
+    expect(screen.queryByRole('link', { name: /download/ })).toBeNull()
+    fireEvent.change(screen.getByLabelText('Why a superseded release is needed'), { target: { value: 'compare a bench log' } })
+    fireEvent.click(take)
+    await waitFor(() => expect(asked.at(-1)?.path).toBe('/machines/dunlin/releases/1.7.0/joints/l1-knee/image.hex?reason=compare+a+bench+log'))
   })
 
   it('gives the reason instead of files to who may not download', async () => {

@@ -1,10 +1,24 @@
-import { ApiProblem } from '../../lib/api-client.ts'
+import { ApiProblem, withQuery } from '../../lib/api-client.ts'
 import { releasePath } from './queries.ts'
 
-export type ImageFormat = 'bin' | 'hex'
+/** Files of a joint, those a bench uses first. */
+export const fileForms = [
+  { format: 'bin', words: 'Raw image', ending: '.bin' },
+  { format: 'hex', words: 'Intel HEX', ending: '.hex' },
+  { format: 'srec', words: 'S-record', ending: '.srec' },
+  { format: 'write-list', words: 'Write list', ending: '.csv' },
+  { format: 'h', words: 'C header', ending: '.h' },
+  { format: 'csv', words: 'Register table', ending: '.csv' },
+  { format: 'json', words: 'Record', ending: '.json' },
+  { format: 'systemrdl', words: 'SystemRDL', ending: '.rdl' },
+] as const
+export type FileForm = (typeof fileForms)[number]
 
-/** Address of a joint's file, for a link. */
-export const imageHref = (machine: string, version: string, joint: string, format: ImageFormat) => `/api${releasePath(machine, version)}/joints/${encodeURIComponent(joint)}/image.${format}`
+/** Address of a joint's file; a superseded release is not fetched without a reason. */
+export const imageHref = (machine: string, version: string, joint: string, format: FileForm['format'], reason?: string) =>
+  withQuery(`/api${releasePath(machine, version)}/joints/${encodeURIComponent(joint)}/image.${format}`, { reason })
+
+export const kitHref = (machine: string, version: string, reason?: string) => withQuery(`/api${releasePath(machine, version)}/kit.zip`, { reason })
 
 export interface TakenFile {
   name: string
@@ -19,7 +33,7 @@ const nameOf = (response: Response, otherwise: string) => {
   return encoded ? decodeURIComponent(encoded) : (/filename="([^"]+)"/.exec(header)?.[1] ?? otherwise)
 }
 
-const hexOf = (buffer: ArrayBuffer) => [...new Uint8Array(buffer)].map((b) => b.toString(16).padStart(2, '0')).join('')
+const hexOf = (buffer: ArrayBuffer) => Array.from(new Uint8Array(buffer), (b) => b.toString(16).padStart(2, '0')).join('')
 
 /**
  * Fetches a file, proves its bytes against the hash the server states, and hands it to the browser to save.
@@ -33,7 +47,7 @@ export async function takeFile(href: string, otherwise: string): Promise<TakenFi
     const body = (await response.json().catch(() => ({}))) as { title?: string; detail?: string; type?: string }
     throw new ApiProblem({ code: String(body.type ?? 'unexpected').split('/').at(-1)!, status: response.status, title: body.title ?? 'Nothing was downloaded', detail: body.detail ?? `The server answered ${response.status}. Nothing was downloaded.` })
   }
-  const bytes = await response.arrayBuffer()
+  const bytes = new Uint8Array(await response.arrayBuffer())
   const sha256 = hexOf(await crypto.subtle.digest('SHA-256', bytes))
   const stated = response.headers.get('X-Detent-SHA256')
   if (stated !== null && stated.toLowerCase() !== sha256)

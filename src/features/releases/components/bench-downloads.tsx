@@ -1,5 +1,6 @@
 import { useMutation } from '@tanstack/react-query'
 import { useState } from 'react'
+import type { ReactNode } from 'react'
 import type { ReleaseView } from '../../../../shared/contract/releases.ts'
 import { ProblemPanel } from '../../../components/problem/problem-panel.tsx'
 import { Button } from '../../../components/ui/button.tsx'
@@ -7,19 +8,18 @@ import { Caution } from '../../../components/ui/caution.tsx'
 import { Hash } from '../../../components/ui/hash.tsx'
 import { SectionHeading } from '../../../components/ui/section-heading.tsx'
 import { Select } from '../../../components/ui/select.tsx'
-import { formatBytes, formatHex } from '../../../lib/format.ts'
-import { imageHref, takeFile, type ImageFormat } from '../take-file.ts'
+import { TextField } from '../../../components/ui/text-field.tsx'
+import { count, formatBytes, formatHex } from '../../../lib/format.ts'
+import { fileForms, imageHref, kitHref, takeFile } from '../take-file.ts'
 
-const formats: readonly { format: ImageFormat; words: string }[] = [
-  { format: 'bin', words: 'Raw image' },
-  { format: 'hex', words: 'Intel HEX' },
-]
-
-/** A joint's files with their hashes, and the caution that goes with every download. */
+/** A joint's files and the kit of all of them, with their hashes, and the caution that goes with every download. */
 export function BenchDownloads({ release }: { release: ReleaseView }) {
   const [joint, setJoint] = useState(release.items[0]?.joint ?? '')
+  const [reason, setReason] = useState('')
   const item = release.items.find((i) => i.joint === joint)
   const { download } = release.may
+  const missing = release.needsReason && reason.trim() === '' ? 'Write why you need a superseded release first.' : null
+  const why = reason.trim() || undefined
   return (
     <section aria-label="for the bench" className="no-print">
       <SectionHeading>For the bench</SectionHeading>
@@ -28,9 +28,23 @@ export function BenchDownloads({ release }: { release: ReleaseView }) {
       ) : (
         <>
           {release.state !== 'current' && (
-            <p className={`mt-2 text-13 ${release.state === 'withdrawn' ? 'text-oxide' : 'text-plum'}`}>{release.state === 'withdrawn' ? 'This release is withdrawn: its files are for analysis, not for a board.' : 'This release is superseded: a newer one exists.'}</p>
+            <p className={`mt-2 text-13 ${release.state === 'withdrawn' ? 'text-oxide' : 'text-plum'}`}>{release.state === 'withdrawn' ? 'This release is withdrawn: its files are for analysis, not for a board.' : 'This release is superseded: a newer one exists, and its files are marked so.'}</p>
           )}
-          <Select className="mt-2" label="Joint" value={joint} onChange={setJoint} options={release.items.map((i) => ({ value: i.joint, label: `${i.name}, ${i.bus} ${formatHex(i.address)}, r${i.revision}` }))} />
+          {release.needsReason && <TextField className="mt-2" label="Why a superseded release is needed" value={reason} onChange={setReason} maxLength={2000} help="It stands in the ledger beside each download." />}
+          {release.kit && (
+            <div className="mt-2">
+              <Take label={`Download the kit, ${count(release.items.length, 'joint')}`} aside={formatBytes(release.kit.bytes)} href={kitHref(release.machine, release.version, why)} name={`${release.machine}-${release.version}.zip`} missing={missing} primary />
+              <p className="mt-1 text-12 text-ink-2">
+                One .zip, the same bytes every time; its manifest is signed with Ed25519, and the kit says how to verify it with openssl alone.
+                {release.firmwareImages.length > 0 && <> With the firmware of {release.firmwareImages.join(', ')}.</>}
+              </p>
+              <p className="mt-1 text-12 text-ink-2">
+                SHA-256 of the manifest
+                <Hash hash={release.kit.manifestSha256} className="block !text-ink [overflow-wrap:anywhere]" />
+              </p>
+            </div>
+          )}
+          <Select className="mt-3" label="Joint" value={joint} onChange={setJoint} options={release.items.map((i) => ({ value: i.joint, label: `${i.name}, ${i.bus} ${formatHex(i.address)}, r${i.revision}` }))} />
           {item && (
             <>
               <p className="mt-2 text-12 text-ink-2">
@@ -38,8 +52,22 @@ export function BenchDownloads({ release }: { release: ReleaseView }) {
                 <Hash hash={item.imageSha256} className="block !text-ink [overflow-wrap:anywhere]" />
               </p>
               <ul className="mt-2">
-                {formats.map((f) => (
-                  <FileRow key={`${joint} ${f.format}`} release={release} joint={joint} name={item.name} {...f} />
+                {fileForms.map((f) => (
+                  <li key={`${joint} ${f.format}`} className="border-b border-hairline py-[5px]">
+                    <Take
+                      label="Download"
+                      said={`Download ${f.words} of ${item.name}`}
+                      before={
+                        <>
+                          <span className="flex-1">{f.words}</span>
+                          <span className="num text-13 text-ink-2">{f.ending}</span>
+                        </>
+                      }
+                      href={imageHref(release.machine, release.version, joint, f.format, why)}
+                      name={`${release.machine}-${release.version}-${joint}${f.ending}`}
+                      missing={missing}
+                    />
+                  </li>
                 ))}
               </ul>
             </>
@@ -51,16 +79,31 @@ export function BenchDownloads({ release }: { release: ReleaseView }) {
   )
 }
 
-function FileRow({ release, joint, name, format, words }: { release: ReleaseView; joint: string; name: string; format: ImageFormat; words: string }) {
-  const take = useMutation({ mutationFn: () => takeFile(imageHref(release.machine, release.version, joint, format), `${release.machine}-${release.version}-${joint}.${format}`) })
+interface TakeProps {
+  label: string
+  /** the whole label where the short one does not say what is fetched */
+  said?: string
+  before?: ReactNode
+  aside?: ReactNode
+  href: string
+  /** file name when the server gives none */
+  name: string
+  /** why it can't be fetched yet */
+  missing: string | null
+  primary?: boolean
+}
+
+/** Fetches one file, proves its bytes, saves it, and says under which name and hash. */
+function Take({ label, said, before, aside, href, name, missing, primary = false }: TakeProps) {
+  const take = useMutation({ mutationFn: () => takeFile(href, name) })
   return (
-    <li className="border-b border-hairline py-2">
+    <>
       <div className="flex items-center gap-3">
-        <span className="flex-1">{words}</span>
-        <span className="num text-13 text-ink-2">.{format}</span>
-        <Button small pending={take.isPending} onClick={() => take.mutate()} aria-label={`Download .${format} of ${name}`}>
-          Download
+        {before}
+        <Button small={!primary} kind={primary ? 'primary' : 'plain'} className={primary ? 'flex-1' : ''} pending={take.isPending} unavailable={missing} onClick={() => take.mutate()} aria-label={said}>
+          {label}
         </Button>
+        {aside && <span className="num text-13 text-ink-2">{aside}</span>}
       </div>
       <div role="status">
         {take.data && (
@@ -71,6 +114,6 @@ function FileRow({ release, joint, name, format, words }: { release: ReleaseView
         )}
       </div>
       <ProblemPanel className="mt-1" problem={take.error} />
-    </li>
+    </>
   )
 }

@@ -6,7 +6,8 @@ import { imageHref } from '../take-file.ts'
 
 /** Every joint of the release: where it sits, which revision, which firmware, the image's hash and its files. */
 export function ReleaseItems({ release }: { release: ReleaseView }) {
-  const may = release.may.download.allowed
+  // Superseded files need a reason, which is asked beside the sheet.
+  const may = release.may.download.allowed && !release.needsReason
   const item = new Map(release.items.map((r, i) => [r.joint, i + 1]))
   const columns: Column<ReleaseJointView>[] = [
     { key: 'item', head: 'Item', align: 'end', width: '52px', cell: (r) => <span className="num text-ink-2">{item.get(r.joint)}</span>, sortBy: (r) => item.get(r.joint) ?? 0 },
