@@ -5,6 +5,8 @@ import { Board } from '../modules/boards/board.entity.ts'
 import { ChangeEvent } from '../modules/changes/change-event.entity.ts'
 import { Change } from '../modules/changes/change.entity.ts'
 import { DraftPoint } from '../modules/changes/draft-point.entity.ts'
+import { CommentAnswer } from '../modules/comments/comment-answer.entity.ts'
+import { Comment } from '../modules/comments/comment.entity.ts'
 import { CheckReport } from '../modules/checks/check-report.entity.ts'
 import { JointAnalysis } from '../modules/checks/joint-analysis.entity.ts'
 import { FirmwareLine } from '../modules/firmware/firmware-line.entity.ts'
@@ -28,12 +30,13 @@ import { ReleaseKit } from '../modules/releases/release-kit.entity.ts'
 import { Release } from '../modules/releases/release.entity.ts'
 import { Revision } from '../modules/releases/revision.entity.ts'
 import { Withdrawal } from '../modules/releases/withdrawal.entity.ts'
+import { ReadMark } from '../modules/reviews/read-mark.entity.ts'
 import { Signature } from '../modules/reviews/signature.entity.ts'
 
 export const entities = [
-  BenchKey, Board, BoardEvent, Bus, Change, ChangeEvent, CheckReport, DraftPoint, DriveTrain, Family, FirmwareLine, FirmwareVersion, Joint, JointAnalysis, LedgerCheckpoint, LedgerEntry, Link, Machine, Mail,
-  Person, PolicyVersion, Receipt, Release, ReleaseJoint, ReleaseKit, Revision, RoleGrant, SessionRecord, Signature, Withdrawal, WorkplaceKey,
+  BenchKey, Board, BoardEvent, Bus, Change, ChangeEvent, CheckReport, Comment, CommentAnswer, DraftPoint, DriveTrain, Family, FirmwareLine, FirmwareVersion, Joint, JointAnalysis, LedgerCheckpoint, LedgerEntry, Link, Machine, Mail,
+  Person, PolicyVersion, ReadMark, Receipt, Release, ReleaseJoint, ReleaseKit, Revision, RoleGrant, SessionRecord, Signature, Withdrawal, WorkplaceKey,
 ]
 
 /** Rows of these are written once: a flush that alters one is refused, and so is SQL that goes around the flush (triggers). */
-export const immutable = [BoardEvent, ChangeEvent, CheckReport, DraftPoint, DriveTrain, JointAnalysis, LedgerCheckpoint, LedgerEntry, Release, ReleaseJoint, ReleaseKit, Revision, Signature, Withdrawal, WorkplaceKey]
+export const immutable = [BoardEvent, ChangeEvent, CheckReport, Comment, CommentAnswer, DraftPoint, DriveTrain, JointAnalysis, LedgerCheckpoint, LedgerEntry, Release, ReleaseJoint, ReleaseKit, Revision, Signature, Withdrawal, WorkplaceKey]

@@ -13,10 +13,13 @@ import { saveDraftText } from '../modules/changes/save-draft.ts'
 import { prepareSubmission, submitChange } from '../modules/changes/submit-change.ts'
 import { checkChange } from '../modules/checks/check-change.ts'
 import { Machine } from '../modules/machines/machine.entity.ts'
+import { heldRoles } from '../modules/people/held-roles.ts'
 import { Person } from '../modules/people/person.entity.ts'
 import { prepare, proposalFor, releaseChange } from '../modules/releases/release-change.ts'
 import { Release } from '../modules/releases/release.entity.ts'
 import { withdrawRelease } from '../modules/releases/withdraw-release.ts'
+import { diffChange, rowsOf } from '../modules/reviews/diff-change.ts'
+import { markRead } from '../modules/reviews/reading.ts'
 import { recompute } from '../modules/reviews/recompute.ts'
 import { mustBeAnother } from '../modules/reviews/may-sign.ts'
 import { signPeerReview } from '../modules/reviews/sign-peer-review.ts'
@@ -99,7 +102,16 @@ export class Story {
     await this.act(async (tx, now) => submitChange(tx, await again(tx, change), prepared, { person: await this.person(tx, by), now }))
   }
 
+  /** Reads every row of what alters, as whoever signs has to. */
+  private async read(change: Change, by: string) {
+    await this.act(async (tx, now) => {
+      const [fresh, person] = [await again(tx, change), await this.person(tx, by)]
+      await markRead(tx, fresh, rowsOf(await diffChange(tx, fresh)), { person, held: await heldRoles(tx, person), now })
+    })
+  }
+
   async review(change: Change, by: string) {
+    await this.read(change, by)
     const em = this.services.orm.em.fork()
     const read = await again(em, change)
     const { hash } = await recompute(this.then, em, read, read.contentHash!)
@@ -107,6 +119,7 @@ export class Story {
   }
 
   async release(change: Change, by: string, version?: string, stepReason = '') {
+    await this.read(change, by)
     const em = this.services.orm.em.fork()
     const read = await again(em, change)
     await mustBeAnother(em, read, await this.person(em, by))

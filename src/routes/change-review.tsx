@@ -26,7 +26,6 @@ import { DiffTable } from '../features/reviews/components/diff-table.tsx'
 import { History } from '../features/reviews/components/history.tsx'
 import { OtherChanges } from '../features/reviews/components/other-changes.tsx'
 import { Signing } from '../features/reviews/components/signing.tsx'
-import { foldGroups } from '../features/reviews/fold-groups.ts'
 import { diffQuery } from '../features/reviews/queries.ts'
 import { queryClient } from '../lib/query-client.ts'
 
@@ -103,12 +102,12 @@ function Differences({ change, diff, check }: { change: ChangeView; diff: UseQue
       query={diff}
       what="what alters"
       lines={8}
-      isEmpty={(d) => d.groups.length + d.driveTrains.length + d.buses.length + d.jointsAdded.length + d.jointsRemoved.length === 0}
+      isEmpty={(d) => d.counts.rows === 0}
       empty={<EmptyState title="Nothing alters yet">Values, drive trains, addresses and firmware versions are as {change.baseVersion ? `released in ${change.baseVersion}` : 'in an empty machine'}.</EmptyState>}
     >
       {(d) => (
         <>
-          {foldGroups(d.groups).map((g) => (
+          {d.groups.map((g) => (
             <section key={`${g.family} ${g.joints.join()}`} className="mb-6" aria-label={`${family(g.family)} family`}>
               <SectionHeading aux={g.joints.map(nameOf).join(', ')}>{family(g.family)} family</SectionHeading>
               <DiffTable group={g} nameOf={nameOf} baseVersion={change.baseVersion} label={`what alters in the ${family(g.family)} family`} />

@@ -5,7 +5,6 @@ import { describe, expect, it } from 'vitest'
 import type { ChangeView } from '../../shared/contract/changes.ts'
 import { statements, type DiffRow, type DiffView } from '../../shared/contract/reviews.ts'
 import type { Me } from '../../shared/contract/people.ts'
-import { foldGroups } from '../../src/features/reviews/fold-groups.ts'
 import { content } from '../../src/features/reviews/components/other-changes.tsx'
 import { hunksOf, linesBetween } from '../../src/features/reviews/components/text-diff.tsx'
 import { isLower, stepBetween } from '../../src/features/reviews/version-step.ts'
@@ -15,13 +14,14 @@ import { address, anApi, mirela, open, rafiq, refusal } from './a-desk.tsx'
 
 const hash = '030d58033f5424db43a43bb81897'.padEnd(64, '0')
 const gain = (before: string, after: string, origin: 'joint' | 'family' = 'family'): DiffRow => ({
-  parameter: 'velocityGain', title: 'Velocity gain', unit: 'A·s/rad', role: 'velocity.kp', register: { address: 0x24, encoding: 'q7.24' },
+  key: `value:${origin}:velocityGain`, hash: 'd'.repeat(64), pointer: '/families/knee/values/velocityGain', parameter: 'velocityGain', title: 'Velocity gain', unit: 'A·s/rad', role: 'velocity.kp', register: { address: 0x24, encoding: 'q7.24' },
   before: { value: before, origin, bytes: '33 33 33 03', number: Number(before) }, after: { value: after, origin: 'family', bytes: '9A 99 99 05', number: Number(after) }, changePercent: (Number(after) / Number(before) - 1) * 100,
 })
-const limit: DiffRow = { parameter: 'currentLimit', title: 'Current limit', unit: 'A', role: 'current.limit', register: { address: 0x38, encoding: 'u16' }, before: { value: '2.8', origin: 'family', bytes: 'F0 0A', number: 2.8 }, after: { value: '3.2', origin: 'family', bytes: '80 0C', number: 3.2 }, changePercent: 14.2857 }
+const limit: DiffRow = { key: 'value:knee:currentLimit', hash: 'e'.repeat(64), pointer: '/families/knee/values/currentLimit', parameter: 'currentLimit', title: 'Current limit', unit: 'A', role: 'current.limit', register: { address: 0x38, encoding: 'u16' }, before: { value: '2.8', origin: 'family', bytes: 'F0 0A', number: 2.8 }, after: { value: '3.2', origin: 'family', bytes: '80 0C', number: 3.2 }, changePercent: 14.2857 }
 const diff: DiffView = {
-  groups: [{ family: 'knee', joints: ['l1-knee'], rows: [gain('3.2', '5.6'), limit] }, { family: 'knee', joints: ['r3-knee'], rows: [gain('2.9', '5.6', 'joint'), limit] }],
-  driveTrains: [{ family: 'knee', rows: [{ letter: 'J_load', before: '{"value":0.0185,"low":0.013,"high":0.03}', after: '0.02' }] }], buses: [], jointsAdded: [], jointsRemoved: [], textBefore: '{\n  "a": 1\n}\n', textAfter: '{\n  "a": 2\n}\n',
+  groups: [{ family: 'knee', joints: ['l1-knee', 'r3-knee'], rows: [gain('3.2', '5.6'), limit], own: [{ joint: 'r3-knee', rows: [gain('2.9', '5.6', 'joint')] }] }],
+  joints: [{ key: 'joint:l4-knee', hash: 'f'.repeat(64), pointer: '/joints/l4-knee', joint: 'l4-knee', is: 'removed' }],
+  driveTrains: [{ family: 'knee', rows: [{ key: 'drive:knee:J_load', hash: 'a'.repeat(64), pointer: '/families/knee/driveTrain/J_load', field: 'J_load', before: '{"value":0.0185,"low":0.013,"high":0.03}', after: '0.02' }] }], families: [], buses: [], counts: { values: 4, joints: 2, rows: 5 }, textBefore: '{\n  "a": 1\n}\n', textAfter: '{\n  "a": 2\n}\n',
 }
 
 const yes = { allowed: true } as const
@@ -43,7 +43,7 @@ function aReview({ me = rafiq, change = {}, may = {}, check = aCheck() }: { me?:
 }
 
 describe('what alters', () => {
-  it('folds joints that alter alike, and shows alone what one joint gives up', async () => {
+  it('shows joints that alter alike together, and alone what one of them gives up', async () => {
     aReview()
     open('/changes/dunlin-47/review')
     const table = await screen.findByRole('table', { name: 'what alters in the Knee family' })
@@ -57,6 +57,7 @@ describe('what alters', () => {
     expect(within(table).getByText('R3 knee gives up its own value')).toBeTruthy()
     expect(own.textContent).toContain('2.9')
     expect(screen.getByText('L1 knee, R3 knee', { selector: '.aux' })).toBeTruthy()
+    expect(screen.getByText('l4-knee is removed.')).toBeTruthy()
     expect(screen.getByRole('table', { name: 'drive train of the Knee family' }).textContent).toContain('0.0185 (0.013 to 0.03)')
   })
 
@@ -184,12 +185,6 @@ describe('returning', () => {
 })
 
 describe('pure parts', () => {
-  it('folds a family once more', () => {
-    expect(foldGroups(diff.groups)).toEqual([{ family: 'knee', joints: ['l1-knee', 'r3-knee'], rows: diff.groups[0].rows, own: [{ joint: 'r3-knee', rows: [gain('2.9', '5.6', 'joint')] }] }])
-    const other = { family: 'knee', joints: ['l2-knee'], rows: [limit] }
-    expect(foldGroups([diff.groups[0], other]).map((g) => g.joints)).toEqual([['l1-knee'], ['l2-knee']])
-  })
-
   it.each([['1.7.0', '1.7.1', 'patch'], ['1.7.0', '1.8.0', 'minor'], ['1.7.0', '2.0.0', 'major'], ['1.7.0', '1.7.0', null], ['1.7.0', '1.6.9', null], ['1.9.0', '1.10.0', 'minor']])('%s to %s is a %s step', (a, b, step) => expect(stepBetween(a, b)).toBe(step))
   it('orders steps', () => expect([isLower('patch', 'minor'), isLower('minor', 'minor'), isLower('major', 'minor')]).toEqual([true, false, false]))
   it.each([[null, 'none'], ['"name"', 'name'], ['aft', 'aft'], ['1500', '1\u00a0500'], ['[]', 'none'], ['[{"address":80,"name":"supply watch"}]', 'supply watch']])('shows stored content %s as %s', (text, shown) => expect(content(text)).toBe(shown))

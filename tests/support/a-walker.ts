@@ -1,6 +1,8 @@
 import { readFileSync } from 'node:fs'
 import { dunlin } from '../../server/demo/dunlin.ts'
+import { rowsOf } from '../../server/modules/reviews/diff-change.ts'
 import type { ChangeView } from '../../shared/contract/changes.ts'
+import type { DiffView } from '../../shared/contract/reviews.ts'
 import type { MachineSet } from '../../shared/parameters/machine-set.ts'
 import { printSet } from '../../shared/parameters/set-text.ts'
 import { aFirmware } from './a-firmware.ts'
@@ -58,12 +60,20 @@ export async function submitted(w: Walker, key: string): Promise<ChangeView> {
   return (await w.engineer.post(`/api/changes/${key}/submit`).set('If-Match', etag(await read(w.engineer, key))).expect(200)).body as ChangeView
 }
 
+/** Marks every row of what a change alters as read by this person. */
+export async function readAll(person: SignedIn, key: string): Promise<void> {
+  const diff = (await person.get(`/api/changes/${key}/diff`).expect(200)).body as DiffView
+  await person.post(`/api/changes/${key}/reading`, { rows: rowsOf(diff).map((r) => ({ key: r.key, hash: r.hash })) }).expect(200)
+}
+
 export async function reviewed(w: Walker, key: string): Promise<ChangeView> {
+  await readAll(w.reviewer, key)
   const view = await read(w.reviewer, key)
   return (await w.reviewer.post(`/api/changes/${key}/sign`, { password, contentHash: view.contentHash }).set('If-Match', etag(view)).expect(200)).body as ChangeView
 }
 
 export async function released(w: Walker, key: string, version = '1.0.0', stepReason = ''): Promise<void> {
+  await readAll(w.manager, key)
   const view = await read(w.manager, key)
   await w.manager.post(`/api/changes/${key}/release`, { password, contentHash: view.contentHash, version, stepReason }).set('If-Match', etag(view)).expect(201)
 }

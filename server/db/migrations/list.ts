@@ -6,6 +6,7 @@ import { Migration20261201111901 } from './20261201111901-ledger-filters.ts'
 import { Migration20261201120731 } from './20261201120731-joint-analyses.ts'
 import { Migration20261201120833 } from './20261201120833-boards-and-bench-keys.ts'
 import { Migration20261201121144 } from './20261201121144-kits-and-keys.ts'
+import { Migration20261201123140 } from './20261201123140-read-marks-and-comments.ts'
 import { Migration20261201123623 } from './20261201123623-ledger-checkpoints.ts'
 
 /** Every migration in order. Classes, not files: the bundle carries them. */
@@ -18,5 +19,6 @@ export const migrations = [
   { name: '20261201120731-joint-analyses', class: Migration20261201120731 },
   { name: '20261201120833-boards-and-bench-keys', class: Migration20261201120833 },
   { name: '20261201121144-kits-and-keys', class: Migration20261201121144 },
+  { name: '20261201123140-read-marks-and-comments', class: Migration20261201123140 },
   { name: '20261201123623-ledger-checkpoints', class: Migration20261201123623 },
 ]

@@ -1,95 +1,93 @@
 import type { EntityManager } from '@mikro-orm/core'
-import type { DiffGroup, DiffRow, DiffSide, DiffView } from '../../../shared/contract/reviews.ts'
-import { same } from '../../../shared/parameters/edits.ts'
+import canonicalize from 'canonicalize'
+import type { DiffGroup, DiffRow, DiffView, Marked } from '../../../shared/contract/reviews.ts'
 import { emptySet, type MachineSet } from '../../../shared/parameters/machine-set.ts'
+import { toPointer } from '../../../shared/parameters/paths.ts'
 import { printSet } from '../../../shared/parameters/set-text.ts'
-import type { ParameterSchema } from '../../../shared/registers/parameter-schema.ts'
+import { Recent } from '../../jobs/recent.ts'
 import type { Change } from '../changes/change.entity.ts'
 import { setOf } from '../changes/read-set.ts'
-import { resolveJoint, type ResolvedJoint } from '../checks/resolve-joint.ts'
+import { pointerOf, sha256 } from '../checks/resolve-joint.ts'
 import { schemasFor } from '../firmware/schemas-for.ts'
+import { fieldRows } from './field-rows.ts'
+import { foldGroups, type FoldedGroup, type JointRows } from './fold-groups.ts'
+import { jointRows, settingNames, type Compared } from './joint-rows.ts'
+import { marked, type Plain } from './marked.ts'
 
-const hexBytes = (bytes: Uint8Array) => [...bytes].map((b) => b.toString(16).toUpperCase().padStart(2, '0')).join(' ')
-const hexAddress = (address: number) => `0x${address.toString(16).toUpperCase().padStart(2, '0')}`
+type Sets = Pick<Compared, 'before' | 'after'>
 
-/** A joint's parameters as the diff shows them, by name. */
-function sidesOf(resolved: ResolvedJoint | undefined): Map<string, DiffSide> {
-  if (resolved?.kind !== 'resolved') return new Map()
-  const rows = new Map(resolved.encoded.rows.map((r) => [r.parameter, r]))
-  return new Map(resolved.values.map((v) => [v.name, { value: String(v.value), origin: v.origin, bytes: hexBytes(rows.get(v.name)?.bytes ?? new Uint8Array()), number: typeof v.value === 'number' ? v.value : null }]))
+const union = <T>(a: Record<string, T>, b: Record<string, T>) => [...new Set([...Object.keys(a), ...Object.keys(b)])]
+
+/** Where a joint's row stands in the set: its own value, else its family's. */
+function placeOf({ before, after }: Sets, joint: string, { parameter, after: now }: Plain<DiffRow>): string {
+  if ((settingNames as readonly string[]).includes(parameter)) return toPointer(['joints', joint, parameter])
+  const set = now === null && Object.hasOwn(before.joints, joint) ? before : after
+  const place = pointerOf(set, joint, parameter)
+  return place === toPointer(['joints', joint]) ? toPointer(['families', set.joints[joint].family, 'values', parameter]) : place
 }
 
-/** What differs of a joint besides its parameters. */
-function settingRows(before: MachineSet, after: MachineSet, joint: string): DiffRow[] {
-  const a = before.joints[joint]
-  const b = after.joints[joint]
-  const side = (value: string | undefined): DiffSide | null => (value === undefined ? null : { value, origin: 'joint', bytes: '', number: null })
-  const row = (parameter: string, title: string, x: string | undefined, y: string | undefined): DiffRow[] => (x === y ? [] : [{ parameter, title, unit: '', role: null, register: null, before: side(x), after: side(y), changePercent: null }])
+function markGroup(sets: Sets, { family, joints, rows, own }: FoldedGroup): DiffGroup {
+  const mark = (joint: string, row: Plain<DiffRow>, of: unknown): DiffRow => marked(row, { key: `value:${joint}:${row.parameter}`, pointer: placeOf(sets, joint, row), of })
+  return { family, joints, rows: rows.map((r) => mark(joints[0], r, { family, joints })), own: own.map((o) => ({ joint: o.joint, rows: o.rows.map((r) => mark(o.joint, r, { family, joint: o.joint })) })) }
+}
+
+/** Joints that come and go, each in a row: what goes has no other. */
+const comings = ({ before, after }: Sets): DiffView['joints'] => {
+  const row = (joint: string, is: 'added' | 'removed', set: MachineSet) => marked({ joint, is }, { key: `joint:${joint}`, pointer: toPointer(['joints', joint]), of: set.joints[joint] })
   return [
-    ...row('family', 'Family', a && before.families[a.family]?.name, b && after.families[b.family]?.name),
-    ...row('bus', 'Bus', a && before.buses[a.bus]?.name, b && after.buses[b.bus]?.name),
-    ...row('address', 'Address', a && hexAddress(a.address), b && hexAddress(b.address)),
-    ...row('firmware', 'Firmware', a?.firmware, b?.firmware),
-    ...row('board', 'Board of the bound values', a?.board, b?.board),
+    ...Object.keys(after.joints).filter((j) => !Object.hasOwn(before.joints, j)).map((j) => row(j, 'added', after)),
+    ...Object.keys(before.joints).filter((j) => !Object.hasOwn(after.joints, j)).map((j) => row(j, 'removed', before)),
   ]
 }
 
-function valueRows(before: ResolvedJoint | undefined, after: ResolvedJoint | undefined): DiffRow[] {
-  const schema = (after?.kind === 'resolved' ? after.schema : before?.kind === 'resolved' ? before.schema : null) as ParameterSchema | null
-  if (!schema) return []
-  const old = sidesOf(before)
-  const now = sidesOf(after)
-  return [...new Set([...now.keys(), ...old.keys()])].flatMap((name): DiffRow[] => {
-    const a = old.get(name) ?? null
-    const b = now.get(name) ?? null
-    if (same(a, b)) return []
-    const p = schema.byName.get(name)
-    const register = p?.register ? { address: p.register.address, encoding: p.register.encoding.name } : null
-    const percent = a?.number != null && b?.number != null && a.number !== 0 ? (b.number / a.number - 1) * 100 : null
-    return [{ parameter: name, title: p?.title ?? name, unit: p?.unit ?? '', role: p?.role ?? null, register, before: a, after: b, changePercent: percent }]
+/** A family's name, and values it gives that alter without reaching any joint: signed too, and shown in no other row. */
+function familyRows({ before, after }: Sets, joints: readonly JointRows[]): DiffView['families'] {
+  return union(before.families, after.families).map((family) => {
+    const shown = new Set(joints.filter((j) => j.family === family).flatMap((j) => j.rows.map((r) => r.parameter)))
+    const [a, b] = [before.families[family], after.families[family]]
+    const key = `family:${family}`
+    return { family, rows: [...fieldRows(a && { name: a.name }, b && { name: b.name }, { key, path: ['families', family] }), ...fieldRows(a?.values, b?.values, { key, path: ['families', family, 'values'] }).filter((r) => !shown.has(r.field))] }
   })
 }
 
-/** Joints whose rows are the same become one group. */
-function folded(rows: readonly { family: string; joint: string; rows: DiffRow[] }[]): DiffGroup[] {
-  const groups: DiffGroup[] = []
-  for (const { family, joint, rows: list } of rows) {
-    if (list.length === 0) continue
-    const alike = groups.find((g) => g.family === family && same(g.rows, list))
-    if (alike) alike.joints.push(joint)
-    else groups.push({ family, joints: [joint], rows: list })
+function diffSets(sets: Compared): DiffView {
+  const { before, after } = sets
+  const joints = Object.keys(after.joints).map((joint): JointRows => ({ family: after.joints[joint].family, joint, rows: jointRows(sets, joint) }))
+  const filled = <T extends { rows: unknown[] }>(list: T[]) => list.filter((l) => l.rows.length > 0)
+  const diff = {
+    groups: foldGroups(joints).map((g) => markGroup(sets, g)),
+    joints: comings(sets),
+    driveTrains: filled(union(before.families, after.families).map((family) => ({ family, rows: fieldRows(before.families[family]?.driveTrain, after.families[family]?.driveTrain, { key: `drive-train:${family}`, path: ['families', family, 'driveTrain'] }) }))),
+    families: filled(familyRows(sets, joints)),
+    buses: filled(union(before.buses, after.buses).map((bus) => ({ bus, rows: fieldRows(before.buses[bus], after.buses[bus], { key: `bus:${bus}`, path: ['buses', bus] }) }))),
   }
-  return groups
-}
-
-/** Fields that differ between two flat records, as text. */
-function fieldRows(a: Record<string, unknown> | undefined, b: Record<string, unknown> | undefined) {
-  const text = (v: unknown) => (v === undefined ? null : typeof v === 'string' ? v : JSON.stringify(v))
-  return [...new Set([...Object.keys(a ?? {}), ...Object.keys(b ?? {})])].filter((k) => !same(a?.[k], b?.[k])).map((k) => ({ field: k, before: text(a?.[k]), after: text(b?.[k]) }))
-}
-
-/** Everything that a change alters, by parameter and by text. */
-export async function diffChange(em: EntityManager, change: Change): Promise<DiffView> {
-  const before = change.baseRelease?.set ?? emptySet()
-  const after = setOf(change.text)
-  const schemas = new Map(Object.entries({ ...(await schemasFor(em, before)).schemas, ...(await schemasFor(em, after)).schemas }))
-  const joints = [...new Set([...Object.keys(after.joints), ...Object.keys(before.joints)])]
-  const rows = joints.map((joint) => {
-    const a = Object.hasOwn(before.joints, joint) ? resolveJoint(before, joint, schemas, 0) : undefined
-    const b = Object.hasOwn(after.joints, joint) ? resolveJoint(after, joint, schemas, 0) : undefined
-    return { family: (after.joints[joint] ?? before.joints[joint]).family, joint, rows: [...settingRows(before, after, joint), ...valueRows(a, b)] }
-  })
-  const families = [...new Set([...Object.keys(after.families), ...Object.keys(before.families)])]
-  const buses = [...new Set([...Object.keys(after.buses), ...Object.keys(before.buses)])]
   return {
-    groups: folded(rows),
-    driveTrains: families
-      .map((family) => ({ family, rows: fieldRows(before.families[family]?.driveTrain, after.families[family]?.driveTrain).map(({ field, ...r }) => ({ letter: field, ...r })) }))
-      .filter((f) => f.rows.length > 0),
-    buses: buses.map((bus) => ({ bus, rows: fieldRows(before.buses[bus], after.buses[bus]) })).filter((b) => b.rows.length > 0),
-    jointsAdded: Object.keys(after.joints).filter((j) => !Object.hasOwn(before.joints, j)),
-    jointsRemoved: Object.keys(before.joints).filter((j) => !Object.hasOwn(after.joints, j)),
+    ...diff,
+    counts: { values: joints.reduce((n, j) => n + j.rows.length, 0), joints: joints.filter((j) => j.rows.length > 0).length, rows: rowsOf(diff).length },
     textBefore: printSet(before),
     textAfter: printSet(after),
   }
+}
+
+/** Every row of a diff, in the order of the page. */
+export const rowsOf = (diff: Pick<DiffView, 'groups' | 'joints' | 'driveTrains' | 'families' | 'buses'>): Marked[] => [
+  ...diff.groups.flatMap((g) => [...g.rows, ...g.own.flatMap((o) => o.rows)]),
+  ...diff.joints,
+  ...[...diff.driveTrains, ...diff.families, ...diff.buses].flatMap((d) => d.rows),
+]
+
+/** Each mark of a row asks for the whole diff; it is made once for what it depends on. */
+const made = new Recent<DiffView>(20)
+
+/** Everything that a change alters, row by row and as text. */
+export async function diffChange(em: EntityManager, change: Change): Promise<DiffView> {
+  const before = change.baseRelease?.set ?? emptySet()
+  const after = setOf(change.text)
+  const [old, now] = [await schemasFor(em, before), await schemasFor(em, after)]
+  const hash = sha256(canonicalize({ base: change.baseRelease?.contentHash ?? null, text: change.text, schemas: { ...old.hashes, ...now.hashes } })!)
+  const known = made.get(hash)
+  if (known) return known
+  const diff = diffSets({ before, after, schemas: new Map(Object.entries({ ...old.schemas, ...now.schemas })) })
+  made.set(hash, diff)
+  return diff
 }

@@ -1,11 +1,15 @@
 import type { EntityManager } from '@mikro-orm/core'
+import type { Marked } from '../../../shared/contract/reviews.ts'
 import { emptySet } from '../../../shared/parameters/machine-set.ts'
 import { DomainError } from '../../http/errors.ts'
 import type { Change } from '../changes/change.entity.ts'
+import { inState } from '../changes/permissions.ts'
 import { setOf } from '../changes/read-set.ts'
+import { openComments } from '../comments/open-comments.ts'
 import { firmwareAuthors } from '../firmware/firmware-authors.ts'
 import { reentered } from '../people/check-credentials.ts'
 import type { Person } from '../people/person.entity.ts'
+import { unreadBy } from './reading.ts'
 import { Signature } from './signature.entity.ts'
 
 /** Firmware versions that the change moves joints to. */
@@ -26,6 +30,33 @@ export async function mustBeAnother(em: EntityManager, change: Change, person: P
   if (change.writers.includes(person.id)) throw refuse('You wrote in this change; two other people sign it.')
   if ((await firmwareAuthors(em, firmwareMovedTo(change))).includes(person.id)) throw refuse('You wrote or published a firmware version that this change moves a joint to, and so count as one of its authors.')
   if ((await em.count(Signature, { change, round: change.round, person })) > 0) throw refuse('You signed this change already; another person signs next.')
+}
+
+const named = (row: Marked & { title?: string; field?: string; joint?: string }) => row.title ?? row.field ?? row.joint ?? row.key
+
+/**
+ * What a signer has to have done before: every row of what alters read by themselves, as it stands now; every comment marked answered.
+ *
+ * @returns rows read
+ * @throws DomainError wrong-state, with the count and the names of what is open
+ */
+export async function mustBeReady(em: EntityManager, change: Change, person: Person): Promise<number> {
+  const open = inState(change, 'submitted', 'approved')
+  if (!open.allowed) throw new DomainError('wrong-state', `${open.why} There is nothing to sign. Nothing was done.`)
+  const { unread, diff } = await unreadBy(em, change, person)
+  const { rows } = diff.counts
+  if (unread.length > 0)
+    throw new DomainError('wrong-state', `You have not marked ${unread.length} of ${rows} ${rows === 1 ? 'row' : 'rows'} as read. Nothing was signed; read what alters, mark it, then sign.`, {
+      fields: unread.slice(0, 50).map((r) => ({ pointer: r.pointer, detail: `${named(r)} is not marked as read` })),
+      extra: { unread: unread.length, rows },
+    })
+  const comments = await openComments(em, change)
+  if (comments.length > 0)
+    throw new DomainError('wrong-state', `${comments.length === 1 ? 'One comment is' : `${comments.length} comments are`} not answered: ${comments.slice(0, 5).map((c) => `${c.number}, ${c.personName}${c.about ? ` on ${c.about}` : ''}`).join('; ')}${comments.length > 5 ? '; and more' : ''}. Nothing was signed; who wrote a comment or a reviewer marks it answered.`, {
+      fields: comments.slice(0, 50).map((c) => ({ pointer: '', detail: `comment ${c.number} by ${c.personName} is not answered` })),
+      extra: { comments: comments.map((c) => c.number) },
+    })
+  return rows
 }
 
 /**

@@ -2,7 +2,7 @@ import { createHash } from 'node:crypto'
 import { beforeAll, describe, expect, it } from 'vitest'
 import type { ReleaseView } from '../../../shared/contract/releases.ts'
 import { lastEntries } from '../../support/ledger.ts'
-import { aDraft, aWalker, etag, read, released, reviewed, submitted, type Walker } from '../../support/a-walker.ts'
+import { aDraft, aWalker, etag, read, readAll, released, reviewed, submitted, type Walker } from '../../support/a-walker.ts'
 import { password } from '../../support/workplace.ts'
 
 describe('a change from draft to the bytes on a disk', () => {
@@ -50,6 +50,7 @@ describe('a change from draft to the bytes on a disk', () => {
   })
 
   it('refuses a signature with a wrong password, and records the attempt', async () => {
+    await readAll(w.reviewer, key)
     const view = await read(w.reviewer, key)
     const refusal = await w.reviewer.post(`/api/changes/${key}/sign`, { password: 'not my password at all', contentHash: view.contentHash }).set('If-Match', etag(view)).expect(403)
     expect(refusal.body).toMatchObject({ type: '/problems/wrong-password', errors: [{ pointer: '/password' }] })
@@ -57,6 +58,7 @@ describe('a change from draft to the bytes on a disk', () => {
   })
 
   it('refuses a release before the peer review', async () => {
+    await readAll(w.manager, key)
     const view = await read(w.manager, key)
     const refusal = await w.manager.post(`/api/changes/${key}/release`, { password, contentHash: view.contentHash, version: '1.0.0' }).set('If-Match', etag(view)).expect(409)
     expect(refusal.body.type).toBe('/problems/wrong-state')
@@ -67,6 +69,7 @@ describe('a change from draft to the bytes on a disk', () => {
     expect(view.state).toBe('approved')
     expect(view.signatures).toMatchObject([{ meaning: 'peer review', void: false, contentHash: view.contentHash }])
     expect((await lastEntries(w, 2)).map((e) => e.act)).toEqual(['change approved', 'change peer review'])
+    expect((await lastEntries(w, 2))[1].details).toMatchObject({ rowsRead: (await w.observer.get(`/api/changes/${key}/diff`).expect(200)).body.counts.rows })
   })
 
   it('refuses the reviewer as second signer, even as release manager', async () => {

@@ -1,7 +1,7 @@
 import { beforeAll, describe, expect, it } from 'vitest'
 import { printSet } from '../../../shared/parameters/set-text.ts'
 import { aMachine } from '../../support/a-release.ts'
-import { aDraft, aWalker, etag, read, reviewed, submitted, through, twoKnees, type Walker } from '../../support/a-walker.ts'
+import { aDraft, aWalker, etag, read, readAll, reviewed, submitted, through, twoKnees, type Walker } from '../../support/a-walker.ts'
 import { password } from '../../support/workplace.ts'
 
 const gain = '/families/knee/values/velocityGain'
@@ -137,6 +137,7 @@ describe('what voids signatures', () => {
     const key = await aDraft(w)
     await submitted(w, key)
     const approved = await reviewed(w, key)
+    await readAll(w.manager, key)
     const { Machine } = await import('../../../server/modules/machines/machine.entity.ts')
     const { PolicyVersion } = await import('../../../server/modules/policy/policy-version.entity.ts')
     const em = w.orm.em.fork()
@@ -183,6 +184,7 @@ describe('the base of a change', () => {
     await w.engineer.patch(`/api/changes/${key}/values`, { edits: [{ pointer: '/families/knee/values/speedLimit', from: 6, to: 5 }] }).expect(200)
     await submitted(w, key)
     const view = await reviewed(w, key)
+    await readAll(w.manager, key)
     expect((await w.manager.get(`/api/changes/${key}/version`).expect(200)).body).toMatchObject({ version: '1.1.0', step: 'minor' })
     const release = (version: string, stepReason = '') => w.manager.post(`/api/changes/${key}/release`, { password, contentHash: view.contentHash, version, stepReason }).set('If-Match', etag(view))
     expect((await release('1.0.0').expect(422)).body.detail).toContain('does not come after')

@@ -1,12 +1,11 @@
-import type { DiffRow } from '../../../../shared/contract/reviews.ts'
+import type { DiffGroup, DiffRow } from '../../../../shared/contract/reviews.ts'
 import { byLaw } from '../../../../shared/parameters/laws.ts'
 import { Arrow } from '../../../components/ui/arrow.tsx'
 import { DecimalText } from '../../../components/ui/decimal-text.tsx'
-import type { FoldedGroup } from '../fold-groups.ts'
 import { BytesChange, OriginChange, percentText, RegisterWords, sideText } from './diff-side.tsx'
 
 export interface DiffTableProps {
-  group: FoldedGroup
+  group: DiffGroup
   nameOf: (joint: string) => string
   baseVersion: string | null
   label: string
@@ -18,7 +17,7 @@ interface Section {
 }
 
 /** Settings of the joint first, then its values by law, then what single joints have of their own. */
-function sectionsOf(group: FoldedGroup, nameOf: (joint: string) => string): Section[] {
+function sectionsOf(group: DiffGroup, nameOf: (joint: string) => string): Section[] {
   const settings = group.rows.filter((r) => r.role === null && r.register === null)
   const values = group.rows.filter((r) => !settings.includes(r))
   return [
@@ -70,7 +69,7 @@ export function DiffTable({ group, nameOf, baseVersion, label }: DiffTableProps)
                 </th>
               </tr>
               {s.rows.map((r) => (
-                <tr key={r.parameter}>
+                <tr key={r.key}>
                   <td role="rowheader">
                     {r.title}
                   </td>
@@ -99,7 +98,7 @@ export function DiffTable({ group, nameOf, baseVersion, label }: DiffTableProps)
             <h4 className="border-b border-hairline text-13 text-ink-2">{s.title}</h4>
             <ul>
               {s.rows.map((r) => (
-                <li key={r.parameter} className="border-b border-hairline py-2">
+                <li key={r.key} className="border-b border-hairline py-2">
                   <p className="flex justify-between gap-2">
                     <span>{r.title}</span>
                     {percentText(r) && (

@@ -15,11 +15,16 @@ export interface OtherChangesProps {
 export function OtherChanges({ diff, nameOf, letterOf }: OtherChangesProps) {
   return (
     <>
-      {(diff.jointsAdded.length > 0 || diff.jointsRemoved.length > 0) && (
+      {diff.joints.length > 0 && (
         <section className="mt-6">
           <SectionHeading>Joints that come and go</SectionHeading>
-          {diff.jointsAdded.length > 0 && <p className="mt-1">Added: {diff.jointsAdded.map(nameOf.joint).join(', ')}.</p>}
-          {diff.jointsRemoved.length > 0 && <p className="mt-1 text-oxide">Removed: {diff.jointsRemoved.map(nameOf.joint).join(', ')}.</p>}
+          <ul className="mt-1">
+            {diff.joints.map((j) => (
+              <li key={j.key} className={j.is === 'removed' ? 'text-oxide' : ''}>
+                {nameOf.joint(j.joint)} is {j.is}.
+              </li>
+            ))}
+          </ul>
         </section>
       )}
       {diff.driveTrains.map(({ family, rows }) => (
@@ -28,8 +33,8 @@ export function OtherChanges({ diff, nameOf, letterOf }: OtherChangesProps) {
           <Rows
             label={`drive train of the ${nameOf.family(family)} family`}
             rows={rows.map((r) => {
-              const l = letterOf(r.letter)
-              return { key: r.letter, head: <>{l.symbol} <span className="text-13 text-ink-2">{l.words}</span></>, unit: l.unit, before: r.before, after: r.after }
+              const l = letterOf(r.field)
+              return { key: r.key, head: <>{l.symbol} <span className="text-13 text-ink-2">{l.words}</span></>, unit: l.unit, before: r.before, after: r.after }
             })}
           />
         </section>
@@ -37,7 +42,13 @@ export function OtherChanges({ diff, nameOf, letterOf }: OtherChangesProps) {
       {diff.buses.map(({ bus, rows }) => (
         <section key={bus} className="mt-6">
           <SectionHeading>Bus {nameOf.bus(bus)}</SectionHeading>
-          <Rows label={`bus ${nameOf.bus(bus)}`} rows={rows.map((r) => ({ key: r.field, head: fieldWords[r.field] ?? r.field, unit: fieldUnits[r.field] ?? '', before: r.before, after: r.after }))} />
+          <Rows label={`bus ${nameOf.bus(bus)}`} rows={rows.map((r) => ({ key: r.key, head: fieldWords[r.field] ?? r.field, unit: fieldUnits[r.field] ?? '', before: r.before, after: r.after }))} />
+        </section>
+      ))}
+      {diff.families.map(({ family, rows }) => (
+        <section key={family} className="mt-6">
+          <SectionHeading aux="its name, and values that no joint of it takes">{nameOf.family(family)} family itself</SectionHeading>
+          <Rows label={`the ${nameOf.family(family)} family itself`} rows={rows.map((r) => ({ key: r.key, head: fieldWords[r.field] ?? r.field, unit: '', before: r.before, after: r.after }))} />
         </section>
       ))}
     </>

@@ -8,7 +8,6 @@ import { Button } from '../../../components/ui/button.tsx'
 import { VerdictMark } from '../../../components/ui/verdict-mark.tsx'
 import { Waiting } from '../../../components/ui/waiting.tsx'
 import { count } from '../../../lib/format.ts'
-import { valueCount } from '../fold-groups.ts'
 import { useReturnChange, useSignPeerReview, useSignRelease } from '../mutations.ts'
 import { versionQuery } from '../queries.ts'
 import { ReturnDialog } from './return-dialog.tsx'
@@ -36,13 +35,13 @@ export function Signing({ change, diff, verdict, counts, onChange, onReleased }:
   const version = useQuery({ ...versionQuery(change.key, change.revision), enabled: mayRelease.allowed })
   const hash = change.contentHash
   const back = mayReturn.allowed && <Button onClick={() => setReturning(true)}>Return…</Button>
-  const joints = diff ? new Set(diff.groups.flatMap((g) => g.joints)).size : 0
+  const joints = diff?.counts.joints ?? 0
   return (
     <>
       <SignaturesPanel
         change={change}
         signed={[
-          ...(diff ? [{ key: 'alters', value: `${count(valueCount(diff.groups), 'value')} on ${count(joints, 'joint')}` }] : []),
+          ...(diff ? [{ key: 'alters', value: `${count(diff.counts.values, 'value')} on ${count(joints, 'joint')}` }] : []),
           ...(verdict ? [{ key: 'verdict', value: <VerdictMark verdict={verdict} size={15} /> }] : []),
           ...(counts ? [{ key: 'findings', value: [counts.block && `${counts.block} block`, counts['concession needed'] && `${counts['concession needed']} concession needed`, counts.advise && `${counts.advise} advise`, `${counts.pass} pass`].filter(Boolean).join(', ') }] : []),
           { key: 'concessions', value: change.concessions.length === 0 ? 'none' : String(change.concessions.length) },
