@@ -39,7 +39,10 @@ export class Characteristic {
   private readonly age: Int32Array
   private readonly ages: Int32Array
   private readonly oldestAge: number
-  private readonly agePower: Float64Array
+  // What depends on λ alone: λ⁻¹, 1/(λ − 1), λ^W·(λ − 1)^integrators, and the powers of λ⁻¹ by age; one row a node, one row spare.
+  private readonly stride: number
+  private readonly nodeConstants: Float64Array
+  private readonly constants: Float64Array
   private readonly matrix: ComplexMatrix
   private readonly column: Float64Array
   private readonly det = { re: 0, im: 0 }
@@ -54,7 +57,6 @@ export class Characteristic {
   private readonly AV: Float64Array
   private readonly resolvent: ComplexMatrix
   private readonly drive: ComplexMatrix
-  private readonly lambda = { re: 0, im: 0 }
   private lifted: LiftedPlant | null = null
   private gains: Firmware | null = null
   private T_o = 0
@@ -97,7 +99,10 @@ export class Characteristic {
     }
     this.ages = Int32Array.from(new Set(this.age.subarray(1)))
     this.oldestAge = Math.max(...this.ages)
-    this.agePower = new Float64Array(2 * (this.oldestAge + 1))
+    this.stride = 8 + 2 * this.oldestAge
+    this.constants = new Float64Array(this.stride)
+    this.nodeConstants = new Float64Array(half * this.stride)
+    for (let j = 0; j < half; j++) this.constantsAt(this.nodeRe[j], this.nodeIm[j], this.nodeConstants, j * this.stride)
     this.matrix = complexMatrix(q)
     this.column = new Float64Array(2 * (q + 1))
     this.scratch = new Float64Array(2 * q * q)
@@ -220,9 +225,7 @@ export class Characteristic {
     const { degree, c, fourier, valueRe, valueIm, q } = this
     const half = this.nodes / 2
     for (let j = 0; j < half; j++) {
-      this.lambda.re = this.nodeRe[j]
-      this.lambda.im = this.nodeIm[j]
-      this.determinant(this.nodeN, 2 * j * q * q, this.nodeChi[2 * j], this.nodeChi[2 * j + 1])
+      this.determinant(this.nodeN, 2 * j * q * q, this.nodeChi[2 * j], this.nodeChi[2 * j + 1], this.nodeConstants, j * this.stride)
       valueRe[j] = this.det.re
       valueIm[j] = this.det.im
     }
@@ -274,39 +277,25 @@ export class Characteristic {
         scratch[at + 1] = sr * ci + si * cr
       }
     }
-    this.lambda.re = re
-    this.lambda.im = im
-    this.determinant(scratch, 0, cr, ci)
+    this.constantsAt(re, im, this.constants, 0)
+    this.determinant(scratch, 0, cr, ci, this.constants, 0)
     out.re = this.det.re
     out.im = this.det.im
   }
 
   /**
-   * λ^W·(λ − 1)^integrators·det(χI + K·N)/χ^(q−1) into `det`: K are the laws and the window, N = χ·P.
+   * λ^W·(λ − 1)^integrators·det(χI + K·N)/χ^(q−1) into `det`: K are the laws and the window, N = χ·P; `constants` from `constantsAt`.
    *
    * Row k (1…q) of K·N is i_ref's law at tick k; tick q is tick 0 of the next hyperperiod, hence the division by λ.
    */
-  private determinant(N: Float64Array, from: number, chiRe: number, chiIm: number): void {
-    const { q, W, matrix, column, source, age, agePower, position, T_o } = this
+  private determinant(N: Float64Array, from: number, chiRe: number, chiIm: number, constants: Float64Array, at0: number): void {
+    const { q, W, matrix, column, source, age, position, T_o } = this
     const { K_pp, K_ip, K_pv, K_iv } = this.gains as Firmware
-    const lr = this.lambda.re
-    const li = this.lambda.im
-    const size = 1 / (lr * lr + li * li)
-    const ir = lr * size
-    const ii = -li * size
-    // 1/(λ − 1)
-    const mr = lr - 1
-    const msize = 1 / (mr * mr + li * li)
-    const gr = mr * msize
-    const gi = -li * msize
-    agePower[0] = 1
-    agePower[1] = 0
-    for (let a = 1; a <= this.oldestAge; a++) {
-      const pr = agePower[2 * a - 2]
-      const pi = agePower[2 * a - 1]
-      agePower[2 * a] = pr * ir - pi * ii
-      agePower[2 * a + 1] = pr * ii + pi * ir
-    }
+    const ir = constants[at0]
+    const ii = constants[at0 + 1]
+    const gr = constants[at0 + 2]
+    const gi = constants[at0 + 3]
+    const ages = at0 + 6
     const toSpeed = 1 / (W * T_o)
     const kp = position ? K_pp : 0
     const ki = position ? K_ip * T_o : 0
@@ -346,9 +335,9 @@ export class Characteristic {
         const th = column[2 * k]
         const ti2 = column[2 * k + 1]
         const o = source[k]
-        const a = 2 * age[k]
-        const wr = column[2 * o] * agePower[a] - column[2 * o + 1] * agePower[a + 1]
-        const wi = column[2 * o] * agePower[a + 1] + column[2 * o + 1] * agePower[a]
+        const a = ages + 2 * age[k]
+        const wr = column[2 * o] * constants[a] - column[2 * o + 1] * constants[a + 1]
+        const wi = column[2 * o] * constants[a + 1] + column[2 * o + 1] * constants[a]
         let er = (th - wr) * toSpeed + kp * th
         let ei = (ti2 - wi) * toSpeed + kp * ti2
         if (ki !== 0) {
@@ -383,20 +372,11 @@ export class Characteristic {
       matrix.im[k * q + k] += chiIm
     }
     solveComplex(matrix, null, 0, this.det)
-    // Factors that do not depend on the joint's values: λ^W and (λ − 1) for each integrator.
-    let dr = this.det.re
-    let di = this.det.im
-    const wholeRe = this.powerOf(lr, li, W)
-    const wr = wholeRe.re
-    const wi = wholeRe.im
-    let t = dr * wr - di * wi
-    di = dr * wi + di * wr
-    dr = t
-    for (let k = 0; k < this.integrators; k++) {
-      t = dr * mr - di * li
-      di = dr * li + di * mr
-      dr = t
-    }
+    const fr = constants[at0 + 4]
+    const fi = constants[at0 + 5]
+    let dr = this.det.re * fr - this.det.im * fi
+    let di = this.det.re * fi + this.det.im * fr
+    let t: number
     const csize = 1 / (chiRe * chiRe + chiIm * chiIm)
     for (let k = 1; k < q; k++) {
       t = (dr * chiRe + di * chiIm) * csize
@@ -407,23 +387,45 @@ export class Characteristic {
     this.det.im = di
   }
 
-  private readonly powered = { re: 1, im: 0 }
-  private powerOf(re: number, im: number, exponent: number): { re: number; im: number } {
-    const out = this.powered
-    out.re = 1
-    out.im = 0
+  private constantsAt(re: number, im: number, out: Float64Array, at: number): void {
+    const size = 1 / (re * re + im * im)
+    const ir = re * size
+    const ii = -im * size
+    const mr = re - 1
+    const msize = 1 / (mr * mr + im * im)
+    out[at] = ir
+    out[at + 1] = ii
+    out[at + 2] = mr * msize
+    out[at + 3] = -im * msize
+    let fr = 1
+    let fi = 0
     let br = re
     let bi = im
-    for (let left = exponent; left > 0; left >>= 1) {
+    for (let left = this.W; left > 0; left >>= 1) {
       if (left & 1) {
-        const t = out.re * br - out.im * bi
-        out.im = out.re * bi + out.im * br
-        out.re = t
+        const t = fr * br - fi * bi
+        fi = fr * bi + fi * br
+        fr = t
       }
       const t = br * br - bi * bi
       bi = 2 * br * bi
       br = t
     }
-    return out
+    for (let k = 0; k < this.integrators; k++) {
+      const t = fr * mr - fi * im
+      fi = fr * im + fi * mr
+      fr = t
+    }
+    out[at + 4] = fr
+    out[at + 5] = fi
+    let pr = 1
+    let pi = 0
+    for (let a = 0; a <= this.oldestAge; a++) {
+      out[at + 6 + 2 * a] = pr
+      out[at + 7 + 2 * a] = pi
+      const t = pr * ir - pi * ii
+      pi = pr * ii + pi * ir
+      pr = t
+    }
   }
 }

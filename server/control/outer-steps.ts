@@ -1,4 +1,4 @@
-import { matrixPower, matrixProduct } from './matrix-power.ts'
+import { matrixPower, matrixProduct, powerWorkspace, type PowerWorkspace } from './matrix-power.ts'
 import type { SampledJoint } from './sampled-joint.ts'
 
 /**
@@ -26,16 +26,17 @@ export function outerSteps(joint: SampledJoint): OuterSteps {
   const { p, q, tick, offset } = timing
   const shortest = Math.floor(p / q)
   const size = nz + 1
-  const one = new Float64Array(size * size)
+  const { one, before, short, long, power } = scratchOf(size)
+  one.fill(0)
   for (let i = 0; i < nz; i++) {
     for (let j = 0; j < nz; j++) one[i * size + j] = joint.F[i * nz + j]
     one[i * size + nz] = joint.G[i]
   }
   one[size * size - 1] = 1
-  const before = matrixPower(one, size, shortest - 1)
-  const short = matrixProduct(one, before, size)
-  const whole = q > 1 ? [short, matrixProduct(one, short, size)] : [short]
-  const partial = q > 1 ? [before, short] : [before]
+  matrixPower(one, size, shortest - 1, before, power)
+  matrixProduct(one, before, size, short)
+  const kinds = q > 1 ? 2 : 1
+  if (kinds === 2) matrixProduct(one, short, size, long)
   const length = new Uint8Array(q)
   const H = new Float64Array(q * nz)
   const d = new Float64Array(q)
@@ -45,7 +46,7 @@ export function outerSteps(joint: SampledJoint): OuterSteps {
     const to = next === 0 ? p : tick[next] + (offset[next] > 0 ? 1 : 0)
     const kind = to - from - shortest
     length[k] = kind
-    const M = between[next] ? partial[kind] : whole[kind]
+    const M = between[next] ? (kind === 0 ? before : short) : kind === 0 ? short : long
     for (let j = 0; j < nz; j++) {
       let sum = 0
       for (let i = 0; i < nz; i++) sum += rows[next * nz + i] * M[i * size + j]
@@ -61,14 +62,39 @@ export function outerSteps(joint: SampledJoint): OuterSteps {
   return {
     q,
     nz,
-    powers: whole.map((M) => pick(M, nz, size)),
-    inputs: whole.map((M) => Float64Array.from({ length: nz }, (_, i) => M[i * size + nz])),
+    powers: kinds === 2 ? [pick(short, nz, size), pick(long, nz, size)] : [pick(short, nz, size)],
+    inputs: kinds === 2 ? [lastColumn(short, nz, size), lastColumn(long, nz, size)] : [lastColumn(short, nz, size)],
     length,
     H,
     d,
     shift,
     start,
   }
+}
+
+interface Scratch {
+  readonly one: Float64Array
+  readonly before: Float64Array
+  readonly short: Float64Array
+  readonly long: Float64Array
+  readonly power: PowerWorkspace
+}
+
+const scratches = new Map<number, Scratch>()
+function scratchOf(size: number): Scratch {
+  let scratch = scratches.get(size)
+  if (!scratch) {
+    const matrix = (): Float64Array => new Float64Array(size * size)
+    scratch = { one: matrix(), before: matrix(), short: matrix(), long: matrix(), power: powerWorkspace(size) }
+    scratches.set(size, scratch)
+  }
+  return scratch
+}
+
+function lastColumn(M: Float64Array, n: number, size: number): Float64Array {
+  const out = new Float64Array(n)
+  for (let i = 0; i < n; i++) out[i] = M[i * size + n]
+  return out
 }
 
 function pick(M: Float64Array, n: number, size: number): Float64Array {

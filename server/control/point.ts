@@ -29,6 +29,8 @@ export function evaluatePoint(model: JointModel, withMargins: boolean): PointRes
   return evaluateSampled(joint, withMargins && joint.closes !== 'current' ? prepare(joint) : null, withMargins, null)
 }
 
+const NO_LOOPS: PointResult['loops'] = {}
+
 /** Laws of the outer task: what the sampled joint and its lift do not depend on. */
 const OUTER_LAWS: readonly ParameterName[] = ['K_pp', 'K_ip', 'K_pv', 'K_iv']
 
@@ -64,7 +66,7 @@ function prepare(joint: SampledJoint): PreparedOuter {
 
 function evaluateSampled(joint: SampledJoint, prepared: PreparedOuter | null, withMargins: boolean, guess: RootGuess | null): PointResult {
   const whole = verdictOfSampled(joint, prepared, guess)
-  if (!withMargins) return { ...whole, loops: {} }
+  if (!withMargins) return { rho: whole.rho, verdict: whole.verdict, epsilon: whole.epsilon, route: whole.route, loops: NO_LOOPS }
   const loops: Partial<Record<ControlMode, LoopPoint>> = {}
   const transfer = prepared ? new OuterTransfer(joint, prepared.lifted) : null
   for (const closure of closuresOf(joint.closes)) {

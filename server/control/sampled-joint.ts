@@ -1,5 +1,5 @@
 import { expm, expmWorkspace, type ExpmWorkspace } from './discretise.ts'
-import { matrixPower } from './matrix-power.ts'
+import { matrixPower, powerWorkspace, type PowerWorkspace } from './matrix-power.ts'
 import type { ControlMode, JointModel } from './model.ts'
 import { validateJointModel } from './model.ts'
 import { plantMatrices, supplyFactor } from './plant.ts'
@@ -48,14 +48,24 @@ export function closedMode(model: JointModel): ControlMode {
 /** Powers up to this keep the exponential's accuracy. */
 const POWER_LIMIT = 8
 
-const workspaces = new Map<number, ExpmWorkspace>()
-function workspaceOf(n: number): ExpmWorkspace {
-  let work = workspaces.get(n)
-  if (!work) {
-    work = expmWorkspace(n)
-    workspaces.set(n, work)
+/** Matrices of one size, kept between calls: no allocation in sweeps. */
+interface Scratch {
+  readonly block: Float64Array
+  readonly whole: Float64Array
+  readonly part: Float64Array
+  readonly power: PowerWorkspace
+  readonly work: ExpmWorkspace
+}
+
+const scratches = new Map<number, Scratch>()
+function scratchOf(size: number): Scratch {
+  let scratch = scratches.get(size)
+  if (!scratch) {
+    const matrix = (): Float64Array => new Float64Array(size * size)
+    scratch = { block: matrix(), whole: matrix(), part: matrix(), power: powerWorkspace(size), work: expmWorkspace(size) }
+    scratches.set(size, scratch)
   }
-  return work
+  return scratch
 }
 
 /**
@@ -77,18 +87,18 @@ export function sampleValidJoint(model: JointModel, timing: Timing): SampledJoin
   const { n, A, B, C_omega } = matrices
   const closes = closedMode(model)
   const size = n + 1
-  const block = new Float64Array(size * size)
+  const { block, whole, part: partMatrix, power, work } = scratchOf(size)
+  block.fill(0)
   for (let i = 0; i < n; i++) {
     for (let j = 0; j < n; j++) block[i * size + j] = A[i * n + j]
     block[i * size + n] = B[i]
   }
   // The angle kept is the one that the encoder reads, so that it is exactly 0 right after an outer sample.
   for (let j = 0; j < n; j++) block[(n - 1) * size + j] = C_omega[j]
-  const work = workspaceOf(size)
   const s = firmware.sensor_delay ?? 0
   // The step over a whole current period is the q-th power of the part between offsets where both are needed and q is small.
-  const part = s === 0 && timing.q > 1 ? expm(block, size, timing.T_c / timing.q, new Float64Array(size * size), work) : null
-  const step = part && timing.q <= POWER_LIMIT ? matrixPower(part, size, timing.q) : expm(block, size, timing.T_c, new Float64Array(size * size), work)
+  const part = s === 0 && timing.q > 1 ? expm(block, size, timing.T_c / timing.q, partMatrix, work) : null
+  const step = part && timing.q <= POWER_LIMIT ? matrixPower(part, size, timing.q, whole, power) : expm(block, size, timing.T_c, whole, work)
   const so = firmware.outer_delay ?? 0
   const integrates = firmware.K_ic !== 0
   const { D } = firmware

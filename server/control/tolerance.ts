@@ -82,6 +82,7 @@ export class ToleranceSweep {
   readonly vertexNames: readonly ParameterName[]
   private readonly evaluate: PointEvaluator
   private readonly start: { readonly re: number; readonly im: number }
+  private readonly guess = { re: 1, im: 0 }
   private readonly low: Float64Array
   private readonly high: Float64Array
   private readonly nominal: Float64Array
@@ -152,7 +153,9 @@ export class ToleranceSweep {
       const index = this.done
       this.valuesAt(index, this.values)
       // Every point starts from the nominal joint's root: its result does not depend on the order.
-      this.take(index, this.evaluate(this.values, { ...this.start }))
+      this.guess.re = this.start.re
+      this.guess.im = this.start.im
+      this.take(index, this.evaluate(this.values, this.guess))
     }
     return this.done === this.total
   }
