@@ -13,6 +13,7 @@ import { benchKeyRoutes } from './modules/bench-keys/routes.ts'
 import { boardRoutes } from './modules/boards/routes.ts'
 import { changeRoutes } from './modules/changes/routes.ts'
 import { checkRoutes } from './modules/checks/routes.ts'
+import { comparisonRoutes } from './modules/comparisons/routes.ts'
 import { firmwareRoutes } from './modules/firmware/routes.ts'
 import { keyRoutes } from './modules/keys/routes.ts'
 import { ledgerRoutes } from './modules/ledger/routes.ts'
@@ -25,7 +26,7 @@ import { reviewRoutes } from './modules/reviews/routes.ts'
 
 /** Every route of the API that a signed-in person reaches; tests walk it. */
 export const routeTable: readonly RouteSpec[] = [
-  ...peopleRoutes, ...machineRoutes, ...firmwareRoutes, ...policyRoutes, ...changeRoutes, ...checkRoutes, ...reviewRoutes, ...releaseRoutes, ...boardRoutes, ...benchKeyRoutes, ...keyRoutes, ...ledgerRoutes, ...mailRoutes,
+  ...peopleRoutes, ...machineRoutes, ...firmwareRoutes, ...policyRoutes, ...changeRoutes, ...checkRoutes, ...reviewRoutes, ...releaseRoutes, ...boardRoutes, ...benchKeyRoutes, ...keyRoutes, ...comparisonRoutes, ...ledgerRoutes, ...mailRoutes,
 ]
 
 const contentSecurity = (secure: boolean) =>

@@ -1,11 +1,11 @@
 import type { KeyObject } from 'node:crypto'
-import type { CheckResult } from '../../../shared/contract/checks.ts'
 import type { ConcessionRequest } from '../../../shared/contract/changes.ts'
 import { jointFiles, packKit, signKit, type SignedManifest } from '../../exports/kit.ts'
 import type { KitFile, ManifestInput, ManifestJoint } from '../../exports/manifest.ts'
 import { verifyKit } from '../../exports/verify-kit.ts'
 import { DomainError } from '../../http/errors.ts'
 import { TOOL_VERSION } from '../../tool-version.ts'
+import type { PackedCheck } from '../checks/pack-check.ts'
 import { splitFirmwareName } from '../firmware/firmware-authors.ts'
 import type { Content } from '../reviews/content-of.ts'
 import { breathe } from './breathe.ts'
@@ -32,8 +32,11 @@ export interface BuiltKit {
 
 /** The verdict of each joint, from the content that was signed. */
 function verdictsOf(content: Content): ManifestInput['verdicts'] {
-  const { check } = JSON.parse(content.text) as { check: Pick<CheckResult, 'joints' | 'inputsHash'> }
-  return check.joints.map((j) => ({ joint: j.joint, verdict: j.candidate?.verdict ?? 'not analysed', rho: j.candidate?.rho ?? null, check: check.inputsHash }))
+  const { check } = JSON.parse(content.text) as { check: Pick<PackedCheck, 'inputsHash' | 'joints' | 'figures'> }
+  return check.joints.map(({ joint, candidate }) => {
+    const figures = candidate === null ? null : check.figures[candidate]
+    return { joint, verdict: figures?.verdict ?? 'not analysed', rho: figures?.rho ?? null, check: check.inputsHash }
+  })
 }
 
 function manifestJoint({ content, revisions, firmware }: KitParts, prepared: PreparedJoint): ManifestJoint {
