@@ -1,6 +1,6 @@
 import type { MapCells } from '../../shared/contract/checks.ts'
 import type { CurvesResult } from './analyses/curves.ts'
-import { cellCount, guardMap } from './analyses/map.ts'
+import { gridOf, guardMap } from './analyses/map.ts'
 import type { NominalResult } from './analyses/nominal.ts'
 import type { RetuneResult } from './analyses/retune.ts'
 import type { AnalysisKind, AnalysisRequest, MapInputs, ToleranceInputs } from './analyses/requests.ts'
@@ -41,11 +41,11 @@ export class Refused extends Error {
 /** How long a piece should take, ms: short enough to stop soon and let others in, long enough to be worth the way to a thread. */
 const pieceMs = 60
 
-/** Work of `total` units in pieces, as many at once as the site likes; sizes follow from how long the pieces before took. */
-async function inPieces<R>(site: FlowSite, total: number, piece: (from: number, count: number) => Promise<R>): Promise<R[]> {
+/** Work of `total` things of so many units each in pieces, as many at once as the site likes; sizes follow from how long the pieces before took. */
+async function inPieces<R>(site: FlowSite, { total, units = 1, first = 8 }: { total: number; units?: number; first?: number }, piece: (from: number, count: number) => Promise<R>): Promise<R[]> {
   const done: { from: number; result: R }[] = []
   let next = 0
-  let size = Math.min(8, total)
+  let size = Math.min(first, total)
   const lane = async () => {
     while (next < total) {
       const from = next
@@ -56,7 +56,7 @@ async function inPieces<R>(site: FlowSite, total: number, piece: (from: number, 
       const each = (site.clock() - start) / count
       size = Math.max(1, Math.min(256, Math.round(pieceMs / Math.max(each, 0.05))))
       done.push({ from, result })
-      site.advance(count)
+      site.advance(count * units)
     }
   }
   await Promise.all(Array.from({ length: site.width }, lane))
@@ -67,7 +67,7 @@ async function tolerance(inputs: ToleranceInputs, site: FlowSite): Promise<Toler
   const { model, bounds, step } = inputs
   const { vertexNames, slowest } = await site.run({ kind: 'lay out', plan: { model, bounds } })
   const plan: SweepPlan = { model, bounds, vertexNames }
-  const pieces = await inPieces<SweepPoint[]>(site, pointCount(bounds), (from, count) => site.run({ kind: 'points', plan, from, count }))
+  const pieces = await inPieces<SweepPoint[]>(site, { total: pointCount(bounds) }, (from, count) => site.run({ kind: 'points', plan, from, count }))
   const points = pieces.flat()
   const vertices = points.slice(0, vertexCount(plan))
   const values = valuesOfPoints(plan, 0, vertices.length)
@@ -79,7 +79,8 @@ async function tolerance(inputs: ToleranceInputs, site: FlowSite): Promise<Toler
 
 async function map(inputs: MapInputs, site: FlowSite): Promise<MapCells> {
   guardMap(inputs)
-  const pieces = await inPieces(site, cellCount(inputs), (from, count) => site.run({ kind: 'cells', inputs, from, count }))
+  const { width, rows } = gridOf(inputs)
+  const pieces = await inPieces(site, { total: rows, units: width, first: 1 }, (from, count) => site.run({ kind: 'rows', inputs, from, count }))
   return {
     verdicts: pieces.flatMap((p) => p.verdicts),
     rho: pieces.flatMap((p) => p.rho),
@@ -98,7 +99,9 @@ const single = async <T extends Extract<Task, { kind: 'nominal' | 'curves' | 're
 export function unitsOf(asked: AnalysisRequest): number {
   if (asked.kind === 'tolerance') return pointCount(asked.inputs.bounds)
   if (asked.kind === 'retune') return asked.inputs.tries
-  return asked.kind === 'map' ? cellCount(asked.inputs) : 1
+  if (asked.kind !== 'map') return 1
+  const { width, rows } = gridOf(asked.inputs)
+  return width * rows
 }
 
 /** Computes an analysis from its tasks. @throws Refused; whatever the site throws when a task is stopped or lost */

@@ -265,6 +265,7 @@ export class JobBoard {
   }
 
   private want(asked: AnalysisRequest, topic: string, who: { asker: number; urgent: boolean }): Job {
+    if (this.closed) throw new JobEnded('stopped', 'The program is closing; ask again when it is back.')
     let job = this.jobs.get(asked.hash)
     if (!job) {
       job = new Job(asked, who)

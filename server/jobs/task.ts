@@ -2,7 +2,7 @@ import type { MapCells } from '../../shared/contract/checks.ts'
 import { NumericError } from '../control/errors.ts'
 import type { JointModel } from '../control/model.ts'
 import { curvesAnalysis, type CurvesResult } from './analyses/curves.ts'
-import { mapCells } from './analyses/map.ts'
+import { mapRows } from './analyses/map.ts'
 import { nominalAnalysis, type NominalResult } from './analyses/nominal.ts'
 import type { CurvesInputs, MapInputs, NominalInputs, RetuneInputs, StepInputs } from './analyses/requests.ts'
 import { retuneAnalysis, type RetuneResult } from './analyses/retune.ts'
@@ -16,7 +16,7 @@ export type Task =
   | { kind: 'lay out'; plan: Pick<SweepPlan, 'model' | 'bounds'> }
   | { kind: 'points'; plan: SweepPlan; from: number; count: number }
   | { kind: 'step'; model: JointModel; step: StepInputs; slowest: number | null }
-  | { kind: 'cells'; inputs: MapInputs; from: number; count: number }
+  | { kind: 'rows'; inputs: MapInputs; from: number; count: number }
   | { kind: 'retune'; inputs: RetuneInputs }
 
 interface TaskResults {
@@ -25,7 +25,7 @@ interface TaskResults {
   'lay out': SweepLayout
   points: SweepPoint[]
   step: StepRun
-  cells: MapCells
+  rows: MapCells
   retune: RetuneResult
 }
 export type TaskResult<T extends Task> = TaskResults[T['kind']]
@@ -42,7 +42,7 @@ const work: { [K in Task['kind']]: (task: Extract<Task, { kind: K }>, told: Told
   'lay out': ({ plan }) => layOut(plan.model, plan.bounds),
   points: ({ plan, from, count }) => sweepPoints(plan, from, count),
   step: ({ model, step, slowest }) => runStep(model, step, windowOf(model, slowest)),
-  cells: ({ inputs, from, count }) => mapCells(inputs, from, count),
+  rows: ({ inputs, from, count }) => mapRows(inputs, from, count),
   retune: ({ inputs }, told) => retuneAnalysis(inputs, told),
 }
 

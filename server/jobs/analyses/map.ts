@@ -1,7 +1,5 @@
 import type { MapCells } from '../../../shared/contract/checks.ts'
-import { evaluatePoint, type LoopPoint } from '../../control/point.ts'
-import { parameterNamed, withValues } from '../../control/parameters.ts'
-import { axisValues, StabilityMap } from '../../control/stability-map.ts'
+import { axisValues, MAP_VERDICTS, StabilityMap, type CellMargin } from '../../control/stability-map.ts'
 import { verdictWords } from './linear-figures.ts'
 import type { AxisInputs, MapInputs } from './requests.ts'
 
@@ -14,30 +12,22 @@ export function valuesOfAxis(field: string, axis: AxisInputs): number[] {
   return counted.has(axis.parameter) ? [...new Set(values.map(Math.round))] : values
 }
 
+const mapOf = ({ model, x, y }: MapInputs, rows?: readonly [number, number]) =>
+  new StabilityMap(model, { parameter: x.parameter, values: valuesOfAxis('x', x) }, { parameter: y.parameter, values: valuesOfAxis('y', y) }, { margins: true, ...(rows ? { rows } : {}) })
+
 /** Guards a map's request as the control core does. @throws NumericError naming the axis or the parameter */
-export function guardMap({ model, x, y }: MapInputs): void {
-  new StabilityMap(model, { parameter: x.parameter, values: valuesOfAxis('x', x) }, { parameter: y.parameter, values: valuesOfAxis('y', y) }, { margins: true })
+export function guardMap(inputs: MapInputs): void {
+  mapOf(inputs)
 }
 
-export const cellCount = ({ x, y }: MapInputs): number => valuesOfAxis('x', x).length * valuesOfAxis('y', y).length
+export const gridOf = ({ x, y }: MapInputs): { width: number; rows: number } => ({ width: valuesOfAxis('x', x).length, rows: valuesOfAxis('y', y).length })
 
-/** Cells `from` to `from + count`, rows of constant y, each along x. A cell outside the model's rules is no cell. @throws NumericError */
-export function mapCells({ model, x, y }: MapInputs, from: number, count: number): MapCells {
-  const [xs, ys] = [valuesOfAxis('x', x), valuesOfAxis('y', y)]
-  const names = [parameterNamed(x.parameter), parameterNamed(y.parameter)]
-  const cells: MapCells = { verdicts: [], rho: [], phaseMarginDeg: [], gainMarginDb: [] }
-  for (let k = from; k < from + count; k += 1) {
-    const point = evaluatePoint(withValues(model, names, [xs[k % xs.length], ys[Math.floor(k / xs.length)]]), true)
-    const loops = Object.values(point.loops)
-    const whole = point.verdict === 'stable' && loops.every((l) => l.verdict === 'stable')
-    const smallest = (read: (l: LoopPoint) => number | null) => {
-      const found = whole ? loops.map(read).filter((v) => v !== null) : []
-      return found.length === 0 ? null : Number(Math.min(...found).toPrecision(6))
-    }
-    cells.verdicts.push(verdictWords[point.verdict])
-    cells.rho.push(point.rho)
-    cells.phaseMarginDeg.push(smallest((l) => (l.phase.kind === 'margin' ? l.phase.phaseMarginDeg : null)))
-    cells.gainMarginDb.push(smallest((l) => (l.gainUp.kind === 'margin' ? l.gainUp.gainMarginDb : null)))
-  }
-  return cells
+const shown = (margin: CellMargin): number | null => (margin.kind === 'margin' ? Number(margin.value.toPrecision(6)) : null)
+
+/** Rows of constant y, `from` to `from + count`. @throws NumericError where a cell is no joint */
+export function mapRows(inputs: MapInputs, from: number, count: number): MapCells {
+  const map = mapOf(inputs, [from, from + count])
+  map.step(map.total)
+  const { rho, verdicts, phaseMarginDeg, gainMarginDb } = map.report()
+  return { verdicts: Array.from(verdicts, (v) => verdictWords[MAP_VERDICTS[v]]), rho: Array.from(rho), phaseMarginDeg: phaseMarginDeg!.map(shown), gainMarginDb: gainMarginDb!.map(shown) }
 }

@@ -1,12 +1,13 @@
 import type { LoopName, ToleranceBound, Verdict, VertexLoop } from '../../../shared/contract/checks.ts'
 import type { JointModel } from '../../control/model.ts'
 import { parameterNamed, valueOf, withValues } from '../../control/parameters.ts'
-import { evaluatePoint, type LoopPoint } from '../../control/point.ts'
+import { pointEvaluator, type LoopPoint } from '../../control/point.ts'
 import { latinHypercube } from '../../control/random.ts'
+import { sampleJoint } from '../../control/sampled-joint.ts'
 import { rankBySensitivity } from '../../control/sensitivity.ts'
 import { timingOf } from '../../control/timing.ts'
 import { VERTEX_BOUNDS_LIMIT } from '../../control/tolerance.ts'
-import { verdict } from '../../control/verdict.ts'
+import { verdict, verdictOfSampled } from '../../control/verdict.ts'
 import { verdictWords } from './linear-figures.ts'
 
 /** Of the Latin hypercube: any number, the same for ever. */
@@ -89,15 +90,20 @@ const loopOf = (loop: LoopPoint): VertexLoop => ({
 /** Evaluates points of a sweep: margins at every vertex and at the first samples, ρ at all. @throws NumericError */
 export function sweepPoints(plan: SweepPlan, from: number, count: number): SweepPoint[] {
   const withMargins = vertexCount(plan) + samplesWithMargins
-  const { supply_compensated } = plan.model.firmware
+  const { model, bounds } = plan
+  const names = bounds.map((b) => parameterNamed(b.name))
+  const [rhoAlone, all] = [pointEvaluator(model, names, false), pointEvaluator(model, names, true)]
+  // Every point starts from the nominal joint's root, so that its figures depend on no other.
+  const root = { re: 1, im: 0 }
+  verdictOfSampled(sampleJoint(model), null, root)
   const known = new Map<string, SweepPoint>()
   return valuesOfPoints(plan, from, count).map((values, k) => {
     const margins = from + k < withMargins
     // A compensated supply is no part of the linear loop: corners that differ in it alone are one.
-    const key = JSON.stringify({ ...values, V_bus: supply_compensated ? 0 : values.V_bus, margins })
+    const key = JSON.stringify({ ...values, V_bus: model.firmware.supply_compensated ? 0 : values.V_bus, margins })
     const before = known.get(key)
     if (before) return before
-    const point = evaluatePoint(modelAt(plan.model, values), margins)
+    const point = (margins ? all : rhoAlone)(names.map((n) => values[n]), { ...root })
     const result = { rho: point.rho, verdict: verdictWords[point.verdict], loops: Object.fromEntries(Object.entries(point.loops).map(([name, loop]) => [name, loopOf(loop)])) }
     known.set(key, result)
     return result
