@@ -9,10 +9,12 @@ import { mount, type RouteSpec } from './http/route.ts'
 import { sameSite } from './http/same-site.ts'
 import type { Services } from './http/services.ts'
 import { useSessions } from './http/session.ts'
+import { backupRoutes } from './modules/backups/routes.ts'
 import { benchKeyRoutes } from './modules/bench-keys/routes.ts'
 import { boardRoutes } from './modules/boards/routes.ts'
 import { changeRoutes } from './modules/changes/routes.ts'
 import { checkRoutes } from './modules/checks/routes.ts'
+import { commentRoutes } from './modules/comments/routes.ts'
 import { comparisonRoutes } from './modules/comparisons/routes.ts'
 import { firmwareRoutes } from './modules/firmware/routes.ts'
 import { keyRoutes } from './modules/keys/routes.ts'
@@ -26,7 +28,7 @@ import { reviewRoutes } from './modules/reviews/routes.ts'
 
 /** Every route of the API that a signed-in person reaches; tests walk it. */
 export const routeTable: readonly RouteSpec[] = [
-  ...peopleRoutes, ...machineRoutes, ...firmwareRoutes, ...policyRoutes, ...changeRoutes, ...checkRoutes, ...reviewRoutes, ...releaseRoutes, ...boardRoutes, ...benchKeyRoutes, ...keyRoutes, ...comparisonRoutes, ...ledgerRoutes, ...mailRoutes,
+  ...peopleRoutes, ...machineRoutes, ...firmwareRoutes, ...policyRoutes, ...changeRoutes, ...checkRoutes, ...reviewRoutes, ...commentRoutes, ...releaseRoutes, ...boardRoutes, ...benchKeyRoutes, ...keyRoutes, ...comparisonRoutes, ...ledgerRoutes, ...backupRoutes, ...mailRoutes,
 ]
 
 const contentSecurity = (secure: boolean) =>

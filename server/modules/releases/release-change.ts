@@ -1,3 +1,4 @@
+import type { KeyObject } from 'node:crypto'
 import type { EntityManager } from '@mikro-orm/core'
 import canonicalize from 'canonicalize'
 import { statements } from '../../../shared/contract/reviews.ts'
@@ -11,11 +12,12 @@ import { resolveJoint, sha256, type ResolvedJoint } from '../checks/resolve-join
 import { schemasFor } from '../firmware/schemas-for.ts'
 import { newestKey } from '../keys/workplace-keys.ts'
 import { appendEntry } from '../ledger/append-entry.ts'
+import { keepCheckpoint } from '../ledger/keep-checkpoint.ts'
 import { newestRelease } from '../machines/current-release.ts'
 import { queueMail } from '../mail/queue-mail.ts'
 import { Person } from '../people/person.entity.ts'
 import type { Content } from '../reviews/content-of.ts'
-import { mustBeAnother } from '../reviews/may-sign.ts'
+import { mustBeAnother, mustBeReady } from '../reviews/may-sign.ts'
 import { Signature } from '../reviews/signature.entity.ts'
 import { buildKit, type BuiltKit } from './build-kit.ts'
 import { firmwareFilesOf } from './firmware-files.ts'
@@ -61,6 +63,8 @@ export interface Prepared {
   revisions: Map<string, number>
   releaseHash: string
   kit: BuiltKit
+  /** the workplace's key that signed the kit, and signs the ledger's end with the release */
+  key: KeyObject
 }
 
 /**
@@ -89,7 +93,7 @@ export async function prepare({ files, keys }: Pick<Services, 'files' | 'keys'>,
     ],
     key: keys.current,
   })
-  return { content, sequence, proposal, joints, revisions, releaseHash: hash, kit }
+  return { content, sequence, proposal, joints, revisions, releaseHash: hash, kit, key: keys.current }
 }
 
 async function writeJoints(em: EntityManager, release: Release, { content, joints: prepared, revisions }: Prepared, now: Date) {
@@ -105,11 +109,11 @@ async function writeJoints(em: EntityManager, release: Release, { content, joint
 const moved = () => new DomainError('content-differs', 'The change moved while you signed. Nothing was released; reload and read it again.')
 
 /**
- * Signs second, and releases: revisions, release, signed manifest, ledger entries and mails in one transaction, or nothing.
+ * Signs second, and releases: revisions, release, signed manifest, ledger entries with a checkpoint, and mails in one transaction, or nothing.
  *
  * The signer's password was re-entered before, and everything slow was prepared; the hashes are checked again here.
  *
- * @throws DomainError wrong-state, own-work, base-outdated, content-differs, version-refused
+ * @throws DomainError wrong-state (rows unread and comments open included), own-work, base-outdated, content-differs, version-refused
  */
 export async function releaseChange(em: EntityManager, change: Change, prepared: Prepared, request: ReleaseRequest): Promise<Release> {
   const { person, now } = request
@@ -117,6 +121,7 @@ export async function releaseChange(em: EntityManager, change: Change, prepared:
   const open = inState(change, 'approved')
   if (!open.allowed) throw new DomainError('wrong-state', `${open.why} Only an approved change is released. Nothing was released.`)
   await mustBeAnother(em, change, person)
+  const rowsRead = await mustBeReady(em, change, person)
   const newest = await newestRelease(em, change.machine)
   if ((newest?.id ?? null) !== (change.baseRelease?.id ?? null)) throw new DomainError('base-outdated', `Release ${newest?.version} came meanwhile. Nothing was released; the change has to be brought up to date and signed again.`)
   if (change.contentHash !== content.hash || request.contentHash !== content.hash || change.machine.lastSequence + 1 !== sequence) throw moved()
@@ -136,8 +141,9 @@ export async function releaseChange(em: EntityManager, change: Change, prepared:
   em.create(ReleaseKit, { release, ...signed, manifestSha256, keyId: key.keyId, zipBytes })
   em.create(Signature, { change, round: change.round, meaning: 'release', statement: statements.release, person: by, personName: person.name, at: now, contentHash: hash })
   markReleased(change, now)
-  await addEvent(em, change, { kind: 'released', person, at: now, note: request.version, details: { contentHash: content.hash, releaseHash: hash, version: request.version, sequence } })
+  await addEvent(em, change, { kind: 'released', person, at: now, note: request.version, details: { contentHash: content.hash, releaseHash: hash, version: request.version, sequence, rowsRead } })
   await appendEntry(em, { at: now, person, act: 'release made', subject: { machine: change.machine.key, release: request.version }, details: { sequence, contentHash: content.hash, manifestSha256, keyId: key.keyId, images: Object.fromEntries(prepared.joints.map((j) => [j.joint, j.sha256])) } })
+  await keepCheckpoint(em, { key: prepared.key, now, occasion: 'release' })
   for (const writer of await em.find(Person, { id: { $in: change.writers } }))
     queueMail(em, { person: writer, subject: `Released: ${change.machine.name} ${request.version}`, text: `${person.name} released change ${change.machine.key}-${change.number}, "${change.title}", as ${change.machine.name} ${request.version} (sequence number ${sequence}).\n`, now })
   return release

@@ -117,7 +117,6 @@ export const reviewRoutes: readonly RouteSpec[] = [
       const answer = await call.act(async (em) => {
         const fresh = await again(em, change)
         mustMatch(call, fresh.revision)
-        await mustBeReady(em, fresh, call.person)
         const release = await releaseChange(em, fresh, prepared, request)
         return { status: 201, body: { machine: fresh.machine.key, version: release.version } }
       })
