@@ -26,7 +26,11 @@ import { DiffTable } from '../features/reviews/components/diff-table.tsx'
 import { History } from '../features/reviews/components/history.tsx'
 import { OtherChanges } from '../features/reviews/components/other-changes.tsx'
 import { Signing } from '../features/reviews/components/signing.tsx'
-import { diffQuery } from '../features/reviews/queries.ts'
+import { diffQuery, effectsQuery } from '../features/reviews/queries.ts'
+import { ReadAll } from '../features/reviews/components/read-box.tsx'
+import { ReadingLine } from '../features/reviews/components/reading-line.tsx'
+import { useReading, type Reading } from '../features/reviews/use-reading.ts'
+import { useMe } from '../lib/me.ts'
 import { queryClient } from '../lib/query-client.ts'
 
 const TextDiff = lazy(() => import('../features/reviews/components/text-diff.tsx'))
@@ -46,13 +50,15 @@ export function Component() {
   const check = useQuery(checkQuery(change.key, change.revision))
   const diff = useQuery(diffQuery(change.key, change.revision))
   const granted = change.state === 'released'
+  const reading = useReading(change, useMe().name)
   return (
     <>
       <ChangeHead change={change} />
       <div className="mt-4 grid grid-cols-[minmax(0,1fr)] gap-x-6 gap-y-8 xl:grid-cols-[minmax(0,1fr)_340px]">
         <div className="min-w-0">
           <Reason change={change} />
-          <Differences change={change} diff={diff} check={check.data} />
+          {reading && <ReadingLine reading={reading} />}
+          <Differences change={change} diff={diff} check={check.data} reading={reading} />
           <section className="mt-8">
             <SectionHeading aux={check.data && countsText(check.data)} actions={<TextLink to={paths.changeCheck(change.key)}>full report</TextLink>}>
               Findings
@@ -68,6 +74,7 @@ export function Component() {
           <Signing
             change={change}
             diff={diff.data}
+            reading={reading}
             verdict={check.data?.verdict ?? null}
             counts={check.data?.counts ?? null}
             onChange={(view) => acceptChange(client, view)}
@@ -93,7 +100,9 @@ function Reason({ change }: { change: ChangeView }) {
   return <p className="mb-4 max-w-[76ch] whitespace-pre-wrap">{change.reason}</p>
 }
 
-function Differences({ change, diff, check }: { change: ChangeView; diff: UseQueryResult<DiffView>; check: CheckView | undefined }) {
+function Differences({ change, diff, check, reading }: { change: ChangeView; diff: UseQueryResult<DiffView>; check: CheckView | undefined; reading: Reading | null }) {
+  const effects = useQuery(effectsQuery(change.key, change.revision)).data
+  const byRow = new Map(effects?.effects.map((e) => [e.row, e]))
   const [text, setText] = useState(false)
   const nameOf = nameIn(change)
   const family = (key: string) => change.set.families[key]?.name ?? change.base.families[key]?.name ?? key
@@ -109,13 +118,16 @@ function Differences({ change, diff, check }: { change: ChangeView; diff: UseQue
         <>
           {d.groups.map((g) => (
             <section key={`${g.family} ${g.joints.join()}`} className="mb-6" aria-label={`${family(g.family)} family`}>
-              <SectionHeading aux={g.joints.map(nameOf).join(', ')}>{family(g.family)} family</SectionHeading>
-              <DiffTable group={g} nameOf={nameOf} baseVersion={change.baseVersion} label={`what alters in the ${family(g.family)} family`} />
+              <SectionHeading aux={g.joints.map(nameOf).join(', ')} actions={<ReadAll rows={[...g.rows, ...g.own.flatMap((o) => o.rows)]} what={`${family(g.family)} family`} reading={reading} />}>
+                {family(g.family)} family
+              </SectionHeading>
+              <DiffTable group={g} nameOf={nameOf} baseVersion={change.baseVersion} label={`what alters in the ${family(g.family)} family`} reading={reading} effects={byRow} />
               {check && <AllTogether check={check} joints={g.joints} nameOf={nameOf} />}
             </section>
           ))}
           <OtherChanges
             diff={d}
+            reading={reading}
             nameOf={{ joint: nameOf, family, bus: (key) => change.set.buses[key]?.name ?? change.base.buses[key]?.name ?? key }}
             letterOf={(letter) => {
               const line = lineOfLetter(letter)

@@ -3,7 +3,7 @@ import '../components/setup-dom.ts'
 import { fireEvent, screen, waitFor, within } from '@testing-library/react'
 import { describe, expect, it } from 'vitest'
 import type { ChangeView } from '../../shared/contract/changes.ts'
-import { statements, type DiffRow, type DiffView } from '../../shared/contract/reviews.ts'
+import { statements, type DiffRow, type DiffView, type EffectsView } from '../../shared/contract/reviews.ts'
 import type { Me } from '../../shared/contract/people.ts'
 import { content } from '../../src/features/reviews/components/other-changes.tsx'
 import { hunksOf, linesBetween } from '../../src/features/reviews/components/text-diff.tsx'
@@ -24,10 +24,16 @@ const diff: DiffView = {
   driveTrains: [{ family: 'knee', rows: [{ key: 'drive:knee:J_load', hash: 'a'.repeat(64), pointer: '/families/knee/driveTrain/J_load', field: 'J_load', before: '{"value":0.0185,"low":0.013,"high":0.03}', after: '0.02' }] }], families: [], buses: [], counts: { values: 4, joints: 2, rows: 5 }, textBefore: '{\n  "a": 1\n}\n', textAfter: '{\n  "a": 2\n}\n',
 }
 
+const rowKeys = [...diff.groups.flatMap((g) => [...g.rows, ...g.own.flatMap((o) => o.rows)]), ...diff.joints, ...diff.driveTrains.flatMap((d) => d.rows)].map((r) => r.key)
+const effects: EffectsView = {
+  effects: [{ row: limit.key, kind: 'effect', effect: { figure: 'torque at the clamp', loop: null, unit: 'N·m', joint: 'l1-knee', before: 5.7, after: 6.51, beforeReads: '', afterReads: '', verdict: 'stable', policy: null } }],
+  progress: { done: 1, total: 1, state: 'done', problem: '' },
+}
+
 const yes = { allowed: true } as const
 const no = (why: string) => ({ allowed: false, why }) as const
 
-function aReview({ me = rafiq, change = {}, may = {}, check = aCheck() }: { me?: Me; change?: Partial<ChangeView>; may?: Partial<ChangeView['may']>; check?: ReturnType<typeof aCheck> } = {}) {
+function aReview({ me = rafiq, change = {}, may = {}, check = aCheck(), reads = rowKeys, mark = true }: { me?: Me; change?: Partial<ChangeView>; may?: Partial<ChangeView['may']>; check?: ReturnType<typeof aCheck>; reads?: string[]; mark?: boolean } = {}) {
   const base = aChange()
   const view: ChangeView = {
     ...base, state: 'submitted', life: 'submitted', revision: 9, contentHash: hash,
@@ -38,6 +44,8 @@ function aReview({ me = rafiq, change = {}, may = {}, check = aCheck() }: { me?:
     'GET /changes/dunlin-47': () => ({ body: view }),
     'GET /changes/dunlin-47/check': { body: check },
     'GET /changes/dunlin-47/diff': { body: diff },
+    'GET /changes/dunlin-47/reading': { body: { read: reads, rows: diff.counts.rows, people: [{ name: 'Ingunn Veblen', read: 2 }], may: { mark: mark ? yes : no('You wrote in this change.') } } },
+    'GET /changes/dunlin-47/effects': { body: effects },
     'GET /changes/dunlin-47/version': { body: { version: '1.8.0', step: 'minor', because: ['current limit alters'] } },
   })
 }
@@ -74,6 +82,54 @@ describe('what alters', () => {
     open('/changes/dunlin-47/review')
     await screen.findByText('All together')
     expect(screen.getByText('velocity phase margin').parentElement!.textContent).toMatch(/55\.3.*46\.4/)
+  })
+})
+
+describe('reading', () => {
+  it('holds the signature until every row is marked, row by row or a family at once', async () => {
+    const { acts, table } = aReview({ reads: [] })
+    table['POST /changes/dunlin-47/reading'] = { body: { read: [limit.key], rows: 5, people: [], may: { mark: yes } } }
+    open('/changes/dunlin-47/review')
+    expect(await screen.findByText('0 of 5 rows read')).toBeTruthy()
+    expect(screen.getByText('Ingunn Veblen has read 2')).toBeTruthy()
+    const sign = screen.getByRole('button', { name: 'Sign the peer review' })
+    expect(sign.getAttribute('aria-description')).toBe('Mark every row as read first: 5 of 5 are open.')
+    fireEvent.click(screen.getAllByRole('checkbox', { name: 'Current limit is read' })[0])
+    await waitFor(() => expect(acts()).toMatchObject([{ method: 'POST', path: '/changes/dunlin-47/reading', body: { rows: [{ key: limit.key, hash: limit.hash }] } }]))
+    await screen.findByText('1 of 5 rows read')
+    fireEvent.click(screen.getByRole('button', { name: /mark 2 as read/ }))
+    await waitFor(() => expect((acts()[1].body as { rows: unknown[] }).rows).toHaveLength(2))
+  })
+
+  it('takes a mark off again', async () => {
+    const { acts, table } = aReview()
+    table[`DELETE /changes/dunlin-47/reading/${encodeURIComponent(limit.key)}`] = { body: { read: [], rows: 5, people: [], may: { mark: yes } } }
+    open('/changes/dunlin-47/review')
+    await screen.findByText('5 of 5 rows read')
+    fireEvent.click(screen.getAllByRole('checkbox', { name: 'Current limit is read' })[0])
+    await waitFor(() => expect(acts()[0]?.method).toBe('DELETE'))
+  })
+
+  it('leads to the next unread row with a key', async () => {
+    aReview({ reads: rowKeys.filter((k) => k !== limit.key) })
+    open('/changes/dunlin-47/review')
+    await screen.findByText('4 of 5 rows read')
+    fireEvent.keyDown(document.body, { key: 'n' })
+    expect(document.activeElement?.getAttribute('aria-label')).toBe('Current limit is read')
+  })
+
+  it('shows no marks to who does not read to sign', async () => {
+    aReview({ me: mirela, mark: false, reads: [] })
+    open('/changes/dunlin-47/review')
+    await screen.findByRole('table', { name: 'what alters in the Knee family' })
+    expect(screen.queryByRole('checkbox', { name: 'Current limit is read' })).toBeNull()
+  })
+
+  it('says beside each value what it does alone', async () => {
+    aReview()
+    open('/changes/dunlin-47/review')
+    const table = await screen.findByRole('table', { name: 'what alters in the Knee family' })
+    await waitFor(() => expect(within(table).getByRole('row', { name: /Current limit/ }).textContent).toMatch(/torque at the clamp.*5\.70.*6\.51/))
   })
 })
 

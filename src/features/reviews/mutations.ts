@@ -1,7 +1,9 @@
-import { useMutation } from '@tanstack/react-query'
+import { useMutation, useQueryClient } from '@tanstack/react-query'
 import type { ChangeView } from '../../../shared/contract/changes.ts'
-import type { ReturnChange, SignPeerReview, SignRelease } from '../../../shared/contract/reviews.ts'
+import type { Marked, ReadingView, ReturnChange, SignPeerReview, SignRelease } from '../../../shared/contract/reviews.ts'
 import { act } from '../../lib/api-client.ts'
+import { readingQuery } from './queries.ts'
+import { readingQuery } from './queries.ts'
 
 type On = Pick<ChangeView, 'key' | 'revision'>
 const at = (change: On) => `/changes/${encodeURIComponent(change.key)}`
@@ -16,3 +18,50 @@ export const useSignRelease = (change: On, onReleased: (made: { machine: string;
 
 export const useReturnChange = (change: On, onReturned: (view: ChangeView) => unknown) =>
   useMutation({ mutationFn: (body: ReturnChange) => act<ChangeView>({ path: `${at(change)}/return`, body, ifMatch: change.revision }), onSuccess: onReturned })
+
+/** Marks rows read, each as it was read, or takes a mark off. Shown at once; the server's answer stands. */
+export function useMarkRead(change: On) {
+  const client = useQueryClient()
+  const { queryKey } = readingQuery(change.key, change.revision)
+  return useMutation({
+    mutationFn: ({ rows, read }: { rows: readonly Marked[]; read: boolean }) =>
+      read
+        ? act<ReadingView>({ path: `${at(change)}/reading`, body: { rows: rows.map(({ key, hash }) => ({ key, hash })) } })
+        : act<ReadingView>({ method: 'DELETE', path: `${at(change)}/reading/${encodeURIComponent(rows[0].key)}` }),
+    onMutate: async ({ rows, read }) => {
+      await client.cancelQueries({ queryKey })
+      const keys = rows.map((r) => r.key)
+      client.setQueryData(queryKey, (now) => now && { ...now, read: read ? [...new Set([...now.read, ...keys])] : now.read.filter((k) => !keys.includes(k)) })
+    },
+    onSuccess: (view) => client.setQueryData(queryKey, view),
+    onError: () => client.invalidateQueries({ queryKey }),
+  })
+}
+
+/** One stroke of reading: rows marked as read, or one taken back. */
+export type Stroke = { read: readonly Marked[] } | { unread: string }
+
+const marks = (view: ReadingView, stroke: Stroke): ReadingView => ({ ...view, read: 'read' in stroke ? [...new Set([...view.read, ...stroke.read.map((r) => r.key)])] : view.read.filter((k) => k !== stroke.unread) })
+
+/** Marks rows as read or unread: shown at once, taken back when the server refuses. Strokes are sent one after the other, so that the last one stands. */
+export function useMarkRows(change: On) {
+  const client = useQueryClient()
+  const key = readingQuery(change.key, change.revision).queryKey
+  return useMutation({
+    scope: { id: `reading ${change.key}` },
+    mutationFn: (stroke: Stroke) =>
+      'read' in stroke
+        ? act<ReadingView>({ path: `${at(change)}/reading`, body: { rows: stroke.read.map((r) => ({ key: r.key, hash: r.hash })) } })
+        : act<ReadingView>({ method: 'DELETE', path: `${at(change)}/reading/${encodeURIComponent(stroke.unread)}` }),
+    onMutate: async (stroke) => {
+      await client.cancelQueries({ queryKey: key })
+      const before = client.getQueryData(key)
+      if (before) client.setQueryData(key, marks(before, stroke))
+    },
+    // The answer to one stroke does not know the next one, which is shown already: only the last of them is taken up.
+    onSuccess: (view) => {
+      if (client.isMutating({ predicate: (m) => m.options.scope?.id === `reading ${change.key}` }) === 1) client.setQueryData(key, view)
+    },
+    onError: () => client.invalidateQueries({ queryKey: key }),
+  })
+}

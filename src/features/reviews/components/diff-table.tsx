@@ -1,14 +1,20 @@
-import type { DiffGroup, DiffRow } from '../../../../shared/contract/reviews.ts'
+import type { DiffGroup, DiffRow, RowEffect } from '../../../../shared/contract/reviews.ts'
 import { byLaw } from '../../../../shared/parameters/laws.ts'
 import { Arrow } from '../../../components/ui/arrow.tsx'
 import { DecimalText } from '../../../components/ui/decimal-text.tsx'
+import type { Reading } from '../use-reading.ts'
 import { BytesChange, OriginChange, percentText, RegisterWords, sideText } from './diff-side.tsx'
+import { EffectCell } from './effect-cell.tsx'
+import { ReadBox } from './read-box.tsx'
 
 export interface DiffTableProps {
   group: DiffGroup
   nameOf: (joint: string) => string
   baseVersion: string | null
   label: string
+  reading: Reading | null
+  /** what each row does alone, by its key */
+  effects: ReadonlyMap<string, RowEffect>
 }
 
 interface Section {
@@ -36,9 +42,10 @@ function ownTitle(name: string, rows: readonly DiffRow[]): string {
 const places = (rows: readonly DiffRow[], of: (r: DiffRow) => string) => Math.max(0, ...rows.map(of).map((t) => (t.includes('.') && /^[\d\u2212.\u00a0]+$/.test(t) ? t.length - t.indexOf('.') : 0)))
 
 /** What alters, parameter by parameter: released and candidate value, change, register, bytes. Narrow screens read it as a list. */
-export function DiffTable({ group, nameOf, baseVersion, label }: DiffTableProps) {
+export function DiffTable({ group, nameOf, baseVersion, label, reading, effects }: DiffTableProps) {
   const sections = sectionsOf(group, nameOf)
   const rows = sections.flatMap((s) => s.rows)
+  const marks = reading?.mark != null
   const [before, after] = [places(rows, (r) => sideText(r.before)), places(rows, (r) => sideText(r.after))]
   return (
     <>
@@ -58,13 +65,14 @@ export function DiffTable({ group, nameOf, baseVersion, label }: DiffTableProps)
               </th>
               <th scope="col">Register</th>
               <th scope="col">Bytes before and after</th>
-              <th scope="col">Origin</th>
+              <th scope="col">Effect of this value alone</th>
+              {marks && <th scope="col">Read</th>}
             </tr>
           </thead>
           {sections.map((s) => (
             <tbody key={s.title}>
               <tr>
-                <th scope="rowgroup" colSpan={8} className="!border-hairline !pt-3 !font-normal">
+                <th scope="rowgroup" colSpan={marks ? 9 : 8} className="!border-hairline !pt-3 !font-normal">
                   {s.title}
                 </th>
               </tr>
@@ -84,8 +92,13 @@ export function DiffTable({ group, nameOf, baseVersion, label }: DiffTableProps)
                     <BytesChange row={r} />
                   </td>
                   <td>
-                    <OriginChange row={r} />
+                    <OriginChange row={r} /> <EffectCell effect={effects.get(r.key)} nameOf={nameOf} alone={group.joints.length === 1} />
                   </td>
+                  {marks && (
+                    <td className="!pr-0">
+                      <ReadBox row={r} title={r.title} reading={reading} />
+                    </td>
+                  )}
                 </tr>
               ))}
             </tbody>
@@ -117,6 +130,10 @@ export function DiffTable({ group, nameOf, baseVersion, label }: DiffTableProps)
                     <RegisterWords row={r} />
                     <BytesChange row={r} />
                     <OriginChange row={r} />
+                  </p>
+                  <p className="flex items-center justify-between gap-3">
+                    <EffectCell effect={effects.get(r.key)} nameOf={nameOf} alone={group.joints.length === 1} />
+                    <ReadBox row={r} title={r.title} reading={reading} />
                   </p>
                 </li>
               ))}

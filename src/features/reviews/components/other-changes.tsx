@@ -1,18 +1,21 @@
 import type { ReactNode } from 'react'
-import type { DiffView } from '../../../../shared/contract/reviews.ts'
+import type { DiffView, Marked } from '../../../../shared/contract/reviews.ts'
 import { Arrow } from '../../../components/ui/arrow.tsx'
 import { SectionHeading } from '../../../components/ui/section-heading.tsx'
 import { formatExact } from '../../../lib/format.ts'
+import type { Reading } from '../use-reading.ts'
+import { ReadBox } from './read-box.tsx'
 
 export interface OtherChangesProps {
   diff: DiffView
   nameOf: { joint: (key: string) => string; family: (key: string) => string; bus: (key: string) => string }
   /** symbol, words and unit of a drive train's letter */
   letterOf: (letter: string) => { symbol: ReactNode; words: string; unit: string }
+  reading: Reading | null
 }
 
 /** What alters beside values: joints that come and go, drive trains, buses. */
-export function OtherChanges({ diff, nameOf, letterOf }: OtherChangesProps) {
+export function OtherChanges({ diff, nameOf, letterOf, reading }: OtherChangesProps) {
   return (
     <>
       {diff.joints.length > 0 && (
@@ -20,8 +23,11 @@ export function OtherChanges({ diff, nameOf, letterOf }: OtherChangesProps) {
           <SectionHeading>Joints that come and go</SectionHeading>
           <ul className="mt-1">
             {diff.joints.map((j) => (
-              <li key={j.key} className={j.is === 'removed' ? 'text-oxide' : ''}>
-                {nameOf.joint(j.joint)} is {j.is}.
+              <li key={j.key} className="flex items-center gap-3 border-b border-hairline py-1">
+                <span className={j.is === 'removed' ? 'text-oxide' : ''}>{`${nameOf.joint(j.joint)} is ${j.is}.`}</span>
+                <span className="ml-auto">
+                  <ReadBox row={j} title={`${nameOf.joint(j.joint)} ${j.is}`} reading={reading} />
+                </span>
               </li>
             ))}
           </ul>
@@ -32,9 +38,10 @@ export function OtherChanges({ diff, nameOf, letterOf }: OtherChangesProps) {
           <SectionHeading aux="the model the check goes by; no register holds it">Drive train of the {nameOf.family(family)} family</SectionHeading>
           <Rows
             label={`drive train of the ${nameOf.family(family)} family`}
+            reading={reading}
             rows={rows.map((r) => {
               const l = letterOf(r.field)
-              return { key: r.key, head: <>{l.symbol} <span className="text-13 text-ink-2">{l.words}</span></>, unit: l.unit, before: r.before, after: r.after }
+              return { row: r, title: l.words || r.field, head: <>{l.symbol} <span className="text-13 text-ink-2">{l.words}</span></>, unit: l.unit, before: r.before, after: r.after }
             })}
           />
         </section>
@@ -42,13 +49,13 @@ export function OtherChanges({ diff, nameOf, letterOf }: OtherChangesProps) {
       {diff.buses.map(({ bus, rows }) => (
         <section key={bus} className="mt-6">
           <SectionHeading>Bus {nameOf.bus(bus)}</SectionHeading>
-          <Rows label={`bus ${nameOf.bus(bus)}`} rows={rows.map((r) => ({ key: r.key, head: fieldWords[r.field] ?? r.field, unit: fieldUnits[r.field] ?? '', before: r.before, after: r.after }))} />
+          <Rows label={`bus ${nameOf.bus(bus)}`} reading={reading} rows={rows.map((r) => ({ row: r, title: fieldWords[r.field] ?? r.field, head: fieldWords[r.field] ?? r.field, unit: fieldUnits[r.field] ?? '', before: r.before, after: r.after }))} />
         </section>
       ))}
       {diff.families.map(({ family, rows }) => (
         <section key={family} className="mt-6">
           <SectionHeading aux="its name, and values that no joint of it takes">{nameOf.family(family)} family itself</SectionHeading>
-          <Rows label={`the ${nameOf.family(family)} family itself`} rows={rows.map((r) => ({ key: r.key, head: fieldWords[r.field] ?? r.field, unit: '', before: r.before, after: r.after }))} />
+          <Rows label={`the ${nameOf.family(family)} family itself`} reading={reading} rows={rows.map((r) => ({ row: r, title: fieldWords[r.field] ?? r.field, head: fieldWords[r.field] ?? r.field, unit: '', before: r.before, after: r.after }))} />
         </section>
       ))}
     </>
@@ -59,19 +66,21 @@ const fieldWords: Record<string, string> = { name: 'name', bitRate: 'bit rate', 
 const fieldUnits: Record<string, string> = { bitRate: 'bit/s', supply: 'V', pullUp: 'Ω', capacitance: 'F', pollingRate: 'Hz' }
 
 interface Row {
-  key: string
+  row: Marked
+  /** plain words, for the mark */
+  title: string
   head: ReactNode
   unit: string
   before: string | null
   after: string | null
 }
 
-function Rows({ label, rows }: { label: string; rows: readonly Row[] }) {
+function Rows({ label, rows, reading }: { label: string; rows: readonly Row[]; reading: Reading | null }) {
   return (
     <table className="table table-dense mt-1" aria-label={label}>
       <tbody>
         {rows.map((r) => (
-          <tr key={r.key}>
+          <tr key={r.row.key}>
             <td role="rowheader" className="!whitespace-normal">
               {r.head}
             </td>
@@ -79,6 +88,9 @@ function Rows({ label, rows }: { label: string; rows: readonly Row[] }) {
               <span className="num">{content(r.before)}</span>
               <Arrow />
               <span className="num font-medium text-brass">{content(r.after)}</span> <span className="unit text-13">{r.unit}</span>
+            </td>
+            <td className="end !pr-0">
+              <ReadBox row={r.row} title={r.title} reading={reading} />
             </td>
           </tr>
         ))}

@@ -9,6 +9,8 @@ import { PasswordField } from '../../../components/ui/password-field.tsx'
 
 export interface SignPeerReviewProps {
   onSign: (password: string) => void
+  /** why it can't be signed yet, whatever is typed; null when it can */
+  held: string | null
   pending: boolean
   problem: unknown
   /** the way back for the change */
@@ -16,10 +18,10 @@ export interface SignPeerReviewProps {
 }
 
 /** Signs the peer review: the statement, the password again. The password is let go of when it was refused. */
-export function SignPeerReviewForm({ onSign, pending, problem, other }: SignPeerReviewProps) {
+export function SignPeerReviewForm({ onSign, held, pending, problem, other }: SignPeerReviewProps) {
   const [stated, setStated] = useState(false)
   const [password, setPassword] = useState('')
-  const missing = !stated ? 'State what you sign first.' : password === '' ? 'Enter your password first.' : null
+  const missing = held ?? (!stated ? 'State what you sign first.' : password === '' ? 'Enter your password first.' : null)
   return (
     <form
       className="ml-[30px] grid gap-3"

@@ -18,13 +18,15 @@ export interface SignReleaseProps {
   proposal: VersionProposal
   joints: number
   onSign: (signed: { password: string; version: string; stepReason?: string }) => void
+  /** why it can't be signed yet, whatever is typed; null when it can */
+  held: string | null
   pending: boolean
   problem: unknown
   other: ReactNode
 }
 
 /** Signs the release: version with the step proposed, a reason for a lower one, the statement, the password again. */
-export function SignReleaseForm({ machineName, baseVersion, proposal, joints, onSign, pending, problem, other }: SignReleaseProps) {
+export function SignReleaseForm({ machineName, baseVersion, proposal, joints, onSign, held, pending, problem, other }: SignReleaseProps) {
   const [typed, setTyped] = useState<string | null>(null)
   const [stepReason, setStepReason] = useState('')
   const [stated, setStated] = useState(false)
@@ -33,7 +35,7 @@ export function SignReleaseForm({ machineName, baseVersion, proposal, joints, on
   const step = baseVersion === null ? null : stepBetween(baseVersion, version)
   const lower = step !== null && isLower(step, proposal.step)
   const versionError = partsOf(version) === null ? 'A version has the form 1.2.3.' : baseVersion !== null && step === null ? `It must come after ${baseVersion}.` : fieldError(problem, '/version')
-  const missing = versionError ?? (lower && stepReason.trim() === '' ? `A ${step} step needs a reason: ${proposal.step} is proposed.` : !stated ? 'State what you sign first.' : password === '' ? 'Enter your password first.' : null)
+  const missing = versionError ?? held ?? (lower && stepReason.trim() === '' ? `A ${step} step needs a reason: ${proposal.step} is proposed.` : !stated ? 'State what you sign first.' : password === '' ? 'Enter your password first.' : null)
   return (
     <form
       className="ml-[30px] grid gap-3"

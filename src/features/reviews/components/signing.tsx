@@ -10,6 +10,7 @@ import { Waiting } from '../../../components/ui/waiting.tsx'
 import { count } from '../../../lib/format.ts'
 import { useReturnChange, useSignPeerReview, useSignRelease } from '../mutations.ts'
 import { versionQuery } from '../queries.ts'
+import type { Reading } from '../use-reading.ts'
 import { ReturnDialog } from './return-dialog.tsx'
 import { SignPeerReviewForm } from './sign-peer-review.tsx'
 import { SignReleaseForm } from './sign-release.tsx'
@@ -18,6 +19,7 @@ import { SignaturesPanel } from './signatures-panel.tsx'
 export interface SigningProps {
   change: ChangeView
   diff: DiffView | undefined
+  reading: Reading | null
   verdict: Verdict | null
   counts: CheckResult['counts'] | null
   /** takes up the change as an act left it */
@@ -26,7 +28,7 @@ export interface SigningProps {
 }
 
 /** Signatures with the form for the one whose turn it is, and the way back. */
-export function Signing({ change, diff, verdict, counts, onChange, onReleased }: SigningProps) {
+export function Signing({ change, diff, reading, verdict, counts, onChange, onReleased }: SigningProps) {
   const [returning, setReturning] = useState(false)
   const sign = useSignPeerReview(change, onChange)
   const release = useSignRelease(change, onReleased)
@@ -36,6 +38,8 @@ export function Signing({ change, diff, verdict, counts, onChange, onReleased }:
   const hash = change.contentHash
   const back = mayReturn.allowed && <Button onClick={() => setReturning(true)}>Return…</Button>
   const joints = diff?.counts.joints ?? 0
+  const unread = reading ? reading.rows - reading.read.size : 0
+  const held = unread > 0 ? `Mark every row as read first: ${unread} of ${reading?.rows} ${unread === 1 ? 'is' : 'are'} open.` : null
   return (
     <>
       <SignaturesPanel
@@ -44,13 +48,14 @@ export function Signing({ change, diff, verdict, counts, onChange, onReleased }:
           ...(diff ? [{ key: 'alters', value: `${count(diff.counts.values, 'value')} on ${count(joints, 'joint')}` }] : []),
           ...(verdict ? [{ key: 'verdict', value: <VerdictMark verdict={verdict} size={15} /> }] : []),
           ...(counts ? [{ key: 'findings', value: [counts.block && `${counts.block} block`, counts['concession needed'] && `${counts['concession needed']} concession needed`, counts.advise && `${counts.advise} advise`, `${counts.pass} pass`].filter(Boolean).join(', ') }] : []),
+          ...(reading?.mark ? [{ key: 'read', value: `${reading.read.size} of ${reading.rows} ${reading.rows === 1 ? 'row' : 'rows'}` }] : []),
           { key: 'concessions', value: change.concessions.length === 0 ? 'none' : String(change.concessions.length) },
         ]}
-        peerReview={signPeerReview.allowed && hash ? <SignPeerReviewForm onSign={(password) => sign.mutate({ password, contentHash: hash })} pending={sign.isPending} problem={sign.error} other={back} /> : null}
+        peerReview={signPeerReview.allowed && hash ? <SignPeerReviewForm held={held} onSign={(password) => sign.mutate({ password, contentHash: hash })} pending={sign.isPending} problem={sign.error} other={back} /> : null}
         release={
           mayRelease.allowed && hash ? (
             version.data ? (
-              <SignReleaseForm machineName={change.machineName} baseVersion={change.baseVersion} proposal={version.data} joints={joints} onSign={(signed) => release.mutate({ ...signed, contentHash: hash })} pending={release.isPending} problem={release.error} other={back} />
+              <SignReleaseForm held={held} machineName={change.machineName} baseVersion={change.baseVersion} proposal={version.data} joints={joints} onSign={(signed) => release.mutate({ ...signed, contentHash: hash })} pending={release.isPending} problem={release.error} other={back} />
             ) : version.isError ? (
               <ProblemPanel problem={version.error} onRetry={() => void version.refetch()} />
             ) : (

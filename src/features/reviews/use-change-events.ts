@@ -1,0 +1,59 @@
+import { useEffect, useEffectEvent, useState } from 'react'
+import type { ChangeNews, PresencePage, Present } from '../../../shared/contract/presence.ts'
+
+type News = Exclude<ChangeNews, { kind: 'present' }>
+
+/** A stream that the server closed for good is opened again after this, ms: rights or the session may be back. */
+const TRY_AGAIN = 30_000
+
+/**
+ * Follows a change: who else has it open, and what is saved meanwhile.
+ *
+ * Only a page in view listens, since a browser holds few connections to one server; on its return it reads again what it may have missed.
+ *
+ * @param onNews    of each act by anybody, also of this person on another page
+ * @param onMissed  the stream was interrupted: what happened meanwhile is not known
+ */
+export function useChangeEvents(change: string, page: PresencePage, { onNews, onMissed }: { onNews: (news: News) => void; onMissed: () => void }): readonly Present[] {
+  const [present, setPresent] = useState<readonly Present[]>([])
+  const hear = useEffectEvent((news: ChangeNews) => {
+    if (news.kind === 'present') setPresent(news.people)
+    else onNews(news)
+  })
+  const missed = useEffectEvent(onMissed)
+
+  useEffect(() => {
+    // Old browsers and tests of the page know no such streams; the page then reads anew as it always does.
+    if (typeof EventSource === 'undefined') return
+    let source: EventSource | null = null
+    let timer: ReturnType<typeof setTimeout> | undefined
+    let opened = false
+    const close = () => {
+      clearTimeout(timer)
+      source?.close()
+      source = null
+      setPresent([])
+    }
+    const open = () => {
+      close()
+      source = new EventSource(`/api/changes/${encodeURIComponent(change)}/events?page=${page}`)
+      source.onopen = () => {
+        if (opened) missed()
+        opened = true
+      }
+      source.onmessage = ({ data }) => hear(JSON.parse(data as string) as ChangeNews)
+      source.onerror = () => {
+        setPresent([])
+        if (source?.readyState === EventSource.CLOSED) timer = setTimeout(open, TRY_AGAIN)
+      }
+    }
+    const look = () => (document.visibilityState === 'visible' ? open() : close())
+    look()
+    document.addEventListener('visibilitychange', look)
+    return () => {
+      document.removeEventListener('visibilitychange', look)
+      close()
+    }
+  }, [change, page])
+  return present
+}
