@@ -58,6 +58,8 @@ export interface LinearReport {
   /** s; null where nothing decays. */
   readonly slowestTimeConstant: number | null
   readonly eigenvalues: readonly SignificantEigenvalue[]
+  /** All eigenvalues over T_h, those that die out at once included. */
+  readonly spectrum: { readonly re: Float64Array; readonly im: Float64Array }
   /** Frequencies of eigenvalues are known modulo this, Hz. */
   readonly foldHz: number
   readonly loops: Readonly<Partial<Record<ControlMode, LoopReport>>>
@@ -112,19 +114,21 @@ function overall(joint: SampledJoint, last: Stability): Omit<LinearReport, 'loop
   const rho = perTick ? last.rho ** p : last.rho
   const epsilon = perTick ? Math.max(last.epsilon, p * (last.epsilon - 1e-9)) : last.epsilon
   const list: SignificantEigenvalue[] = []
+  const spectrum = { re: last.re.slice(), im: last.im.slice() }
   for (let k = 0; k < last.re.length; k++) {
     let modulus = Math.hypot(last.re[k], last.im[k])
     let angle = Math.atan2(last.im[k], last.re[k])
     if (perTick) {
       modulus **= p
       angle *= p
+      spectrum.re[k] = modulus * Math.cos(angle)
+      spectrum.im[k] = modulus * Math.sin(angle)
     }
     if (modulus < SIGNIFICANT) continue
     const folded = Math.abs(Math.atan2(Math.sin(angle), Math.cos(angle)))
-    const exact = !perTick
     list.push({
-      re: exact ? last.re[k] : modulus * Math.cos(angle),
-      im: exact ? last.im[k] : modulus * Math.sin(angle),
+      re: spectrum.re[k],
+      im: spectrum.im[k],
       modulus,
       decayRate: -Math.log(modulus) / T_h,
       foldedHz: folded / (2 * Math.PI * T_h),
@@ -148,6 +152,7 @@ function overall(joint: SampledJoint, last: Stability): Omit<LinearReport, 'loop
     decayRate,
     slowestTimeConstant: decayRate > 0 ? 1 / decayRate : null,
     eigenvalues: list,
+    spectrum,
     foldHz: 1 / T_h,
     windowDelay: windowDelay(model.firmware.W, T_o),
     velocityQuantum: velocityQuantum(model.plant, model.firmware),

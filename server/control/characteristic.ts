@@ -1,7 +1,7 @@
 import { complexMatrix, solveComplex, type ComplexMatrix } from './complex-matrix.ts'
-import { balance } from './eigenvalues.ts'
 import type { LiftedPlant } from './lifted-plant.ts'
 import type { Firmware } from './model.ts'
+import { PlantFraction } from './plant-fraction.ts'
 
 /**
  * The characteristic polynomial det(λI − Φ) of the outer closures, built without Φ.
@@ -29,9 +29,8 @@ export class Characteristic {
   private readonly fourier: Float64Array
   private readonly valueRe: Float64Array
   private readonly valueIm: Float64Array
-  // Numerators N_k of χ(λ)·P(λ) = Σ N_k·λ^k, χ, and both at the nodes.
-  private readonly numerators: Float64Array
-  private readonly chi: Float64Array
+  // χ·P as numerators, and χ·P and χ at the nodes.
+  private readonly fraction: PlantFraction
   private readonly nodeN: Float64Array
   private readonly nodeChi: Float64Array
   // Where sample k − W falls in the hyperperiod (1…q), and how many hyperperiods ago.
@@ -47,14 +46,6 @@ export class Characteristic {
   private readonly column: Float64Array
   private readonly det = { re: 0, im: 0 }
   private readonly scratch: Float64Array
-  private readonly A: Float64Array
-  private readonly B: Float64Array
-  private readonly C: Float64Array
-  private readonly scale: Float64Array
-  private readonly R: Float64Array
-  private readonly AR: Float64Array
-  private readonly V: Float64Array
-  private readonly AV: Float64Array
   private readonly resolvent: ComplexMatrix
   private readonly drive: ComplexMatrix
   private lifted: LiftedPlant | null = null
@@ -85,8 +76,7 @@ export class Characteristic {
     }
     this.valueRe = new Float64Array(half)
     this.valueIm = new Float64Array(half)
-    this.numerators = new Float64Array((n + 1) * q * q)
-    this.chi = new Float64Array(n + 1)
+    this.fraction = new PlantFraction(q, n)
     this.nodeN = new Float64Array(2 * half * q * q)
     this.nodeChi = new Float64Array(2 * half)
     this.source = new Int32Array(q + 1)
@@ -106,62 +96,16 @@ export class Characteristic {
     this.matrix = complexMatrix(q)
     this.column = new Float64Array(2 * (q + 1))
     this.scratch = new Float64Array(2 * q * q)
-    this.A = new Float64Array(n * n)
-    this.B = new Float64Array(n * q)
-    this.C = new Float64Array(q * n)
-    this.scale = new Float64Array(n)
-    this.R = new Float64Array(n * n)
-    this.AR = new Float64Array(n * n)
-    this.V = new Float64Array(n * q)
-    this.AV = new Float64Array(n * q)
     this.resolvent = complexMatrix(n)
     this.drive = { n, re: new Float64Array(n * q), im: new Float64Array(n * q) }
   }
 
-  /** Takes a plant: numerators by Faddeev and Leverrier's recursion on the balanced matrix, then their values at the nodes. */
+  /** Takes a plant: its numerators, then their values at the nodes. */
   setPlant(lifted: LiftedPlant): void {
-    const { n, q, A, B, C, R, AR, V, AV, chi, numerators, scale } = this
+    const { n, q } = this
     this.lifted = lifted
-    A.set(lifted.A)
-    balance(A, n, scale)
-    for (let i = 0; i < n; i++) {
-      for (let j = 0; j < q; j++) {
-        B[i * q + j] = lifted.B[i * q + j] / scale[i]
-        C[j * n + i] = lifted.C[j * n + i] * scale[i]
-      }
-    }
-    R.fill(0)
-    for (let i = 0; i < n; i++) R[i * n + i] = 1
-    V.set(B)
-    chi[n] = 1
-    this.addNumerator(n, null)
-    for (let k = n - 1; k >= 0; k--) {
-      let trace = 0
-      for (let i = 0; i < n; i++) {
-        for (let j = 0; j < n; j++) {
-          let sum = 0
-          for (let l = 0; l < n; l++) sum += A[i * n + l] * R[l * n + j]
-          AR[i * n + j] = sum
-        }
-        trace += AR[i * n + i]
-      }
-      const c = -trace / (n - k)
-      chi[k] = c
-      this.addNumerator(k, V)
-      if (k === 0) break
-      for (let i = 0; i < n; i++) {
-        for (let j = 0; j < n; j++) R[i * n + j] = AR[i * n + j]
-        R[i * n + i] += c
-      }
-      for (let i = 0; i < n; i++) {
-        for (let j = 0; j < q; j++) {
-          let sum = c * B[i * q + j]
-          for (let l = 0; l < n; l++) sum += A[i * n + l] * V[l * q + j]
-          AV[i * q + j] = sum
-        }
-      }
-      V.set(AV)
-    }
+    this.fraction.take(lifted)
+    const { numerators, chi } = this.fraction
     const size = q * q
     const half = this.nodes / 2
     for (let j = 0; j < half; j++) {
@@ -195,20 +139,6 @@ export class Characteristic {
   /** Whether this very lift was taken last. */
   holds(lifted: LiftedPlant): boolean {
     return this.lifted === lifted
-  }
-
-  /** N_k = C·V + χ_k·D. */
-  private addNumerator(k: number, V: Float64Array | null): void {
-    const { q, n, C, chi, numerators } = this
-    const { D } = this.lifted as LiftedPlant
-    const at = k * q * q
-    for (let a = 0; a < q; a++) {
-      for (let b = 0; b < q; b++) {
-        let sum = chi[k] * D[a * q + b]
-        if (V) for (let i = 0; i < n; i++) sum += C[a * n + i] * V[i * q + b]
-        numerators[at + a * q + b] = sum
-      }
-    }
   }
 
   setLaws(gains: Firmware, T_o: number): void {

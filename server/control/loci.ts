@@ -17,6 +17,18 @@ export interface LocusSource {
   isLow?(above: LocusNode, below: LocusNode): boolean
 }
 
+/** A loop whose loci can be traced and whose strongest frequency and lifted sensitivity can be asked for. */
+export interface MarginSource extends LocusSource {
+  /** Ticks of the loop's own task in a period ψ: ψ = q·ω·period. */
+  readonly period: number
+  /** Signed true frequency, radians per own tick within ±π, of the strongest component of the locus λ at ψ. */
+  strongest(psi: number, re: number, im: number): number
+  /** Largest singular value of (I + L)⁻¹ at ψ, or 0 when its bound shows it to be at most `floor`. */
+  sensitivityNorm(psi: number, floor: number): number
+  /** One locus at ψ, near a guess, cheaper than all of them; null where it is not found. */
+  follow?(psi: number, re: number, im: number): { readonly re: number; readonly im: number } | null
+}
+
 /** Loci below this modulus, or above its inverse, cross nothing within ±60 dB. */
 const NEGLIGIBLE = 5e-4
 /** How far a locus may stray, in ln and rad (or relative to its size), from a straight line between nodes. */

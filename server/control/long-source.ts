@@ -1,5 +1,5 @@
 import { complexEigenvalues, complexMatrix, solveComplex, type ComplexMatrix } from './complex-matrix.ts'
-import type { MarginSource } from './margins.ts'
+import type { MarginSource } from './loci.ts'
 import { OuterCarrier, outerLayout } from './monodromy.ts'
 import type { OuterSteps } from './outer-steps.ts'
 import type { SampledJoint } from './sampled-joint.ts'

@@ -1,7 +1,7 @@
 import { complexEigenvalues, complexMatrix, solveComplex, type ComplexMatrix } from './complex-matrix.ts'
 import { CurrentTransfer } from './current-transfer.ts'
 import type { LiftedPlant } from './lifted-plant.ts'
-import type { MarginSource } from './margins.ts'
+import type { MarginSource } from './loci.ts'
 import { invertSensitivity, OuterTransfer } from './outer-transfer.ts'
 import type { SampledJoint } from './sampled-joint.ts'
 import { largestSingularValue, singularValueBound } from './singular-value.ts'

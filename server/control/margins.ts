@@ -1,4 +1,5 @@
-import { fromMinusOne, traceLoci, type LocusNode, type LocusSource } from './loci.ts'
+import { fromMinusOne, traceLoci, type LocusNode, type MarginSource } from './loci.ts'
+import { liftedPeak, sensitivityPeak, type Peak } from './sensitivity-peak.ts'
 
 /** Gain margins are searched this far, up and down. */
 export const GAIN_LIMIT_DB = 60
@@ -32,18 +33,6 @@ export interface LoopMargins {
   readonly Ms_lifted_norm: SensitivityPeak
 }
 
-/** A loop whose loci can be traced and whose strongest frequency and lifted sensitivity can be asked for. */
-export interface MarginSource extends LocusSource {
-  /** Ticks of the loop's own task in a period ψ: ψ = q·ω·period. */
-  readonly period: number
-  /** Signed true frequency, radians per own tick within ±π, of the strongest component of the locus λ at ψ. */
-  strongest(psi: number, re: number, im: number): number
-  /** Largest singular value of (I + L)⁻¹ at ψ, or 0 when its bound shows it to be at most `floor`. */
-  sensitivityNorm(psi: number, floor: number): number
-  /** One locus at ψ, near a guess, cheaper than all of them; null where it is not found. */
-  follow?(psi: number, re: number, im: number): { readonly re: number; readonly im: number } | null
-}
-
 export const UNSTABLE_MARGINS: LoopMargins = {
   gainUp: { kind: 'unstable' },
   gainDown: { kind: 'unstable' },
@@ -51,12 +40,6 @@ export const UNSTABLE_MARGINS: LoopMargins = {
   delay: { kind: 'unstable' },
   M_s: { kind: 'unstable' },
   Ms_lifted_norm: { kind: 'unstable' },
-}
-
-interface Peak {
-  readonly psi: number
-  readonly value: number
-  readonly hz: number
 }
 
 interface Crossing {
@@ -264,143 +247,4 @@ class CrossingFinder {
     }
     return { psi, re: this.re[best], im: this.im[best] }
   }
-}
-
-const GOLDEN = 0.5 * (Math.sqrt(5) - 1)
-
-/** Maximum of f on [low, high] by golden section to 2e-4 of the interval; the value errs by the square of that. */
-function goldenPeak(f: (psi: number) => number, low: number, high: number): { readonly psi: number; readonly value: number } {
-  let a = low
-  let b = high
-  let x = b - GOLDEN * (b - a)
-  let y = a + GOLDEN * (b - a)
-  let fx = f(x)
-  let fy = f(y)
-  for (let step = 0; step < 18; step++) {
-    if (fx > fy) {
-      b = y
-      y = x
-      fy = fx
-      x = b - GOLDEN * (b - a)
-      fx = f(x)
-    } else {
-      a = x
-      x = y
-      fx = fy
-      y = a + GOLDEN * (b - a)
-      fy = f(y)
-    }
-  }
-  return fx > fy ? { psi: x, value: fx } : { psi: y, value: fy }
-}
-
-/** A locus of settled nodes leaves its chord by at most this share of its modulus. */
-const CHORD_ERROR = 0.06
-
-/** Distance of −1 from the chord of locus i between two nodes. */
-function toMinusOne(a: LocusNode, b: LocusNode, i: number): number {
-  const ar = a.re[i] + 1
-  const dr = b.re[i] - a.re[i]
-  const di = b.im[i] - a.im[i]
-  const length = dr * dr + di * di
-  const t = length === 0 ? 0 : Math.min(1, Math.max(0, -(ar * dr + a.im[i] * di) / length))
-  return Math.hypot(ar + t * dr, a.im[i] + t * di)
-}
-
-function sensitivityPeak(source: MarginSource, nodes: readonly LocusNode[], toHz: number): Peak {
-  const { q } = source
-  const re = new Float64Array(q)
-  const im = new Float64Array(q)
-  const most = (psi: number): number => {
-    source.evaluate(psi, re, im)
-    let least = Infinity
-    for (let c = 0; c < q; c++) least = Math.min(least, (1 + re[c]) ** 2 + im[c] ** 2)
-    return 1 / Math.sqrt(least)
-  }
-  let best = { psi: nodes[0].psi, value: 0 }
-  for (const node of nodes) {
-    for (let i = 0; i < q; i++) {
-      const value = 1 / Math.hypot(1 + node.re[i], node.im[i])
-      if (value > best.value) best = { psi: node.psi, value }
-    }
-  }
-  // Intervals by the least distance from −1 that their chords allow; those that cannot beat the best are left.
-  const intervals: { readonly k: number; readonly allowed: number }[] = []
-  for (let k = 1; k < nodes.length; k++) {
-    let allowed = Infinity
-    for (let i = 0; i < q; i++) {
-      const size = Math.max(Math.hypot(nodes[k].re[i], nodes[k].im[i]), Math.hypot(nodes[k - 1].re[i], nodes[k - 1].im[i]))
-      allowed = Math.min(allowed, toMinusOne(nodes[k - 1], nodes[k], i) - CHORD_ERROR * size)
-    }
-    intervals.push({ k, allowed })
-  }
-  intervals.sort((a, b) => a.allowed - b.allowed)
-  for (const { k, allowed } of intervals) {
-    if (allowed * best.value >= 1) break
-    const peak = goldenPeak(source.follow ? alongChords(source, nodes[k - 1], nodes[k], most) : most, nodes[k - 1].psi, nodes[k].psi)
-    if (peak.value > best.value) best = peak
-  }
-  most(best.psi)
-  let at = 0
-  for (let c = 1; c < q; c++) if (Math.hypot(1 + re[c], im[c]) < Math.hypot(1 + re[at], im[at])) at = c
-  return { ...best, hz: Math.abs(source.strongest(best.psi, re[at], im[at])) * toHz }
-}
-
-/** 1/|1 + λ| of the locus whose chord passes nearest to −1, followed without the others. */
-function alongChords(source: MarginSource, a: LocusNode, b: LocusNode, all: (psi: number) => number): (psi: number) => number {
-  let near = 0
-  for (let i = 1; i < source.q; i++) if (toMinusOne(a, b, i) < toMinusOne(a, b, near)) near = i
-  return (psi) => {
-    const t = (psi - a.psi) / (b.psi - a.psi)
-    const at = source.follow?.(psi, a.re[near] + t * (b.re[near] - a.re[near]), a.im[near] + t * (b.im[near] - a.im[near]))
-    return at ? 1 / Math.hypot(1 + at.re, at.im) : all(psi)
-  }
-}
-
-/** The norm peaks beside M_s, and is at least as high; from there and from nodes whose bound lets them be higher. */
-function liftedPeak(source: MarginSource, nodes: readonly LocusNode[], M_s: Peak, toHz: number): Peak {
-  if (source.q === 1) return M_s
-  const norm = (psi: number): number => source.sensitivityNorm(psi, 0)
-  let best = climb(norm, M_s.psi, M_s.psi / (10 * M_s.value))
-  const floor = best.value * 0.95
-  // Where every eigenvalue is tiny or huge, S is near a projection and its norm near 1.
-  const values = nodes.map((node) => (nearOne(node) ? source.sensitivityNorm(node.psi, floor) : 0))
-  for (let k = 0; k < nodes.length; k++) {
-    if (values[k] < floor) continue
-    if (k > 0 && values[k - 1] > values[k]) continue
-    if (k < nodes.length - 1 && values[k + 1] > values[k]) continue
-    const low = nodes[Math.max(0, k - 1)].psi
-    const high = nodes[Math.min(nodes.length - 1, k + 1)].psi
-    if (low < best.psi && best.psi < high) continue
-    const peak = goldenPeak(norm, low, high)
-    if (peak.value > best.value) best = peak
-  }
-  return { ...best, hz: (best.psi * toHz) / source.q }
-}
-
-function nearOne(node: LocusNode): boolean {
-  for (let i = 0; i < node.re.length; i++) {
-    const size = node.re[i] ** 2 + node.im[i] ** 2
-    if (size > 1e-3 && size < 1e3) return true
-  }
-  return false
-}
-
-/** Peak of f near ψ: steps grow on both sides until f falls, then golden section. */
-function climb(f: (psi: number) => number, psi: number, step: number): { readonly psi: number; readonly value: number } {
-  const top = f(psi)
-  const reach = (direction: number): number => {
-    let at = psi
-    let last = top
-    for (let h = step; h < Math.PI; h *= 2) {
-      const next = Math.min(Math.PI, Math.max(psi * 1e-3, at + direction * h))
-      const value = f(next)
-      at = next
-      if (value < last || next === Math.PI || next === psi * 1e-3) break
-      last = value
-    }
-    return at
-  }
-  const peak = goldenPeak(f, reach(-1), reach(1))
-  return peak.value > top ? peak : { psi, value: top }
 }

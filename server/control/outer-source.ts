@@ -1,7 +1,7 @@
 import { LongSource } from './long-source.ts'
 import type { LiftedPlant } from './lifted-plant.ts'
 import { OuterSource } from './margin-sources.ts'
-import type { MarginSource } from './margins.ts'
+import type { MarginSource } from './loci.ts'
 import type { OuterSteps } from './outer-steps.ts'
 import type { OuterTransfer } from './outer-transfer.ts'
 import type { SampledJoint } from './sampled-joint.ts'

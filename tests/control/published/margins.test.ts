@@ -1,7 +1,8 @@
 import { describe, expect, it } from 'vitest'
 import { zeroOrderHold } from '../../../server/control/discretise.ts'
 import { complexMatrix, solveComplex } from '../../../server/control/complex-matrix.ts'
-import { marginsOf, type LoopMargins, type MarginSource } from '../../../server/control/margins.ts'
+import type { MarginSource } from '../../../server/control/loci.ts'
+import { marginsOf, type LoopMargins } from '../../../server/control/margins.ts'
 import { companion, entries, entryOf, product } from './entry.ts'
 
 const list = entries('margins')
