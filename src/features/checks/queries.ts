@@ -1,17 +1,19 @@
 import { queryOptions } from '@tanstack/react-query'
-import type { CheckView } from '../../../shared/contract/checks.ts'
-import { get } from '../../lib/api-client.ts'
+import type { AskMap, AskRetune, CheckView, JointReportView, MapView, Progress, RetuneView } from '../../../shared/contract/checks.ts'
+import { act, get } from '../../lib/api-client.ts'
 
-/** While the tolerances are walked in the background, the check is read again this often, ms. */
+/** While work goes on in the background, its answer is read again this often, ms. */
 const EVERY = 800
 
-const whileRunning = ({ state }: { state: { data?: CheckView } }) => (state.data && !state.data.complete && state.data.progress.state === 'running' ? EVERY : false)
+const at = (change: string) => `/changes/${encodeURIComponent(change)}/check`
+const goesOn = (progress: Progress | undefined) => (progress?.state === 'running' ? EVERY : false)
+const whileRunning = ({ state }: { state: { data?: Pick<CheckView, 'complete' | 'progress'> } }) => (state.data && !state.data.complete ? goesOn(state.data.progress) : false)
 
 /** The check of a change as saved at a revision: nominal findings at once, those over the tolerances as they come. While a newer one runs, the one before is shown, marked stale. */
 export const checkQuery = (change: string, revision: number) =>
   queryOptions({
     queryKey: ['checks', change, revision],
-    queryFn: ({ signal }) => get<CheckView>(`/changes/${encodeURIComponent(change)}/check`, { signal }),
+    queryFn: ({ signal }) => get<CheckView>(at(change), { signal }),
     placeholderData: (before, query) => (query?.queryKey[1] === change ? before : undefined),
     refetchInterval: whileRunning,
   })
@@ -20,7 +22,36 @@ export const checkQuery = (change: string, revision: number) =>
 export const checkNowQuery = (change: string) =>
   queryOptions({
     queryKey: ['checks', change, 'now'],
-    queryFn: ({ signal }) => get<CheckView>(`/changes/${encodeURIComponent(change)}/check`, { signal }),
+    queryFn: ({ signal }) => get<CheckView>(at(change), { signal }),
     staleTime: 60_000,
     refetchInterval: whileRunning,
+  })
+
+/** Curves, histories and corners of one joint, `of` a revision or the hash of what was checked. The one of the revision before stays until the next is there, never that of another joint. */
+export const jointReportQuery = (change: string, of: number | string, joint: string) =>
+  queryOptions({
+    queryKey: ['checks', change, of, 'joint', joint],
+    queryFn: ({ signal }) => get<JointReportView>(`${at(change)}/joints/${encodeURIComponent(joint)}`, { signal }),
+    placeholderData: (before) => (before?.joint === joint ? before : undefined),
+    refetchInterval: whileRunning,
+  })
+
+/** A stability map; the same question again answers it as far as it is. */
+export const mapQuery = (change: string, revision: number, asked: AskMap) =>
+  queryOptions({
+    queryKey: ['checks', change, revision, 'map', asked],
+    queryFn: () => act<MapView>({ path: `${at(change)}/map`, body: asked }),
+    staleTime: Infinity,
+    retry: false,
+    refetchInterval: ({ state }) => (state.data && !state.data.cells ? goesOn(state.data.progress) : false),
+  })
+
+/** A search for gains with a larger worst margin, as far as it is. */
+export const retuneQuery = (change: string, revision: number, asked: AskRetune) =>
+  queryOptions({
+    queryKey: ['checks', change, revision, 'retune', asked],
+    queryFn: () => act<RetuneView>({ path: `${at(change)}/retune`, body: asked }),
+    staleTime: Infinity,
+    retry: false,
+    refetchInterval: ({ state }) => (state.data && !state.data.proposal ? goesOn(state.data.progress) : false),
   })

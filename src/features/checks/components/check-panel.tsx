@@ -14,6 +14,7 @@ import { figuresOf, worstOf } from '../figures.ts'
 import { BeforeAfter } from './before-after.tsx'
 import { FigureRows } from './figure-rows.tsx'
 import { FindingList } from './finding-list.tsx'
+import { StepOverlay } from './step-overlay.tsx'
 import { ToleranceWalk } from './tolerance-walk.tsx'
 
 export interface CheckPanelProps {
@@ -41,7 +42,10 @@ export function CheckPanel({ change, query, stale, joints, nameOf, reportTo, not
       <Head check={check} joint={worst} stale={stale} among={shown.length} nameOf={nameOf} />
       {!stale && <ToleranceWalk change={change} check={check} className="border-b border-hairline py-2" />}
       {worst?.candidate ? (
-        <JointFiguresShown joint={worst} check={check} nameOf={nameOf} />
+        <>
+          <JointFiguresShown joint={worst} check={check} nameOf={nameOf} />
+          <StepOverlay change={change} inputs={check.inputsHash} joint={worst.joint} enabled={!stale} />
+        </>
       ) : (
         <p className="border-b border-hairline py-3 text-13 text-ink-2">{worst ? `Nothing was computed for ${nameOf(worst.joint)}; the findings say why.` : 'No joint stands here yet.'}</p>
       )}

@@ -11,12 +11,14 @@ export interface FindingListProps {
   nameOf: (joint: string) => string
   /** narrow: mark, sentence and remedy under one another, as beside the editor */
   narrow?: boolean
+  /** in the narrow form too, where the limit comes from */
+  sources?: boolean
   /** at the end of a finding, as what is requested for it */
   note?: (finding: Finding) => ReactNode
 }
 
 /** Findings, gravest first; those that pass fold into one line that opens. */
-export function FindingList({ findings, nameOf, narrow = false, note }: FindingListProps) {
+export function FindingList({ findings, nameOf, narrow = false, sources = false, note }: FindingListProps) {
   const [open, setOpen] = useState(false)
   const grave = findings.filter((f) => f.level !== 'pass')
   const passed = findings.filter((f) => f.level === 'pass')
@@ -24,7 +26,7 @@ export function FindingList({ findings, nameOf, narrow = false, note }: FindingL
   return (
     <ul className="border-b border-hairline" aria-label="findings">
       {shown.map((f) => (
-        <FindingRow key={f.key} finding={f} nameOf={nameOf} narrow={narrow} note={note?.(f)} />
+        <FindingRow key={f.key} finding={f} nameOf={nameOf} narrow={narrow} sources={sources} note={note?.(f)} />
       ))}
       {passed.length > 0 && !open && (
         <li className="flex items-center gap-3 border-t border-hairline py-[6px] text-13">
@@ -38,7 +40,7 @@ export function FindingList({ findings, nameOf, narrow = false, note }: FindingL
   )
 }
 
-function FindingRow({ finding, nameOf, narrow, note }: { finding: Finding; nameOf: (joint: string) => string; narrow: boolean; note: ReactNode }) {
+function FindingRow({ finding, nameOf, narrow, sources, note }: { finding: Finding; nameOf: (joint: string) => string; narrow: boolean; sources: boolean; note: ReactNode }) {
   const joints = finding.joints.map(nameOf).join(', ')
   const limit =
     finding.limit !== null ? (
@@ -55,7 +57,14 @@ function FindingRow({ finding, nameOf, narrow, note }: { finding: Finding; nameO
         <div>
           <b>{finding.level}</b> {finding.text}
           {finding.remedy && <p className="text-ink-2">{finding.remedy}</p>}
-          {joints && <p className="text-12 text-ink-2">{joints}</p>}
+          {joints && !sources && <p className="text-12 text-ink-2">{joints}</p>}
+          {sources && (limit || finding.source) && (
+            <p className="text-12 text-ink-2">
+              {limit}
+              {limit && finding.source && ', '}
+              {finding.source}
+            </p>
+          )}
           {note}
         </div>
       </li>
