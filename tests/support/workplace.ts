@@ -32,6 +32,8 @@ export interface SignedIn {
   patch(path: string, body?: object): supertest.Test
   put(path: string, body?: object): supertest.Test
   delete(path: string): supertest.Test
+  /** puts one file in a form */
+  upload(path: string, field: string, bytes: Buffer, name: string): supertest.Test
   me: Me
 }
 
@@ -100,6 +102,7 @@ export async function aWorkplace(env: NodeJS.ProcessEnv = {}): Promise<Workplace
         patch: (path, body = {}) => withToken(agent.patch(path)).send(body),
         put: (path, body = {}) => withToken(agent.put(path)).send(body),
         delete: (path) => withToken(agent.delete(path)),
+        upload: (path, field, bytes, name) => withToken(agent.put(path)).attach(field, bytes, name),
         me,
       }
     },
