@@ -1,4 +1,4 @@
-import { resolve } from 'node:path'
+import { join, resolve } from 'node:path'
 
 /** How the program runs; read once at start, from the environment. */
 export interface Config {
@@ -15,11 +15,23 @@ export interface Config {
   mailFrom: string
   /** cookies only over TLS, HSTS: when the base URL is https */
   secure: boolean
+  /** folder of the backups */
+  backupDir: string
+  /** hour of the server's clock at which one is made, or null for none by itself */
+  backupHour: number | null
+  /** how many backups are kept */
+  backupsKept: number
 }
 
 const oneOf = <T extends string>(name: string, value: string, allowed: readonly T[]): T => {
   if (!allowed.includes(value as T)) throw new Error(`${name} is "${value}"; it takes ${allowed.join(' or ')}.`)
   return value as T
+}
+
+const whole = (name: string, value: string, least: number, most: number): number => {
+  const number = Number(value)
+  if (!/^\d+$/.test(value) || number < least || number > most) throw new Error(`${name} is "${value}"; it takes a whole number from ${least} to ${most}.`)
+  return number
 }
 
 /** @throws Error naming the variable that cannot be used, and what it takes */
@@ -29,8 +41,10 @@ export function readConfig(env: NodeJS.ProcessEnv): Config {
   const host = env.DETENT_HOST ?? '127.0.0.1'
   const baseUrl = (env.DETENT_BASE_URL ?? `http://${host}:${port}`).replace(/\/$/, '')
   if (!/^https?:\/\/[^/\s]+/.test(baseUrl)) throw new Error(`DETENT_BASE_URL is "${baseUrl}"; it takes an http or https address.`)
+  const dataDir = resolve(env.DETENT_DATA ?? '.data')
+  const hour = env.DETENT_BACKUP_HOUR ?? '2'
   return {
-    dataDir: resolve(env.DETENT_DATA ?? '.data'),
+    dataDir,
     host,
     port,
     mode: oneOf('DETENT_MODE', env.DETENT_MODE ?? 'demo', ['demo', 'workplace']),
@@ -38,5 +52,8 @@ export function readConfig(env: NodeJS.ProcessEnv): Config {
     smtpUrl: env.DETENT_SMTP_URL ?? null,
     mailFrom: env.DETENT_MAIL_FROM ?? 'Detent <detent@localhost>',
     secure: baseUrl.startsWith('https:'),
+    backupDir: resolve(env.DETENT_BACKUPS ?? join(dataDir, 'backups')),
+    backupHour: hour === 'off' ? null : whole('DETENT_BACKUP_HOUR', hour, 0, 23),
+    backupsKept: whole('DETENT_BACKUPS_KEPT', env.DETENT_BACKUPS_KEPT ?? '14', 1, 1000),
   }
 }

@@ -9,12 +9,14 @@ import { buildApp } from './app.ts'
 import { readConfig } from './config.ts'
 import { fileStore } from './db/file-store.ts'
 import { holdDatabase } from './db/only-process.ts'
-import { openDatabase } from './db/orm.ts'
+import { assertTerms } from './db/terms.ts'
 import { demoBegins, makeDemo } from './demo/make-demo.ts'
 import { serveClient } from './http/serve-client.ts'
 import type { Services } from './http/services.ts'
 import { JobBoard } from './jobs/job-board.ts'
 import { onWorkers } from './jobs/on-workers.ts'
+import { startDailyBackups } from './modules/backups/daily-backup.ts'
+import { openWorkplaceDatabase, placesOf } from './modules/backups/open-workplace.ts'
 import { analysisStore } from './modules/checks/analysis-store.ts'
 import { keyFiles } from './modules/keys/key-store.ts'
 import { openWorkplaceKeys } from './modules/keys/workplace-keys.ts'
@@ -33,9 +35,10 @@ function sessionSecret(dataDir: string): string {
 async function start() {
   const config = readConfig(process.env)
   mkdirSync(config.dataDir, { recursive: true, mode: 0o700 })
-  const database = join(config.dataDir, 'detent.sqlite')
-  const release = holdDatabase(database)
-  const orm = await openDatabase(database)
+  const places = placesOf(config)
+  const release = holdDatabase(places.database)
+  const orm = await openWorkplaceDatabase(config)
+  log.info(await assertTerms(orm, places.database), 'the database is open')
   const here = fileURLToPath(new URL('.', import.meta.url))
   const checks = new JobBoard({
     threads: onWorkers({ workerFile: join(here, 'worker.js'), threads: availableParallelism() }),
@@ -45,10 +48,11 @@ async function start() {
   let wake = () => {}
   const toldFirst = config.mode === 'demo' && (await orm.em.fork().count(Person)) === 0
   const keys = await openWorkplaceKeys(orm.em.fork(), keyFiles(config.dataDir), toldFirst ? demoBegins(new Date()) : new Date())
-  const services: Services = { config, orm, now: () => new Date(), checks, files: fileStore(join(config.dataDir, 'files')), keys, mailQueued: () => wake() }
+  const services: Services = { config, orm, now: () => new Date(), checks, files: fileStore(places.files), keys, mailQueued: () => wake() }
   if (toldFirst) await makeDemo(services)
   const sender = startMailSender(services, log)
   wake = () => sender.wake()
+  const backups = startDailyBackups(services, log)
   const app = buildApp({ services, log, sessionSecret: sessionSecret(config.dataDir), client: serveClient(join(here, '../client')) })
   const server = createServer(app)
   server.listen(config.port, config.host, () => {
@@ -62,6 +66,7 @@ async function start() {
     closing = true
     server.closeAllConnections()
     await new Promise((done) => server.close(done))
+    await backups.stop()
     await sender.stop()
     await checks.close()
     await orm.close(true)

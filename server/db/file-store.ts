@@ -15,6 +15,8 @@ export interface ReceivedFile {
 
 /** Files beside the database, each under its SHA-256: what is there under a name has these bytes, or is refused. */
 export interface FileStore {
+  /** where they lie: a file at xx/SHA-256, xx its first two digits; made when the first file comes */
+  readonly directory: string
   /** Streams a file aside. @throws FileTooLarge past `limit` bytes, and then nothing is left of it */
   receive(source: Readable, limit: number): Promise<ReceivedFile>
   /** Gives a received file its name, for good: synced before it returns. */
@@ -37,8 +39,11 @@ export class StoredFileProblem extends Error {
   }
 }
 
+/** Where a store in this directory keeps the file of this SHA-256. */
+export const placeIn = (directory: string, sha256: string) => join(directory, sha256.slice(0, 2), sha256)
+
 /** A directory's entries reach the disk only when the directory itself is synced. */
-async function syncDirectory(path: string) {
+export async function syncDirectory(path: string) {
   const handle = await open(path, 'r')
   try {
     await handle.sync()
@@ -63,12 +68,14 @@ class Received implements ReceivedFile {
 /** The store in a directory, made when the first file comes. What was left half received by a stop is taken away with the first file. */
 export function fileStore(directory: string): FileStore {
   const aside = join(directory, 'aside')
-  const placeOf = (sha256: string) => join(directory, sha256.slice(0, 2), sha256)
+  const placeOf = (sha256: string) => placeIn(directory, sha256)
   let ready: Promise<unknown> | undefined
   const prepare = () =>
     (ready ??= rm(aside, { recursive: true, force: true }).then(() => mkdir(aside, { recursive: true, mode: 0o700 })))
 
   return {
+    directory,
+
     async receive(source, limit) {
       await prepare()
       const path = join(aside, randomUUID())
