@@ -2,7 +2,6 @@ import { useQuery } from '@tanstack/react-query'
 import { useMemo } from 'react'
 import type { JointReportView } from '../../../../shared/contract/checks.ts'
 import { SeriesChart } from '../../../components/charts/series-chart.tsx'
-import { ProblemPanel } from '../../../components/problem/problem-panel.tsx'
 import { KeyValueList } from '../../../components/ui/key-value-list.tsx'
 import { SectionHeading } from '../../../components/ui/section-heading.tsx'
 import { formatDb, formatDegrees, quantityText } from '../../../lib/format.ts'
@@ -15,7 +14,16 @@ import { worstLoop } from './tolerance-table.tsx'
 /** Step of a joint before, after and at its worst corner, with that corner named; read for the inputs that were checked, not while newer ones are. Nothing while it is first computed: the figures above stand already. */
 export function StepOverlay({ change, inputs, joint, enabled }: { change: string; inputs: string; joint: string; enabled: boolean }) {
   const query = useQuery({ ...jointReportQuery(change, inputs, joint), enabled })
-  if (query.isError && !query.data) return <ProblemPanel className="mt-4" problem={query.error} onRetry={() => void query.refetch()} />
+  // Quiet: an alert here would speak over what is wrong with a value being typed.
+  if (query.isError && !query.data)
+    return (
+      <p className="mt-4 text-13 text-ink-2">
+        The step and the worst corner could not be read: {query.error.message}{' '}
+        <button type="button" className="link" onClick={() => void query.refetch()}>
+          Try again
+        </button>
+      </p>
+    )
   return query.data?.candidate ? <Overlay report={query.data} /> : null
 }
 
