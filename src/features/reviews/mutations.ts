@@ -3,7 +3,6 @@ import type { ChangeView } from '../../../shared/contract/changes.ts'
 import type { Marked, ReadingView, ReturnChange, SignPeerReview, SignRelease } from '../../../shared/contract/reviews.ts'
 import { act } from '../../lib/api-client.ts'
 import { readingQuery } from './queries.ts'
-import { readingQuery } from './queries.ts'
 
 type On = Pick<ChangeView, 'key' | 'revision'>
 const at = (change: On) => `/changes/${encodeURIComponent(change.key)}`

@@ -13,20 +13,6 @@ export const diffQuery = (change: string, revision: number) =>
 export const versionQuery = (change: string, revision: number) =>
   queryOptions({ queryKey: ['reviews', 'version', change, revision], queryFn: ({ signal }) => get<VersionProposal>(`${at(change)}/version`, { signal }), placeholderData: (before) => before })
 
-/** How far the rows of a change are read, as saved at a revision. */
-export const readingQuery = (change: string, revision: number) =>
-  queryOptions({ queryKey: ['reviews', 'reading', change, revision], queryFn: ({ signal }) => get<ReadingView>(`${at(change)}/reading`, { signal }) })
-
-/** While what each value does alone is computed, it is read again this often, ms. */
-const EVERY = 1000
-
-export const effectsQuery = (change: string, revision: number) =>
-  queryOptions({
-    queryKey: ['reviews', 'effects', change, revision],
-    queryFn: ({ signal }) => get<EffectsView>(`${at(change)}/effects`, { signal }),
-    refetchInterval: ({ state }) => (state.data?.progress.state === 'running' ? EVERY : false),
-  })
-
 /** How far the reader and the others are with the rows of a change, as saved at a revision. */
 export const readingQuery = (change: string, revision: number) =>
   queryOptions({ queryKey: ['reviews', 'reading', change, revision], queryFn: ({ signal }) => get<ReadingView>(`${at(change)}/reading`, { signal }), placeholderData: (before) => before })
