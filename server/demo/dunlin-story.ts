@@ -1,4 +1,5 @@
 import type { MachineSet } from '../../shared/parameters/machine-set.ts'
+import { afterRelease } from './boards-story.ts'
 import type { Story } from './story.ts'
 
 const [mirela, tobias, rafiq, ingunn, hedda] = ['Mirela Castanho', 'Tobias Oyelaran', 'Rafiq Sandoval', 'Ingunn Veblen', 'Hedda Lindqvist']
@@ -10,12 +11,14 @@ const own = (joint: string, name: string) => `/joints/${joint}/values/${name}`
 export async function dunlinStory(story: Story, set: MachineSet): Promise<void> {
   story.day(4)
   await story.through({ machine, title: 'First numbers for the walker', reason: 'Starting values from the drive trains, tried on one leg on the bench stand at reduced current.', author: mirela, content: set }, ingunn, hedda)
+  await afterRelease(story, '1.0.0')
 
   story.day(26)
   await story.through(
     { machine, title: 'Hip reach', reason: 'The hips stop 0.1 rad short of the stride the gait asks for; the stops leave room.', author: tobias, content: [[value('hip', 'positionMin'), -1.25], [value('hip', 'positionMax'), 1.25]] },
     rafiq, hedda,
   )
+  await afterRelease(story, '1.1.0')
 
   story.day(47)
   const halfRate = await story.through(
@@ -23,6 +26,7 @@ export async function dunlinStory(story: Story, set: MachineSet): Promise<void> 
     rafiq, hedda,
   )
   void halfRate
+  await afterRelease(story, '1.2.0')
   story.day(52)
   await story.withdraw(machine, '1.2.0', hedda, 'Current task at half rate: the hips hum at 41 Hz above 2.1 A.')
 
@@ -31,18 +35,21 @@ export async function dunlinStory(story: Story, set: MachineSet): Promise<void> 
     { machine, title: 'Current task back to full rate', reason: 'Takes back the half rate of the withdrawn release.', author: mirela, content: [[value('hip', 'currentRate'), 16000], [value('hip', 'currentGain'), 1.2], [value('hip', 'currentIntegralGain'), 3400]] },
     rafiq, hedda,
   )
+  await afterRelease(story, '1.3.0')
 
   story.day(83)
   await story.through(
     { machine, title: 'R3 knee runs softer', reason: 'The R3 shank carries the sampling tube; its knee keeps more margin with less gain.', author: mirela, content: [[own('r3-knee', 'velocityGain'), 2.9]] },
     ingunn, hedda,
   )
+  await afterRelease(story, '1.3.1')
 
   story.day(131)
   await story.through(
     { machine, title: 'Knee current limit after the gear train of October', reason: 'The new gear train is rated for 6.6 N·m; 2.80 A stays under it with 15 % in hand.', author: mirela, content: [[value('knee', 'currentLimit'), 2.8]] },
     rafiq, hedda,
   )
+  await afterRelease(story, '1.4.0')
 
   story.day(139)
   const pitch = await story.draft({ machine, title: 'Lower idle polling of the winch', reason: 'Tried on the bench; the bus has room, so there is no need.', author: tobias, content: [[value('winch', 'busTimeout'), 0.8]] })

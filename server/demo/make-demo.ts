@@ -16,6 +16,7 @@ import { hashPassword } from '../modules/people/passwords.ts'
 import { useLink } from '../modules/people/use-link.ts'
 import { Mail } from '../modules/mail/mail.entity.ts'
 import { projectRoot } from '../project-root.ts'
+import { boardsStory } from './boards-story.ts'
 import { dunlin } from './dunlin.ts'
 import { dunlinStory } from './dunlin-story.ts'
 import { Story } from './story.ts'
@@ -87,4 +88,5 @@ export async function makeDemo(services: Services): Promise<void> {
     await story.act(async (em, now) => makeMachine(em, { key, name, description, person: await story.person(em, administrator), now }))
   await dunlinStory(story, dunlin)
   await teaselStory(story, teasel)
+  await boardsStory(story)
 }

@@ -31,8 +31,8 @@ export interface BenchKeyView {
 
 export interface BenchKeys {
   keys: BenchKeyView[]
-  /** machines that this person may make keys for */
-  machines: { key: string; name: string; currentVersion: string | null; joint: string | null }[]
+  /** machines that this person may make keys for, each with a joint of its current release and its board, for examples */
+  machines: { key: string; name: string; currentVersion: string | null; joint: string | null; serial: string | null }[]
 }
 
 /** The key itself is in this answer and nowhere else. */

@@ -178,6 +178,15 @@ export interface JointBoard {
   readBack: { verdict: 'equal' | 'differs'; at: string; by: string } | null
 }
 
+/** Which boards sat at a joint and what was recorded of them there, newest first. */
+export interface JointBoards {
+  board: BoardSummary | null
+  state: BoardState
+  why: string
+  calibratedFor: string | null
+  events: (BoardEventView & { serial: string })[]
+}
+
 /** A machine's boards against its release. */
 export interface MachineBoards {
   machine: string
@@ -245,11 +254,14 @@ export interface BenchCard {
   imageBytes: number
   /** first bytes of the image, hex */
   head: string
+  /** value as the word that the register holds, hex */
   checksum: { algorithm: string; value: string; address: number } | null
   layoutId: string | null
   rows: CardRow[]
   calibratedFor: string | null
   board: BoardSummary | null
+  /** why its values do not belong to the board on record there; null when they do */
+  binding: string | null
   /** address of the release's page, for the QR code */
   releaseUrl: string
   may: { download: Allowed; record: Allowed }

@@ -28,5 +28,16 @@ export const paths = {
   changeReview: (change: string) => `/changes/${part(change)}/review`,
   releases: (machine?: string) => (machine ? `/releases?machine=${part(machine)}` : '/releases'),
   release: (machine: string, version: string) => `/machines/${part(machine)}/releases/${part(version)}`,
+  boards: (filter: { machine?: string; state?: string; release?: string } = {}) => {
+    const query = new URLSearchParams(Object.entries(filter).filter(([, v]) => v)).toString()
+    return query ? `/boards?${query}` : '/boards'
+  },
+  board: (serial: string) => `/boards/${part(serial)}`,
+  audit: (machine: string) => `/machines/${part(machine)}/audit`,
+  bench: (machine: string, { joint, serial }: { joint?: string; serial?: string } = {}) => {
+    const query = new URLSearchParams(Object.entries({ joint, serial }).flatMap(([k, v]) => (v ? [[k, v]] : []))).toString()
+    return `/machines/${part(machine)}/bench${query && `?${query}`}`
+  },
+  benchCard: (machine: string, version: string, joint: string) => `/machines/${part(machine)}/releases/${part(version)}/joints/${part(joint)}/card`,
   search: (text: string) => `/search?q=${part(text)}`,
 }

@@ -11,6 +11,7 @@ export function placesFor(_me: Me): Place[] {
     { to: paths.desk(), label: 'desk', end: true },
     { to: paths.changes(), label: 'changes' },
     { to: paths.releases(), label: 'releases' },
+    { to: paths.boards(), label: 'boards' },
     { to: paths.firmware(), label: 'firmware' },
     { to: paths.ledger(), label: 'ledger' },
   ]

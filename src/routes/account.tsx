@@ -5,6 +5,7 @@ import { PageHead } from '../components/layout/page-head.tsx'
 import { Region } from '../components/layout/region.tsx'
 import { SectionHeading } from '../components/ui/section-heading.tsx'
 import { Select } from '../components/ui/select.tsx'
+import { BenchKeysSection } from '../features/bench-keys/components/bench-keys-section.tsx'
 import { ChangePasswordForm } from '../features/people/components/change-password-form.tsx'
 import { RoleList } from '../features/people/components/role-list.tsx'
 import { SessionList } from '../features/people/components/session-list.tsx'
@@ -43,6 +44,7 @@ export function Component() {
               {(list) => <SessionList sessions={list} />}
             </Region>
           </section>
+          <BenchKeysSection />
         </div>
         <div className="grid min-w-0 grid-cols-[minmax(0,1fr)] content-start gap-8">
           <section aria-labelledby="password">

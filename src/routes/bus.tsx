@@ -1,4 +1,4 @@
-import { useSuspenseQuery } from '@tanstack/react-query'
+import { useQuery, useSuspenseQuery } from '@tanstack/react-query'
 import { useParams } from 'react-router'
 import type { LoaderFunctionArgs } from 'react-router'
 import { paths } from '../app/paths.ts'
@@ -9,6 +9,7 @@ import { SectionHeading } from '../components/ui/section-heading.tsx'
 import { TextLink } from '../components/ui/text-link.tsx'
 import { AddressGrid } from '../features/machines/components/address-grid.tsx'
 import { DraftChangeButton } from '../features/machines/components/draft-change-button.tsx'
+import { machineBoardsQuery } from '../features/boards/queries.ts'
 import { MachineFrame } from '../features/machines/components/machine-frame.tsx'
 import { FromRelease } from '../features/machines/components/release-shown.tsx'
 import { TapTable } from '../features/machines/components/tap-table.tsx'
@@ -22,6 +23,7 @@ export const loader = ({ params }: LoaderFunctionArgs) =>
 export function Component() {
   const params = useParams()
   const machine = useSuspenseQuery(machineQuery(params.machine!)).data
+  const boards = useQuery(machineBoardsQuery(params.machine!)).data
   const bus = useSuspenseQuery(busQuery(params.machine!, params.bus!)).data
   const { settings } = bus
   return (
@@ -56,7 +58,7 @@ export function Component() {
         {count(bus.taps.length, 'board or device', 'boards and devices')}, {count(bus.free, 'free address', 'free addresses')}
         {settings.pollingRate !== undefined && <>, each board read <Num value={settings.pollingRate} unit="Hz" /></>}
       </PageHead>
-      <MachineFrame machine={machine} bus={bus.key}>
+      <MachineFrame machine={machine} boards={boards} bus={bus.key}>
         <section aria-labelledby="grid" className="mb-8">
           <SectionHeading id="grid" className="mb-2">Addresses</SectionHeading>
           <AddressGrid bus={bus} />

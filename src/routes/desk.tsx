@@ -11,6 +11,8 @@ import { SectionHeading } from '../components/ui/section-heading.tsx'
 import { SmallRail } from '../components/ui/small-rail.tsx'
 import { TextLink } from '../components/ui/text-link.tsx'
 import { Time } from '../components/ui/time.tsx'
+import { AtTheBench } from '../features/boards/components/at-the-bench.tsx'
+import { benchTasksQuery } from '../features/boards/queries.ts'
 import { ChangeTable } from '../features/changes/components/change-table.tsx'
 import { WaitingChange } from '../features/changes/components/waiting-change.tsx'
 import { changesQuery } from '../features/changes/queries.ts'
@@ -23,12 +25,14 @@ import { queryClient } from '../lib/query-client.ts'
 
 export const loader = () => {
   void queryClient.prefetchQuery(changesQuery())
+  void queryClient.prefetchQuery(benchTasksQuery)
   return null
 }
 
 export function Component() {
   const me = useMe()
   const changes = useQuery({ ...changesQuery(), refetchOnWindowFocus: true })
+  const tasks = useQuery({ ...benchTasksQuery, refetchOnWindowFocus: true }).data ?? []
   // How long things wait is read off when they were fetched: the page does not tick.
   const now = changes.dataUpdatedAt
   const first = me.name.split(' ')[0]
@@ -37,8 +41,10 @@ export function Component() {
     waiting.toSign.length > 0 && `${waiting.toSign.length} to read and sign`,
     waiting.toRelease.length > 0 && `${waiting.toRelease.length} to release`,
     waiting.returned.length > 0 && `${waiting.returned.length} returned to you`,
+    tasks.length > 0 && `${tasks.length} at the bench`,
   ].filter(Boolean)
-  const total = waiting.toSign.length + waiting.toRelease.length + waiting.returned.length
+  const toRead = waiting.toSign.length + waiting.toRelease.length + waiting.returned.length
+  const total = toRead + tasks.length
   const open = (changes.data ?? []).filter((c) => c.state !== 'released' && c.state !== 'cancelled')
   return (
     <>
@@ -60,10 +66,13 @@ export function Component() {
                 <Group title="To release" changes={waiting.toRelease} act="Read and release" now={now} />
                 <Group title="Returned to you" changes={waiting.returned} act="Take it up again" now={now} toDraft />
                 <Group title="Your drafts" changes={waiting.drafts} act="Go on" now={now} toDraft />
-                {total + waiting.drafts.length === 0 && <EmptyState title="Nothing waits for you">Changes land here when they are submitted for your review, approved for your release, or returned to you.</EmptyState>}
+                {toRead + waiting.drafts.length === 0 && <EmptyState title={tasks.length > 0 ? 'No change waits for you' : 'Nothing waits for you'}>Changes land here when they are submitted for your review, approved for your release, or returned to you.</EmptyState>}
                 {waiting.away.length > 0 && <Away changes={waiting.away} />}
               </div>
-              <LastActs />
+              <div className="min-w-0">
+                <AtTheBench tasks={tasks} />
+                <LastActs />
+              </div>
             </div>
             <section className="mt-8">
               <SectionHeading aux={`${open.length} of ${count(changes.data?.length ?? 0, 'change')}`} actions={<TextLink to={paths.changes()}>all changes</TextLink>}>

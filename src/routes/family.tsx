@@ -1,4 +1,4 @@
-import { useSuspenseQuery } from '@tanstack/react-query'
+import { useQuery, useSuspenseQuery } from '@tanstack/react-query'
 import { useParams } from 'react-router'
 import type { LoaderFunctionArgs } from 'react-router'
 import { paths } from '../app/paths.ts'
@@ -8,6 +8,7 @@ import { fits, useUrlText } from '../components/layout/use-url-state.ts'
 import { SectionHeading } from '../components/ui/section-heading.tsx'
 import { TextLink } from '../components/ui/text-link.tsx'
 import { DriveTrainHistory } from '../features/machines/components/drive-train-history.tsx'
+import { machineBoardsQuery } from '../features/boards/queries.ts'
 import { DriveTrainSheet } from '../features/machines/components/drive-train.tsx'
 import { FamilyValues } from '../features/machines/components/family-values.tsx'
 import { JointTable } from '../features/machines/components/joint-table.tsx'
@@ -24,6 +25,7 @@ export const loader = ({ params }: LoaderFunctionArgs) =>
 export function Component() {
   const params = useParams()
   const machine = useSuspenseQuery(machineQuery(params.machine!)).data
+  const boards = useQuery(machineBoardsQuery(params.machine!)).data
   const family = useSuspenseQuery(familyQuery(params.machine!, params.family!)).data
   const [filter, setFilter] = useUrlText('filter')
   return (
@@ -47,7 +49,7 @@ export function Component() {
       >
         {count(family.joints.length, 'joint')} built alike: one drive train, shared values
       </PageHead>
-      <MachineFrame machine={machine}>
+      <MachineFrame machine={machine} boards={boards}>
         <section aria-labelledby="joints" className="mb-8">
           <SectionHeading id="joints">Joints</SectionHeading>
           <JointTable machine={family.machine} joints={family.joints} without={['family']} />

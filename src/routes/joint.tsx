@@ -1,10 +1,12 @@
-import { useSuspenseQuery } from '@tanstack/react-query'
+import { useQuery, useSuspenseQuery } from '@tanstack/react-query'
 import { useParams } from 'react-router'
 import type { LoaderFunctionArgs } from 'react-router'
 import { paths } from '../app/paths.ts'
 import { FilterField } from '../components/layout/filter-field.tsx'
 import { PageHead } from '../components/layout/page-head.tsx'
 import { fits, useUrlText } from '../components/layout/use-url-state.ts'
+import { Region } from '../components/layout/region.tsx'
+import { BoardMark } from '../components/ui/board-mark.tsx'
 import { Checkbox } from '../components/ui/checkbox.tsx'
 import { ErrorPanel } from '../components/ui/error-panel.tsx'
 import { Hash } from '../components/ui/hash.tsx'
@@ -13,6 +15,8 @@ import { KeyValueList } from '../components/ui/key-value-list.tsx'
 import { Num } from '../components/ui/num.tsx'
 import { SectionHeading } from '../components/ui/section-heading.tsx'
 import { TextLink } from '../components/ui/text-link.tsx'
+import { BoardHistory } from '../features/boards/components/board-history.tsx'
+import { jointBoardsQuery, machineBoardsQuery } from '../features/boards/queries.ts'
 import { DriveTrainSheet } from '../features/machines/components/drive-train.tsx'
 import { DraftChangeButton } from '../features/machines/components/draft-change-button.tsx'
 import { MachineFrame } from '../features/machines/components/machine-frame.tsx'
@@ -29,6 +33,8 @@ export const loader = ({ params }: LoaderFunctionArgs) =>
 export function Component() {
   const params = useParams()
   const machine = useSuspenseQuery(machineQuery(params.machine!)).data
+  const atJoint = useQuery(jointBoardsQuery(params.machine!, params.joint!))
+  const boards = useQuery(machineBoardsQuery(params.machine!)).data
   const joint = useSuspenseQuery(jointQuery(params.machine!, params.joint!)).data
   const [filter, setFilter] = useUrlText('filter')
   const [own, setOwn] = useUrlText('own')
@@ -65,7 +71,7 @@ export function Component() {
           </>
         }
       />
-      <MachineFrame machine={machine} bus={joint.bus} joint={joint.key}>
+      <MachineFrame machine={machine} boards={boards} bus={joint.bus} joint={joint.key}>
         {joint.problems.length > 0 && (
           <ErrorPanel className="mb-5" title="These values can't be encoded" todo="Draft a change that mends them, or that moves the joint to another firmware version." pointers={joint.problems.map((p) => ({ pointer: p.pointer, message: p.detail }))} />
         )}
@@ -92,6 +98,23 @@ export function Component() {
             Drive train
           </SectionHeading>
           <DriveTrainSheet driveTrain={joint.driveTrain} />
+        </section>
+        <section aria-labelledby="boards" className="mb-8">
+          <SectionHeading id="boards" actions={<TextLink to={paths.bench(joint.machine, { joint: joint.key })}>bench</TextLink>}>
+            Boards
+          </SectionHeading>
+          <Region query={atJoint} what="its boards" lines={3}>
+            {(data) => (
+              <>
+                <p className="flex flex-wrap items-center gap-x-3 py-1">
+                  {data.board && <TextLink className="num" to={paths.board(data.board.serial)}>{data.board.serial}</TextLink>}
+                  <BoardMark state={data.state} />
+                  <span className="text-13 text-ink-2">{data.why}</span>
+                </p>
+                <BoardHistory machine={joint.machine} events={data.events} />
+              </>
+            )}
+          </Region>
         </section>
         <section aria-labelledby="history">
           <SectionHeading id="history">History</SectionHeading>

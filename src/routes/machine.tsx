@@ -1,4 +1,4 @@
-import { useSuspenseQuery } from '@tanstack/react-query'
+import { useQuery, useSuspenseQuery } from '@tanstack/react-query'
 import { useState } from 'react'
 import { useParams } from 'react-router'
 import type { LoaderFunctionArgs } from 'react-router'
@@ -12,6 +12,8 @@ import { Button } from '../components/ui/button.tsx'
 import { EmptyState } from '../components/ui/empty-state.tsx'
 import { SectionHeading } from '../components/ui/section-heading.tsx'
 import { TextLink } from '../components/ui/text-link.tsx'
+import { BoardCounts } from '../features/boards/components/board-counts.tsx'
+import { machineBoardsQuery } from '../features/boards/queries.ts'
 import { DescribeMachineDialog } from '../features/machines/components/describe-machine-dialog.tsx'
 import { DoubledAddresses } from '../features/machines/components/doubled-addresses.tsx'
 import { DraftChangeButton } from '../features/machines/components/draft-change-button.tsx'
@@ -26,7 +28,10 @@ import { count } from '../lib/format.ts'
 import { holds, useMe } from '../lib/me.ts'
 import { queryClient } from '../lib/query-client.ts'
 
-export const loader = ({ params }: LoaderFunctionArgs) => queryClient.ensureQueryData(machineQuery(params.machine!))
+export const loader = ({ params }: LoaderFunctionArgs) => {
+  void queryClient.prefetchQuery(machineBoardsQuery(params.machine!))
+  return queryClient.ensureQueryData(machineQuery(params.machine!))
+}
 
 /** Columns of the page: as many spines beside each other as there is room for, up to three. */
 const beside = (buses: number) =>
@@ -35,6 +40,7 @@ const beside = (buses: number) =>
 export function Component() {
   const params = useParams()
   const machine = useSuspenseQuery(machineQuery(params.machine!)).data
+  const boards = useQuery(machineBoardsQuery(params.machine!)).data
   const keeps = holds(useMe(), 'make machines', params.machine!)
   const [dialog, setDialog] = useState<'describe' | 'retire' | null>(null)
   const [filter, setFilter] = useUrlText('filter')
@@ -47,7 +53,21 @@ export function Component() {
       <PageHead
         kicker={machine.retired ? 'machine, retired' : 'machine'}
         title={machine.name}
-        aside={<CurrentRelease machine={machine.key} current={machine.currentRelease} shown={machine.shown} />}
+        aside={
+          <div className="flex flex-wrap items-end gap-x-10 gap-y-3">
+            <CurrentRelease machine={machine.key} current={machine.currentRelease} shown={machine.shown} />
+            {boards && boards.joints.length > 0 && (
+              <div>
+                <div className="flex gap-4 text-13">
+                  <TextLink to={paths.boards({ machine: machine.key })}>boards</TextLink>
+                  <TextLink to={paths.bench(machine.key)}>bench</TextLink>
+                  <TextLink to={paths.audit(machine.key)}>audit sheet</TextLink>
+                </div>
+                <BoardCounts counts={boards.counts} />
+              </div>
+            )}
+          </div>
+        }
         actions={
           <>
             <DraftChangeButton machine={machine} />
@@ -70,7 +90,7 @@ export function Component() {
         <div className="grid min-w-0 grid-cols-[minmax(0,1fr)] content-start gap-8 max-lg:contents">
           {machine.busList.length > 0 && (
             <section aria-label="buses">
-              <Spines machine={machine} />
+              <Spines machine={machine} boards={boards} />
               <DoubledAddresses machine={machine} />
             </section>
           )}
@@ -103,7 +123,7 @@ export function Component() {
               <SectionHeading id="joints" actions={<FilterField label="filter joints" value={filter} onChange={setFilter} />}>
                 Joints
               </SectionHeading>
-              <JointTable machine={machine.key} joints={joints} />
+              <JointTable machine={machine.key} boards={boards} joints={joints} without={boards ? ['family', 'firmware', 'own'] : []} />
             </section>
           )}
         </div>

@@ -7,6 +7,8 @@ import { Button } from '../components/ui/button.tsx'
 import { Rail } from '../components/ui/rail.tsx'
 import { railOf } from '../features/changes/rail-of.ts'
 import { changeQuery } from '../features/changes/queries.ts'
+import { SectionHeading } from '../components/ui/section-heading.tsx'
+import { BoardsAffected } from '../features/boards/components/boards-affected.tsx'
 import { BenchDownloads } from '../features/releases/components/bench-downloads.tsx'
 import { ReleaseSheet } from '../features/releases/components/release-sheet.tsx'
 import { WithdrawDialog } from '../features/releases/components/withdraw-dialog.tsx'
@@ -27,6 +29,14 @@ export function Component() {
       <ReleaseSheet release={release} rail={change && <Rail {...railOf(change)} />} />
       <aside className="no-print grid content-start gap-6 max-lg:order-first">
         <BenchDownloads release={release} />
+        {release.state === 'withdrawn' && (
+          <section aria-labelledby="holding">
+            <SectionHeading id="holding" className="mb-1">
+              Boards that hold it
+            </SectionHeading>
+            <BoardsAffected machine={release.machine} release={release.version} />
+          </section>
+        )}
         <div className="flex flex-wrap gap-2">
           <Button onClick={() => window.print()}>Print the sheet</Button>
           {release.state !== 'withdrawn' && (
@@ -36,7 +46,9 @@ export function Component() {
           )}
         </div>
       </aside>
-      <WithdrawDialog release={release} open={withdrawing} onClose={() => setWithdrawing(false)} />
+      <WithdrawDialog release={release} open={withdrawing} onClose={() => setWithdrawing(false)}>
+        <BoardsAffected machine={release.machine} release={release.version} />
+      </WithdrawDialog>
     </div>
   )
 }

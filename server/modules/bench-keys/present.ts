@@ -25,7 +25,8 @@ export async function presentKeys(em: EntityManager, { person, held, now }: { pe
   const reach: BenchKeys['machines'] = []
   for (const m of machines) {
     const release = await currentRelease(em, m)
-    reach.push({ key: m.key, name: m.name, currentVersion: release?.version ?? null, joint: Object.keys(release?.set.joints ?? {})[0] ?? null })
+    const [joint, settings] = Object.entries(release?.set.joints ?? {})[0] ?? []
+    reach.push({ key: m.key, name: m.name, currentVersion: release?.version ?? null, joint: joint ?? null, serial: settings?.board ?? null })
   }
   return { keys: keys.map((k) => presentKey(k as BenchKey, now)), machines: reach }
 }

@@ -37,7 +37,7 @@ export function boardState(facts: BoardFacts): StateTold {
   const { release, newest, joint } = facts
   if (facts.benchSet !== null) return { state: 'bench set on board', why: `It was given the unreleased set of change ${facts.benchSet}; a read-back that equals a release clears this.` }
   if (release?.withdrawn) return { state: 'withdrawn release on board', why: `It holds ${release.version}, which is withdrawn: it must not run with it.` }
-  if (facts.readBack === 'differs') return { state: 'read-back differs', why: `Its last read-back is not ${release ? release.version : 'what was expected'}; the board's page names the registers.` }
+  if (facts.readBack === 'differs') return { state: 'read-back differs', why: `Its last read-back is not ${release ? release.version : 'what was expected'}.` }
   const elsewhere = notCalibrated(facts)
   if (elsewhere !== null) return { state: 'not calibrated for this joint', why: elsewhere }
   if (release === null) return { state: 'unknown', why: joint === null ? 'Nothing is recorded of what it holds.' : `It sits at ${joint}; what it holds is not recorded.` }

@@ -1,6 +1,6 @@
 import type { EntityManager } from '@mikro-orm/core'
 import { largestDumpBytes, type Dump, type ReadBackResult, type RegisterDifference } from '../../../shared/contract/boards.ts'
-import type { ParameterSchema } from '../../../shared/registers/parameter-schema.ts'
+import type { ParameterSchema, ParameterValue } from '../../../shared/registers/parameter-schema.ts'
 import { compareReadBack, type DumpImage, type ReadBack, type WordDifference } from '../../../shared/registers/read-back.ts'
 import { formatOfName, readDump } from '../../exports/read-dump.ts'
 import { DomainError } from '../../http/errors.ts'
@@ -10,6 +10,7 @@ import { schemaOf } from '../firmware/read-schema.ts'
 import type { Joint } from '../machines/joint.entity.ts'
 import { ReleaseJoint } from '../releases/release-joint.entity.ts'
 import { Release } from '../releases/release.entity.ts'
+import { shortValue } from './short-value.ts'
 
 export interface ComparedDump {
   release: Release
@@ -35,12 +36,15 @@ function bytesOf(dump: Dump, pointer: string): Uint8Array {
 
 const hex = (bytes: Uint8Array) => Buffer.from(bytes).toString('hex').toUpperCase().replace(/..(?=.)/g, '$& ')
 
-const presentDifference = (d: WordDifference): RegisterDifference => ({
+const presentDifference = (schema: ParameterSchema, d: WordDifference): RegisterDifference => ({
   kind: d.kind,
   address: d.address,
   found: hex(d.found),
   expected: hex(d.expected),
-  values: d.parameters.map((p) => ({ parameter: p.parameter, title: p.title, unit: p.unit ?? '', found: p.found ?? null, expected: p.expected ?? null })),
+  values: d.parameters.map((p) => {
+    const short = (value: ParameterValue | undefined) => (value === undefined ? null : shortValue(schema.byName.get(p.parameter)!, value))
+    return { parameter: p.parameter, title: p.title, unit: p.unit ?? '', found: short(p.found), expected: short(p.expected) }
+  }),
 })
 
 /** Bytes that took part in the comparison: read, and not of a register that only the board or only the bench writes. */
@@ -85,7 +89,7 @@ export async function compareDump(em: EntityManager, { release, joint, dump, poi
     if (found.kind === 'incomplete') return refuse(`${pointer}/content`, found.message, { missing: found.missing.map((m) => m.address) })
     return {
       verdict: found.kind, release: of.version, joint: joint.key, revision: what.revision, fileName: dump.fileName, format, sha256: sha256(bytes),
-      comparedBytes: comparedBytes(what.schema, read), imageBytes: what.image.length, differences: found.differences.map(presentDifference),
+      comparedBytes: comparedBytes(what.schema, read), imageBytes: what.image.length, differences: found.differences.map((d) => presentDifference(what.schema, d)),
       unexplained: found.unexplained.map((u) => ({ address: u.address, bytes: hex(u.bytes) })), findings: found.findings.map((f) => f.message), sequence: found.release,
     }
   }

@@ -14,18 +14,18 @@ import type { Release } from '../releases/release.entity.ts'
 import { boardBindingProblem } from './board-binding.ts'
 import { Board } from './board.entity.ts'
 import { presentBoards } from './present.ts'
+import { shortValue } from './short-value.ts'
 
 const hex = (bytes: Uint8Array) => Buffer.from(bytes).toString('hex').toUpperCase().replace(/..(?=.)/g, '$& ')
 const wordText = (value: number, bytes: number) => value.toString(16).toUpperCase().padStart(bytes * 2, '0')
 
 /** Registers as the board will hold them, made from the signed values; refused when they are not the stored bytes. */
-function rowsOf(schema: ParameterSchema, row: ReleaseJoint, release: Release): CardRow[] {
+function registersOf(schema: ParameterSchema, row: ReleaseJoint, release: Release): { rows: CardRow[]; checksum: number | null } {
   const encoded = encodeImage(schema, Object.fromEntries(row.revision.content.values.map((v) => [v.name, v.value])), { release: release.sequence })
   if (encoded.kind === 'refused' || sha256(encoded.image) !== row.imageSha256 || sha256(new Uint8Array(row.image)) !== row.imageSha256)
     throw new DomainError('verification-failed', `The stored image of ${row.joint.key} in ${release.machine.name} ${release.version} is not what was signed. No card was made; restore it from a backup before anything is flashed.`)
-  return encoded.rows
-    .filter((r) => r.access === 'rw')
-    .map((r) => ({ address: r.address, bytes: hex(r.bytes), parameter: r.parameter, title: r.title, unit: r.unit ?? '', value: r.physical, bit: r.bit, width: r.width, boardBound: schema.byName.get(r.parameter)?.boardBound ?? false }))
+  const rows = encoded.rows.filter((r) => r.access === 'rw').map((r): CardRow => ({ address: r.address, bytes: hex(r.bytes), parameter: r.parameter, title: r.title, unit: r.unit ?? '', value: shortValue(schema.byName.get(r.parameter)!, r.physical), bit: r.bit, width: r.width, boardBound: schema.byName.get(r.parameter)?.boardBound ?? false }))
+  return { rows, checksum: encoded.checksum }
 }
 
 /**
@@ -44,9 +44,8 @@ export async function presentCard(em: EntityManager, release: Release, jointKey:
   const board = await em.findOne(Board, { joint: row.joint }, { populate: ['machine', 'joint', 'imageOf'] })
   const bound = await boardBindingProblem(em, release, jointKey)
   const image = new Uint8Array(row.image)
-  const word = (r: { address: number; bytes: number }) => hex(image.subarray(r.address - schema.image.base, r.address - schema.image.base + r.bytes))
   const { checksum, layoutId } = schema.image
-  const role = mayDownload(machine.key, held, state)
+  const registers = registersOf(schema, row as ReleaseJoint, release)
   return {
     machine: machine.key,
     machineName: machine.name,
@@ -63,12 +62,13 @@ export async function presentCard(em: EntityManager, release: Release, jointKey:
     imageSha256: row.imageSha256,
     imageBytes: image.length,
     head: hex(image.subarray(0, 5)),
-    checksum: checksum && { algorithm: checksum.algorithm, value: word(checksum), address: checksum.address },
+    checksum: checksum && { algorithm: checksum.algorithm, value: wordText(registers.checksum!, checksum.bytes), address: checksum.address },
     layoutId: layoutId && wordText(layoutId.value, layoutId.bytes),
-    rows: rowsOf(schema, row as ReleaseJoint, release),
+    rows: registers.rows,
     calibratedFor: settings.board ?? null,
     board: board ? (await presentBoards(em, [board as Board]))[0] : null,
     releaseUrl: `${baseUrl}/machines/${encodeURIComponent(machine.key)}/releases/${encodeURIComponent(release.version)}`,
-    may: { download: role.allowed && bound !== null ? { allowed: false, why: bound } : role, record: may(held, 'record flashes', machine.key) },
+    binding: bound,
+    may: { download: mayDownload(machine.key, held, state), record: may(held, 'record flashes', machine.key) },
   }
 }

@@ -38,7 +38,7 @@ export async function presentBoards(em: EntityManager, boards: readonly Board[])
   return boards.map((b) => summariseBoard(b, grounds)).sort((a, b) => a.machine.localeCompare(b.machine, 'en') || a.serial.localeCompare(b.serial, 'en', { numeric: true }))
 }
 
-const presentEvent = (e: BoardEvent, newest: Release | null): BoardEventView => ({
+export const presentEvent = (e: BoardEvent, newest: Release | null): BoardEventView => ({
   id: e.id,
   kind: e.kind,
   at: e.at.toISOString(),

@@ -11,6 +11,7 @@ import { importBoards } from './import-boards.ts'
 import { findBoard, jointNamed, onBoard, releaseNamed } from './locate.ts'
 import { presentBenchTasks } from './present-bench-tasks.ts'
 import { presentCard } from './present-card.ts'
+import { presentJointBoards } from './present-joint-boards.ts'
 import { presentMachineBoards } from './present-machine-boards.ts'
 import { presentBoard, presentBoards } from './present.ts'
 import { previewImport } from './preview-import.ts'
@@ -58,6 +59,7 @@ export const boardRoutes: readonly RouteSpec[] = [
   route({ method: 'get', path: '/bench-tasks', summary: 'list what waits at the bench', access: 'signed-in', benchKey: true, handle: async ({ em, held }) => ({ body: await presentBenchTasks(em, held) }) }),
   route({ method: 'get', path: '/boards/:serial', summary: 'read a board', access: 'read', place: onBoard, benchKey: true, handle: async ({ em, place, held }) => ({ body: await presentBoard(em, place.board, held) }) }),
   route({ method: 'get', path: '/machines/:machine/boards', summary: 'read the boards of a machine', access: 'read', place: onMachine, benchKey: true, handle: async ({ em, place, held }) => ({ body: await presentMachineBoards(em, place.found, held) }) }),
+  route({ method: 'get', path: '/machines/:machine/joints/:joint/boards', summary: 'read the boards of a joint', access: 'read', place: onMachine, benchKey: true, handle: async ({ em, place, params }) => ({ body: await presentJointBoards(em, place.found, params.joint) }) }),
   route({
     method: 'get',
     path: '/machines/:machine/releases/:version/joints/:joint/card',

@@ -1,11 +1,14 @@
+import type { JointBoard, MachineBoards } from '../../../../shared/contract/boards.ts'
 import type { JointSummary } from '../../../../shared/contract/machines.ts'
 import { paths } from '../../../app/paths.ts'
 import { useUrlSort } from '../../../components/layout/use-url-state.ts'
+import { BoardMark } from '../../../components/ui/board-mark.tsx'
 import { HexAddress } from '../../../components/ui/hex-address.tsx'
 import { Num } from '../../../components/ui/num.tsx'
 import { SmallRail } from '../../../components/ui/small-rail.tsx'
 import { Table } from '../../../components/ui/table.tsx'
 import type { Column } from '../../../components/ui/table.tsx'
+import { TextLink } from '../../../components/ui/text-link.tsx'
 
 const columns: Column<JointSummary>[] = [
   {
@@ -56,21 +59,45 @@ const columns: Column<JointSummary>[] = [
   },
 ]
 
+/** What is known of the board at each joint. */
+function boardColumns(boards: MachineBoards): Column<JointSummary>[] {
+  const at = new Map<string, JointBoard>(boards.joints.map((j) => [j.joint, j]))
+  return [
+    {
+      key: 'board',
+      head: 'Board',
+      className: 'num whitespace-nowrap',
+      sortBy: (j) => at.get(j.key)?.board?.serial ?? null,
+      cell: (j) => {
+        const serial = at.get(j.key)?.board?.serial
+        return serial ? <TextLink className="row-link" to={paths.board(serial)}>{serial}</TextLink> : <span className="font-sans text-ink-2">none</span>
+      },
+    },
+    { key: 'holds', head: 'Holds', className: 'num whitespace-nowrap', sortBy: (j) => at.get(j.key)?.board?.release ?? null, cell: (j) => <Num value={at.get(j.key)?.board?.release} /> },
+    { key: 'state', head: 'State', className: 'whitespace-nowrap', sortBy: (j) => at.get(j.key)?.state ?? null, cell: (j) => <span title={at.get(j.key)?.why}><BoardMark state={at.get(j.key)?.state ?? 'unknown'} size={16} /></span> },
+  ]
+}
+
 export interface JointTableProps {
   machine: string
+  /** Adds what is known of their boards. */
+  boards?: MachineBoards
   joints: readonly JointSummary[]
   /** Columns that say the same in every row here. */
   without?: readonly string[]
 }
 
-export function JointTable({ machine, joints, without = [] }: JointTableProps) {
+export function JointTable({ machine, boards, joints, without = [] }: JointTableProps) {
   const [sort, setSort] = useUrlSort()
+  const known = boards ? boardColumns(boards) : []
+  const last = columns.length - 1
+  const all = [...columns.slice(0, last), ...known, columns[last]].map((c) => (boards && c.key === 'address' ? { ...c, cell: (j: JointSummary) => <HexAddress address={j.address} /> } : c))
   return (
     <Table
       className="max-xl:overflow-x-auto"
       label="joints"
       rows={joints}
-      columns={columns.filter((c) => !without.includes(c.key))}
+      columns={all.filter((c) => !without.includes(c.key))}
       rowKey={(j) => j.key}
       rowTo={(j) => paths.joint(machine, j.key)}
       sort={sort}

@@ -1,9 +1,20 @@
+import type { MachineBoards } from '../../../../shared/contract/boards.ts'
 import type { MachineView } from '../../../../shared/contract/machines.ts'
 import { paths } from '../../../app/paths.ts'
 import { BusSpine } from '../../../components/ui/bus-spine.tsx'
 
-/** A machine's buses as spines; with `only`, that bus alone. Which board sits at a tap is not recorded, so none is drawn as known. */
-export function Spines({ machine, only, selected }: { machine: MachineView; only?: string; selected?: string }) {
+export interface SpinesProps {
+  machine: MachineView
+  /** What is known of the boards; until it is read every tap is drawn as unknown. */
+  boards?: MachineBoards
+  /** That bus alone. */
+  only?: string
+  selected?: string
+}
+
+/** A machine's buses as spines, each tap with the state of its board. */
+export function Spines({ machine, boards, only, selected }: SpinesProps) {
+  const states = new Map(boards?.joints.map((j) => [j.joint, j.state]))
   const buses = machine.busList.filter((b) => only === undefined || b.key === only)
   return (
     <div className="flex flex-wrap gap-x-[22px] gap-y-6">
@@ -18,7 +29,7 @@ export function Spines({ machine, only, selected }: { machine: MachineView; only
           selected={selected}
           taps={machine.jointList
             .filter((j) => j.bus === bus.key)
-            .map((j) => ({ key: j.key, to: paths.joint(machine.key, j.key), joint: j.name, address: j.address, board: 'unknown', waiting: j.waiting.length > 0 }))}
+            .map((j) => ({ key: j.key, to: paths.joint(machine.key, j.key), joint: j.name, address: j.address, board: states.get(j.key) ?? 'unknown', waiting: j.waiting.length > 0 }))}
         />
       ))}
     </div>
