@@ -131,21 +131,36 @@ interface Acting {
   now: Date
 }
 
+/** @throws DomainError invalid-request for a key of another form */
+function keyOf(req: Request): string | null {
+  const key = req.headers['idempotency-key']
+  if (key !== undefined && (typeof key !== 'string' || !/^[\w-]{8,80}$/.test(key))) throw new DomainError('invalid-request', 'Idempotency-Key takes 8 to 80 letters, digits, hyphens and underscores. Nothing was done.')
+  return key ?? null
+}
+
+/**
+ * The kept answer of the same request under the same key; null when there is none.
+ *
+ * @throws DomainError key-reused when the key belongs to another request
+ */
+async function keptAnswer(em: EntityManager, { req, person, body }: Acting): Promise<Answer | null> {
+  const key = keyOf(req)
+  const earlier = key === null ? null : await em.findOne(Receipt, { personId: person.id, key })
+  if (!earlier) return null
+  if (earlier.requestHash !== requestHash(req, body)) throw new DomainError('key-reused', 'This Idempotency-Key belongs to another request. Nothing was done; use a new key.')
+  return JSON.parse(earlier.body) as Answer
+}
+
 /** Runs an act in one transaction; under an Idempotency-Key its answer is kept there for a repeat of the same request. */
 async function transact(em: EntityManager, acting: Acting, work: (em: EntityManager) => Promise<Answer>): Promise<Answer> {
   const { req, person, body, now } = acting
-  const key = req.headers['idempotency-key']
-  if (key !== undefined && (typeof key !== 'string' || !/^[\w-]{8,80}$/.test(key))) throw new DomainError('invalid-request', 'Idempotency-Key takes 8 to 80 letters, digits, hyphens and underscores. Nothing was done.')
+  const key = keyOf(req)
   return em.transactional(async (tx) => {
-    const hash = key === undefined ? '' : requestHash(req, body)
-    const earlier = key === undefined ? null : await tx.findOne(Receipt, { personId: person.id, key })
-    if (earlier) {
-      if (earlier.requestHash !== hash) throw new DomainError('key-reused', 'This Idempotency-Key belongs to another request. Nothing was done; use a new key.')
-      return JSON.parse(earlier.body) as Answer
-    }
+    const kept = await keptAnswer(tx, acting)
+    if (kept) return kept
     await mustStillBeAllowed(tx, acting)
     const answer = await work(tx)
-    if (key !== undefined) tx.create(Receipt, { personId: person.id, key, requestHash: hash, status: answer.status ?? 200, body: JSON.stringify(answer), createdAt: now })
+    if (key !== null) tx.create(Receipt, { personId: person.id, key, requestHash: requestHash(req, body), status: answer.status ?? 200, body: JSON.stringify(answer), createdAt: now })
     return answer
   })
 }
@@ -215,6 +230,10 @@ async function answerTo(services: Services, spec: RouteSpec, req: Request, res: 
     const ifMatch = spec.ifMatch ? readIfMatch(req) : 0
     if (spec.upload) upload = await receiveUpload(req, res, services.files, spec.upload)
     const body: unknown = spec.body ? validBody(spec.body, (req.body as unknown) ?? {}) : undefined
+    const acting: Acting = { spec, req, person, place, body: upload ? { file: upload.file.sha256, name: upload.name } : body, now }
+    // asked before the handler too: its guards see the state after the first request, and would refuse the repeat whose answer was lost
+    const kept = spec.method === 'get' ? null : await keptAnswer(em, acting)
+    if (kept) return kept
     return await spec.handle({
       services,
       em,
@@ -229,7 +248,7 @@ async function answerTo(services: Services, spec: RouteSpec, req: Request, res: 
       upload,
       now,
       session: req.session,
-      act: (work) => transact(em, { spec, req, person, place, body: upload ? { file: upload.file.sha256, name: upload.name } : body, now }, work),
+      act: (work) => transact(em, acting, work),
     })
   } catch (error) {
     if (error instanceof DomainError && error.recorded) await record(services, spec, error, person, place, now)
