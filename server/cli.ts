@@ -11,6 +11,7 @@ const commands: Record<string, Command> = {
   check: { usage: 'check FILE [--json] [--schemas DIR]', does: 'checks every joint of a machine set', run: async (args) => (await import('./cli/check.ts')).check(args) },
   image: { usage: 'image FILE --format bin|hex|srec|h|csv|json|write-list|systemrdl --out PATH [--joint KEY] [--release N] [--schemas DIR]', does: 'writes the register image of one joint', run: async (args) => (await import('./cli/image.ts')).image(args) },
   cases: { usage: 'cases FILE', does: 'runs reference cases of the control model', run: async (args) => (await import('./cli/cases.ts')).cases(args) },
+  bench: { usage: 'bench [--json]', does: 'prints the performance figures of this machine', run: async (args) => (await import('./cli/bench.ts')).bench(args) },
   workplace: { usage: 'workplace NAME EMAIL', does: 'makes the first administrator of an empty workplace', run: async (args) => (await import('./cli/workplace.ts')).workplace(args) },
   ledger: { usage: 'ledger verify [--checkpoints FILE] [--key PEM] | ledger checkpoints', does: "walks the ledger's chain, holds checkpoints against it and names the first entry that does not hold; or prints the checkpoints, to be kept elsewhere", run: async (args) => (await import('./cli/ledger.ts')).ledger(args) },
   backup: { usage: 'backup [--with-private-key] | backup --list', does: 'makes a backup of a workplace that no server uses, or lists those made', run: async (args) => (await import('./cli/backup.ts')).backup(args) },
