@@ -10,6 +10,8 @@ interface Command {
 const commands: Record<string, Command> = {
   check: { usage: 'check FILE [--json] [--schemas DIR]', does: 'checks every joint of a machine set', run: async (args) => (await import('./cli/check.ts')).check(args) },
   image: { usage: 'image FILE --format bin|hex|srec|h|csv|json|write-list|systemrdl --out PATH [--joint KEY] [--release N] [--schemas DIR]', does: 'writes the register image of one joint', run: async (args) => (await import('./cli/image.ts')).image(args) },
+  readback: { usage: 'readback DUMP --schema SCHEMA [--against FILE] [--joint KEY] [--format bin|hex|srec|csv] [--release N]', does: 'decodes a dump of a board, or names every register in which it differs from a set or image', run: async (args) => (await import('./cli/readback.ts')).readback(args) },
+  kit: { usage: 'kit verify KIT.zip [--key PUBLIC.pem]', does: 'proves a release kit, offline', run: async (args) => (await import('./cli/kit.ts')).kit(args) },
   cases: { usage: 'cases FILE', does: 'runs reference cases of the control model', run: async (args) => (await import('./cli/cases.ts')).cases(args) },
   bench: { usage: 'bench [--json]', does: 'prints the performance figures of this machine', run: async (args) => (await import('./cli/bench.ts')).bench(args) },
   workplace: { usage: 'workplace NAME EMAIL', does: 'makes the first administrator of an empty workplace', run: async (args) => (await import('./cli/workplace.ts')).workplace(args) },

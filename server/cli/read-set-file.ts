@@ -1,8 +1,8 @@
 import { existsSync, readFileSync, statSync } from 'node:fs'
 import { dirname, join } from 'node:path'
 import type { MachineSet } from '../../shared/parameters/machine-set.ts'
+import { checkParameterSchemaText } from '../../shared/registers/check-parameter-schema.ts'
 import type { ParameterSchema } from '../../shared/registers/parameter-schema.ts'
-import { readParameterSchema } from '../../shared/registers/read-parameter-schema.ts'
 import { readSet } from '../modules/changes/read-set.ts'
 
 const largest = 16 * 1024 * 1024
@@ -13,6 +13,22 @@ export function readTextFile(file: string): string {
   const { size } = statSync(file)
   if (size > largest) throw new Error(`${file}: ${size} bytes are more than the ${largest} that are read.`)
   return readFileSync(file, 'utf8')
+}
+
+export interface SchemaFile {
+  document: unknown
+  schema: ParameterSchema
+}
+
+/**
+ * Reads a parameter schema without losing a digit.
+ *
+ * @throws Error with every problem, each with its place
+ */
+export function readSchemaFile(path: string): SchemaFile {
+  const check = checkParameterSchemaText(readTextFile(path))
+  if (check.kind === 'refused') throw new Error(check.problems.map((p) => `${path}:${p.line ?? 1}:${p.column ?? 1}: ${p.pointer ? `${p.pointer} ` : ''}${p.message}`).join('\n'))
+  return { document: check.json, schema: check.schema }
 }
 
 export interface SetFile {
@@ -35,10 +51,8 @@ export function readSetFile(file: string, schemasDir: string | undefined): SetFi
   const documents: Record<string, unknown> = {}
   for (const name of new Set(Object.values(read.set.joints).map((j) => j.firmware))) {
     const path = join(folder, `${name.replace(' ', '-')}.schema.json`)
-    const document: unknown = JSON.parse(readTextFile(path))
-    const reading = readParameterSchema(document)
-    if (reading.kind === 'refused') throw new Error(reading.problems.map((p) => `${path}: ${p.pointer} ${p.message}`).join('\n'))
-    schemas.set(name, reading.schema)
+    const { document, schema } = readSchemaFile(path)
+    schemas.set(name, schema)
     documents[name] = document
   }
   return { set: read.set, schemas, documents }
