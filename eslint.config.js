@@ -2,7 +2,7 @@ import tseslint from 'typescript-eslint'
 import reactHooks from 'eslint-plugin-react-hooks'
 
 export default tseslint.config(
-  { ignores: ['.build/', '.data/', 'node_modules/', 'examples/'] },
+  { ignores: ['.build/', '.data/', 'node_modules/', 'examples/', '.dependency-cruiser.cjs'] },
   ...tseslint.configs.recommended,
   {
     rules: {

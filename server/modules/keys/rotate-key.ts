@@ -3,7 +3,7 @@ import type { EntityManager } from '@mikro-orm/core'
 import { DomainError } from '../../http/errors.ts'
 import { appendEntry } from '../ledger/append-entry.ts'
 import { queueMail } from '../mail/queue-mail.ts'
-import { Person } from '../people/person.entity.ts'
+import type { Person } from '../people/person.entity.ts'
 import { RoleGrant } from '../people/role-grant.entity.ts'
 import { keepPublicKey, newestKey } from './workplace-keys.ts'
 

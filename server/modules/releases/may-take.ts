@@ -4,7 +4,7 @@ import { DomainError } from '../../http/errors.ts'
 import type { HeldRole } from '../people/permissions.ts'
 import { mayDownload } from './permissions.ts'
 import { presentReleases } from './present.ts'
-import { Release } from './release.entity.ts'
+import type { Release } from './release.entity.ts'
 import { expiredAt, standingConcessions } from './standing-concessions.ts'
 
 interface Asking {
