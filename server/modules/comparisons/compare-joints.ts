@@ -1,6 +1,7 @@
 import type { ComparedField, ComparedRegister, ComparedValue } from '../../../shared/contract/comparisons.ts'
 import { same } from '../../../shared/parameters/edits.ts'
-import type { Parameter, ParameterSchema, Word } from '../../../shared/registers/parameter-schema.ts'
+import { decodeImage } from '../../../shared/registers/decode-image.ts'
+import type { Parameter, ParameterSchema, ParameterValues, Word } from '../../../shared/registers/parameter-schema.ts'
 import type { SideJoint } from './side.ts'
 
 const settingNames = { family: 'Family', bus: 'Bus', address: 'Address', firmware: 'Firmware', board: 'Board of the bound values' } as const
@@ -26,10 +27,16 @@ function nameOnA(a: ParameterSchema, b: ParameterSchema, name: string): string {
 const percent = (a: ComparedValue['a'], b: ComparedValue['b'], sameUnit: boolean): number | null =>
   sameUnit && typeof a?.value === 'number' && typeof b?.value === 'number' && a.value !== 0 ? (b.value / a.value - 1) * 100 : null
 
-function valueRow(parameter: string, nameA: string, [p, q]: [Parameter | undefined, Parameter | undefined], a: SideJoint, b: SideJoint): ComparedValue[] {
+/** Whether a side knows its values from bytes alone, as a read-back does: then what the registers hold is compared, not what was typed. */
+const fromBytes = (joint: SideJoint) => [...joint.values.values()].some((v) => v.origin === null)
+
+const held = (joint: SideJoint) => (joint.image ? decodeImage(joint.schema, joint.image).values : {})
+
+function valueRow(parameter: string, nameA: string, [p, q]: [Parameter | undefined, Parameter | undefined], a: SideJoint, b: SideJoint, registers: { a: ParameterValues; b: ParameterValues } | null): ComparedValue[] {
   const before = a.values.get(nameA) ?? null
   const after = b.values.get(parameter) ?? null
   const [unitA, unitB] = [p?.unit ?? '', q?.unit ?? '']
+  if (registers && unitA === unitB && same(registers.a[nameA], registers.b[parameter])) return []
   const known = before?.origin != null && after?.origin != null
   if (same(before?.value, after?.value) && (!known || before.origin === after.origin) && (!before || !after || unitA === unitB)) return []
   return [{ parameter, title: q?.title ?? p?.title ?? parameter, nameA: nameA === parameter ? null : nameA, unitA, unitB, a: before, b: after, changePercent: percent(before, after, unitA === unitB) }]
@@ -38,12 +45,13 @@ function valueRow(parameter: string, nameA: string, [p, q]: [Parameter | undefin
 /** Values that differ, in the order of b's schema; what b's firmware has no more comes last. */
 export function compareValues(a: SideJoint, b: SideJoint): ComparedValue[] {
   const met = new Set<string>()
+  const registers = fromBytes(a) || fromBytes(b) ? { a: held(a), b: held(b) } : null
   const rows = b.schema.parameters.flatMap((q) => {
     const nameA = nameOnA(a.schema, b.schema, q.name)
     met.add(nameA)
-    return valueRow(q.name, nameA, [a.schema.byName.get(nameA), q], a, b)
+    return valueRow(q.name, nameA, [a.schema.byName.get(nameA), q], a, b, registers)
   })
-  return [...rows, ...a.schema.parameters.filter((p) => !met.has(p.name)).flatMap((p) => valueRow(p.name, p.name, [p, undefined], a, b))]
+  return [...rows, ...a.schema.parameters.filter((p) => !met.has(p.name)).flatMap((p) => valueRow(p.name, p.name, [p, undefined], a, b, registers))]
 }
 
 const hex = (bytes: Uint8Array) => [...bytes].map((byte) => byte.toString(16).toUpperCase().padStart(2, '0')).join(' ')
