@@ -16,7 +16,7 @@ export function Component() {
   return (
     <div className="pt-4">
       <title>{`Bench card ${card.name}, ${card.machineName} ${card.version} · Detent`}</title>
-      <style>{'@media print { @page { size: A5 portrait; margin: 9mm } }'}</style>
+      <style>{'@media print { @page { size: A5 portrait; margin: 7mm } }'}</style>
       <div className="no-print mx-auto mb-3 flex max-w-[148mm] flex-wrap gap-2">
         <Button kind="primary" onClick={() => window.print()}>
           Print on A5

@@ -12,10 +12,13 @@ import { QrCode } from './qr-code.tsx'
 export function BenchCardSheet({ card }: { card: BenchCard }) {
   return (
     <article className="sheet mx-auto w-full max-w-[148mm] !rounded-none px-4 py-4 sm:px-6 print:max-w-none print:border-0 print:p-0" aria-label={`bench card of ${card.name}`}>
-      <header className="flex items-start gap-4 border-b border-ink pb-3">
+      <header className="flex items-start gap-3 border-b border-ink pb-3 sm:gap-4 print:pb-1">
         <div className="min-w-0 flex-1">
           <p className="flex items-center gap-2 text-13 text-ink-2">
-            <Mark size={20} /> bench card, {card.machineName} <span className="num">{card.version}</span>
+            <span className="max-sm:hidden"><Mark size={20} /></span>
+            <span>
+              bench card, {card.machineName} <span className="num">{card.version}</span>
+            </span>
           </p>
           <h1 className="mt-1 leading-8">{card.name}</h1>
           <p className="text-13 text-ink-2">{card.family}</p>
@@ -25,20 +28,20 @@ export function BenchCardSheet({ card }: { card: BenchCard }) {
           <div className="num text-28 leading-8 font-medium">{formatHex(card.address)}</div>
           <div className="text-13 text-ink-2">on bus {card.bus}</div>
         </div>
-        <QrCode text={card.releaseUrl} size={84} label={`QR code of ${card.releaseUrl}`} />
+        <QrCode text={card.releaseUrl} className="size-[68px] sm:size-[84px] print:size-[76px]" label={`QR code of ${card.releaseUrl}`} />
       </header>
-      <Caution className="mt-3" />
+      <Caution className="mt-3 print:mt-2 print:!py-1 print:!text-[10px] print:!leading-[13px]" />
       <dl className="mt-3 grid grid-cols-2 gap-x-4 gap-y-1 text-13 sm:grid-cols-4 print:mt-2 print:grid-cols-4 print:text-[11px] print:leading-[14px]">
         <Fact name="revision"><span className="num">r{card.revision}</span></Fact>
         <Fact name="firmware"><span className="num">{card.firmware}</span></Fact>
         <Fact name="measured on"><span className="num">{card.calibratedFor ?? 'no board'}</span></Fact>
         <Fact name="recorded here"><span className="num">{card.board?.serial ?? 'no board'}</span></Fact>
       </dl>
-      <div className="mt-3">
+      <div className="mt-3 print:mt-1">
         <CardRows rows={card.rows} />
       </div>
       <dl className="mt-3 grid gap-y-1 text-12 print:mt-2 print:text-[10px] print:leading-[13px]">
-        <Fact name="SHA-256 of the image"><Hash hash={card.imageSha256} className="!text-12 !text-ink [overflow-wrap:anywhere]" /></Fact>
+        <Fact name="SHA-256 of the image"><Hash hash={card.imageSha256} className="!text-12 !text-ink [overflow-wrap:anywhere] print:!text-[9px]" /></Fact>
         <div className="grid grid-cols-2 gap-x-4 sm:grid-cols-4 print:grid-cols-4">
           {card.checksum && <Fact name={card.checksum.algorithm}><span className="num">0x{card.checksum.value}</span> at <span className="num">{formatHex(card.checksum.address)}</span></Fact>}
           {card.layoutId && <Fact name="layout id"><span className="num">0x{card.layoutId}</span></Fact>}

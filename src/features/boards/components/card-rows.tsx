@@ -5,7 +5,7 @@ import { HexAddress } from '../../../components/ui/hex-address.tsx'
 /** Registers of a card: what stands in each, in units and in bytes. */
 export function CardRows({ rows, address = true }: { rows: readonly CardRow[]; address?: boolean }) {
   return (
-    <table className="w-full border-collapse text-13 print:text-[10px] print:leading-[13px]">
+    <table className="w-full border-collapse text-13 print:text-[10px] print:leading-[12px] print:[&_td]:py-0 print:[&_td]:leading-[12px] print:[&_th]:py-0 print:[&_th]:text-[9px]">
       <thead>
         <tr className="border-b border-ink text-left text-12 text-ink-2">
           {address && <th className="py-1 pr-2 font-medium">at</th>}
@@ -24,7 +24,7 @@ export function CardRows({ rows, address = true }: { rows: readonly CardRow[]; a
             )}
             <td className="py-[3px] pr-2 print:py-0">
               {r.title}
-              {r.boardBound && <span className="text-12 text-ink-2"> of this board</span>}
+              {r.boardBound && <span className="text-12 text-ink-2 print:text-[9px]"> of this board</span>}
             </td>
             <td className="pr-2 text-right whitespace-nowrap">
               <span className="num">{valueText(r.value)}</span>

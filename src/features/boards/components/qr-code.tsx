@@ -2,7 +2,7 @@ import QRCode from 'qrcode'
 import { useMemo } from 'react'
 
 /** A QR code with the quiet zone of four modules that ISO/IEC 18004 asks for, drawn as one path; dark on light in either theme. */
-export function QrCode({ text, size, label }: { text: string; size: number; label: string }) {
+export function QrCode({ text, label, className = '' }: { text: string; label: string; className?: string }) {
   const { d, width } = useMemo(() => {
     const { modules } = QRCode.create(text, { errorCorrectionLevel: 'M' })
     let path = ''
@@ -10,7 +10,7 @@ export function QrCode({ text, size, label }: { text: string; size: number; labe
     return { d: path, width: modules.size + 8 }
   }, [text])
   return (
-    <svg role="img" aria-label={label} width={size} height={size} viewBox={`0 0 ${width} ${width}`} shapeRendering="crispEdges">
+    <svg role="img" aria-label={label} className={`flex-none ${className}`} viewBox={`0 0 ${width} ${width}`} shapeRendering="crispEdges">
       <rect width={width} height={width} fill="#fff" />
       <path d={d} fill="#000" />
     </svg>

@@ -42,9 +42,15 @@ export function RecordMachineDialog({ machines, machine: first, onClose }: Recor
   )
 }
 
+/** Boards that may have been flashed: those recorded at a joint whose values are theirs; on a machine without any board, those its values were measured on. */
+function firstSerials({ joints }: MachineBoards): Record<string, string> {
+  const bare = joints.every((j) => j.board === null)
+  return Object.fromEntries(joints.map((j) => [j.joint, bare ? (j.calibratedFor ?? '') : j.state === 'not calibrated for this joint' ? '' : (j.board?.serial ?? '')]))
+}
+
 function Rows({ boards, release, onClose }: { boards: MachineBoards; release: string; onClose: () => void }) {
   const record = useRecordMachine()
-  const [serials, setSerials] = useState<Record<string, string>>(() => Object.fromEntries(boards.joints.map((j) => [j.joint, j.board?.serial ?? j.calibratedFor ?? ''])))
+  const [serials, setSerials] = useState<Record<string, string>>(() => firstSerials(boards))
   const list = useRef<HTMLUListElement>(null)
   const given = boards.joints.flatMap((j) => (serials[j.joint].trim() === '' ? [] : [{ joint: j.joint, serial: serials[j.joint].trim() }]))
   const errorOf = (joint: string) => {

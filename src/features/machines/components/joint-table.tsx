@@ -94,7 +94,7 @@ export function JointTable({ machine, boards, joints, without = [] }: JointTable
   const all = [...columns.slice(0, last), ...known, columns[last]].map((c) => (boards && c.key === 'address' ? { ...c, cell: (j: JointSummary) => <HexAddress address={j.address} /> } : c))
   return (
     <Table
-      className="max-xl:overflow-x-auto"
+      className={`max-xl:overflow-x-auto ${boards ? '[&_td]:!px-[4px] [&_th]:!px-[4px]' : ''}`}
       label="joints"
       rows={joints}
       columns={all.filter((c) => !without.includes(c.key))}
