@@ -1,0 +1,37 @@
+export type KillMode = 'before' | 'during' | 'after'
+
+/** When the child is to die: at this step since it was armed, counted from 1. */
+export interface Kill {
+  at: number
+  mode: KillMode
+}
+
+/** What the child is asked; each with a number that its answer bears. */
+export type Asked = { id: number } & Ask
+
+export type Ask =
+  | { do: 'open'; folder: string }
+  | { do: 'close' }
+  | { do: 'prepare'; password: string }
+  | { do: 'check' }
+  | { do: 'arm'; kill: Kill | null }
+  | { do: 'steps' }
+  | { do: 'fill'; folder: string }
+  /** reads a file without bringing it to the present schema */
+  | { do: 'look'; folder: string }
+  | { do: 'migrate'; folder: string; rebuild: boolean; kill: Kill | null }
+
+/** What a database holds, to be compared before and after. */
+export interface Summary {
+  entries: number
+  releases: number
+  signatures: number
+  checkpoints: number
+  receipts: number
+  firmwareImages: number
+}
+
+export interface Checked {
+  faults: string[]
+  summary: Summary
+}
