@@ -32,6 +32,13 @@ async function type(label: string, value: string) {
   await field.press('Tab')
 }
 
+/** Marks every row of the diff as read, one by one: nobody signs what they did not read. */
+async function readAll() {
+  const marks = page.getByRole('checkbox', { name: / read$/ })
+  await marks.first().waitFor()
+  for (let i = 0; i < (await marks.count()); i += 1) if (!(await marks.nth(i).isChecked())) await marks.nth(i).click()
+}
+
 beforeAll(async () => {
   server = await startServer()
   browser = await openBrowser()
@@ -91,8 +98,9 @@ describe('the main job, in a browser', () => {
     await signIn('Rafiq Sandoval')
     await page.goto(`${server.url}${change}/review`)
     await page.getByText('Velocity gain').first().waitFor()
-    await page.getByText(/9A 99 99 03|99 99 03|66 66 66 03/).first().waitFor({ timeout: 10_000 })
-    await page.getByRole('checkbox').first().check()
+    await page.getByText(/CD CC 4C 03/).first().waitFor({ timeout: 10_000 })
+    await readAll()
+    await page.getByRole('checkbox', { name: /I have read every value/ }).check()
     await page.getByRole('textbox', { name: 'Your password' }).fill(passwordOf('Rafiq Sandoval'))
     await page.getByRole('button', { name: /^Sign/ }).click()
     await page.getByRole('listitem').filter({ hasText: 'approved' }).filter({ hasText: 'Rafiq Sandoval' }).first().waitFor()
@@ -103,7 +111,8 @@ describe('the main job, in a browser', () => {
     await page.goto(`${server.url}${change}/review`)
     const version = page.getByRole('textbox', { name: /Version of/ })
     await expect.poll(() => version.inputValue(), { timeout: 20_000 }).toMatch(/^\d+\.\d+\.\d+$/)
-    await page.getByRole('checkbox').first().check()
+    await readAll()
+    await page.getByRole('checkbox', { name: /I grant the concessions/ }).check()
     await page.getByRole('textbox', { name: 'Your password' }).fill(passwordOf('Hedda Lindqvist'))
     await page.getByRole('button', { name: /^Sign and release/ }).click()
     await page.waitForURL(/\/releases\//)
