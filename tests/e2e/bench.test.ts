@@ -51,7 +51,7 @@ describe("the builder's way, on a screen of 360 px", () => {
     await tap(task.getByRole('link', { name: /^Flash/ }))
     await page.getByRole('heading', { name: 'R3 yaw' }).waitFor()
     await page.getByRole('note', { name: 'caution' }).filter({ hasText: 'emergency stop in reach' }).waitFor()
-    await page.getByText('withdrawn release on board').first().waitFor()
+    await page.getByText('withdrawn release on board').locator('visible=true').first().waitFor()
     expect(await widerBy()).toBe(0)
 
     const download = page.waitForEvent('download')
@@ -81,7 +81,7 @@ describe("the builder's way, on a screen of 360 px", () => {
     await page.getByRole('textbox', { name: /Scan a board/ }).waitFor()
     await page.keyboard.type('h-0345\n')
     await page.getByRole('heading', { name: 'R3 knee' }).waitFor()
-    await page.getByText('H-0345').first().waitFor()
+    await page.getByText('H-0345').locator('visible=true').first().waitFor()
 
     await page.goto(`${server.url}/machines/dunlin/bench`)
     await page.getByRole('textbox', { name: /Scan a board/ }).waitFor()

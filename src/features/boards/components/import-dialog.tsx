@@ -17,7 +17,7 @@ interface ImportDialogProps {
 
 const columns: Column<BoardTableRow>[] = [
   { key: 'line', head: 'Line', align: 'end', className: 'num text-ink-2', cell: (r) => r.line },
-  { key: 'serial', head: 'Board', className: 'num', cell: (r) => r.serial.slice(0, 40) || '–' },
+  { key: 'serial', head: 'Board', className: 'num whitespace-nowrap', cell: (r) => r.serial.slice(0, 40) || '–' },
   { key: 'joint', head: 'Joint', cell: (r) => r.joint ?? <span className="text-ink-2">none</span> },
   { key: 'release', head: 'Holds', className: 'num', cell: (r) => r.release ?? '–' },
   { key: 'does', head: 'What it does', className: 'text-13', cell: (r) => (r.problem !== null ? <FindingMark level="block">{r.problem}</FindingMark> : r.does.length > 0 ? r.does.join('; ') : <span className="text-ink-2">stands so already</span>) },
@@ -83,7 +83,12 @@ export function ImportDialog({ machines, machine: first, onClose }: ImportDialog
             )}
             <label className="btn focus-within:outline-2 focus-within:outline-offset-2 focus-within:outline-brass">
               Choose the table
-              <input type="file" accept=".csv,.txt,text/csv" className="sr-only" onChange={(event) => event.target.files?.[0] && void choose(event.target.files[0])} />
+              <input type="file" accept=".csv,.txt,text/csv" className="sr-only" onChange={(event) => {
+                const [file] = event.target.files ?? []
+                if (file) void choose(file)
+                // The same file may be chosen again after it was corrected.
+                event.target.value = ''
+              }} />
             </label>
             {name && <span className="num py-2 text-13">{name}</span>}
           </div>
