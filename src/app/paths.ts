@@ -21,6 +21,10 @@ export const paths = {
   joint: (machine: string, joint: string) => `/machines/${part(machine)}/joints/${part(joint)}`,
   family: (machine: string, family: string) => `/machines/${part(machine)}/families/${part(family)}`,
   firmware: () => '/firmware',
+  firmwareComparison: (line: string, { from, to }: { from?: string; to?: string } = {}) => {
+    const query = new URLSearchParams(Object.entries({ from, to }).flatMap(([k, v]) => (v ? [[k, v]] : []))).toString()
+    return `/firmware/${part(line)}/compare${query && `?${query}`}`
+  },
   firmwareVersion: (line: string, version: string) => `/firmware/${part(line)}/${part(version)}`,
   changes: (machine?: string) => (machine ? `/changes?machine=${part(machine)}` : '/changes'),
   change: (change: string) => `/changes/${part(change)}`,
@@ -28,6 +32,12 @@ export const paths = {
   changeReview: (change: string) => `/changes/${part(change)}/review`,
   releases: (machine?: string) => (machine ? `/releases?machine=${part(machine)}` : '/releases'),
   release: (machine: string, version: string) => `/machines/${part(machine)}/releases/${part(version)}`,
+  /** Sides as the server names them: "release:dunlin@1.7.0", "change:dunlin-47:r3-knee", … */
+  compare: (sides: { a?: string; b?: string } = {}) => {
+    const query = new URLSearchParams(Object.entries(sides).flatMap(([k, v]) => (v ? [[k, v]] : []))).toString()
+    return `/compare${query && `?${query}`}`
+  },
+  keys: () => '/keys',
   boards: (filter: { machine?: string; state?: string; release?: string } = {}) => {
     const query = new URLSearchParams(Object.entries(filter).filter(([, v]) => v)).toString()
     return query ? `/boards?${query}` : '/boards'

@@ -30,7 +30,10 @@ const pages: RouteObject[] = [
   { path: 'machines/:machine/joints/:joint', lazy: () => import('../routes/joint.tsx') },
   { path: 'machines/:machine/families/:family', lazy: () => import('../routes/family.tsx') },
   { path: 'firmware', lazy: () => import('../routes/firmware.tsx') },
+  { path: 'firmware/:line/compare', lazy: () => import('../routes/firmware-compare.tsx') },
   { path: 'firmware/:line/:version', lazy: () => import('../routes/firmware-version.tsx') },
+  { path: 'compare', lazy: () => import('../routes/compare.tsx') },
+  { path: 'keys', lazy: () => import('../routes/keys.tsx') },
   { path: 'search', lazy: () => import('../routes/search.tsx') },
 ]
 

@@ -39,6 +39,8 @@ export function personItems({ theme, mayKeepPeople, mayKeepMail, signOut }: { th
     { label: 'account', to: paths.account() },
     { label: mayKeepPeople ? 'people and roles' : 'people', to: paths.people() },
     { label: 'policy', to: paths.policy() },
+    { label: 'keys', to: paths.keys() },
+    { label: 'compare', to: paths.compare() },
     ...(mayKeepMail ? [{ label: 'mail', to: paths.mail() }] : []),
     ...themes.map((t) => ({ label: t === 'system' ? 'light or dark by system' : t, current: t === theme, note: t === theme ? 'shown' : undefined, onSelect: () => setTheme(t) })),
     { label: 'sign out', onSelect: signOut },

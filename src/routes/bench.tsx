@@ -11,8 +11,8 @@ import { TextLink } from '../components/ui/text-link.tsx'
 import { BenchJoint } from '../features/boards/components/bench-joint.tsx'
 import { BenchPicker } from '../features/boards/components/bench-picker.tsx'
 import { cardQuery, machineBoardsQuery } from '../features/boards/queries.ts'
-import { takeFile } from '../features/releases/take-file.ts'
 import { queryClient } from '../lib/query-client.ts'
+import { takeFile } from '../lib/take-file.ts'
 
 export const loader = ({ params }: LoaderFunctionArgs) => queryClient.ensureQueryData(machineBoardsQuery(params.machine!))
 

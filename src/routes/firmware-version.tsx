@@ -13,12 +13,14 @@ import { Button } from '../components/ui/button.tsx'
 import { ErrorPanel } from '../components/ui/error-panel.tsx'
 import { Hash } from '../components/ui/hash.tsx'
 import { KeyValueList } from '../components/ui/key-value-list.tsx'
+import { LinkButton } from '../components/ui/link-button.tsx'
 import { SectionHeading } from '../components/ui/section-heading.tsx'
 import { TextLink } from '../components/ui/text-link.tsx'
 import { Time } from '../components/ui/time.tsx'
 import { ViewSwitch } from '../components/ui/view-switch.tsx'
 import { AddressMap } from '../features/firmware/components/address-map.tsx'
 import { DraftVersionDialog } from '../features/firmware/components/draft-version-dialog.tsx'
+import { FirmwareImage } from '../features/firmware/components/firmware-image.tsx'
 import { ParameterTable } from '../features/firmware/components/parameter-table.tsx'
 import { SchemaEditor } from '../features/firmware/components/schema-editor.tsx'
 import { SignVersionDialog } from '../features/firmware/components/sign-version-dialog.tsx'
@@ -31,6 +33,12 @@ import { queryClient } from '../lib/query-client.ts'
 
 export const loader = ({ params }: LoaderFunctionArgs) =>
   Promise.all([queryClient.ensureQueryData(firmwareLinesQuery), queryClient.ensureQueryData(firmwareVersionQuery(params.line!, params.version!))])
+
+/** The version that came before, or the one after it where it is the first; newest first in the list. */
+function versionBefore(versions: readonly { version: string }[], version: string): string | undefined {
+  const at = versions.findIndex((v) => v.version === version)
+  return (versions[at + 1] ?? versions[at - 1])?.version
+}
 
 /** Typed text belongs to one version: another one begins afresh. */
 export function Component() {
@@ -69,6 +77,7 @@ function VersionPage(params: { line: string; version: string }) {
         }
         actions={
           <>
+            {line && line.versions.length > 1 && <LinkButton to={paths.firmwareComparison(version.line, { from: versionBefore(line.versions, version.version), to: version.version })}>Compare…</LinkButton>}
             {line?.may.draftVersion.allowed && <Button onClick={() => setDialog('draft')}>Draft the next…</Button>}
             {version.state === 'draft' && (
               <Button kind="primary" unavailable={draft.dirty ? 'Save the draft first.' : refusal(version.may.publish)} onClick={() => setDialog('publish')}>
@@ -123,6 +132,7 @@ function VersionPage(params: { line: string; version: string }) {
             </section>
           </>
         )}
+        {!showsSchema && <FirmwareImage version={version} hold={draft.dirty ? 'Save the draft first.' : null} />}
         {version.advice.length > 0 && !showsSchema && (
           <section aria-labelledby="advice" className="mt-8">
             <SectionHeading id="advice">Worth a second look</SectionHeading>

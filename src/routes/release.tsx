@@ -2,8 +2,10 @@ import { useQuery, useSuspenseQuery } from '@tanstack/react-query'
 import { useState } from 'react'
 import { useParams } from 'react-router'
 import type { LoaderFunctionArgs } from 'react-router'
+import { paths } from '../app/paths.ts'
 import { refusal } from '../components/layout/refused.ts'
 import { Button } from '../components/ui/button.tsx'
+import { LinkButton } from '../components/ui/link-button.tsx'
 import { Rail } from '../components/ui/rail.tsx'
 import { railOf } from '../features/changes/rail-of.ts'
 import { changeQuery } from '../features/changes/queries.ts'
@@ -39,6 +41,7 @@ export function Component() {
         )}
         <div className="flex flex-wrap gap-2">
           <Button onClick={() => window.print()}>Print the sheet</Button>
+          <LinkButton to={paths.compare({ a: `release:${release.machine}@${release.version}` })}>Compare…</LinkButton>
           {release.state !== 'withdrawn' && (
             <Button kind="danger" unavailable={refusal(withdraw)} onClick={() => setWithdrawing(true)}>
               Withdraw {release.version}…

@@ -1,6 +1,7 @@
 import { useMutation } from '@tanstack/react-query'
 import { useState } from 'react'
 import type { ReactNode } from 'react'
+import { paths } from '../../../app/paths.ts'
 import type { ReleaseView } from '../../../../shared/contract/releases.ts'
 import { ProblemPanel } from '../../../components/problem/problem-panel.tsx'
 import { Button } from '../../../components/ui/button.tsx'
@@ -9,8 +10,10 @@ import { Hash } from '../../../components/ui/hash.tsx'
 import { SectionHeading } from '../../../components/ui/section-heading.tsx'
 import { Select } from '../../../components/ui/select.tsx'
 import { TextField } from '../../../components/ui/text-field.tsx'
+import { TextLink } from '../../../components/ui/text-link.tsx'
 import { count, formatBytes, formatHex } from '../../../lib/format.ts'
-import { fileForms, imageHref, kitHref, takeFile } from '../take-file.ts'
+import { takeFile } from '../../../lib/take-file.ts'
+import { fileForms, imageHref, kitHref } from '../take-file.ts'
 
 /** A joint's files and the kit of all of them, with their hashes, and the caution that goes with every download. */
 export function BenchDownloads({ release }: { release: ReleaseView }) {
@@ -35,7 +38,7 @@ export function BenchDownloads({ release }: { release: ReleaseView }) {
             <div className="mt-2">
               <Take label={`Download the kit, ${count(release.items.length, 'joint')}`} aside={formatBytes(release.kit.bytes)} href={kitHref(release.machine, release.version, why)} name={`${release.machine}-${release.version}.zip`} missing={missing} primary />
               <p className="mt-1 text-12 text-ink-2">
-                One .zip, the same bytes every time; its manifest is signed with Ed25519, and the kit says how to verify it with openssl alone.
+                One .zip, the same bytes every time; its manifest is signed with Ed25519, and the kit says how to verify it with openssl alone. <TextLink to={paths.keys()}>The workplace’s keys</TextLink>
                 {release.firmwareImages.length > 0 && <> With the firmware of {release.firmwareImages.join(', ')}.</>}
               </p>
               <p className="mt-1 text-12 text-ink-2">
