@@ -71,6 +71,7 @@ export async function dunlinStory(story: Story, set: MachineSet): Promise<void> 
   story.day(145)
   const reach = await story.draft({ machine, title: 'Longer hip reach on landing', reason: 'Reaching out further before touch-down takes the shock off the knees.', author: tobias, content: [[own('l1-hip', 'positionMax'), 1.28], [own('r1-hip', 'positionMin'), -1.28]] })
   await story.submit(reach, tobias)
+  await story.comment(reach, ingunn, `@${tobias}, does the left hip clear the tube holder at 1.28 rad? A picture from the bench would settle it.`, { on: { kind: 'value', pointer: own('l1-hip', 'positionMax') } })
 
   story.day(147)
   const knee = await story.draft({
@@ -81,6 +82,9 @@ export async function dunlinStory(story: Story, set: MachineSet): Promise<void> 
     content: [[value('knee', 'velocityWindow'), 10], [value('knee', 'velocityGain'), 4.4], [value('knee', 'velocityIntegralGain'), 48], [value('knee', 'positionGain'), 66], [value('knee', 'currentLimit'), 3], [own('r3-knee', 'velocityGain'), undefined]],
   })
   await story.submit(knee, mirela)
+  const ripple = await story.comment(knee, rafiq, 'Ten samples let more of the encoder step through. Was it heard on the bench?', { on: { kind: 'value', pointer: value('knee', 'velocityWindow') } })
+  await story.comment(knee, mirela, 'Faint, only at rest and unloaded; with the shank on there is nothing to hear.', { under: ripple })
+  await story.answered(knee, rafiq, ripple)
   await story.review(knee, rafiq)
 
   story.day(149)

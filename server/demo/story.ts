@@ -1,4 +1,5 @@
 import type { EntityManager } from '@mikro-orm/core'
+import type { CommentPlace } from '../../shared/contract/comments.ts'
 import type { Edit } from '../../shared/parameters/edits.ts'
 import type { MachineSet } from '../../shared/parameters/machine-set.ts'
 import { valueAt } from '../../shared/parameters/paths.ts'
@@ -12,6 +13,9 @@ import { cancelChange, returnChange } from '../modules/changes/return-change.ts'
 import { saveDraftText } from '../modules/changes/save-draft.ts'
 import { prepareSubmission, submitChange } from '../modules/changes/submit-change.ts'
 import { checkChange } from '../modules/checks/check-change.ts'
+import { markAnswered } from '../modules/comments/mark-answered.ts'
+import { placeWords } from '../modules/comments/place-words.ts'
+import { writeComment } from '../modules/comments/write-comment.ts'
 import { Machine } from '../modules/machines/machine.entity.ts'
 import { heldRoles } from '../modules/people/held-roles.ts'
 import { Person } from '../modules/people/person.entity.ts'
@@ -107,6 +111,24 @@ export class Story {
     await this.act(async (tx, now) => {
       const [fresh, person] = [await again(tx, change), await this.person(tx, by)]
       await markRead(tx, fresh, rowsOf(await diffChange(tx, fresh)), { person, held: await heldRoles(tx, person), now })
+    })
+  }
+
+  /** Writes a comment; `under` the one of this number where it is given. */
+  async comment(change: Change, by: string, text: string, { on = { kind: 'change' }, under }: { on?: CommentPlace; under?: number } = {}): Promise<number> {
+    const em = this.services.orm.em.fork()
+    const about = under === undefined ? await placeWords(this.then, em, await again(em, change), on, change.author.id) : ''
+    return this.act(async (tx, now) => {
+      const [fresh, person] = [await again(tx, change), await this.person(tx, by)]
+      const comment = await writeComment(tx, fresh, { request: { text, on, ...(under === undefined ? {} : { under }) }, about, person, held: await heldRoles(tx, person), baseUrl: this.services.config.baseUrl, now })
+      return comment.number
+    })
+  }
+
+  async answered(change: Change, by: string, comment: number) {
+    await this.act(async (tx, now) => {
+      const person = await this.person(tx, by)
+      await markAnswered(tx, await again(tx, change), comment, { person, held: await heldRoles(tx, person), now })
     })
   }
 

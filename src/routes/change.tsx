@@ -1,4 +1,5 @@
-import { useQuery, useSuspenseQuery } from '@tanstack/react-query'
+import { useQuery, useQueryClient, useSuspenseQuery } from '@tanstack/react-query'
+import { use, useState } from 'react'
 import { useNavigate, useParams } from 'react-router'
 import type { LoaderFunctionArgs } from 'react-router'
 import { paths } from '../app/paths.ts'
@@ -7,9 +8,14 @@ import { CheckPanel } from '../features/checks/components/check-panel.tsx'
 import { checkQuery } from '../features/checks/queries.ts'
 import { ChangeEditor, type Looked } from '../features/changes/components/change-editor.tsx'
 import { ChangeReader } from '../features/changes/components/change-reader.tsx'
+import { placeWords } from '../features/changes/place-words.ts'
 import { changeQuery, firmwareChoicesQuery, firmwareNames, schemasQuery } from '../features/changes/queries.ts'
 import { peopleQuery } from '../features/people/queries.ts'
+import { PresenceLine } from '../features/reviews/components/presence-line.tsx'
+import { SavedLine, type OthersSave } from '../features/reviews/components/saved-line.tsx'
+import { PresentContext } from '../features/reviews/present-context.ts'
 import { versionQuery } from '../features/reviews/queries.ts'
+import { useChangeEvents } from '../features/reviews/use-change-events.ts'
 import { useMe } from '../lib/me.ts'
 import { queryClient } from '../lib/query-client.ts'
 
@@ -20,13 +26,38 @@ export async function loader({ params }: LoaderFunctionArgs) {
   return null
 }
 
-/** While others may be writing, their saves are read this often. */
-const OTHERS = 10_000
+/** Others' saves are told of as they happen; where no stream reaches the page, they are read this often, ms. */
+const OTHERS = 60_000
 
 export function Component() {
   const { change: key } = useParams()
   const change = useSuspenseQuery({ ...changeQuery(key!), refetchInterval: ({ state }) => (state.data?.state === 'draft' && state.data.writers.length > 1 ? OTHERS : false) }).data
-  return change.may.edit.allowed ? <Editing key={change.key} change={change} /> : <Reading key={change.key} change={change} />
+  const { present, saved, seen } = useOthers(change)
+  return (
+    <PresentContext value={present}>
+      {change.may.edit.allowed ? <Editing key={change.key} change={change} /> : <Reading key={change.key} change={change} />}
+      <SavedLine saved={saved} onSeen={seen} />
+    </PresentContext>
+  )
+}
+
+/** Who else has the change open, and what they saved last. */
+function useOthers(change: ChangeView) {
+  const me = useMe()
+  const client = useQueryClient()
+  const schemas = useQuery(schemasQuery(change.key, firmwareNames(change.set, change.base))).data ?? {}
+  const [saved, setSaved] = useState<OthersSave | null>(null)
+  const refresh = () => void client.invalidateQueries({ queryKey: changeQuery(change.key).queryKey })
+  const present = useChangeEvents(change.key, 'values', {
+    onNews: (news) => {
+      const mine = news.by === me.name
+      if (news.kind === 'saved' && !mine) setSaved({ by: news.by, at: news.at, places: news.pointers.map((p) => placeWords(p, [change.set, change.base], schemas)) })
+      // The page that has the focus knows what it saved itself; another page of the same person does not.
+      if (news.kind !== 'comment' && news.revision > change.revision && !(mine && document.hasFocus())) refresh()
+    },
+    onMissed: refresh,
+  })
+  return { present, saved, seen: () => setSaved(null) }
 }
 
 const nameIn = (change: Pick<ChangeView, 'set' | 'base'>) => (joint: string) => change.set.joints[joint]?.name ?? change.base.joints[joint]?.name ?? joint
@@ -43,6 +74,7 @@ function Editing({ change }: { change: ChangeView }) {
 /** The check of the draft as saved; stale while anything on the screen is newer. */
 function useLiveCheck({ state, joints }: Looked) {
   const { view } = state
+  const present = use(PresentContext)
   const query = useQuery(checkQuery(view.key, view.revision))
   const stale = state.saving !== 'saved' || query.isPlaceholderData || query.data === undefined
   const version = useQuery({ ...versionQuery(view.key, view.revision), enabled: !stale && query.data?.counts.block === 0 }).data
@@ -50,7 +82,12 @@ function useLiveCheck({ state, joints }: Looked) {
     check: query.data,
     stale,
     panel: <CheckPanel change={view.key} query={query} stale={stale && query.data !== undefined} joints={joints} nameOf={nameIn({ set: state.set, base: view.base })} reportTo={paths.changeCheck(view.key)} note={(f) => (view.concessions.some((c) => c.finding === f.key) ? <p className="text-12 text-plum">concession requested</p> : null)} />,
-    proposes: version && !stale ? <>, proposes <span className="num">{version.version}</span></> : null,
+    proposes: (
+      <>
+        {version && !stale && <>, proposes <span className="num">{version.version}</span></>}
+        <PresenceLine present={present} className="ml-4" />
+      </>
+    ),
   }
 }
 

@@ -18,6 +18,8 @@ import { WaitingChange } from '../features/changes/components/waiting-change.tsx
 import { changesQuery } from '../features/changes/queries.ts'
 import { waitingFor } from '../features/changes/waiting-for.ts'
 import { CheckBrief } from '../features/checks/components/check-brief.tsx'
+import { NamedSection } from '../features/comments/components/named-section.tsx'
+import { namingQuery } from '../features/comments/queries.ts'
 import { ledgerQuery } from '../features/ledger/queries.ts'
 import { count } from '../lib/format.ts'
 import { holds, useMe } from '../lib/me.ts'
@@ -25,6 +27,7 @@ import { queryClient } from '../lib/query-client.ts'
 
 export const loader = () => {
   void queryClient.prefetchQuery(changesQuery())
+  void queryClient.prefetchQuery(namingQuery)
   void queryClient.prefetchQuery(benchTasksQuery)
   return null
 }
@@ -33,6 +36,7 @@ export function Component() {
   const me = useMe()
   const changes = useQuery({ ...changesQuery(), refetchOnWindowFocus: true })
   const tasks = useQuery({ ...benchTasksQuery, refetchOnWindowFocus: true }).data ?? []
+  const naming = useQuery({ ...namingQuery, refetchOnWindowFocus: true }).data ?? []
   // How long things wait is read off when they were fetched: the page does not tick.
   const now = changes.dataUpdatedAt
   const first = me.name.split(' ')[0]
@@ -41,10 +45,11 @@ export function Component() {
     waiting.toSign.length > 0 && `${waiting.toSign.length} to read and sign`,
     waiting.toRelease.length > 0 && `${waiting.toRelease.length} to release`,
     waiting.returned.length > 0 && `${waiting.returned.length} returned to you`,
+    naming.length > 0 && `${naming.length} naming you`,
     tasks.length > 0 && `${tasks.length} at the bench`,
   ].filter(Boolean)
   const toRead = waiting.toSign.length + waiting.toRelease.length + waiting.returned.length
-  const total = toRead + tasks.length
+  const total = toRead + naming.length + tasks.length
   const open = (changes.data ?? []).filter((c) => c.state !== 'released' && c.state !== 'cancelled')
   return (
     <>
@@ -62,6 +67,7 @@ export function Component() {
           <>
             <div className="grid grid-cols-[minmax(0,1fr)] gap-x-12 gap-y-8 xl:grid-cols-[minmax(0,1fr)_400px]">
               <div className="min-w-0">
+                <NamedSection naming={naming} />
                 <Group title="To read and sign" changes={waiting.toSign} act="Read and sign" now={now} />
                 <Group title="To release" changes={waiting.toRelease} act="Read and release" now={now} />
                 <Group title="Returned to you" changes={waiting.returned} act="Take it up again" now={now} toDraft />

@@ -21,8 +21,16 @@ const least = 0.1 / 45
 
 const plain = (figure: string, unit: string, before: number | null, after: number | null, more: Partial<Moved> = {}): Moved => ({ figure, loop: null, unit, before, after, beforeReads: '', afterReads: '', policy: null, ...more })
 
-/** Shares of 45° and 8 dB, as the check weighs margins; a margin that appears or goes counts as half of one. */
-function marginMoves(before: Figures, after: Figures, policy: PolicyContent): Scored[] {
+/** A margin of twice what is usual is ample, however far beyond it moves. */
+const ample = 2
+/** No margin that the check computes is as large: 180° and 60 dB. */
+const beyond = 8
+
+/** A margin in shares of what is usual, up to so many; one without a number is none at all or beyond them. */
+const shareOf = (value: number | null, reads: string, usual: number, upTo: number) => (value !== null ? Math.min(upTo, value / usual) : reads === 'unstable' ? 0 : upTo)
+
+/** How far the loops' margins move, in shares of 45° and 8 dB, as the check weighs them. */
+function marginMoves(before: Figures, after: Figures, policy: PolicyContent, upTo: number): Scored[] {
   const kinds = [
     { figure: 'phase margin', unit: '°', usual: 45, limit: policy.phaseMarginDeg.nominal, value: (f: LoopFigures) => f.phaseMarginDeg, reads: (f: LoopFigures) => f.phaseMarginReads },
     { figure: 'gain margin', unit: 'dB', usual: 8, limit: policy.gainMarginDb.nominal, value: (f: LoopFigures) => f.gainMarginDb, reads: (f: LoopFigures) => f.gainMarginReads },
@@ -33,7 +41,8 @@ function marginMoves(before: Figures, after: Figures, policy: PolicyContent): Sc
       if (!x || !y) return []
       const [a, b] = [value(x), value(y)]
       if (a === null && b === null) return []
-      return [{ score: a === null || b === null ? 0.5 : Math.abs(b - a) / usual, moved: plain(figure, unit, a, b, { loop, beforeReads: reads(x), afterReads: reads(y), policy: { limit, forbidden: 'below' } }) }]
+      const score = Math.abs(shareOf(b, reads(y), usual, upTo) - shareOf(a, reads(x), usual, upTo))
+      return [{ score, moved: plain(figure, unit, a, b, { loop, beforeReads: reads(x), afterReads: reads(y), policy: { limit, forbidden: 'below' } }) }]
     }),
   )
 }
@@ -73,7 +82,7 @@ const most = (scored: readonly Scored[], from: number): Scored | null => scored.
 /**
  * The figure that one value moves most.
  *
- * A verdict that turns stands before everything. Then the loops' margins; where none moves, what the clamps let through; then bandwidths; then
+ * A verdict that turns stands before everything. Then the loops' margins, those that are not ample first; where none moves, what the clamps let through; then bandwidths; then
  * the simulated step.
  *
  * @returns  the figure with how far it moved, by which joints are compared; null when nothing moves
@@ -82,7 +91,8 @@ export function figureMoved(before: Side, after: Side, policy: PolicyContent, se
   const { verdict } = after.figures
   if (verdict !== before.figures.verdict) return { score: Infinity, verdict, moved: plain('verdict', '', null, null, { beforeReads: before.figures.verdict, afterReads: verdict }) }
   const found =
-    most(marginMoves(before.figures, after.figures, policy), least) ??
+    most(marginMoves(before.figures, after.figures, policy, ample), least) ??
+    most(marginMoves(before.figures, after.figures, policy, beyond), least) ??
     most(clampMoves(before, after), 1e-6) ??
     most(bandwidthMoves(before.figures, after.figures), 0.005) ??
     most(stepMoves(before.figures, after.figures, policy, settlingTarget), 0.005)

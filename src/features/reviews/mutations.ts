@@ -18,25 +18,6 @@ export const useSignRelease = (change: On, onReleased: (made: { machine: string;
 export const useReturnChange = (change: On, onReturned: (view: ChangeView) => unknown) =>
   useMutation({ mutationFn: (body: ReturnChange) => act<ChangeView>({ path: `${at(change)}/return`, body, ifMatch: change.revision }), onSuccess: onReturned })
 
-/** Marks rows read, each as it was read, or takes a mark off. Shown at once; the server's answer stands. */
-export function useMarkRead(change: On) {
-  const client = useQueryClient()
-  const { queryKey } = readingQuery(change.key, change.revision)
-  return useMutation({
-    mutationFn: ({ rows, read }: { rows: readonly Marked[]; read: boolean }) =>
-      read
-        ? act<ReadingView>({ path: `${at(change)}/reading`, body: { rows: rows.map(({ key, hash }) => ({ key, hash })) } })
-        : act<ReadingView>({ method: 'DELETE', path: `${at(change)}/reading/${encodeURIComponent(rows[0].key)}` }),
-    onMutate: async ({ rows, read }) => {
-      await client.cancelQueries({ queryKey })
-      const keys = rows.map((r) => r.key)
-      client.setQueryData(queryKey, (now) => now && { ...now, read: read ? [...new Set([...now.read, ...keys])] : now.read.filter((k) => !keys.includes(k)) })
-    },
-    onSuccess: (view) => client.setQueryData(queryKey, view),
-    onError: () => client.invalidateQueries({ queryKey }),
-  })
-}
-
 /** One stroke of reading: rows marked as read, or one taken back. */
 export type Stroke = { read: readonly Marked[] } | { unread: string }
 

@@ -1,28 +1,33 @@
 import { useQuery } from '@tanstack/react-query'
+import { useMemo } from 'react'
 import type { ChangeView } from '../../../shared/contract/changes.ts'
-import type { Marked } from '../../../shared/contract/reviews.ts'
-import { useMarkRead } from './mutations.ts'
+import type { DiffView, Marked } from '../../../shared/contract/reviews.ts'
+import { useMarkRows } from './mutations.ts'
 import { readingQuery } from './queries.ts'
+import { rowsOf } from './rows-of.ts'
 
-/** How far the reader is with the rows of a diff, and the ways to mark them. */
-export interface Reading {
-  read: ReadonlySet<string>
-  rows: number
-  others: readonly { name: string; read: number }[]
-  /** null when the reader may not mark */
-  mark: ((rows: readonly Marked[], read: boolean) => void) | null
-  problem: unknown
-}
-
-export function useReading(change: ChangeView, reader: string): Reading | null {
-  const reading = useQuery(readingQuery(change.key, change.revision)).data
-  const mark = useMarkRead(change)
-  if (!reading) return null
+/** How far the reader is with the rows of a change, and the ways to mark them. */
+export function useReading(change: ChangeView, diff: DiffView | undefined) {
+  const query = useQuery(readingQuery(change.key, change.revision))
+  const strokes = useMarkRows(change)
+  const view = query.data
+  const marks = view?.may.mark.allowed ?? false
+  const read = useMemo(() => new Set(view?.read), [view])
+  const rows = useMemo(() => (diff ? rowsOf(diff) : []), [diff])
+  const unread = marks ? rows.filter((r) => !read.has(r.key)) : []
   return {
-    read: new Set(reading.read),
-    rows: reading.rows,
-    others: reading.people.filter((p) => p.name !== reader),
-    mark: reading.may.mark.allowed ? (rows, read) => mark.mutate({ rows, read }) : null,
-    problem: mark.error,
+    view,
+    rows,
+    /** null for whoever keeps no marks */
+    read: marks ? read : null,
+    unread,
+    problem: strokes.error,
+    mark: (marked: readonly Marked[]) => {
+      const fresh = marked.filter((r) => !read.has(r.key))
+      if (fresh.length > 0) strokes.mutate({ read: fresh })
+    },
+    unmark: (key: string) => strokes.mutate({ unread: key }),
   }
 }
+
+export type Reading = ReturnType<typeof useReading>

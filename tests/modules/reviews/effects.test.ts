@@ -99,6 +99,11 @@ describe('the figure that moves most', () => {
     expect(moved(side(loop(60, 12)), side(loop(50, 11)))).toMatchObject({ figure: 'phase margin', before: 60, after: 50 })
   })
 
+  it('looks first at margins that are not ample: below 90° and 16 dB', () => {
+    expect(moved(side(loop(60, 24)), side(loop(57, 17)))).toMatchObject({ figure: 'phase margin', before: 60, after: 57 })
+    expect(moved(side(loop(60, 24)), side(loop(60, 17)))).toMatchObject({ figure: 'gain margin', before: 24, after: 17 })
+  })
+
   it('keeps the words where a margin has no number', () => expect(moved(side(loop(60, null)), side(loop(60, 30)))).toMatchObject({ figure: 'gain margin', before: null, beforeReads: 'above 60 dB', after: 30 }))
 
   it('falls back on bandwidth, then on the simulated step, then on nothing', () => {

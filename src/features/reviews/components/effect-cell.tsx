@@ -1,36 +1,48 @@
-import type { RowEffect } from '../../../../shared/contract/reviews.ts'
+import type { DiffRow, RowEffect, ValueEffect } from '../../../../shared/contract/reviews.ts'
 import { Arrow } from '../../../components/ui/arrow.tsx'
 import { EffectRuler } from '../../../components/ui/effect-ruler.tsx'
-import { formatNumber } from '../../../lib/format.ts'
+import { VerdictMark } from '../../../components/ui/verdict-mark.tsx'
+import { figureName, missesPolicy, rangeOf, shownEffect } from '../figure-words.ts'
+import { OriginChange } from './diff-side.tsx'
 
-const shown = (value: number | null, reads: string) => (value === null ? reads || '–' : formatNumber(value))
-
-/** The stretch a ruler shows: margins from 0, anything else around its two figures. */
-function rangeOf(figure: string, before: number, after: number): [number, number] {
-  const most = Math.max(before, after)
-  if (figure.includes('phase margin')) return [0, Math.max(90, most)]
-  if (figure.includes('gain margin')) return [0, Math.max(30, most)]
-  const spread = Math.abs(after - before) || Math.abs(after) || 1
-  return [Math.min(before, after) - spread, most + spread]
+/** The effect of one value alone: the figure that moves most, before and after, with its ruler. Where the origin alters, that too. */
+export function EffectCell({ effect, row = null }: { effect: RowEffect | undefined; row?: DiffRow | null }) {
+  return (
+    <span className="inline-flex w-full flex-wrap items-center gap-x-3">
+      {row && <OriginChange row={row} />}
+      {effect?.kind === 'effect' && <Moved effect={effect.effect} />}
+      {effect?.kind === 'none' && row?.register !== null && !(row && originAlone(row)) && <span className="text-13 text-ink-2">{effect.why}</span>}
+      {effect?.kind === 'not yet' && <span className="text-13 text-ink-2">being computed</span>}
+    </span>
+  )
 }
 
-/** What one altered value does alone, everything else as released: the figure that moves most, before and after, with policy's stop. */
-export function EffectCell({ effect, nameOf, alone }: { effect: RowEffect | undefined; nameOf: (joint: string) => string; alone: boolean }) {
-  if (!effect || effect.kind === 'not yet') return <span className="text-13 text-ink-2">{effect ? 'being computed' : ''}</span>
-  if (effect.kind === 'none') return <span className="text-13 text-ink-2">{effect.why}</span>
-  const { figure, loop, unit, joint, before, after, beforeReads, afterReads, verdict, policy } = effect.effect
-  const missed = policy !== null && after !== null && (policy.forbidden === 'below' ? after < policy.limit : after > policy.limit)
-  const name = [loop, figure].filter(Boolean).join(' ')
-  return (
-    <span className="inline-flex flex-wrap items-center gap-x-3 text-13">
-      <span title={alone ? undefined : `most on ${nameOf(joint)}`}>{name}</span>
-      <span className="whitespace-nowrap">
-        <span className="num">{shown(before, beforeReads)}</span>
+const originAlone = (row: DiffRow) => row.before !== null && row.before.value === row.after?.value
+
+function Moved({ effect }: { effect: ValueEffect }) {
+  if (effect.figure === 'verdict')
+    return (
+      <span className="inline-flex items-center text-13">
+        {effect.beforeReads}
         <Arrow />
-        <span className={`num font-medium ${verdict === 'unstable' ? 'text-oxide' : missed ? 'text-plum' : ''}`}>{shown(after, afterReads)}</span>
-        {unit && after !== null && <span className="unit ml-[.22em]">{unit}</span>}
+        <VerdictMark verdict={effect.verdict} size={15} />
       </span>
-      {before !== null && after !== null && <EffectRuler label={name} before={before} after={after} min={rangeOf(figure, before, after)[0]} max={rangeOf(figure, before, after)[1]} unit={unit} policy={policy ?? undefined} width={92} />}
+    )
+  const { before, after, unit } = shownEffect(effect)
+  const range = rangeOf(effect)
+  const missed = missesPolicy(effect)
+  return (
+    <span className="inline-grid w-full grid-cols-[minmax(88px,auto)_minmax(0,1fr)_auto] items-center gap-x-2 text-13">
+      <span className="whitespace-nowrap">{figureName(effect)}</span>
+      <span className="whitespace-nowrap">
+        <span className="num">{before}</span>
+        <Arrow />
+        <b className={`num ${missed ? 'text-plum' : ''}`}>{after}</b>
+        <span className="unit"> {unit}</span>
+        {missed && <span className="sr-only">, outside policy</span>}
+        {effect.verdict !== 'stable' && <VerdictMark verdict={effect.verdict} size={13} className="ml-2" />}
+      </span>
+      {range && effect.after !== null && <EffectRuler label={`${figureName(effect)} by this value alone`} before={effect.before} after={effect.after} min={range.min} max={range.max} scale={range.scale} unit={effect.unit} policy={effect.policy ?? undefined} width={62} />}
     </span>
   )
 }

@@ -1,63 +1,49 @@
 import type { ReactNode } from 'react'
-import type { DiffView, Marked } from '../../../../shared/contract/reviews.ts'
+import type { DiffView, FieldRow, Marked } from '../../../../shared/contract/reviews.ts'
 import { Arrow } from '../../../components/ui/arrow.tsx'
 import { SectionHeading } from '../../../components/ui/section-heading.tsx'
-import { formatExact } from '../../../lib/format.ts'
-import type { Reading } from '../use-reading.ts'
-import { ReadBox } from './read-box.tsx'
+import { content } from '../field-content.ts'
+import { rowProps, type RowTools } from '../row-tools.ts'
+import { EffectCell } from './effect-cell.tsx'
+import { GroupRead } from './group-read.tsx'
+import { RowEnd } from './row-end.tsx'
 
 export interface OtherChangesProps {
   diff: DiffView
   nameOf: { joint: (key: string) => string; family: (key: string) => string; bus: (key: string) => string }
   /** symbol, words and unit of a drive train's letter */
   letterOf: (letter: string) => { symbol: ReactNode; words: string; unit: string }
-  reading: Reading | null
+  tools: RowTools
+  onReadAll: (rows: readonly Marked[]) => void
 }
 
-/** What alters beside values: joints that come and go, drive trains, buses. */
-export function OtherChanges({ diff, nameOf, letterOf, reading }: OtherChangesProps) {
+/** What alters beside values: joints that come and go, drive trains, families, buses. */
+export function OtherChanges({ diff, nameOf, letterOf, tools, onReadAll }: OtherChangesProps) {
+  const part = (title: string, aux: string | undefined, rows: readonly Shown[]) => (
+    <section key={title} className="mt-6">
+      <SectionHeading aux={aux} actions={<GroupRead rows={rows.map((r) => r.row)} tools={tools} onReadAll={onReadAll} what={title} />}>
+        {title}
+      </SectionHeading>
+      <Rows label={title} rows={rows} tools={tools} />
+    </section>
+  )
+  const field = (row: FieldRow): Shown => ({ row, title: fieldWords[row.field] ?? row.field, head: fieldWords[row.field] ?? row.field, value: <BeforeAfter row={row} unit={fieldUnits[row.field] ?? ''} /> })
   return (
     <>
-      {diff.joints.length > 0 && (
-        <section className="mt-6">
-          <SectionHeading>Joints that come and go</SectionHeading>
-          <ul className="mt-1">
-            {diff.joints.map((j) => (
-              <li key={j.key} className="flex items-center gap-3 border-b border-hairline py-1">
-                <span className={j.is === 'removed' ? 'text-oxide' : ''}>{`${nameOf.joint(j.joint)} is ${j.is}.`}</span>
-                <span className="ml-auto">
-                  <ReadBox row={j} title={`${nameOf.joint(j.joint)} ${j.is}`} reading={reading} />
-                </span>
-              </li>
-            ))}
-          </ul>
-        </section>
+      {diff.joints.length > 0 &&
+        part('Joints that come and go', undefined, diff.joints.map((row): Shown => ({ row, title: nameOf.joint(row.joint), head: nameOf.joint(row.joint), value: <span className={row.is === 'removed' ? 'text-oxide' : ''}>{row.is}</span> })))}
+      {diff.driveTrains.map(({ family, rows }) =>
+        part(
+          `Drive train of the ${nameOf.family(family)} family`,
+          'the model the check goes by; no register holds it',
+          rows.map((row): Shown => {
+            const l = letterOf(row.field)
+            return { row, title: l.words || row.field, head: <>{l.symbol} <span className="text-13 text-ink-2">{l.words}</span></>, value: <BeforeAfter row={row} unit={l.unit} /> }
+          }),
+        ),
       )}
-      {diff.driveTrains.map(({ family, rows }) => (
-        <section key={family} className="mt-6">
-          <SectionHeading aux="the model the check goes by; no register holds it">Drive train of the {nameOf.family(family)} family</SectionHeading>
-          <Rows
-            label={`drive train of the ${nameOf.family(family)} family`}
-            reading={reading}
-            rows={rows.map((r) => {
-              const l = letterOf(r.field)
-              return { row: r, title: l.words || r.field, head: <>{l.symbol} <span className="text-13 text-ink-2">{l.words}</span></>, unit: l.unit, before: r.before, after: r.after }
-            })}
-          />
-        </section>
-      ))}
-      {diff.buses.map(({ bus, rows }) => (
-        <section key={bus} className="mt-6">
-          <SectionHeading>Bus {nameOf.bus(bus)}</SectionHeading>
-          <Rows label={`bus ${nameOf.bus(bus)}`} reading={reading} rows={rows.map((r) => ({ row: r, title: fieldWords[r.field] ?? r.field, head: fieldWords[r.field] ?? r.field, unit: fieldUnits[r.field] ?? '', before: r.before, after: r.after }))} />
-        </section>
-      ))}
-      {diff.families.map(({ family, rows }) => (
-        <section key={family} className="mt-6">
-          <SectionHeading aux="its name, and values that no joint of it takes">{nameOf.family(family)} family itself</SectionHeading>
-          <Rows label={`the ${nameOf.family(family)} family itself`} reading={reading} rows={rows.map((r) => ({ row: r, title: fieldWords[r.field] ?? r.field, head: fieldWords[r.field] ?? r.field, unit: '', before: r.before, after: r.after }))} />
-        </section>
-      ))}
+      {diff.families.map(({ family, rows }) => part(`${nameOf.family(family)} family itself`, 'its name, and values that no joint of it takes', rows.map(field)))}
+      {diff.buses.map(({ bus, rows }) => part(`Bus ${nameOf.bus(bus)}`, undefined, rows.map(field)))}
     </>
   )
 }
@@ -65,52 +51,48 @@ export function OtherChanges({ diff, nameOf, letterOf, reading }: OtherChangesPr
 const fieldWords: Record<string, string> = { name: 'name', bitRate: 'bit rate', supply: 'supply', pullUp: 'pull-up', capacitance: 'capacitance', pollingRate: 'polling rate', bytesPerTransaction: 'bytes a poll', otherDevices: 'other devices' }
 const fieldUnits: Record<string, string> = { bitRate: 'bit/s', supply: 'V', pullUp: 'Ω', capacitance: 'F', pollingRate: 'Hz' }
 
-interface Row {
+interface Shown {
   row: Marked
-  /** plain words, for the mark */
   title: string
   head: ReactNode
-  unit: string
-  before: string | null
-  after: string | null
+  value: ReactNode
 }
 
-function Rows({ label, rows, reading }: { label: string; rows: readonly Row[]; reading: Reading | null }) {
+const BeforeAfter = ({ row, unit }: { row: FieldRow; unit: string }) => (
+  <>
+    <span className="num">{content(row.before)}</span>
+    <Arrow />
+    <span className="num font-medium text-brass">{content(row.after)}</span> <span className="unit text-13">{unit}</span>
+  </>
+)
+
+function Rows({ label, rows, tools }: { label: string; rows: readonly Shown[]; tools: RowTools }) {
+  const effects = tools.effects !== null && rows.some((r) => tools.effects!.has(r.row.key))
   return (
-    <table className="table table-dense mt-1" aria-label={label}>
-      <tbody>
-        {rows.map((r) => (
-          <tr key={r.row.key}>
-            <td role="rowheader" className="!whitespace-normal">
-              {r.head}
-            </td>
-            <td>
-              <span className="num">{content(r.before)}</span>
-              <Arrow />
-              <span className="num font-medium text-brass">{content(r.after)}</span> <span className="unit text-13">{r.unit}</span>
-            </td>
-            <td className="end !pr-0">
-              <ReadBox row={r.row} title={r.title} reading={reading} />
-            </td>
-          </tr>
-        ))}
-      </tbody>
-    </table>
+    <div className="table-frame">
+      <table className="table table-dense mt-1" aria-label={label}>
+        <tbody>
+          {rows.map(({ row, title, head, value }) => (
+            <tr key={row.key} {...rowProps(tools, row)} className="scroll-my-16">
+              <td role="rowheader" className="!whitespace-normal">
+                {head}
+              </td>
+              <td>
+                {value}
+                {effects && <div className="md:hidden"><EffectCell effect={tools.effects?.get(row.key)} /></div>}
+              </td>
+              {effects && (
+                <td className="hidden w-[330px] md:table-cell">
+                  <EffectCell effect={tools.effects?.get(row.key)} />
+                </td>
+              )}
+              <td className="no-print w-[76px]">
+                <RowEnd row={{ ...row, title }} tools={tools} />
+              </td>
+            </tr>
+          ))}
+        </tbody>
+      </table>
+    </div>
   )
-}
-
-/** A stored value as text: a quantity with its bounds in brackets. */
-export function content(text: string | null): string {
-  if (text === null) return 'none'
-  try {
-    const value = JSON.parse(text) as unknown
-    if (typeof value === 'object' && value !== null && 'value' in value && 'low' in value && 'high' in value) {
-      const q = value as { value: number; low: number; high: number }
-      return `${formatExact(String(q.value))} (${formatExact(String(q.low))} to ${formatExact(String(q.high))})`
-    }
-    if (Array.isArray(value)) return value.length === 0 ? 'none' : value.map((v) => (typeof v === 'object' && v !== null && 'name' in v ? String((v as { name: unknown }).name) : JSON.stringify(v))).join(', ')
-    return typeof value === 'number' ? formatExact(String(value)) : String(value)
-  } catch {
-    return text
-  }
 }

@@ -6,22 +6,25 @@ import { ProblemPanel } from '../../../components/problem/problem-panel.tsx'
 import { Button } from '../../../components/ui/button.tsx'
 import { Checkbox } from '../../../components/ui/checkbox.tsx'
 import { PasswordField } from '../../../components/ui/password-field.tsx'
+import { SignsAs } from './signs-as.tsx'
 
 export interface SignPeerReviewProps {
   onSign: (password: string) => void
-  /** why it can't be signed yet, whatever is typed; null when it can */
-  held: string | null
   pending: boolean
   problem: unknown
+  /** what has to be done before, in words; null when nothing */
+  blocked: string | null
+  /** the signer's printed name */
+  signer: string
   /** the way back for the change */
   other: ReactNode
 }
 
 /** Signs the peer review: the statement, the password again. The password is let go of when it was refused. */
-export function SignPeerReviewForm({ onSign, held, pending, problem, other }: SignPeerReviewProps) {
+export function SignPeerReviewForm({ onSign, pending, problem, blocked, signer, other }: SignPeerReviewProps) {
   const [stated, setStated] = useState(false)
   const [password, setPassword] = useState('')
-  const missing = held ?? (!stated ? 'State what you sign first.' : password === '' ? 'Enter your password first.' : null)
+  const missing = blocked ?? (!stated ? 'State what you sign first.' : password === '' ? 'Enter your password first.' : null)
   return (
     <form
       className="ml-[30px] grid gap-3"
@@ -32,6 +35,7 @@ export function SignPeerReviewForm({ onSign, held, pending, problem, other }: Si
         setPassword('')
       }}
     >
+      <SignsAs signer={signer} meaning="peer review" blocked={blocked} />
       <Checkbox label={statements['peer review']} checked={stated} onChange={setStated} />
       <PasswordField label="Your password" purpose="present" value={password} onChange={setPassword} error={fieldError(problem, '/password')} />
       <div className="flex flex-wrap gap-2">

@@ -9,6 +9,7 @@ import { Checkbox } from '../../../components/ui/checkbox.tsx'
 import { PasswordField } from '../../../components/ui/password-field.tsx'
 import { TextArea } from '../../../components/ui/text-area.tsx'
 import { TextField } from '../../../components/ui/text-field.tsx'
+import { SignsAs } from './signs-as.tsx'
 import { isLower, partsOf, stepBetween } from '../version-step.ts'
 
 export interface SignReleaseProps {
@@ -18,15 +19,17 @@ export interface SignReleaseProps {
   proposal: VersionProposal
   joints: number
   onSign: (signed: { password: string; version: string; stepReason?: string }) => void
-  /** why it can't be signed yet, whatever is typed; null when it can */
-  held: string | null
   pending: boolean
   problem: unknown
+  /** what has to be done before, in words; null when nothing */
+  blocked: string | null
+  /** the signer's printed name */
+  signer: string
   other: ReactNode
 }
 
 /** Signs the release: version with the step proposed, a reason for a lower one, the statement, the password again. */
-export function SignReleaseForm({ machineName, baseVersion, proposal, joints, onSign, held, pending, problem, other }: SignReleaseProps) {
+export function SignReleaseForm({ machineName, baseVersion, proposal, joints, onSign, pending, problem, blocked, signer, other }: SignReleaseProps) {
   const [typed, setTyped] = useState<string | null>(null)
   const [stepReason, setStepReason] = useState('')
   const [stated, setStated] = useState(false)
@@ -35,7 +38,7 @@ export function SignReleaseForm({ machineName, baseVersion, proposal, joints, on
   const step = baseVersion === null ? null : stepBetween(baseVersion, version)
   const lower = step !== null && isLower(step, proposal.step)
   const versionError = partsOf(version) === null ? 'A version has the form 1.2.3.' : baseVersion !== null && step === null ? `It must come after ${baseVersion}.` : fieldError(problem, '/version')
-  const missing = versionError ?? held ?? (lower && stepReason.trim() === '' ? `A ${step} step needs a reason: ${proposal.step} is proposed.` : !stated ? 'State what you sign first.' : password === '' ? 'Enter your password first.' : null)
+  const missing = versionError ?? blocked ?? (lower && stepReason.trim() === '' ? `A ${step} step needs a reason: ${proposal.step} is proposed.` : !stated ? 'State what you sign first.' : password === '' ? 'Enter your password first.' : null)
   return (
     <form
       className="ml-[30px] grid gap-3"
@@ -48,6 +51,7 @@ export function SignReleaseForm({ machineName, baseVersion, proposal, joints, on
     >
       <TextField label={`Version of ${machineName}`} mono width={120} value={typed ?? proposal.version} onChange={setTyped} error={versionError} help={<>{proposal.step}: {proposal.because.join('; ')}. Lower needs a reason.</>} />
       {lower && <TextArea label={`Reason for a ${step} step`} value={stepReason} onChange={setStepReason} maxLength={2000} rows={2} error={fieldError(problem, '/stepReason')} />}
+      <SignsAs signer={signer} meaning="release" blocked={blocked} />
       <Checkbox label={statements.release} checked={stated} onChange={setStated} />
       <PasswordField label="Your password" purpose="present" value={password} onChange={setPassword} error={fieldError(problem, '/password')} />
       <div className="flex flex-wrap gap-2">
