@@ -1,5 +1,6 @@
 import type { EntityManager } from '@mikro-orm/core'
 import type { Dump } from '../../shared/contract/boards.ts'
+import type { Services } from '../http/services.ts'
 import { compareDump } from '../modules/boards/compare-dump.ts'
 import { findBoard, jointNamed } from '../modules/boards/locate.ts'
 import { recordFlash } from '../modules/boards/record-flash.ts'
@@ -8,6 +9,8 @@ import { retireBoard } from '../modules/boards/retire-board.ts'
 import { seatBoard } from '../modules/boards/seat-board.ts'
 import type { Speaker } from '../modules/boards/speaker.ts'
 import { prepareReadBack, verifyReadBack } from '../modules/boards/verify-read-back.ts'
+import { Change } from '../modules/changes/change.entity.ts'
+import { setOf } from '../modules/changes/read-set.ts'
 import { versionsNamed } from '../modules/firmware/firmware-authors.ts'
 import { schemaOf } from '../modules/firmware/read-schema.ts'
 import { newestRelease } from '../modules/machines/current-release.ts'
@@ -15,9 +18,10 @@ import { Machine } from '../modules/machines/machine.entity.ts'
 import { heldRoles } from '../modules/people/held-roles.ts'
 import { ReleaseJoint } from '../modules/releases/release-joint.entity.ts'
 import type { Release } from '../modules/releases/release.entity.ts'
+import { takeBenchImage } from '../modules/releases/take-bench-image.ts'
 import type { Story } from './story.ts'
 
-const [ingunn, hedda, pascoe] = ['Ingunn Veblen', 'Hedda Lindqvist', 'Pascoe Adeyemi']
+const [ingunn, hedda, pascoe, mirela] = ['Ingunn Veblen', 'Hedda Lindqvist', 'Pascoe Adeyemi', 'Mirela Castanho']
 
 interface AtBench {
   em: EntityManager
@@ -74,6 +78,15 @@ class Bench {
     })
   }
 
+  /** An author tries an unreleased change on the joint's own board. */
+  async tryUnreleased(services: Services, by: string, title: string, joint: string) {
+    const { now } = this.story
+    const em = services.orm.em.fork()
+    const person = await this.story.person(em, by)
+    const change = (await em.findOneOrFail(Change, { machine: { key: this.machine }, title }, { populate: ['machine', 'author', 'baseRelease'] })) as Change
+    await takeBenchImage({ ...services, now: () => now }, em, change, { joint, board: setOf(change.text).joints[joint].board!, format: 'hex' }, { person, held: await heldRoles(em, person), benchKey: null, now })
+  }
+
   seat(by: string, serial: string, joint: string | null, note: string) {
     return this.act(by, async ({ em, machine, speaker }) => seatBoard(em, { machine, joint: joint === null ? null : await jointNamed(em, machine, joint, '/joint'), serial, note }, speaker))
   }
@@ -115,9 +128,10 @@ const dunlin: Record<string, (bench: Bench) => Promise<unknown>> = {
 export const afterRelease = async (story: Story, version: string): Promise<void> => void (await dunlin[version](new Bench(story, 'dunlin')))
 
 /** How the boards of both machines come to stand as they do today. */
-export async function boardsStory(story: Story): Promise<void> {
+export async function boardsStory(story: Story, services: Services): Promise<void> {
   const walker = new Bench(story, 'dunlin')
   await walker.readBackWithFlippedAddress(pascoe, 'r2-hip', 3)
+  await walker.tryUnreleased(services, mirela, 'Stiffer knee for soft mud', 'l2-knee')
   await walker.retire(hedda, 'H-0325', 'Connector torn out on the mud flat; kept for parts.')
   await walker.seat(ingunn, 'H-0361', 'l2-yaw', 'swapped: the old board lost its encoder supply')
   await walker.seat(ingunn, 'H-0362', null, 'spare')

@@ -88,5 +88,5 @@ export async function makeDemo(services: Services): Promise<void> {
     await story.act(async (em, now) => makeMachine(em, { key, name, description, person: await story.person(em, administrator), now }))
   await dunlinStory(story, dunlin)
   await teaselStory(story, teasel)
-  await boardsStory(story)
+  await boardsStory(story, services)
 }
