@@ -6,7 +6,6 @@ import { paths } from '../app/paths.ts'
 import type { ChangeView } from '../../shared/contract/changes.ts'
 import type { CommentPlace } from '../../shared/contract/comments.ts'
 import { Region } from '../components/layout/region.tsx'
-import { Button } from '../components/ui/button.tsx'
 import { SectionHeading } from '../components/ui/section-heading.tsx'
 import { TextLink } from '../components/ui/text-link.tsx'
 import { ChangeHead } from '../features/changes/components/change-head.tsx'
@@ -88,6 +87,11 @@ export function Component() {
       field.current.scrollIntoView?.({ block: 'center' })
     } else document.getElementById('comments')?.scrollIntoView()
   }
+  /** Back to the row that the comment was hung on, so that reading goes on from there. */
+  const goOn = () => {
+    wayTo(on.place, reading.rows)?.()
+    setOn(whole)
+  }
   const mark = ({ place, title }: Place) => <CommentMark comments={written} place={place} title={title} mayWrite={mayWrite} onOpen={() => open({ place, title })} />
   const nameOf = namesIn(change)
   return (
@@ -151,7 +155,7 @@ export function Component() {
           {change.concessions.map((c, i) => (
             <ConcessionCard key={c.finding} concession={c} number={i + 1} finding={check.data?.findings.find((f) => f.key === c.finding) ?? null} granted={change.state === 'released'} />
           ))}
-          <CommentList change={change.key} query={comments} people={people} on={on} onWhole={() => setOn(whole)} fieldRef={field} placeOf={(place) => wayTo(place, reading.rows)} />
+          <CommentList change={change.key} query={comments} people={people} on={on} onWhole={() => setOn(whole)} onWritten={goOn} fieldRef={field} placeOf={(place) => wayTo(place, reading.rows)} />
           <Past change={change} />
         </aside>
       </div>
@@ -200,9 +204,9 @@ function Past({ change }: { change: ChangeView }) {
       points={points}
       editWords={(edit) => wholeWords(edit) ?? placeWords(edit.pointer, [change.set, change.base], schemas)}
       actions={
-        <Button kind="link" className="no-print" onClick={() => window.print()}>
+        <button type="button" className="link no-print" onClick={() => window.print()}>
           print
-        </Button>
+        </button>
       }
     />
   )

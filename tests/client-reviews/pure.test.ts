@@ -41,7 +41,7 @@ describe('stored fields and texts', () => {
 describe('effects in figures', () => {
   const effect = (over: Partial<ValueEffect>): ValueEffect => ({ figure: 'phase margin', loop: 'velocity', unit: '°', joint: 'l1-knee', before: 55.34, after: 50.41, beforeReads: '', afterReads: '', verdict: 'stable', policy: { limit: 45, forbidden: 'below' }, ...over })
 
-  it('names a margin by its loop', () => expect([figureName(effect({})), figureName(effect({ loop: null, figure: 'torque at the clamp' }))]).toEqual(['velocity phase', 'torque at the clamp']))
+  it('names a margin by its loop', () => expect([figureName(effect({})), figureName(effect({ loop: null, figure: 'torque at the clamp' }))]).toEqual(['velocity phase', 'torque at clamp']))
 
   it.each([
     [{}, { before: '55.3', after: '50.4', unit: '°' }],

@@ -114,7 +114,7 @@ describe('reading', () => {
     aReview()
     open('/changes/dunlin-47/review')
     const table = await screen.findByRole('table', { name: 'what alters in the Knee family' })
-    await waitFor(() => expect(within(table).getByRole('row', { name: /Current limit/ }).textContent).toMatch(/torque at the clamp.*5\.70.*6\.51/))
+    await waitFor(() => expect(within(table).getByRole('row', { name: /Current limit/ }).textContent).toMatch(/torque at clamp.*5\.70.*6\.51/))
     expect(within(table).getAllByRole('row', { name: /Velocity gain/ })[1].textContent).toMatch(/joint.*family/)
   })
 })

@@ -1,8 +1,8 @@
 import type { ValueEffect } from '../../../shared/contract/reviews.ts'
 import { formatFixed, formatQuantity } from '../../lib/format.ts'
 
-/** "velocity phase", "torque at the clamp": a margin goes by its loop. */
-export const figureName = ({ figure, loop }: ValueEffect): string => (loop === null ? figure : `${loop} ${figure.replace(/ margin$/, '')}`)
+/** "velocity phase", "torque at clamp": a margin goes by its loop. */
+export const figureName = ({ figure, loop }: ValueEffect): string => (loop === null ? figure.replace(' at the ', ' at ') : `${loop} ${figure.replace(/ margin$/, '')}`)
 
 export interface Shown {
   before: string

@@ -10,7 +10,7 @@ interface Names {
 export function titleOf(diff: DiffView, key: string, nameOf: Names): string {
   for (const g of diff.groups) {
     const row = g.rows.find((r) => r.key === key)
-    if (row) return `${row.title}, ${nameOf.family(g.family)} family`
+    if (row) return `${row.title}, ${diff.groups.filter((o) => o.family === g.family).length === 1 ? `${nameOf.family(g.family)} family` : g.joints.map(nameOf.joint).join(', ')}`
     for (const own of g.own) {
       const found = own.rows.find((r) => r.key === key)
       if (found) return `${found.title}, ${nameOf.joint(own.joint)}`

@@ -19,20 +19,22 @@ export interface CommentListProps {
   on: { place: CommentPlace; title: string }
   /** back to the whole change */
   onWhole: () => void
+  /** the comment is written */
+  onWritten: () => void
   fieldRef: RefObject<HTMLTextAreaElement | null>
   /** leads to a place on the page; null where there is none */
   placeOf: (place: CommentPlace) => (() => void) | null
 }
 
 /** Comments of a change, oldest first, and the field for the next one. Open ones keep it from being signed. */
-export function CommentList({ change, query, people, on, onWhole, fieldRef, placeOf }: CommentListProps) {
+export function CommentList({ change, query, people, on, onWhole, onWritten, fieldRef, placeOf }: CommentListProps) {
   const [text, setText] = useState('')
   const write = useWriteComment(change)
   const send = () => {
     if (text.trim() !== '' && !write.isPending)
       write.mutate({ text, on: on.place }, { onSuccess: () => {
         setText('')
-        onWhole()
+        onWritten()
       } })
   }
   const open = query.data?.open ?? 0

@@ -56,9 +56,9 @@ export function CommentThread({ change, thread: { head, under }, people, mayWrit
           <>
             <span className="font-medium text-brass">open</span>
             {head.may.answer.allowed && (
-              <Button kind="link" pending={answer.isPending} onClick={() => answer.mutate(head.number)} aria-label={`mark comment ${head.number} answered`}>
+              <button type="button" className="link no-print" aria-busy={answer.isPending || undefined} onClick={() => answer.isPending || answer.mutate(head.number)} aria-label={`mark comment ${head.number} answered`}>
                 mark answered
-              </Button>
+              </button>
             )}
             {mayWrite && !writing && (
               <button type="button" className="link no-print" aria-label={`write under comment ${head.number}`} onClick={() => {

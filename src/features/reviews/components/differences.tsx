@@ -72,10 +72,13 @@ export function Differences({ query, effects, reading, baseVersion, me, nameOf, 
           {reading.view && <ReadingLine view={reading.view} unread={reading.unread.length} me={me} onNext={() => reading.unread[0] && goToRowOf(reading.unread[0].key, place.current ?? document)} />}
           <ProblemPanel className="mb-3" problem={reading.problem} />
           {d.groups.map((g) => {
-            const title = `${nameOf.family(g.family)} family`
+            const family = `${nameOf.family(g.family)} family`
+            const joints = g.joints.map(nameOf.joint).join(', ')
+            // A family whose joints alter each in their own way has a part for each of them.
+            const [title, aux] = d.groups.filter((o) => o.family === g.family).length === 1 ? [family, joints] : [joints, family]
             return (
               <section key={`${g.family} ${g.joints.join()}`} className="mb-6" aria-label={title}>
-                <SectionHeading aux={g.joints.map(nameOf.joint).join(', ')} actions={<GroupRead rows={[...g.rows, ...g.own.flatMap((o) => o.rows)]} tools={tools} onReadAll={reading.mark} what={title} />}>
+                <SectionHeading aux={aux} actions={<GroupRead rows={[...g.rows, ...g.own.flatMap((o) => o.rows)]} tools={tools} onReadAll={reading.mark} what={title} />}>
                   {title}
                 </SectionHeading>
                 <DiffTable group={g} nameOf={nameOf.joint} baseVersion={baseVersion} title={title} tools={tools} />

@@ -32,7 +32,7 @@ function Moved({ effect }: { effect: ValueEffect }) {
   const range = rangeOf(effect)
   const missed = missesPolicy(effect)
   return (
-    <span className="inline-grid w-full grid-cols-[minmax(88px,auto)_minmax(0,1fr)_auto] items-center gap-x-2 text-13">
+    <span className="inline-grid w-full grid-cols-[minmax(86px,auto)_minmax(max-content,1fr)_auto] items-center gap-x-[6px] text-13">
       <span className="whitespace-nowrap">{figureName(effect)}</span>
       <span className="whitespace-nowrap">
         <span className="num">{before}</span>
@@ -42,7 +42,7 @@ function Moved({ effect }: { effect: ValueEffect }) {
         {missed && <span className="sr-only">, outside policy</span>}
         {effect.verdict !== 'stable' && <VerdictMark verdict={effect.verdict} size={13} className="ml-2" />}
       </span>
-      {range && effect.after !== null && <EffectRuler label={`${figureName(effect)} by this value alone`} before={effect.before} after={effect.after} min={range.min} max={range.max} scale={range.scale} unit={effect.unit} policy={effect.policy ?? undefined} width={62} />}
+      {range && effect.after !== null && <EffectRuler label={`${figureName(effect)} by this value alone`} before={effect.before} after={effect.after} min={range.min} max={range.max} scale={range.scale} unit={effect.unit} policy={effect.policy ?? undefined} width={58} />}
     </span>
   )
 }

@@ -66,9 +66,9 @@ function Open({ number, meaning, why, form, waiting = null }: { number: number; 
       <div className="flex items-baseline gap-3">
         <span className="w-[18px] text-13 text-ink-2">{number}</span>
         <b>{meaning}</b>
-        <span className={`ml-auto text-13 ${form ? 'font-medium text-brass' : 'text-ink-2'}`}>{form ? 'open, yours' : (waiting ?? 'open')}</span>
+        <span className={`ml-auto text-13 ${form ? 'font-medium text-brass' : 'text-ink-2'}`}>{form ? <>open<span className="no-print">, yours</span></> : (waiting ?? 'open')}</span>
       </div>
-      {form && <div className="mt-3">{form}</div>}
+      {form && <div className="no-print mt-3">{form}</div>}
       {!form && !waiting && why && !why.allowed && <p className="mt-1 ml-[30px] text-13 text-ink-2">{why.why}</p>}
     </div>
   )
