@@ -34,10 +34,12 @@ function asDomainError(error: unknown, { limit, field }: UploadSpec): Error {
 }
 
 /** Streams a form's file into the store while it arrives: hashed, counted, synced, under no name yet. */
-function storageIn(files: FileStore, limit: number, done: (file: ReceivedFile) => void): StorageEngine {
+function storageIn(files: FileStore, limit: number, begun: (receiving: Promise<ReceivedFile>) => void, done: (file: ReceivedFile) => void): StorageEngine {
   return {
     _handleFile(_request, file, finish) {
-      files.receive(file.stream, limit).then(
+      const receiving = files.receive(file.stream, limit)
+      begun(receiving)
+      receiving.then(
         (received) => {
           done(received)
           finish(null, {})
@@ -57,8 +59,9 @@ function storageIn(files: FileStore, limit: number, done: (file: ReceivedFile) =
 export async function receiveUpload(req: Request, res: Response, files: FileStore, spec: UploadSpec): Promise<Upload> {
   if (!req.is('multipart/form-data')) throw new DomainError('wrong-media-type', `This takes one file in a form (multipart/form-data, field "${spec.field}"). Nothing was kept.`)
   let received: ReceivedFile | undefined
+  let receiving: Promise<ReceivedFile> | undefined
   const read = multer({
-    storage: storageIn(files, spec.limit, (file) => void (received = file)),
+    storage: storageIn(files, spec.limit, (begun) => void (receiving = begun), (file) => void (received = file)),
     limits: { fileSize: spec.limit, files: 1, fields: 0, parts: 1, headerPairs: 40 },
     defParamCharset: 'utf8',
   }).single(spec.field)
@@ -69,6 +72,8 @@ export async function receiveUpload(req: Request, res: Response, files: FileStor
     return { name: req.file.originalname.replaceAll(/[\u0000-\u001f\u007f\u2028\u2029\\/]/g, '_').slice(0, 120), file: received }
   } catch (error) {
     await received?.discard()
-    throw asDomainError(error, spec)
+    // The store gave up (a full disk) and left the stream; the form's parser tells of the left stream only.
+    const cause = (error as Error).name === 'AbortError' ? await receiving?.then(() => error, (failure: unknown) => failure) : error
+    throw asDomainError(cause ?? error, spec)
   }
 }

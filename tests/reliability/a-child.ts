@@ -63,6 +63,10 @@ export class Child {
   arm = (kill: Kill | null) => this.ask<null>({ do: 'arm', kill })
   steps = () => this.ask<number>({ do: 'steps' })
 
+  get pid(): number {
+    return this.process.pid!
+  }
+
   /** SIGKILL from outside, whatever it is doing. */
   kill() {
     this.process.kill('SIGKILL')

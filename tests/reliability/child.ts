@@ -82,7 +82,7 @@ async function open(folder: string, options: OpenOptions = {}): Promise<number> 
     keys: await openWorkplaceKeys(orm.em.fork(), keyFiles(folder), now()),
     mailQueued: () => {},
   }
-  const server = createServer(buildApp({ services, log: pino({ level: 'silent' }), sessionSecret: 'a secret for tests alone' }))
+  const server = createServer(buildApp({ services, log: pino({ level: process.env.DETENT_LOG ?? 'silent' }), sessionSecret: 'a secret for tests alone' }))
   await new Promise<void>((done) => server.listen(0, '127.0.0.1', done))
   opened = { services, server }
   return (server.address() as { port: number }).port

@@ -32,7 +32,7 @@ export async function makePeopleAndMachine({ orm, now }: Services, password: str
     const schemaText = readFileSync(join(projectRoot(), 'examples', 'firmware', 'hinge-2.1.0.schema.json'), 'utf8')
     const schemaHash = hashOf(JSON.parse(schemaText) as object)
     const version = (number: string, published: boolean) =>
-      em.create(FirmwareVersion, { line, version: number, state: published ? 'published' : 'draft', schemaText, schemaHash, notes: '', uploadedBy: made.smith, writers: [made.smith.id], createdAt: at, publishedBy: published ? made.deputy : null, publishedAt: published ? at : null })
+      em.create(FirmwareVersion, { line, version: number, state: published ? 'published' : 'draft', schemaText, schemaHash, notes: '', uploadedBy: made.smith, writers: [made.smith.id], createdAt: at, publishedBy: published ? made.keeper : null, publishedAt: published ? at : null })
     version('2.1.0', true)
     version('2.2.0', false)
   })
