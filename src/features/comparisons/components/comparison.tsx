@@ -17,12 +17,17 @@ export interface ComparisonProps {
 /** Two sides, by value, by register or as text; joints that differ alike stand together. */
 export function Comparison({ view, by, text }: ComparisonProps) {
   if (by === 'text') return text
+  const ownAlone = view.groups.filter((g) => by === 'value' && g.only === null && g.settings.length + g.values.length + g.driveTrain.length === 0)
+  const told = view.groups.filter((g) => !ownAlone.includes(g))
   return (
-    <div className="grid gap-8">
+    <div className="grid grid-cols-[minmax(0,1fr)] gap-8">
       {view.groups.length === 0 && <p className="text-16">The two are the same, value by value and byte by byte.</p>}
-      {view.groups.map((group) => (
+      {told.map((group) => (
         <Group key={`${group.only ?? ''} ${group.joints.map((j) => `${j.key} ${j.keyB}`).join(' ')}`} view={view} group={group} by={by} />
       ))}
+      {ownAlone.length > 0 && (
+        <p className="text-13 text-ink-2">The same values; the images differ in registers alone: {ownAlone.flatMap((g) => g.joints.map((j) => j.name)).join(', ')}.</p>
+      )}
       {view.same.length > 0 && view.groups.length > 0 && (
         <p className="text-13 text-ink-2">
           The same on both sides: {view.same.map((j) => j.name).join(', ')}.

@@ -6,7 +6,7 @@ const bytesOf = (hex: string) => hex.split(' ').map((pair) => parseInt(pair, 16)
 
 /** What differs of joints by register: address, what it holds, and the bytes of both. */
 export function GroupRegisters({ group }: { group: ComparedJoints }) {
-  const rows = [...group.registers.map((r) => ({ ...r, joint: '' })), ...group.own]
+  const rows = [...group.registers.map((r) => ({ ...r, joint: '' })), ...ownRows(group)]
   return (
     <>
       {group.problems.map((p) => (
@@ -39,8 +39,8 @@ export function GroupRegisters({ group }: { group: ComparedJoints }) {
                     {r.joint && <span className="text-13 text-ink-2"> of {r.joint}</span>}
                   </td>
                   <td className="num text-13 text-ink-2">{encodings(r)}</td>
-                  <td>{r.a === null ? <None /> : <Bytes bytes={bytesOf(r.a)} />}</td>
-                  <td>{r.b === null ? <None /> : <Bytes bytes={bytesOf(r.b)} before={r.a === null ? undefined : bytesOf(r.a)} />}</td>
+                  <td>{r.a === null ? <None /> : <Bytes className="whitespace-nowrap" bytes={bytesOf(r.a)} />}</td>
+                  <td>{r.b === null ? <None /> : <Bytes className="whitespace-nowrap" bytes={bytesOf(r.b)} before={r.a === null ? undefined : bytesOf(r.a)} />}</td>
                 </tr>
               ))}
             </tbody>
@@ -49,6 +49,18 @@ export function GroupRegisters({ group }: { group: ComparedJoints }) {
       )}
     </>
   )
+}
+
+/** The image's own words; one that every joint has alike, as the release number, is told once. */
+function ownRows({ own, joints }: ComparedJoints): ComparedJoints['own'] {
+  const rows = new Map<string, ComparedJoints['own'][number] & { of: number }>()
+  for (const r of own) {
+    const key = `${r.address} ${r.what} ${r.a} ${r.b}`
+    const known = rows.get(key)
+    if (known) Object.assign(known, { joint: `${known.joint}, ${r.joint}`, of: known.of + 1 })
+    else rows.set(key, { ...r, of: 1 })
+  }
+  return [...rows.values()].map(({ of, ...r }) => ({ ...r, joint: of === joints.length && of > 1 ? 'each' : r.joint }))
 }
 
 const encodings = ({ encodingA, encodingB }: ComparedRegister) => (encodingA === encodingB || encodingA === '' ? encodingB : encodingB === '' ? encodingA : `${encodingA}, ${encodingB}`)

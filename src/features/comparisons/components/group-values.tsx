@@ -5,8 +5,6 @@ import { percentChange } from '../../../lib/format.ts'
 
 /** What differs of joints by value: where they sit, the model, and each parameter in its unit. */
 export function GroupValues({ group }: { group: ComparedJoints }) {
-  const empty = group.settings.length + group.driveTrain.length + group.values.length === 0
-  if (empty) return <p className="text-13 text-ink-2">The values are the same; the images differ in their own words alone.</p>
   return (
     <div className="overflow-x-auto">
       <table className="table table-dense" aria-label={`values that differ of ${group.joints.map((j) => j.name).join(', ')}`}>

@@ -9,6 +9,15 @@ const words: Record<SchemaAspect, string> = {
   place: 'moved', encoding: 'encoded anew', scale: 'rescaled', unit: 'in another unit', bounds: 'other bounds', default: 'another default', access: 'other access', values: 'other members', role: 'another role', kind: 'another type',
 }
 
+/** A place that begins where it did has another width. */
+const wordOf = ({ aspect, before, after }: ParameterChange['aspects'][number]) => (aspect === 'place' && firstAddress(before) === firstAddress(after) ? 'wider or narrower' : words[aspect])
+const firstAddress = (place: string) => /^0x[0-9A-F]+/i.exec(place)?.[0] ?? place
+
+/** "0.01·raw + 0" without the part that adds nothing. */
+const plain = (text: string) => text.replace(/ \+ 0$/, '')
+
+const settingWords: Record<string, string> = { layoutId: 'layout id', writeGaps: 'gaps written', byteOrder: 'byte order', addressWidth: 'address width', loadAddress: 'load address', release: 'release number' }
+
 const order: readonly ParameterChange['kind'][] = ['changed', 'added', 'removed']
 const headings = { changed: 'Changed', added: 'Added', removed: 'Removed' } as const
 
@@ -17,10 +26,10 @@ export function VersionComparison({ view }: { view: FirmwareComparisonView }) {
   const of = (kind: ParameterChange['kind']) => view.parameters.filter((p) => p.kind === kind)
   if (view.parameters.length === 0 && view.image.length === 0) return <p className="text-ink-2">The two versions have the same register map.</p>
   return (
-    <div className="grid gap-8">
+    <div className="grid grid-cols-[minmax(0,1fr)] gap-8">
       {order.map((kind) => of(kind).length > 0 && <Parameters key={kind} kind={kind} view={view} list={of(kind)} />)}
       {view.image.length > 0 && (
-        <section aria-labelledby="image-settings">
+        <section aria-labelledby="image-settings" className="min-w-0">
           <SectionHeading id="image-settings">The image itself</SectionHeading>
           <Table dense label="settings of the image that differ" rows={view.image} columns={imageColumns} rowKey={(r) => r.setting} />
         </section>
@@ -31,7 +40,7 @@ export function VersionComparison({ view }: { view: FirmwareComparisonView }) {
 }
 
 const imageColumns: Column<FirmwareComparisonView['image'][number]>[] = [
-  { key: 'setting', head: 'Setting', cell: (r) => r.setting },
+  { key: 'setting', head: 'Setting', cell: (r) => settingWords[r.setting] ?? r.setting },
   { key: 'before', head: 'Before', className: 'num text-13 text-ink-2', cell: (r) => r.before },
   { key: 'after', head: 'Now', className: 'num text-13', cell: (r) => r.after },
 ]
@@ -41,11 +50,11 @@ function Parameters({ kind, view, list }: { kind: ParameterChange['kind']; view:
     {
       key: 'parameter',
       head: 'Parameter',
-      className: 'whitespace-nowrap align-top',
+      className: 'align-top sm:whitespace-nowrap',
       sortBy: (p) => view.titles[p.parameter]?.title ?? p.parameter,
       cell: (p) => (
         <>
-          <span className="font-medium">{view.titles[p.parameter]?.title || p.parameter}</span> <span className="num text-12 text-ink-2">{p.parameter}</span>
+          <span className="font-medium">{view.titles[p.parameter]?.title || p.parameter}</span> <span className="num text-12 text-ink-2 max-sm:block">{p.parameter}</span>
           {p.renamedFrom && <span className="block text-12 text-brass">was {p.renamedFrom}</span>}
         </>
       ),
@@ -53,7 +62,7 @@ function Parameters({ kind, view, list }: { kind: ParameterChange['kind']; view:
     ...(kind === 'changed' ? [{ key: 'aspects', head: 'What differs', cell: (p: ParameterChange) => <Aspects aspects={p.aspects} /> }] : [{ key: 'unit', head: 'Unit', className: 'text-ink-2', cell: (p: ParameterChange) => view.titles[p.parameter]?.unit ?? '' }]),
   ]
   return (
-    <section aria-labelledby={`parameters-${kind}`}>
+    <section aria-labelledby={`parameters-${kind}`} className="min-w-0">
       <SectionHeading id={`parameters-${kind}`} aux={count(list.length, 'parameter')}>
         {headings[kind]}
       </SectionHeading>
@@ -68,10 +77,10 @@ function Aspects({ aspects }: { aspects: ParameterChange['aspects'] }) {
     <ul className="py-1">
       {aspects.map((a) => (
         <li key={a.aspect} className="grid gap-x-3 text-13 sm:grid-cols-[8rem_minmax(0,1fr)]">
-          <span className="text-ink-2">{words[a.aspect]}</span>
+          <span className="text-ink-2">{wordOf(a)}</span>
           <span className="num [overflow-wrap:anywhere]">
-            <del className="text-ink-2 no-underline">{a.before}</del> <span aria-hidden="true">→</span>
-            <span className="sr-only"> now </span> <ins className="text-brass no-underline">{a.after}</ins>
+            <del className="text-ink-2 no-underline">{plain(a.before)}</del> <span aria-hidden="true">→</span>
+            <span className="sr-only"> now </span> <ins className="text-brass no-underline">{plain(a.after)}</ins>
           </span>
         </li>
       ))}
