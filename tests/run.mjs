@@ -10,6 +10,7 @@ const tools = [
   { package: 'chromium', there: () => ['/usr/bin/chromium', process.env.DETENT_CHROMIUM].some((p) => p && existsSync(p)) },
   { package: 'srecord', there: () => spawnSync('srec_cat', ['--version']).error === undefined },
   { package: 'python3-intelhex', there: () => spawnSync('/usr/bin/python3', ['-c', 'import intelhex']).status === 0 },
+  { package: 'curl', there: () => spawnSync('curl', ['--version']).error === undefined },
   { package: 'openssl', there: () => spawnSync('openssl', ['version']).error === undefined },
 ]
 
