@@ -1,6 +1,7 @@
 import { readFileSync } from 'node:fs'
 import { join } from 'node:path'
 import type { Services } from '../http/services.ts'
+import { attachFirmwareImage } from '../modules/firmware/attach-firmware-image.ts'
 import { draftFirmwareVersion } from '../modules/firmware/draft-firmware-version.ts'
 import { FirmwareLine } from '../modules/firmware/firmware-line.entity.ts'
 import { FirmwareVersion } from '../modules/firmware/firmware-version.entity.ts'
@@ -19,6 +20,7 @@ import { projectRoot } from '../project-root.ts'
 import { boardsStory } from './boards-story.ts'
 import { dunlin } from './dunlin.ts'
 import { dunlinStory } from './dunlin-story.ts'
+import { demoFirmwareImage } from './firmware-image.ts'
 import { Story } from './story.ts'
 import { teasel } from './teasel.ts'
 import { teaselStory } from './teasel-story.ts'
@@ -62,12 +64,14 @@ const lines = [
 ]
 
 /** Two firmware lines with two versions each, written by Tobias and published by Rafiq, who therefore signs no change that moves a joint to them. */
-async function firmware(story: Story) {
+async function firmware(story: Story, { files }: Services) {
   for (const { key, name, description, versions } of lines) {
     await story.act(async (em, now) => makeFirmwareLine(em, { key, name, description, person: await story.person(em, 'Tobias Oyelaran'), now }))
     for (const version of versions) {
       const schemaText = readFileSync(join(projectRoot(), 'examples', 'firmware', `${key}-${version}.schema.json`), 'utf8')
       await story.act(async (em, now) => draftFirmwareVersion(em, { line: await em.findOneOrFail(FirmwareLine, { key }), version, schemaText, read: readSchema(schemaText), notes: '', person: await story.person(em, 'Tobias Oyelaran'), now }))
+      const image = await demoFirmwareImage(files, key, version)
+      await story.act(async (em, now) => attachFirmwareImage(em, { version: await em.findOneOrFail(FirmwareVersion, { line: { key }, version }, { populate: ['line'] }), image, person: await story.person(em, 'Tobias Oyelaran'), now }))
       await story.act(async (em, now) => {
         const drafted = await em.findOneOrFail(FirmwareVersion, { line: { key }, version }, { populate: ['line'] })
         await publishFirmwareVersion(em, { version: drafted, schemaHash: drafted.schemaHash, imageHash: drafted.imageSha256 ?? null, person: await story.person(em, 'Rafiq Sandoval'), now })
@@ -80,7 +84,7 @@ async function firmware(story: Story) {
 export async function makeDemo(services: Services): Promise<void> {
   const story = new Story(services, demoBegins(services.now()))
   await people(story, services)
-  await firmware(story)
+  await firmware(story, services)
   for (const [key, name, description] of [
     ['dunlin', 'Dunlin', 'six-legged mud-flat survey walker with a sounding winch'],
     ['teasel', 'Teasel', 'seed-sorting arm with a belt roller'],
