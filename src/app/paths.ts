@@ -38,6 +38,7 @@ export const paths = {
     return `/compare${query && `?${query}`}`
   },
   keys: () => '/keys',
+  backups: () => '/backups',
   boards: (filter: { machine?: string; state?: string; release?: string } = {}) => {
     const query = new URLSearchParams(Object.entries(filter).filter(([, v]) => v)).toString()
     return query ? `/boards?${query}` : '/boards'

@@ -21,6 +21,7 @@ const pages: RouteObject[] = [
   { path: 'account', lazy: () => import('../routes/account.tsx') },
   { path: 'people', lazy: () => import('../routes/people.tsx') },
   { path: 'people/:person', lazy: () => import('../routes/person.tsx') },
+  { path: 'backups', lazy: () => import('../routes/backups.tsx') },
   { path: 'mail', lazy: () => import('../routes/mail.tsx') },
   { path: 'ledger', lazy: () => import('../routes/ledger.tsx') },
   { path: 'policy', lazy: () => import('../routes/policy.tsx') },

@@ -60,7 +60,7 @@ export function SignedInLayout() {
         machine={machine?.name ?? 'Machines'}
         onSearch={(text) => text && void navigate(paths.search(text))}
         person={{ name: me.name, roles: rolesInWords(me.roles) }}
-        personItems={personItems({ theme, mayKeepPeople: holds(me, 'keep people'), mayKeepMail: holds(me, 'keep mail'), signOut: () => signOut.mutate() })}
+        personItems={personItems({ theme, mayKeepPeople: holds(me, 'keep people'), mayKeepMail: holds(me, 'keep mail'), mayKeepBackups: holds(me, 'keep backups'), signOut: () => signOut.mutate() })}
       />
       <main ref={main} id="content" tabIndex={-1} aria-busy={busy} className="wrap relative overflow-x-clip pb-12 outline-none">
         <ProblemPanel className="mt-3" problem={signOut.error} />

@@ -34,7 +34,7 @@ export const machineItems = (machines: readonly MachineSummary[], shown: string 
 /** "peer reviewer, builder": each role once, whatever the machines. */
 export const rolesInWords = (roles: readonly GrantView[]): string => [...new Set(roles.map((r) => r.role))].join(', ') || 'no role yet'
 
-export function personItems({ theme, mayKeepPeople, mayKeepMail, signOut }: { theme: Theme; mayKeepPeople: boolean; mayKeepMail: boolean; signOut: () => void }): MenuItem[] {
+export function personItems({ theme, mayKeepPeople, mayKeepMail, mayKeepBackups, signOut }: { theme: Theme; mayKeepPeople: boolean; mayKeepMail: boolean; mayKeepBackups: boolean; signOut: () => void }): MenuItem[] {
   return [
     { label: 'account', to: paths.account() },
     { label: mayKeepPeople ? 'people and roles' : 'people', to: paths.people() },
@@ -42,6 +42,7 @@ export function personItems({ theme, mayKeepPeople, mayKeepMail, signOut }: { th
     { label: 'keys', to: paths.keys() },
     { label: 'compare', to: paths.compare() },
     ...(mayKeepMail ? [{ label: 'mail', to: paths.mail() }] : []),
+    ...(mayKeepBackups ? [{ label: 'backups', to: paths.backups() }] : []),
     ...themes.map((t) => ({ label: t === 'system' ? 'light or dark by system' : t, current: t === theme, note: t === theme ? 'shown' : undefined, onSelect: () => setTheme(t) })),
     { label: 'sign out', onSelect: signOut },
   ]

@@ -6,6 +6,7 @@ import { ProblemPanel } from '../components/problem/problem-panel.tsx'
 import { Button } from '../components/ui/button.tsx'
 import { Waiting } from '../components/ui/waiting.tsx'
 import { ChainVerdict } from '../features/ledger/components/chain-verdict.tsx'
+import { CheckpointsDialog } from '../features/ledger/components/checkpoints-dialog.tsx'
 import { EntryDialog } from '../features/ledger/components/entry-dialog.tsx'
 import { LedgerFilterFields } from '../features/ledger/components/ledger-filter.tsx'
 import { LedgerTable } from '../features/ledger/components/ledger-table.tsx'
@@ -26,6 +27,7 @@ export function Component() {
   const [machine, setMachine] = useUrlText('machine')
   const [person, setPerson] = useUrlText('person')
   const [chosen, setChosen] = useUrlText('entry')
+  const [checkpoints, setCheckpoints] = useUrlText('checkpoints')
   const ledger = useInfiniteQuery(ledgerQuery({ act, machine, person }))
   const machines = useQuery(machinesQuery).data ?? []
   const people = useQuery(peopleQuery).data?.people ?? []
@@ -38,9 +40,15 @@ export function Component() {
       <PageHead
         title="Ledger"
         actions={
-          <a className="btn" href="/api/ledger/export.jsonl" download>
-            Export all
-          </a>
+          <>
+            <Button onClick={() => setCheckpoints('shown')}>Checkpoints…</Button>
+            <a className="btn" href="/api/ledger/export.csv" download>
+              Export as a table
+            </a>
+            <a className="btn" href="/api/ledger/export.jsonl" download>
+              Export all
+            </a>
+          </>
         }
       >
         every act, each entry chained to the one before by its hash
@@ -67,6 +75,7 @@ export function Component() {
           {ledger.isError && <ProblemPanel className="mt-2" problem={ledger.error} onRetry={() => void ledger.refetch()} />}
         </>
       )}
+      {checkpoints && <CheckpointsDialog onClose={() => setCheckpoints('')} />}
       {entry && <EntryDialog entry={entry} onClose={() => setChosen('')} />}
     </>
   )

@@ -16,7 +16,7 @@ export function bundleChild(name: string): { file: (entry: 'child' | 'main' | 'c
 export const temporary = () => mkdtempSync(join(tmpdir(), 'detent-reliability-'))
 
 /** Longest that one question may take on a busy machine. */
-const patienceMs = 60_000
+const patienceMs = 300_000
 
 /** The child process as its parent sees it. */
 export class Child {

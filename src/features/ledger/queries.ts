@@ -1,5 +1,5 @@
 import { infiniteQueryOptions, queryOptions } from '@tanstack/react-query'
-import type { LedgerPage, LedgerVerdict } from '../../../shared/contract/ledger.ts'
+import type { CheckpointPage, LedgerPage, LedgerVerdict } from '../../../shared/contract/ledger.ts'
 import { get, withQuery } from '../../lib/api-client.ts'
 
 export interface LedgerFilter {
@@ -19,3 +19,6 @@ export const ledgerQuery = (filter: LedgerFilter) =>
 
 /** The walk along the whole chain; asked for, not read by itself. */
 export const verdictQuery = queryOptions({ queryKey: ['ledger', 'verdict'], queryFn: ({ signal }) => get<LedgerVerdict>('/ledger/verify', { signal }), staleTime: Infinity })
+
+/** The newest signed ends of the ledger. */
+export const checkpointsQuery = queryOptions({ queryKey: ['ledger', 'checkpoints'], queryFn: ({ signal }) => get<CheckpointPage>('/ledger/checkpoints', { signal }) })
