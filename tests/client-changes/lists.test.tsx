@@ -137,7 +137,7 @@ const release: ReleaseView = {
     { joint: 'l1-knee', name: 'L1 knee', family: 'Knee', bus: 'fore', address: 0x33, firmware: 'hinge 2.1.0', revision: 12, isNew: true, imageSha256: '92b3e4a4a5063de9'.padEnd(64, '0'), imageBytes: 128 },
     { joint: 'winch', name: 'winch', family: 'Winch', bus: 'aft', address: 0x40, firmware: 'capstan 1.3.0', revision: 4, isNew: false, imageSha256: 'd962711bfd21fb06'.padEnd(64, '0'), imageBytes: 192 },
   ],
-  withdrawal: null, kit: null, firmwareImages: [], needsReason: false, may: { download: { allowed: true }, withdraw: { allowed: true } },
+  withdrawal: null, kit: null, firmwareImages: [], needsReason: false, unfit: [], may: { download: { allowed: true }, withdraw: { allowed: true } },
 }
 const releaseApi = (over: Partial<ReleaseView> = {}) => anApi(rafiq, { 'GET /machines/dunlin/releases/1.7.0': () => ({ body: { ...release, ...over } }), 'GET /changes/dunlin-47': { body: aChange({ state: 'released', life: 'released' }) } })
 

@@ -12,6 +12,7 @@ import { ReleaseJoint } from './release-joint.entity.ts'
 import { ReleaseKit } from './release-kit.entity.ts'
 import { Release } from './release.entity.ts'
 import { expiredAt, standingConcessions } from './standing-concessions.ts'
+import { unfitJoints } from './unfit-joints.ts'
 import { Withdrawal } from './withdrawal.entity.ts'
 
 /** Newest of its machine and not withdrawn: current; a withdrawal brings no older one back. */
@@ -72,6 +73,7 @@ export async function presentRelease(em: EntityManager, release: Release, held: 
     kit: kit && { manifestSha256: kit.manifestSha256, keyId: kit.keyId, bytes: kit.zipBytes },
     firmwareImages: versions.filter((v) => v.imageSha256).map(firmwareName).sort(),
     needsReason: summary.state === 'superseded',
+    unfit: summary.state === 'withdrawn' ? [] : await unfitJoints(em, release),
     may: { download: await mayTake(em, release, held, summary.state, now), withdraw: mayWithdraw(release.machine.key, held, summary.state) },
   }
 }

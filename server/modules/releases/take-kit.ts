@@ -4,7 +4,6 @@ import { jointFiles, packKit, readmeFor } from '../../exports/kit.ts'
 import type { KitFile } from '../../exports/manifest.ts'
 import { verifyKit } from '../../exports/verify-kit.ts'
 import { DomainError } from '../../http/errors.ts'
-import { boardBindingProblem } from '../boards/board-binding.ts'
 import { sha256 } from '../checks/resolve-joint.ts'
 import { schemasFor } from '../firmware/schemas-for.ts'
 import { breathe } from './breathe.ts'
@@ -16,13 +15,17 @@ import { ReleaseJoint } from './release-joint.entity.ts'
 import type { Release } from './release.entity.ts'
 import { signedKitOf, type SignedKit } from './signed-kit.ts'
 import type { TakenFile } from './take-file.ts'
+import { unfitJoints, type UnfitJoint } from './unfit-joints.ts'
 
-/** A kit holds every joint: one that must not be flashed as released keeps the whole kit back. */
-async function mustFitBoards(em: EntityManager, release: Release) {
-  for (const joint of Object.keys(release.set.joints)) {
-    const unfit = await boardBindingProblem(em, release, joint)
-    if (unfit) throw new DomainError('wrong-state', `${unfit} Nothing was downloaded; the files of the other joints can be fetched one by one.`)
-  }
+/**
+ * A kit holds every joint, those too whose own files are refused because another board sits there: it is handed out for a stated reason
+ * alone, and the ledger names them.
+ *
+ * @throws DomainError invalid-request without a reason
+ */
+function mustBeMeant(unfit: readonly UnfitJoint[], reason: string | null) {
+  if (unfit.length === 0 || reason !== null) return
+  throw new DomainError('invalid-request', `${unfit[0].why} The kit holds ${unfit.length === 1 ? 'this joint' : `${unfit.length} such joints`} too. Nothing was downloaded; say why you need the whole kit, or take the files of the other joints one by one.`, { fields: [{ pointer: '/reason', detail: 'is needed for a kit with joints that must not be flashed as released' }] })
 }
 
 function mustBeNamed(release: Release, kit: SignedKit, file: KitFile) {
@@ -33,12 +36,13 @@ function mustBeNamed(release: Release, kit: SignedKit, file: KitFile) {
  * The kit of a release, the same bytes every time: each image proven again, each file made again and held against the signed manifest, and
  * the finished .zip verified as anybody would.
  *
- * @throws DomainError not-found, wrong-state, verification-failed naming what is not as signed
+ * @throws DomainError not-found, invalid-request, verification-failed naming what is not as signed
  */
-export async function takeKit(em: EntityManager, files: FileStore, release: Release, { state, mark }: Taking): Promise<TakenFile> {
+export async function takeKit(em: EntityManager, files: FileStore, release: Release, { state, mark, reason }: Taking): Promise<TakenFile & { unfit: UnfitJoint[] }> {
   const kit = await signedKitOf(em, release)
   if (!kit) throw new DomainError('not-found', `${release.machine.name} ${release.version} was released before kits were kept. Nothing was downloaded; its images can be fetched joint by joint.`)
-  if (state !== 'withdrawn') await mustFitBoards(em, release)
+  const unfit = state === 'withdrawn' ? [] : await unfitJoints(em, release)
+  mustBeMeant(unfit, reason)
   const schemas = await schemasFor(em, release.set)
   const made: KitFile[] = [...(await firmwareFilesOf(em, files, release.set)).files, readmeFor(kit.release, kit.signed.publicKey)]
   for (const row of await em.find(ReleaseJoint, { release }, { populate: ['joint', 'revision', 'image'], orderBy: { id: 'asc' } })) {
@@ -53,5 +57,5 @@ export async function takeKit(em: EntityManager, files: FileStore, release: Rele
   await breathe()
   const verified = verifyKit(zip, kit.signed.publicKey)
   if (verified.kind === 'refused') throw notAsSigned(release, 'The kit', verified.problems[0])
-  return { bytes: zip, type: 'application/zip', fileName: `${mark}${release.machine.key}_${release.version}_kit.zip`, sha256: sha256(zip) }
+  return { bytes: zip, type: 'application/zip', fileName: `${mark}${release.machine.key}_${release.version}_kit.zip`, sha256: sha256(zip), unfit }
 }

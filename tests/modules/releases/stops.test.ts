@@ -1,7 +1,10 @@
 import { beforeAll, describe, expect, it } from 'vitest'
+import { Board, serialKey } from '../../../server/modules/boards/board.entity.ts'
+import { Joint } from '../../../server/modules/machines/joint.entity.ts'
 import type { CheckView } from '../../../shared/contract/checks.ts'
 import type { ReleaseView } from '../../../shared/contract/releases.ts'
 import { aDraft, aWalker, etag, read, through, twoKnees, type Walker } from '../../support/a-walker.ts'
+import { lastEntries } from '../../support/ledger.ts'
 import { asBytes } from './downloads.ts'
 
 const at = '/api/machines/dunlin/releases/1.0.0'
@@ -41,5 +44,32 @@ describe('a release that stands on a concession', () => {
         expect(refused.body).toMatchObject({ type: '/problems/wrong-state', detail: expect.stringMatching(/concession for bus watchdog .* until 2026-03-02; it stops the downloads of Dunlin 1\.0\.0/) })
       }
     expect(((await builder.get(at).expect(200)).body as ReleaseView).may.download).toMatchObject({ allowed: false, why: expect.stringContaining('bus watchdog') })
+  })
+})
+
+describe('a release whose values were measured on another board than the one that sits there', () => {
+  let w: Walker
+  const measuredOn = twoKnees().joints['l1-knee'].board!
+  beforeAll(async () => {
+    w = await aWalker()
+    await through(w, await aDraft(w))
+    const em = w.orm.em.fork()
+    const joint = await em.findOneOrFail(Joint, { key: 'l1-knee' })
+    em.create(Board, { serial: 'H-0999', serialKey: serialKey('H-0999'), machine: joint.machine, joint, createdAt: w.services.now() })
+    await em.flush()
+  })
+
+  it('hands out none of that joint’s files, and those of the others as before', async () => {
+    const refused = await w.builder.get(`${at}/joints/l1-knee/image.bin`).expect(409)
+    expect(refused.body).toMatchObject({ type: '/problems/wrong-state', detail: expect.stringContaining(measuredOn) })
+    await asBytes(w.builder.get(`${at}/joints/r1-knee/image.bin`)).expect(200)
+  })
+
+  it('hands out the kit, which holds that joint too, for a stated reason alone; the ledger names the joint', async () => {
+    const refused = await w.builder.get(`${at}/kit.zip`).expect(400)
+    expect(refused.body).toMatchObject({ errors: [{ pointer: '/reason' }], detail: expect.stringContaining('H-0999 is recorded there') })
+    await asBytes(w.builder.get(`${at}/kit.zip?reason=for+the+archive`)).expect(200)
+    expect(await lastEntries(w)).toMatchObject([{ act: 'kit downloaded', details: { reason: 'for the archive', notToBeFlashed: ['l1-knee'] } }])
+    expect(((await w.builder.get(at).expect(200)).body as ReleaseView).unfit).toEqual([{ joint: 'l1-knee', name: 'L1 knee', why: expect.stringContaining(measuredOn) }])
   })
 })

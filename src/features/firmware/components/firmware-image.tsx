@@ -124,7 +124,7 @@ function Attach({ version, hold }: FirmwareImageProps) {
         </div>
       )}
       {tooLarge && <ErrorPanel className="mt-2" title="The file is too large" happened={tooLarge} kept="Nothing was sent." />}
-      {stopped ? <p className="mt-2 text-13 text-ink-2">Stopped; nothing was kept.</p> : <ProblemPanel className="mt-2" problem={attach.error} />}
+      {stopped ? <p className="mt-2 text-13 text-ink-2">Stopped; nothing was kept.</p> : <ProblemPanel className="mt-2" problem={attach.error} shown={['/image']} />}
       <ProblemPanel className="mt-2" problem={detach.error} />
     </div>
   )

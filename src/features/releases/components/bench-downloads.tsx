@@ -23,6 +23,7 @@ export function BenchDownloads({ release }: { release: ReleaseView }) {
   const { download } = release.may
   const missing = release.needsReason && reason.trim() === '' ? 'Write why you need a superseded release first.' : null
   const why = reason.trim() || undefined
+  const missingForKit = missing ?? (release.unfit.length > 0 && reason.trim() === '' ? 'Write why you need the whole kit first.' : null)
   return (
     <section aria-label="for the bench" className="no-print">
       <SectionHeading>For the bench</SectionHeading>
@@ -33,10 +34,18 @@ export function BenchDownloads({ release }: { release: ReleaseView }) {
           {release.state !== 'current' && (
             <p className={`mt-2 text-13 ${release.state === 'withdrawn' ? 'text-oxide' : 'text-plum'}`}>{release.state === 'withdrawn' ? 'This release is withdrawn: its files are for analysis, not for a board.' : 'This release is superseded: a newer one exists, and its files are marked so.'}</p>
           )}
-          {release.needsReason && <TextField className="mt-2" label="Why a superseded release is needed" value={reason} onChange={setReason} maxLength={2000} help="It stands in the ledger beside each download." />}
+          {release.unfit.length > 0 && (
+            <div className="mt-2 border-l-2 border-plum bg-plum-wash px-3 py-2 text-13">
+              <p className="font-medium text-plum">Not to be flashed as released: {release.unfit.map((u) => u.name).join(', ')}</p>
+              {release.unfit.map((u) => (
+                <p key={u.joint}>{u.why}</p>
+              ))}
+            </div>
+          )}
+          {(release.needsReason || release.unfit.length > 0) && <TextField className="mt-2" label={release.needsReason ? 'Why a superseded release is needed' : 'Why the whole kit is needed'} value={reason} onChange={setReason} maxLength={2000} help="It stands in the ledger beside each download." />}
           {release.kit && (
             <div className="mt-2">
-              <Take label={`Download the kit, ${count(release.items.length, 'joint')}`} aside={formatBytes(release.kit.bytes)} href={kitHref(release.machine, release.version, why)} name={`${release.machine}-${release.version}.zip`} missing={missing} primary />
+              <Take label={`Download the kit, ${count(release.items.length, 'joint')}`} aside={formatBytes(release.kit.bytes)} href={kitHref(release.machine, release.version, why)} name={`${release.machine}-${release.version}.zip`} missing={missingForKit} primary />
               <p className="mt-1 text-12 text-ink-2">
                 One .zip, the same bytes every time; its manifest is signed with Ed25519, and the kit says how to verify it with openssl alone. <TextLink to={paths.keys()}>The workplace’s keys</TextLink>
                 {release.firmwareImages.length > 0 && <> With the firmware of {release.firmwareImages.join(', ')}.</>}
