@@ -25,8 +25,8 @@ export class Child {
   private count = 0
   readonly gone: Promise<NodeJS.Signals | null>
 
-  constructor(file: string) {
-    this.process = spawn(process.execPath, [file], { stdio: ['ignore', 'inherit', 'inherit', 'ipc'] })
+  constructor(file: string, nodeOptions: readonly string[] = []) {
+    this.process = spawn(process.execPath, [...nodeOptions, file], { stdio: ['ignore', 'inherit', 'inherit', 'ipc'] })
     this.process.on('message', (told: { id: number; result?: unknown; error?: string }) => {
       const waiting = this.waiting.get(told.id)
       this.waiting.delete(told.id)

@@ -2,6 +2,7 @@ import fs from 'node:fs/promises'
 import { syncBuiltinESMExports } from 'node:module'
 import { createServer, type Server } from 'node:http'
 import { join } from 'node:path'
+import express from 'express'
 import { pino } from 'pino'
 import { buildApp } from '../../server/app.ts'
 import { readConfig } from '../../server/config.ts'
@@ -88,6 +89,18 @@ async function open(folder: string, options: OpenOptions = {}): Promise<number> 
   return (server.address() as { port: number }).port
 }
 
+/** Express and one point read, nothing else: what the rest is measured against. */
+async function bare({ orm }: Services): Promise<number> {
+  const app = express()
+  app.get('/:id', (req, res, next) => {
+    orm.em.getConnection().execute('select id, version, sequence from release where id = ?', [Number(req.params.id)]).then((rows) => res.json(rows), next)
+  })
+  const server = createServer(app)
+  server.unref()
+  await new Promise<void>((done) => server.listen(0, '127.0.0.1', done))
+  return (server.address() as { port: number }).port
+}
+
 async function close() {
   const { server, services } = opened!
   opened = null
@@ -113,6 +126,11 @@ async function answer(asked: Asked): Promise<unknown> {
       return null
     case 'steps':
       return steps
+    case 'memory':
+      globalThis.gc?.()
+      return process.memoryUsage().rss
+    case 'bare':
+      return bare(opened!.services)
     case 'fill':
       return filling(asked.folder)
     case 'look':

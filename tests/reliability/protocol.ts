@@ -16,6 +16,10 @@ export type Ask =
   | { do: 'check' }
   | { do: 'arm'; kill: Kill | null }
   | { do: 'steps' }
+  /** resident memory, bytes, after collecting what can be collected */
+  | { do: 'memory' }
+  /** serves a bare point read beside the program, for comparison; answers its port */
+  | { do: 'bare' }
   | { do: 'fill'; folder: string }
   /** reads a file without bringing it to the present schema */
   | { do: 'look'; folder: string }

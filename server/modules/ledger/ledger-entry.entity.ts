@@ -15,6 +15,8 @@ export interface LedgerSubject {
 /** One act, chained to the one before it. Never updated, never deleted. */
 export const LedgerEntry = defineEntity({
   name: 'LedgerEntry',
+  // counts what a filter by both finds, without reading the entries
+  indexes: [{ properties: ['machineKey', 'act'] }],
   properties: {
     /** position in the chain, from 1, without gaps */
     sequence: p.integer().primary().autoincrement(false),
