@@ -74,7 +74,7 @@ export interface ReleaseView extends ReleaseSummary {
   firmwareImages: string[]
   /** a download must say why: the release is superseded */
   needsReason: boolean
-  /** joints whose files are refused, since another board sits there than the one they were measured on; a kit that holds them wants a reason */
+  /** joints whose files are refused, since another board sits there than the one they were measured on; the kit, which holds them, is refused too */
   unfit: { joint: string; name: string; why: string }[]
   may: { download: Allowed; withdraw: Allowed }
 }

@@ -64,8 +64,8 @@ export const releaseRoutes: readonly RouteSpec[] = [
     place: onRelease,
     handle: async ({ services, em, place, query, held, person, benchKey, now }) => {
       const taking = await mustBeTakeable(em, place.release, { held, reason: query.reason, now })
-      const { bytes, type, fileName, sha256, unfit } = await takeKit(em, services.files, place.release, taking)
-      await recordDownload(services.orm, { act: 'kit downloaded', subject: place.subject, details: { sha256, ...told(taking), ...(unfit.length > 0 ? { notToBeFlashed: unfit.map((u) => u.joint) } : {}) }, person, benchKey, now })
+      const { bytes, type, fileName, sha256 } = await takeKit(em, services.files, place.release, taking)
+      await recordDownload(services.orm, { act: 'kit downloaded', subject: place.subject, details: { sha256, ...told(taking) }, person, benchKey, now })
       return { bytes, type, fileName, headers: { 'X-Detent-SHA256': sha256 } }
     },
   }),

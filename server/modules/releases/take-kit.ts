@@ -18,14 +18,13 @@ import type { TakenFile } from './take-file.ts'
 import { unfitJoints, type UnfitJoint } from './unfit-joints.ts'
 
 /**
- * A kit holds every joint, those too whose own files are refused because another board sits there: it is handed out for a stated reason
- * alone, and the ledger names them.
+ * A kit holds every joint's bytes, so one joint whose downloads are refused refuses the kit: no reason opens another way to them.
  *
- * @throws DomainError invalid-request without a reason
+ * @throws DomainError wrong-state naming the joints
  */
-function mustBeMeant(unfit: readonly UnfitJoint[], reason: string | null) {
-  if (unfit.length === 0 || reason !== null) return
-  throw new DomainError('invalid-request', `${unfit[0].why} The kit holds ${unfit.length === 1 ? 'this joint' : `${unfit.length} such joints`} too. Nothing was downloaded; say why you need the whole kit, or take the files of the other joints one by one.`, { fields: [{ pointer: '/reason', detail: 'is needed for a kit with joints that must not be flashed as released' }] })
+function mustAllFit(unfit: readonly UnfitJoint[]) {
+  if (unfit.length === 0) return
+  throw new DomainError('wrong-state', `${unfit[0].why} The kit holds ${unfit.length === 1 ? 'this joint' : `${unfit.length} such joints (${unfit.map((u) => u.name).join(', ')})`}. Nothing was downloaded; take the files of the other joints one by one, or release the values measured on the new board.`)
 }
 
 function mustBeNamed(release: Release, kit: SignedKit, file: KitFile) {
@@ -36,13 +35,13 @@ function mustBeNamed(release: Release, kit: SignedKit, file: KitFile) {
  * The kit of a release, the same bytes every time: each image proven again, each file made again and held against the signed manifest, and
  * the finished .zip verified as anybody would.
  *
- * @throws DomainError not-found, invalid-request, verification-failed naming what is not as signed
+ * @throws DomainError not-found, wrong-state, verification-failed naming what is not as signed
  */
-export async function takeKit(em: EntityManager, files: FileStore, release: Release, { state, mark, reason }: Taking): Promise<TakenFile & { unfit: UnfitJoint[] }> {
+export async function takeKit(em: EntityManager, files: FileStore, release: Release, { state, mark }: Taking): Promise<TakenFile> {
   const kit = await signedKitOf(em, release)
   if (!kit) throw new DomainError('not-found', `${release.machine.name} ${release.version} was released before kits were kept. Nothing was downloaded; its images can be fetched joint by joint.`)
-  const unfit = state === 'withdrawn' ? [] : await unfitJoints(em, release)
-  mustBeMeant(unfit, reason)
+  // A withdrawn release's files are for analysis, not for a board.
+  if (state !== 'withdrawn') mustAllFit(await unfitJoints(em, release))
   const schemas = await schemasFor(em, release.set)
   const made: KitFile[] = [...(await firmwareFilesOf(em, files, release.set)).files, readmeFor(kit.release, kit.signed.publicKey)]
   for (const row of await em.find(ReleaseJoint, { release }, { populate: ['joint', 'revision', 'image'], orderBy: { id: 'asc' } })) {
@@ -57,5 +56,5 @@ export async function takeKit(em: EntityManager, files: FileStore, release: Rele
   await breathe()
   const verified = verifyKit(zip, kit.signed.publicKey)
   if (verified.kind === 'refused') throw notAsSigned(release, 'The kit', verified.problems[0])
-  return { bytes: zip, type: 'application/zip', fileName: `${mark}${release.machine.key}_${release.version}_kit.zip`, sha256: sha256(zip), unfit }
+  return { bytes: zip, type: 'application/zip', fileName: `${mark}${release.machine.key}_${release.version}_kit.zip`, sha256: sha256(zip) }
 }

@@ -23,7 +23,7 @@ export function BenchDownloads({ release }: { release: ReleaseView }) {
   const { download } = release.may
   const missing = release.needsReason && reason.trim() === '' ? 'Write why you need a superseded release first.' : null
   const why = reason.trim() || undefined
-  const missingForKit = missing ?? (release.unfit.length > 0 && reason.trim() === '' ? 'Write why you need the whole kit first.' : null)
+  const missingForKit = release.unfit.length > 0 ? 'The kit holds a joint whose files are refused.' : missing
   return (
     <section aria-label="for the bench" className="no-print">
       <SectionHeading>For the bench</SectionHeading>
@@ -42,7 +42,7 @@ export function BenchDownloads({ release }: { release: ReleaseView }) {
               ))}
             </div>
           )}
-          {(release.needsReason || release.unfit.length > 0) && <TextField className="mt-2" label={release.needsReason ? 'Why a superseded release is needed' : 'Why the whole kit is needed'} value={reason} onChange={setReason} maxLength={2000} help="It stands in the ledger beside each download." />}
+          {release.needsReason && <TextField className="mt-2" label="Why a superseded release is needed" value={reason} onChange={setReason} maxLength={2000} help="It stands in the ledger beside each download." />}
           {release.kit && (
             <div className="mt-2">
               <Take label={`Download the kit, ${count(release.items.length, 'joint')}`} aside={formatBytes(release.kit.bytes)} href={kitHref(release.machine, release.version, why)} name={`${release.machine}-${release.version}.zip`} missing={missingForKit} primary />
