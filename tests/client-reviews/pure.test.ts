@@ -67,13 +67,14 @@ describe('effects in figures', () => {
 describe('before signing', () => {
   const view = (read: number, rows = 24): ReadingView => ({ read: [], rows, people: [{ name: 'Rafiq Sandoval', read }, { name: 'Hedda Lindqvist', read: 2 }], may: { mark: { allowed: true } } })
   const rows = Array.from({ length: 24 }, () => limit)
-  const reading = (unread: number, known = rows) => ({ view: view(24 - unread), rows: known, unread: rows.slice(0, unread) })
+  const reading = (unread: number, known = rows) => ({ view: view(24 - unread), rows: known, unread: rows.slice(0, unread), kept: true })
 
   it.each([
     [reading(0), 0, null],
     [reading(1), 0, 'First mark one more row as read.'],
     [reading(6), 1, 'First mark 6 more rows as read and have one open comment answered.'],
     [reading(0), 3, 'First have 3 open comments answered.'],
+    [{ ...reading(0), kept: false }, 0, 'Your marks are being kept.'],
     [reading(0), null, 'What you have read is not known yet.'],
     [reading(0, []), 0, 'What you have read is not known yet.'],
   ])('says what is left', (read, comments, words) => expect(beforeSigning(read, comments)).toBe(words))

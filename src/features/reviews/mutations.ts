@@ -1,4 +1,4 @@
-import { useMutation, useQueryClient } from '@tanstack/react-query'
+import { useIsMutating, useMutation, useQueryClient } from '@tanstack/react-query'
 import type { ChangeView } from '../../../shared/contract/changes.ts'
 import type { Marked, ReadingView, ReturnChange, SignPeerReview, SignRelease } from '../../../shared/contract/reviews.ts'
 import { act } from '../../lib/api-client.ts'
@@ -23,12 +23,17 @@ export type Stroke = { read: readonly Marked[] } | { unread: string }
 
 const marks = (view: ReadingView, stroke: Stroke): ReadingView => ({ ...view, read: 'read' in stroke ? [...new Set([...view.read, ...stroke.read.map((r) => r.key)])] : view.read.filter((k) => k !== stroke.unread) })
 
+const scopeOf = (change: On) => `reading ${change.key}`
+
+/** Whether marks are still on their way to the server. */
+export const useMarksOnTheirWay = (change: On): boolean => useIsMutating({ predicate: (m) => m.options.scope?.id === scopeOf(change) }) > 0
+
 /** Marks rows as read or unread: shown at once, taken back when the server refuses. Strokes are sent one after the other, so that the last one stands. */
 export function useMarkRows(change: On) {
   const client = useQueryClient()
   const key = readingQuery(change.key, change.revision).queryKey
   return useMutation({
-    scope: { id: `reading ${change.key}` },
+    scope: { id: scopeOf(change) },
     mutationFn: (stroke: Stroke) =>
       'read' in stroke
         ? act<ReadingView>({ path: `${at(change)}/reading`, body: { rows: stroke.read.map((r) => ({ key: r.key, hash: r.hash })) } })
@@ -40,7 +45,7 @@ export function useMarkRows(change: On) {
     },
     // The answer to one stroke does not know the next one, which is shown already: only the last of them is taken up.
     onSuccess: (view) => {
-      if (client.isMutating({ predicate: (m) => m.options.scope?.id === `reading ${change.key}` }) === 1) client.setQueryData(key, view)
+      if (client.isMutating({ predicate: (m) => m.options.scope?.id === scopeOf(change) }) === 1) client.setQueryData(key, view)
     },
     onError: () => client.invalidateQueries({ queryKey: key }),
   })

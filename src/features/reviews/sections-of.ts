@@ -8,13 +8,14 @@ export interface Section {
   rows: DiffRow[]
 }
 
+const isSetting = (r: DiffRow) => r.role === null && r.register === null
+
 /** Settings of the joint first, then its values by law, then what single joints have of their own. */
 export function sectionsOf(group: DiffGroup, family: string, nameOf: (joint: string) => string): Section[] {
-  const settings = group.rows.filter((r) => r.role === null && r.register === null)
-  const values = group.rows.filter((r) => !settings.includes(r))
+  const settings = group.rows.filter(isSetting)
   return [
     ...(settings.length > 0 ? [{ title: 'place and firmware', of: family, rows: settings }] : []),
-    ...byLaw(values).map(({ law, things }) => ({ title: law, of: family, rows: things })),
+    ...byLaw(group.rows.filter((r) => !isSetting(r))).map(({ law, things }) => ({ title: law, of: family, rows: things })),
     ...group.own.map(({ joint, rows }) => ({ title: ownTitle(nameOf(joint), rows), of: nameOf(joint), rows })),
   ]
 }

@@ -2,7 +2,7 @@ import { useQuery } from '@tanstack/react-query'
 import { useMemo } from 'react'
 import type { ChangeView } from '../../../shared/contract/changes.ts'
 import type { DiffView, Marked } from '../../../shared/contract/reviews.ts'
-import { useMarkRows } from './mutations.ts'
+import { useMarkRows, useMarksOnTheirWay } from './mutations.ts'
 import { readingQuery } from './queries.ts'
 import { rowsOf } from './rows-of.ts'
 
@@ -10,6 +10,7 @@ import { rowsOf } from './rows-of.ts'
 export function useReading(change: ChangeView, diff: DiffView | undefined) {
   const query = useQuery(readingQuery(change.key, change.revision))
   const strokes = useMarkRows(change)
+  const onTheirWay = useMarksOnTheirWay(change)
   const view = query.data
   const marks = view?.may.mark.allowed ?? false
   const read = useMemo(() => new Set(view?.read), [view])
@@ -21,6 +22,8 @@ export function useReading(change: ChangeView, diff: DiffView | undefined) {
     /** null for whoever keeps no marks */
     read: marks ? read : null,
     unread,
+    /** false while marks are on their way to the server */
+    kept: !onTheirWay,
     problem: strokes.error,
     mark: (marked: readonly Marked[]) => {
       const fresh = marked.filter((r) => !read.has(r.key))

@@ -6,14 +6,13 @@ const isTyping = (target: EventTarget | null) => target instanceof HTMLElement &
 export interface RowKeys {
   isRead: (key: string) => boolean
   /** null for whoever keeps no marks */
-  onToggle: ((key: string) => void) | null
+  onRead: ((key: string) => void) | null
   onOpen: (key: string) => void
-  /** where the keys begin when no row has the focus */
-  first: () => string | null
 }
 
 /**
- * `.` and `,` go to the next and the previous row; on a row, space marks it as read and goes on, Enter opens its comments.
+ * `.` and `,` go to the next and the previous row; on a row, space marks it as read and goes on to the next one that is not, Enter opens its
+ * comments. Space never takes a mark away: pressed once too often it would undo what was read.
  *
  * They work while the focus is in the place, or nowhere; never while somebody types.
  */
@@ -25,14 +24,14 @@ export function useRowKeys(place: RefObject<HTMLElement | null>, keys: RowKeys) 
     if (active !== document.body && !here.contains(active)) return
     const rows = shownRows(here)
     const at = rows.findIndex((r) => r === active || r.contains(active))
+    const isUnread = (r: HTMLElement) => !keys.isRead(r.dataset.rowKey!)
     const onRow = at >= 0 && rows[at] === active
     const key = at >= 0 ? rows[at].dataset.rowKey! : null
     const step = event.key === '.' || (onRow && event.key === 'ArrowDown') ? 1 : event.key === ',' || (onRow && event.key === 'ArrowUp') ? -1 : 0
-    if (step !== 0) goToRow(at < 0 ? (rows.find((r) => r.dataset.rowKey === keys.first()) ?? rows[0]) : rows[Math.min(Math.max(at + step, 0), rows.length - 1)])
-    else if (onRow && key !== null && event.key === ' ' && keys.onToggle) {
-      const wasRead = keys.isRead(key)
-      keys.onToggle(key)
-      if (!wasRead) goToRow(rows[at + 1])
+    if (step !== 0) goToRow(at < 0 ? (rows.find(isUnread) ?? rows[0]) : rows[Math.min(Math.max(at + step, 0), rows.length - 1)])
+    else if (onRow && key !== null && event.key === ' ' && keys.onRead) {
+      keys.onRead(key)
+      goToRow([...rows.slice(at + 1), ...rows.slice(0, at)].find(isUnread))
     } else if (onRow && key !== null && event.key === 'Enter') keys.onOpen(key)
     else return
     event.preventDefault()

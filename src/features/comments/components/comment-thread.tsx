@@ -56,12 +56,12 @@ export function CommentThread({ change, thread: { head, under }, people, mayWrit
           <>
             <span className="font-medium text-brass">open</span>
             {head.may.answer.allowed && (
-              <button type="button" className="link no-print" aria-busy={answer.isPending || undefined} onClick={() => answer.isPending || answer.mutate(head.number)} aria-label={`mark comment ${head.number} answered`}>
+              <button type="button" className="link no-print" aria-busy={answer.isPending || undefined} onClick={() => answer.isPending || answer.mutate(head.number)} aria-label={`mark answered, comment ${head.number}`}>
                 mark answered
               </button>
             )}
             {mayWrite && !writing && (
-              <button type="button" className="link no-print" aria-label={`write under comment ${head.number}`} onClick={() => {
+              <button type="button" className="link no-print" aria-label={`write under it, comment ${head.number}`} onClick={() => {
                 setWriting(true)
                 queueMicrotask(() => field.current?.focus())
               }}>

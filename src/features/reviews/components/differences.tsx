@@ -55,9 +55,8 @@ export function Differences({ query, effects, reading, baseVersion, me, nameOf, 
   }
   useRowKeys(place, {
     isRead: (key) => reading.read?.has(key) ?? false,
-    onToggle: reading.read && ((key) => (reading.read!.has(key) ? reading.unmark(key) : reading.mark([rowOf(key)!]))),
+    onRead: reading.read && ((key) => reading.mark([rowOf(key)!])),
     onOpen: (key) => query.data && onOpen({ ...rowOf(key)!, title: titleOf(query.data, key, nameOf) }),
-    first: () => first,
   })
   return (
     <Region
@@ -69,7 +68,7 @@ export function Differences({ query, effects, reading, baseVersion, me, nameOf, 
     >
       {(d) => (
         <div ref={place}>
-          {reading.view && <ReadingLine view={reading.view} unread={reading.unread.length} me={me} onNext={() => reading.unread[0] && goToRowOf(reading.unread[0].key, place.current ?? document)} />}
+          {reading.view && <ReadingLine view={reading.view} unread={reading.unread.length} kept={reading.kept} me={me} onNext={() => reading.unread[0] && goToRowOf(reading.unread[0].key, place.current ?? document)} />}
           <ProblemPanel className="mb-3" problem={reading.problem} />
           {d.groups.map((g) => {
             const family = `${nameOf.family(g.family)} family`

@@ -3,7 +3,7 @@ import { Key } from '../../../components/ui/key.tsx'
 import { count } from '../../../lib/format.ts'
 
 /** How much of what alters is read, by the reader and the others, and the keys that go through it. */
-export function ReadingLine({ view, unread, me, onNext }: { view: ReadingView; unread: number; me: string; onNext: () => void }) {
+export function ReadingLine({ view, unread, kept, me, onNext }: { view: ReadingView; unread: number; kept: boolean; me: string; onNext: () => void }) {
   const others = view.people.filter((p) => p.name !== me)
   const marks = view.may.mark.allowed
   return (
@@ -11,6 +11,7 @@ export function ReadingLine({ view, unread, me, onNext }: { view: ReadingView; u
       {marks && (
         <span aria-live="polite">
           {unread === 0 ? <b>All {count(view.rows, 'row')} read</b> : <><b>{view.rows - unread} of {count(view.rows, 'row')} read</b>, signing needs all</>}
+          {!kept && <span className="text-ink-2">, being kept</span>}
         </span>
       )}
       {others.length > 0 && <span className="text-ink-2">{others.map((p) => `${p.name} ${p.read === view.rows ? 'all' : p.read}`).join(', ')}</span>}

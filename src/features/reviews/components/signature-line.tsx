@@ -13,7 +13,7 @@ export function SignatureLine({ signature, number }: { signature: SignatureView;
       </div>
       <div className="ml-[30px]">
         <p className={`flex flex-wrap items-baseline justify-between gap-x-3 border-b border-ink text-16 leading-7 font-medium ${signature.void ? 'text-ink-2 line-through' : ''}`}>
-          {signature.person}
+          <span>{signature.person}</span>
           <span className="text-13 font-normal">
             <Time at={signature.at} style="long" />
           </span>
