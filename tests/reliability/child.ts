@@ -18,19 +18,28 @@ import { openWorkplaceKeys } from '../../server/modules/keys/workplace-keys.ts'
 import { filling, look, withRebuild } from './a-rebuild.ts'
 import { faultsIn, summary } from './invariants.ts'
 import { makePeopleAndMachine } from './people-and-machine.ts'
-import type { Asked, KillMode } from './protocol.ts'
+import type { Asked, Kill } from './protocol.ts'
 
 /**
  * The server in a process that can be killed at a chosen step: the k-th SQL statement or file operation since it was armed. It dies by SIGKILL
  * before the step, right after handing it to SQLite's thread or the kernel, or after its answer.
  */
 let steps = 0
-let armed: { at: number; mode: KillMode } | null = null
+let armed: Kill | null = null
+/** the statement that an armed child waits for has run; its COMMIT is next */
+let ran = false
 const die = () => process.kill(process.pid, 'SIGKILL')
 
-async function step<T>(work: () => Promise<T>): Promise<T> {
+function modeNow(sql: string) {
+  if (!armed) return null
+  if ('at' in armed) return armed.at === steps ? armed.mode : null
+  ran ||= sql.includes(armed.committed)
+  return ran && sql.startsWith('COMMIT') ? 'after' : null
+}
+
+async function step<T>(work: () => Promise<T>, sql = ''): Promise<T> {
   steps += 1
-  const mine = armed?.at === steps ? armed.mode : null
+  const mine = modeNow(sql)
   if (mine === 'before') die()
   const going = work()
   if (mine === 'during') die()
@@ -48,7 +57,7 @@ function countSteps() {
   const dialect = ImmediateDialect.prototype as unknown as Queries
   const query = dialect._query
   dialect._query = function counted(this: Queries, connection, asked) {
-    return step(() => query.call(this, connection, asked))
+    return step(() => query.call(this, connection, asked), (asked as { sql: string }).sql)
   }
   const { open, rename, mkdir, rm } = fs
   fs.rename = (...args) => step(() => rename(...args))
@@ -122,6 +131,7 @@ async function answer(asked: Asked): Promise<unknown> {
       return { faults: await faultsIn(opened!.services), summary: await summary(opened!.services) }
     case 'arm':
       steps = 0
+      ran = false
       armed = asked.kill
       return null
     case 'steps':

@@ -17,11 +17,13 @@ export function seeded(seed: number): () => number {
   }
 }
 
+type Step = Extract<Kill, { at: number }>
+
 const modes: readonly KillMode[] = ['before', 'during', 'after']
 
 /** `count` different points out of `steps` × three modes, spread by the seed. */
-export function pointsOf(steps: number, count: number, random: () => number): Kill[] {
-  const all = Array.from({ length: steps * modes.length }, (_, i): Kill => ({ at: Math.floor(i / modes.length) + 1, mode: modes[i % modes.length] }))
+export function pointsOf(steps: number, count: number, random: () => number): Step[] {
+  const all = Array.from({ length: steps * modes.length }, (_, i): Step => ({ at: Math.floor(i / modes.length) + 1, mode: modes[i % modes.length] }))
   for (let i = all.length - 1; i > 0; i -= 1) {
     const j = Math.floor(random() * (i + 1))
     ;[all[i], all[j]] = [all[j], all[i]]
@@ -91,7 +93,7 @@ export async function measure(child: Child, prepared: Prepared, work: string): P
 /** A kill at a step that the child counts to, or after a time that the parent waits. */
 export type Point = { kind: KilledAct } & ({ kill: Kill } | { afterMs: number })
 
-export const nameOf = (point: Point) => ('kill' in point ? `${point.kind}, ${point.kill.mode} step ${point.kill.at}` : `${point.kind}, after ${point.afterMs.toFixed(1)} ms`)
+export const nameOf = (point: Point) => ('kill' in point ? `${point.kind}, ${'at' in point.kill ? `${point.kill.mode} step ${point.kill.at}` : 'after its COMMIT'}` : `${point.kind}, after ${point.afterMs.toFixed(1)} ms`)
 
 /** Kills a process in the middle of each act; each next process looks at what the one before left, and is killed in turn. */
 export async function runPoints(file: string, prepared: Prepared, points: readonly Point[], { work, before, told = () => {} }: { work: string; before: Summary; told?: (result: PointResult) => void }): Promise<PointResult[]> {
@@ -138,7 +140,7 @@ export async function countMigrationSteps(file: string, work: string): Promise<{
 }
 
 /** Kills a process in the middle of migrating: a new file, or a filled one whose table is rebuilt. */
-export async function runMigrations(file: string, kills: readonly (Kill & { rebuild: boolean })[], { work, told = () => {} }: { work: string; told?: (result: PointResult) => void }): Promise<PointResult[]> {
+export async function runMigrations(file: string, kills: readonly (Step & { rebuild: boolean })[], { work, told = () => {} }: { work: string; told?: (result: PointResult) => void }): Promise<PointResult[]> {
   const results: PointResult[] = []
   const filled = join(work, 'filled')
   mkdirSync(filled, { recursive: true })

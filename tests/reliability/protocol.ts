@@ -1,10 +1,7 @@
 export type KillMode = 'before' | 'during' | 'after'
 
-/** When the child is to die: at this step since it was armed, counted from 1. */
-export interface Kill {
-  at: number
-  mode: KillMode
-}
+/** When the child is to die: at this step since it was armed, counted from 1; or right after the COMMIT of the transaction that ran a statement with this text. */
+export type Kill = { at: number; mode: KillMode } | { committed: string }
 
 /** What the child is asked; each with a number that its answer bears. */
 export type Asked = { id: number } & Ask
