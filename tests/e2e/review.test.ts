@@ -77,6 +77,8 @@ async function grave(at = page): Promise<string[]> {
   const found: string[] = []
   for (const colorScheme of ['light', 'dark'] as const) {
     await at.emulateMedia({ colorScheme, reducedMotion: 'reduce' })
+    // The new colours have to be painted before they are measured.
+    await at.evaluate(() => new Promise((painted) => requestAnimationFrame(() => requestAnimationFrame(painted))))
     await at.evaluate(axe)
     const results = await at.evaluate(async () => {
       const { run } = (window as unknown as { axe: { run(): Promise<{ violations: { id: string; impact: string; nodes: { target: string[]; failureSummary: string }[] }[] }> } }).axe
