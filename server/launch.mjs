@@ -1,7 +1,7 @@
 // `npm start`: builds client and server when their sources changed since the last build, then runs the server in this very process, so that
 // signals reach it. Building happens in child processes: bundling in here would keep its memory for as long as the server runs.
 import { createHash } from 'node:crypto'
-import { existsSync, mkdirSync, readdirSync, readFileSync, writeFileSync } from 'node:fs'
+import { existsSync, readdirSync, readFileSync, writeFileSync } from 'node:fs'
 import { spawn } from 'node:child_process'
 import { join } from 'node:path'
 import { fileURLToPath } from 'node:url'
@@ -32,16 +32,25 @@ const run = (args) =>
     child.on('exit', (code) => (code === 0 ? done() : fail(new Error(`vite ${args.join(' ')} ended with ${code}; see the lines above.`))))
   })
 
-/** Builds what is out of date; says nothing when nothing is. */
-export async function build() {
+/** Builds what is out of date; says nothing when nothing is. The server is there first, and can begin while the client is still being built. */
+async function build() {
   const now = stamp()
-  if (existsSync(stampFile) && readFileSync(stampFile, 'utf8') === now) return false
+  if (existsSync(stampFile) && readFileSync(stampFile, 'utf8') === now) return { client: Promise.resolve() }
   console.error('Building Detent …')
-  await Promise.all([run(['build', '--logLevel', 'error']), run(['build', '--mode', 'server', '--logLevel', 'error'])])
-  mkdirSync(join(root, '.build'), { recursive: true })
-  writeFileSync(stampFile, now)
-  return true
+  const client = run(['build', '--logLevel', 'error'])
+  const server = run(['build', '--mode', 'server', '--logLevel', 'error'])
+  const both = Promise.all([client, server]).then(() => writeFileSync(stampFile, now))
+  both.catch(() => {})
+  await server
+  return { client: both }
 }
 
-await build()
-if (!process.argv.includes('--build-only')) await import('../.build/server/main.js')
+const failed = (error) => {
+  console.error(error.message)
+  process.exit(1)
+}
+
+const { client } = await build().catch(failed)
+client.catch(failed)
+if (process.argv.includes('--build-only')) await client
+else await (await import('../.build/server/main.js')).serve(client)

@@ -32,7 +32,8 @@ function sessionSecret(dataDir: string): string {
   return readFileSync(file, 'utf8')
 }
 
-async function start() {
+/** Runs the server; it takes requests once `clientBuilt` is there. */
+async function start(clientBuilt: Promise<unknown>) {
   const config = readConfig(process.env)
   mkdirSync(config.dataDir, { recursive: true, mode: 0o700 })
   const places = placesOf(config)
@@ -54,6 +55,7 @@ async function start() {
   wake = () => sender.wake()
   const backups = startDailyBackups(services, log)
   const app = buildApp({ services, log, sessionSecret: sessionSecret(config.dataDir), client: serveClient(join(here, '../client')) })
+  await clientBuilt
   const server = createServer(app)
   server.listen(config.port, config.host, () => {
     const address = server.address()
@@ -77,7 +79,8 @@ async function start() {
   process.on('SIGINT', () => void close())
 }
 
-start().catch((error: Error) => {
-  process.stderr.write(`Detent could not start: ${error.message}\n`)
-  process.exit(1)
-})
+export const serve = (clientBuilt: Promise<unknown> = Promise.resolve()): Promise<void> =>
+  start(clientBuilt).catch((error: Error) => {
+    process.stderr.write(`Detent could not start: ${error.message}\n`)
+    process.exit(1)
+  })

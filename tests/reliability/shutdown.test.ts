@@ -25,7 +25,7 @@ interface Running {
 
 /** The program itself, as `npm start` runs it once it is built. */
 function start(folder = data): Promise<Running> {
-  const child = spawn(process.execPath, [bundle.file('main')], { env: env(folder), stdio: ['ignore', 'pipe', 'pipe'] })
+  const child = spawn(process.execPath, ['--input-type=module', '--eval', `(await import(${JSON.stringify(bundle.file('main'))})).serve()`], { env: env(folder), stdio: ['ignore', 'pipe', 'pipe'] })
   running.push(child)
   let output = ''
   const ended = new Promise<{ code: number | null; signal: NodeJS.Signals | null }>((done) => child.on('exit', (code, signal) => done({ code, signal })))

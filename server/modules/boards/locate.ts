@@ -22,10 +22,12 @@ export async function onBoard(em: EntityManager, params: Record<string, string>)
 }
 
 /** @throws DomainError invalid-request naming the field */
-export async function jointNamed(em: EntityManager, machine: Machine, key: string, pointer: string): Promise<Joint> {
-  const joint = await em.findOne(Joint, { machine, key, retiredAt: null })
-  if (!joint) throw new DomainError('invalid-request', `${machine.name} has no joint "${key}". Nothing was recorded; the machine's page lists its joints.`, { fields: [{ pointer, detail: `is no joint of ${machine.name}` }] })
-  return joint
+export const jointNamed = async (em: EntityManager, machine: Machine, key: string, pointer: string): Promise<Joint> =>
+  (await em.findOne(Joint, { machine, key, retiredAt: null })) ?? noJoint(machine, key, pointer)
+
+/** @throws DomainError invalid-request naming the field, always */
+export function noJoint(machine: Machine, key: string, pointer: string): never {
+  throw new DomainError('invalid-request', `${machine.name} has no joint "${key}". Nothing was recorded; the machine's page lists its joints.`, { fields: [{ pointer, detail: `is no joint of ${machine.name}` }] })
 }
 
 /** @throws DomainError invalid-request naming the field */

@@ -1,9 +1,10 @@
 import type { EntityManager } from '@mikro-orm/core'
 import { DomainError, type FieldProblem } from '../../http/errors.ts'
+import { Joint } from '../machines/joint.entity.ts'
 import type { Machine } from '../machines/machine.entity.ts'
 import type { Release } from '../releases/release.entity.ts'
 import { serialKey, type Board } from './board.entity.ts'
-import { jointNamed } from './locate.ts'
+import { noJoint } from './locate.ts'
 import { recordFlash } from './record-flash.ts'
 import type { Speaker } from './speaker.ts'
 
@@ -35,7 +36,8 @@ export function doubled(pairs: readonly Pairing[]): FieldProblem[] {
 export async function recordMachine(em: EntityManager, { machine, release, boards }: { machine: Machine; release: Release; boards: readonly Pairing[] }, speaker: Speaker): Promise<Board[]> {
   const problems = doubled(boards)
   if (problems.length > 0) throw new DomainError('invalid-request', `${problems.length === 1 ? 'One board or joint stands' : `${problems.length} boards or joints stand`} twice. Nothing was recorded; correct what is named.`, { fields: problems })
+  const joints = new Map((await em.find(Joint, { machine, retiredAt: null })).map((j) => [j.key, j]))
   const recorded: Board[] = []
-  for (const [i, { joint, serial }] of boards.entries()) recorded.push(await recordFlash(em, { machine, joint: await jointNamed(em, machine, joint, `/boards/${i}/joint`), release, serial, readBack: null }, speaker))
+  for (const [i, { joint, serial }] of boards.entries()) recorded.push(await recordFlash(em, { machine, joint: joints.get(joint) ?? noJoint(machine, joint, `/boards/${i}/joint`), release, serial, readBack: null }, speaker))
   return recorded
 }

@@ -9,6 +9,11 @@ const plain = <T>(value: T): T => JSON.parse(JSON.stringify(value)) as T
 
 export const genesisHash = '0'.repeat(64)
 
+type Place = Pick<LedgerEntry, 'sequence' | 'hash'>
+
+/** The chain's end as a transaction left it, by its context: nothing else appends while it runs. */
+const ends = new WeakMap<object, Place>()
+
 type Content = Pick<LedgerEntry, 'sequence' | 'at' | 'personId' | 'personName' | 'act' | 'machineKey' | 'subject' | 'details' | 'previousHash'>
 
 /** The part of an entry that its hash covers. */
@@ -36,10 +41,11 @@ export async function appendEntry(
   em: EntityManager,
   entry: { at: Date; person: Pick<Person, 'id' | 'name'> | null; act: string; subject?: LedgerSubject; details?: Record<string, unknown> },
 ): Promise<{ sequence: number; hash: string }> {
-  if (!em.isInTransaction()) throw new Error('ledger entries are appended inside the transaction of their act')
+  const transaction = em.getTransactionContext<object>()
+  if (!transaction) throw new Error('ledger entries are appended inside the transaction of their act')
   await em.flush()
   // Past the unit of work: an entry that nothing will alter needs no watching, and a transaction may append many.
-  const [last] = await em.find(LedgerEntry, {}, { orderBy: { sequence: 'desc' }, limit: 1, disableIdentityMap: true })
+  const last: Place | undefined = ends.get(transaction) ?? (await em.find(LedgerEntry, {}, { orderBy: { sequence: 'desc' }, limit: 1, disableIdentityMap: true }))[0]
   const subject = plain(entry.subject ?? {})
   const fields = {
     sequence: (last?.sequence ?? 0) + 1,
@@ -54,5 +60,7 @@ export async function appendEntry(
   }
   const hash = entryHash(fields)
   await em.insert(LedgerEntry, { ...fields, hash })
-  return { sequence: fields.sequence, hash }
+  const place = { sequence: fields.sequence, hash }
+  ends.set(transaction, place)
+  return place
 }

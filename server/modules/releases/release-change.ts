@@ -28,7 +28,7 @@ import { proposeVersion, stepOf, type Resolved } from './propose-version.ts'
 import { ReleaseJoint } from './release-joint.entity.ts'
 import { ReleaseKit } from './release-kit.entity.ts'
 import { Release } from './release.entity.ts'
-import { revisionContent, revisionFor, revisionNumbers } from './revisions.ts'
+import { revisionNumbers, revisionsFor } from './revisions.ts'
 
 export interface ReleaseRequest {
   contentHash: string
@@ -98,9 +98,12 @@ export async function prepare({ files, keys }: Pick<Services, 'files' | 'keys'>,
 
 async function writeJoints(em: EntityManager, release: Release, { content, joints: prepared, revisions }: Prepared, now: Date) {
   const joints = await keepIdentities(em, release.machine, content.set, now)
+  // New joints get their ids, by which their revisions are looked for.
+  await em.flush()
+  const made = await revisionsFor(em, joints, content, now)
   for (const p of prepared) {
     const joint = joints.get(p.joint)!
-    const revision = await revisionFor(em, joint, revisionContent(content, p.joint), now)
+    const revision = made.get(p.joint)!
     if (revision.number !== revisions.get(p.joint)) throw moved()
     em.create(ReleaseJoint, { release, joint, revision, image: p.encoded.image, imageSha256: p.sha256 })
   }

@@ -16,24 +16,37 @@ export function revisionContent(content: Content, joint: string): RevisionConten
 
 const hashOf = (content: RevisionContent) => sha256(canonicalize(content)!)
 
-const lastOf = async (em: EntityManager, joint: Joint): Promise<Revision | undefined> => (await em.find(Revision, { joint }, { orderBy: { number: 'desc' }, limit: 1 }))[0]
+/** The last revision of each of these joints that has one, by the joint's id. */
+async function lastOf(em: EntityManager, joints: readonly Joint[]): Promise<Map<number, Revision>> {
+  const ids = joints.map((j) => j.id)
+  // Numbers and ids of a joint's revisions grow together. Read with the rest of the transaction, where there is one.
+  const last = (await em.getConnection().execute(`select max(id) as id from revision where joint_id in (${ids.map(() => '?').join(', ')}) group by joint_id`, ids, 'all', em.getTransactionContext())) as { id: number }[]
+  return new Map((await em.find(Revision, { id: { $in: last.map((r) => r.id) } })).map((r) => [r.joint.id, r]))
+}
 
 /** The number that each joint's revision has, or will have, in a release of this content: a joint that is as it was keeps its revision. */
 export async function revisionNumbers(em: EntityManager, machine: Machine, content: Content): Promise<Map<string, number>> {
   const known = new Map((await em.find(Joint, { machine })).map((j) => [j.key, j]))
+  const lasts = await lastOf(em, [...known.values()])
   const numbers = new Map<string, number>()
   for (const key of content.joints.keys()) {
     const joint = known.get(key)
-    const last = joint && (await lastOf(em, joint))
+    const last = joint && lasts.get(joint.id)
     numbers.set(key, last?.contentHash === hashOf(revisionContent(content, key)) ? last.number : (last?.number ?? 0) + 1)
   }
   return numbers
 }
 
-/** The revision itself: the last one when nothing of the joint altered, else a new one. */
-export async function revisionFor(em: EntityManager, joint: Joint, content: RevisionContent, now: Date): Promise<Revision> {
-  const contentHash = hashOf(content)
-  const last = await lastOf(em, joint)
-  if (last?.contentHash === contentHash) return last
-  return em.create(Revision, { joint, number: (last?.number ?? 0) + 1, content, contentHash, createdAt: now })
+/** The revisions themselves, by joint: the last one of a joint of which nothing altered, else a new one. */
+export async function revisionsFor(em: EntityManager, joints: ReadonlyMap<string, Joint>, content: Content, now: Date): Promise<Map<string, Revision>> {
+  const lasts = await lastOf(em, [...joints.values()])
+  return new Map(
+    [...content.joints.keys()].map((key) => {
+      const joint = joints.get(key)!
+      const frozen = revisionContent(content, key)
+      const contentHash = hashOf(frozen)
+      const last = lasts.get(joint.id)
+      return [key, last?.contentHash === contentHash ? last : em.create(Revision, { joint, number: (last?.number ?? 0) + 1, content: frozen, contentHash, createdAt: now })]
+    }),
+  )
 }
