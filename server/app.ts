@@ -25,10 +25,11 @@ import { peopleRoutes, publicPeopleRoutes } from './modules/people/routes.ts'
 import { policyRoutes } from './modules/policy/routes.ts'
 import { releaseRoutes } from './modules/releases/routes.ts'
 import { reviewRoutes } from './modules/reviews/routes.ts'
+import { searchRoutes } from './modules/search/routes.ts'
 
 /** Every route of the API that a signed-in person reaches; tests walk it. */
 export const routeTable: readonly RouteSpec[] = [
-  ...peopleRoutes, ...machineRoutes, ...firmwareRoutes, ...policyRoutes, ...changeRoutes, ...checkRoutes, ...reviewRoutes, ...commentRoutes, ...releaseRoutes, ...boardRoutes, ...benchKeyRoutes, ...keyRoutes, ...comparisonRoutes, ...ledgerRoutes, ...backupRoutes, ...mailRoutes,
+  ...peopleRoutes, ...machineRoutes, ...firmwareRoutes, ...policyRoutes, ...changeRoutes, ...checkRoutes, ...reviewRoutes, ...commentRoutes, ...releaseRoutes, ...boardRoutes, ...benchKeyRoutes, ...keyRoutes, ...comparisonRoutes, ...ledgerRoutes, ...searchRoutes, ...backupRoutes, ...mailRoutes,
 ]
 
 const contentSecurity = (secure: boolean) =>

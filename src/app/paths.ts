@@ -14,6 +14,7 @@ export const paths = {
     const query = new URLSearchParams(Object.entries(filter).filter(([, v]) => v)).toString()
     return query ? `/ledger?${query}` : '/ledger'
   },
+  ledgerEntry: (entry: number) => `/ledger?entry=${entry}`,
   policy: (machine?: string) => (machine ? `/policy?machine=${part(machine)}` : '/policy'),
   machines: () => '/machines',
   machine: (machine: string) => `/machines/${part(machine)}`,

@@ -1,9 +1,10 @@
 import { useQuery } from '@tanstack/react-query'
 import { Suspense, useEffect, useRef } from 'react'
-import { Outlet, redirect, ScrollRestoration, useLocation, useNavigate, useNavigation } from 'react-router'
+import { Outlet, redirect, ScrollRestoration, useLocation, useNavigation } from 'react-router'
 import type { LoaderFunctionArgs } from 'react-router'
 import { SignInAgain } from '../features/people/components/sign-in-again.tsx'
 import { useSignOut } from '../features/people/mutations.ts'
+import { SearchField } from '../features/search/components/search-field.tsx'
 import { machinesQuery } from '../features/machines/queries.ts'
 import { ProblemPanel } from '../components/problem/problem-panel.tsx'
 import { TopBar } from '../components/ui/top-bar.tsx'
@@ -35,7 +36,6 @@ export async function signedInLoader({ request }: LoaderFunctionArgs) {
 export function SignedInLayout() {
   const me = useMe()
   const { pathname } = useLocation()
-  const navigate = useNavigate()
   const busy = useNavigation().state === 'loading'
   const machines = useQuery(machinesQuery)
   const signOut = useSignOut()
@@ -58,7 +58,7 @@ export function SignedInLayout() {
         places={placesFor(me)}
         machines={machineItems(machines.data ?? [], machineKey)}
         machine={machine?.name ?? 'Machines'}
-        onSearch={(text) => text && void navigate(paths.search(text))}
+        search={(className) => <SearchField className={className} />}
         person={{ name: me.name, roles: rolesInWords(me.roles) }}
         personItems={personItems({ theme, mayKeepPeople: holds(me, 'keep people'), mayKeepMail: holds(me, 'keep mail'), mayKeepBackups: holds(me, 'keep backups'), signOut: () => signOut.mutate() })}
       />

@@ -10,7 +10,7 @@ import { CheckpointsDialog } from '../features/ledger/components/checkpoints-dia
 import { EntryDialog } from '../features/ledger/components/entry-dialog.tsx'
 import { LedgerFilterFields } from '../features/ledger/components/ledger-filter.tsx'
 import { LedgerTable } from '../features/ledger/components/ledger-table.tsx'
-import { ledgerQuery } from '../features/ledger/queries.ts'
+import { entryQuery, ledgerQuery } from '../features/ledger/queries.ts'
 import { machinesQuery } from '../features/machines/queries.ts'
 import { peopleQuery } from '../features/people/queries.ts'
 import { count } from '../lib/format.ts'
@@ -33,7 +33,10 @@ export function Component() {
   const people = useQuery(peopleQuery).data?.people ?? []
   const pages = ledger.data?.pages ?? []
   const entries = pages.flatMap((p) => p.entries)
-  const entry = entries.find((e) => String(e.sequence) === chosen)
+  const loaded = entries.find((e) => String(e.sequence) === chosen)
+  // One that was led to from elsewhere may lie further back than what is shown.
+  const sought = useQuery(entryQuery(loaded ? '' : chosen))
+  const entry = loaded ?? sought.data ?? undefined
   const machineName = (key: string) => machines.find((m) => m.key === key)?.name ?? key
   return (
     <>
@@ -76,6 +79,7 @@ export function Component() {
         </>
       )}
       {checkpoints && <CheckpointsDialog onClose={() => setCheckpoints('')} />}
+      {!entry && sought.isError && <ProblemPanel className="mt-2" problem={sought.error} />}
       {entry && <EntryDialog entry={entry} onClose={() => setChosen('')} />}
     </>
   )

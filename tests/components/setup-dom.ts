@@ -12,3 +12,11 @@ if (typeof HTMLDialogElement.prototype.showModal !== 'function') {
     this.removeAttribute('open')
   }
 }
+
+// jsdom lays nothing out and scrolls nothing: nothing to observe.
+window.scrollTo = () => {}
+globalThis.ResizeObserver ??= class {
+  observe() {}
+  unobserve() {}
+  disconnect() {}
+}

@@ -110,3 +110,28 @@ it('says what to do when there are no rows', () => {
   render(<Table label="joints" rows={[]} columns={COLUMNS} rowKey={(j: Joint) => j.name} empty="No joints yet. Add one to a bus." />)
   expect(screen.getByText('No joints yet. Add one to a bus.')).toBeTruthy()
 })
+
+describe('a long table', () => {
+  const many: Joint[] = Array.from({ length: 2000 }, (_, i) => ({ name: `joint ${i + 1}`, gain: i }))
+  const show = () => render(<Table label="joints" rows={many} columns={COLUMNS} rowKey={(j) => j.name} />)
+
+  it('keeps the rows near the window in the page, and tells of all', () => {
+    show()
+    const table = screen.getByRole('table', { name: 'joints' })
+    expect(table.getAttribute('aria-rowcount')).toBe('2001')
+    const rows = within(table).getAllByRole('row').filter((r) => r.hasAttribute('aria-rowindex'))
+    expect(rows.length).toBeGreaterThan(10)
+    expect(rows.length).toBeLessThan(120)
+    expect([rows[0].getAttribute('aria-rowindex'), rows[0].textContent]).toEqual(['2', 'joint 10'])
+    // the room of the others is kept, so that the page is as long as the table
+    const gap = table.querySelector<HTMLElement>('.table-gap td')!
+    expect(Number.parseFloat(gap.style.height)).toBe((2000 - rows.length) * 33)
+  })
+
+  it('sorts all rows, not only those in the page', () => {
+    show()
+    fireEvent.click(screen.getByRole('button', { name: /Gain/ }))
+    fireEvent.click(screen.getByRole('button', { name: /Gain/ }))
+    expect(screen.getAllByRole('row').find((r) => r.getAttribute('aria-rowindex') === '2')!.textContent).toContain('joint 2000')
+  })
+})

@@ -28,7 +28,7 @@ export const Change = defineEntity({
     /** counts the rounds of signing; a signature of an earlier round is void */
     round: p.integer().default(0),
     /** the hash that this round's signatures bind to, while submitted or approved */
-    contentHash: p.string().length(64).nullable(),
+    contentHash: p.string().length(64).nullable().index(),
     createdAt: p.datetime(),
     alteredAt: p.datetime(),
   },

@@ -13,7 +13,7 @@ export const ReleaseJoint = defineEntity({
     joint: () => p.manyToOne(Joint),
     revision: () => p.manyToOne(Revision),
     image: p.uint8array().lazy(true, false),
-    imageSha256: p.string().length(64),
+    imageSha256: p.string().length(64).index(),
   },
 })
 export type ReleaseJoint = InferEntity<typeof ReleaseJoint>

@@ -19,7 +19,7 @@ export const Release = defineEntity({
     reason: p.text(),
     set: p.json<MachineSet>(),
     /** what the signatures bind to */
-    contentHash: p.string().length(64),
+    contentHash: p.string().length(64).index(),
     /** the content itself in RFC 8785 form, so that the hash can be computed again by anyone */
     content: p.text().lazy(true, false),
     proposedStep: p.string().$type<VersionStep>(),

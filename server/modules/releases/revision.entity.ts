@@ -11,7 +11,7 @@ export const Revision = defineEntity({
     joint: () => p.manyToOne(Joint),
     number: p.integer(),
     content: p.json<RevisionContent>(),
-    contentHash: p.string().length(64),
+    contentHash: p.string().length(64).index(),
     createdAt: p.datetime(),
   },
 })

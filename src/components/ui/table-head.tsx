@@ -2,17 +2,19 @@ import type { Column, Sort } from './table-column.ts'
 
 export interface TableHeadProps<Row> {
   columns: readonly Column<Row>[]
+  /** px, of a long table whose columns must not move */
+  widths?: readonly number[] | null
   sort: Sort | null
   onSort: (sort: Sort | null) => void
 }
 
 /** Column headings; a sortable one is a button: up, down, as it came. */
-export function TableHead<Row>({ columns, sort, onSort }: TableHeadProps<Row>) {
+export function TableHead<Row>({ columns, widths, sort, onSort }: TableHeadProps<Row>) {
   const next = (key: string): Sort | null => (sort?.key !== key ? { key, descending: false } : sort.descending ? null : { key, descending: true })
   return (
     <thead>
       <tr>
-        {columns.map((c) => {
+        {columns.map((c, i) => {
           const sorted = sort?.key === c.key ? (sort.descending ? 'descending' : 'ascending') : undefined
           const words = (
             <>
@@ -21,7 +23,7 @@ export function TableHead<Row>({ columns, sort, onSort }: TableHeadProps<Row>) {
             </>
           )
           return (
-            <th key={c.key} scope="col" className={c.decimal || c.align === 'end' ? 'end' : ''} style={{ width: c.width }} aria-sort={sorted}>
+            <th key={c.key} scope="col" className={c.decimal || c.align === 'end' ? 'end' : ''} style={{ width: widths?.[i] ?? c.width }} aria-sort={sorted}>
               {c.sortBy ? (
                 <button type="button" className="sort" onClick={() => onSort(next(c.key))}>
                   <span>{words}</span>

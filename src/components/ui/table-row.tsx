@@ -12,6 +12,8 @@ export interface TableRowProps<Row> {
   chosen: boolean
   inTabOrder: boolean
   onFocus: () => void
+  /** of a long table: the row's place in it, and who measures its height */
+  inWindow?: { index: number; ref: (row: HTMLTableRowElement | null) => void }
 }
 
 export function TableRow<Row>(props: TableRowProps<Row>) {
@@ -24,7 +26,7 @@ function LinkedRow<Row>(props: TableRowProps<Row> & { to: string }) {
   return <PlainRow {...props} open={() => navigate(props.to)} />
 }
 
-function PlainRow<Row>({ row, columns, places, to, open, chosen, inTabOrder, onFocus }: TableRowProps<Row> & { open?: () => void }) {
+function PlainRow<Row>({ row, columns, places, to, open, chosen, inTabOrder, onFocus, inWindow }: TableRowProps<Row> & { open?: () => void }) {
   const tabIndex = inTabOrder ? 0 : -1
   // A press anywhere in the row opens it, but not one on a link or control of its own, nor a selection of text.
   const onClick = (event: MouseEvent<HTMLTableRowElement>) => {
@@ -33,6 +35,9 @@ function PlainRow<Row>({ row, columns, places, to, open, chosen, inTabOrder, onF
   }
   return (
     <tr
+      ref={inWindow?.ref}
+      data-index={inWindow?.index}
+      aria-rowindex={inWindow && inWindow.index + 2}
       className={[chosen ? 'chosen' : '', open ? 'opens' : ''].join(' ')}
       aria-selected={chosen || undefined}
       onFocus={onFocus}

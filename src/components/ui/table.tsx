@@ -1,8 +1,9 @@
-import { useState } from 'react'
+import { useRef, useState } from 'react'
 import type { KeyboardEvent, ReactNode } from 'react'
 import type { Column, Sort } from './table-column.ts'
 import { TableHead } from './table-head.tsx'
 import { TableRow } from './table-row.tsx'
+import { useRowWindow } from './use-row-window.ts'
 
 export type { Column, Sort } from './table-column.ts'
 
@@ -28,7 +29,8 @@ export interface TableProps<Row> {
 }
 
 /**
- * Rows of 32 px under a head that stays. One row at a time is in the tab order; ↑ ↓ Home End move between rows, Enter opens.
+ * Rows of 32 px under a head that stays. One row at a time is in the tab order; ↑ ↓ Home End move between rows, Enter opens. Of a long
+ * table only the rows near the window are in the page; a screen reader is told of all.
  */
 export function Table<Row>({ label, rows, columns, rowKey, rowTo, onOpen, chosen, sort: given, onSort, empty, dense = false, className = '' }: TableProps<Row>) {
   const [own, setOwn] = useState<Sort | null>(null)
@@ -37,14 +39,29 @@ export function Table<Row>({ label, rows, columns, rowKey, rowTo, onOpen, chosen
   const setSort = onSort ?? setOwn
   const sorted = sortRows(rows, columns, sort)
   const places = new Map(columns.filter((c) => c.decimal).map((c) => [c.key, decimalPlaces(rows, c)]))
-  const tabKey = sorted.some((r) => rowKey(r) === at) ? at : sorted.length > 0 ? rowKey(sorted[0]) : null
+
+  const frame = useRef<HTMLDivElement>(null)
+  const view = useRowWindow(frame, { count: sorted.length, columns: columns.length, rowHeight: dense ? 27 : 33 })
+  const shown = view.shown ?? sorted.map((_, index) => ({ index, ref: undefined }))
+
+  const inPage = shown.map(({ index }) => rowKey(sorted[index]))
+  const tabKey = at !== null && inPage.includes(at) ? at : (inPage[0] ?? null)
+
+  const onKeyDown = (event: KeyboardEvent<HTMLTableSectionElement>) => {
+    const end = event.key === 'Home' ? 0 : event.key === 'End' ? sorted.length - 1 : null
+    if (view.shown === null || end === null || isEdited(event.target as HTMLElement)) return moveByRow(event)
+    event.preventDefault()
+    view.goTo(end)
+  }
 
   return (
-    <div className={`table-frame ${className}`}>
-      <table className={dense ? 'table table-dense' : 'table'} aria-label={label}>
-        <TableHead columns={columns} sort={sort} onSort={setSort} />
-        <tbody onKeyDown={moveByRow}>
-          {sorted.map((row) => {
+    <div ref={frame} className={`table-frame ${className}`}>
+      <table className={dense ? 'table table-dense' : 'table'} aria-label={label} aria-rowcount={view.shown ? sorted.length + 1 : undefined} style={view.widths ? { tableLayout: 'fixed' } : undefined}>
+        <TableHead columns={columns} widths={view.widths} sort={sort} onSort={setSort} />
+        <tbody onKeyDown={onKeyDown}>
+          {view.before > 0 && <Gap height={view.before} columns={columns.length} />}
+          {shown.map(({ index, ref }) => {
+            const row = sorted[index]
             const key = rowKey(row)
             return (
               <TableRow
@@ -57,9 +74,11 @@ export function Table<Row>({ label, rows, columns, rowKey, rowTo, onOpen, chosen
                 chosen={chosen?.(row) ?? false}
                 inTabOrder={key === tabKey}
                 onFocus={() => setAt(key)}
+                inWindow={ref && { index, ref }}
               />
             )
           })}
+          {view.after > 0 && <Gap height={view.after} columns={columns.length} />}
           {sorted.length === 0 && (
             <tr>
               <td colSpan={columns.length} className="py-4 text-center text-ink-2">
@@ -73,10 +92,19 @@ export function Table<Row>({ label, rows, columns, rowKey, rowTo, onOpen, chosen
   )
 }
 
+/** The room of rows that are not in the page. */
+const Gap = ({ height, columns }: { height: number; columns: number }) => (
+  <tr aria-hidden="true" className="table-gap">
+    <td colSpan={columns} style={{ height }} />
+  </tr>
+)
+
+const isEdited = (target: HTMLElement) => target.closest('input, textarea, select, [role="slider"], [role="menu"]') !== null
+
 /** ↑ ↓ Home End between the rows' handles: the link of the first cell, or the row itself. Not while a field in the row is edited. */
 function moveByRow(event: KeyboardEvent<HTMLTableSectionElement>) {
   const target = event.target as HTMLElement
-  if (target.closest('input, textarea, select, [role="slider"], [role="menu"]')) return
+  if (isEdited(target)) return
   const handles = [...event.currentTarget.querySelectorAll<HTMLElement>('[data-row-handle]')]
   const here = handles.findIndex((h) => h === target || h.closest('tr') === target.closest('tr'))
   const next =

@@ -1,10 +1,10 @@
+import type { ReactNode } from 'react'
 import { Link, useLocation } from 'react-router'
 import { Chevron } from './chevron.tsx'
 import { Mark } from './mark.tsx'
 import { Menu } from './menu.tsx'
 import type { MenuItem } from './menu.tsx'
 import { PlaceBall } from './place-ball.tsx'
-import { SearchBox } from './search-box.tsx'
 
 export interface Place {
   to: string
@@ -24,13 +24,14 @@ export interface TopBarProps {
   machines: readonly MenuItem[]
   /** Name of the machine shown; without it "All machines". */
   machine?: string
-  onSearch: (text: string) => void
+  /** The search field, once for each of the two places it stands in by width. */
+  search: (className: string) => ReactNode
   person?: { name: string; roles: string }
   personItems: readonly MenuItem[]
 }
 
 /** The slim bar above every page. Below 1024 px the places fold into a menu and the search takes a line of its own. */
-export function TopBar({ home, places, machines, machine, onSearch, person, personItems }: TopBarProps) {
+export function TopBar({ home, places, machines, machine, search, person, personItems }: TopBarProps) {
   const { pathname } = useLocation()
   const here = places.find((p) => isHere(p, pathname))
   return (
@@ -69,7 +70,7 @@ export function TopBar({ home, places, machines, machine, onSearch, person, pers
         </div>
         <span className="flex-1" />
         <div className="bar-wide">
-          <SearchBox onSearch={onSearch} className="w-[208px]" />
+          {search('w-[224px]')}
         </div>
         {person && (
           <Menu label="person" align="end" buttonClass="border-0 bg-transparent p-0 text-right text-13 leading-4" items={personItems}>
@@ -85,7 +86,7 @@ export function TopBar({ home, places, machines, machine, onSearch, person, pers
       </div>
       <div className="bar-narrow">
         <div className="wrap pb-2 lg:hidden">
-          <SearchBox onSearch={onSearch} className="w-full" />
+          {search('w-full')}
         </div>
       </div>
     </header>

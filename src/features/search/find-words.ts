@@ -1,0 +1,32 @@
+import type { FindKind, FindPlace } from '../../../shared/contract/search.ts'
+import { paths } from '../../app/paths.ts'
+
+export const kindWords: Record<FindKind, string> = {
+  machine: 'Machines', joint: 'Joints', family: 'Families', bus: 'Buses', value: 'Values', register: 'Registers', board: 'Boards', change: 'Changes', release: 'Releases', firmware: 'Firmware', hash: 'Hashes', person: 'People',
+}
+
+/** The address that a find leads to. A draft is opened where it is edited, every other change where it is read. */
+export function pathOf(at: FindPlace): string {
+  switch (at.page) {
+    case 'machine':
+      return paths.machine(at.machine)
+    case 'joint':
+      return paths.joint(at.machine, at.joint)
+    case 'family':
+      return paths.family(at.machine, at.family)
+    case 'bus':
+      return paths.bus(at.machine, at.bus)
+    case 'board':
+      return paths.board(at.serial)
+    case 'change':
+      return at.draft ? paths.change(at.change) : paths.changeReview(at.change)
+    case 'release':
+      return paths.release(at.machine, at.version)
+    case 'firmware':
+      return paths.firmwareVersion(at.line, at.version)
+    case 'ledger':
+      return paths.ledgerEntry(at.entry)
+    case 'person':
+      return paths.person(at.person)
+  }
+}
