@@ -70,8 +70,21 @@ export type RawResult = { kind: 'raw'; raw: number } | { kind: 'out-of-range' }
  */
 export function orderOf(codec: NumberCodec, value: Rational): bigint {
   if (codec.encoding.kind === 'float') return BigInt(f32Key(roundToF32(value)))
-  const raw = roundHalfEven(divide(codec.offset.n === 0n ? value : subtract(value, codec.offset), codec.step))
-  return codec.step.n < 0n ? -raw : raw
+  if (codec.offset === ZERO) return orderOfPlain(codec, value)
+  return signedOrder(codec, roundHalfEven(divide(subtract(value, codec.offset), codec.step)))
+}
+
+const signedOrder = (codec: NumberCodec, raw: bigint): bigint => (codec.step.n < 0n ? -raw : raw)
+
+/** Orders already worked out: a map has the same few bounds and defaults in the same few encodings ten thousand times. */
+const ORDERS = new WeakMap<NumberCodec, WeakMap<Rational, bigint>>()
+
+function orderOfPlain(codec: NumberCodec, value: Rational): bigint {
+  let known = ORDERS.get(codec)
+  if (!known) ORDERS.set(codec, (known = new WeakMap()))
+  let order = known.get(value)
+  if (order === undefined) known.set(value, (order = signedOrder(codec, roundHalfEven(divide(value, codec.step)))))
+  return order
 }
 
 /** Largest order of a finite f32. */

@@ -91,7 +91,8 @@ class Reader {
       const start = this.at
       if (this.text[start] !== '"') throw new Refusal(start, 'A key in double quotes is expected here.')
       const key = this.string()
-      if (Object.hasOwn(object, key)) throw new Refusal(start, `The key ${JSON.stringify(key)} stands twice in this object.`)
+      // no value of JSON is undefined: the dearer question is asked of inherited names and doubles alone
+      if (object[key] !== undefined && Object.hasOwn(object, key)) throw new Refusal(start, `The key ${JSON.stringify(key)} stands twice in this object.`)
       this.space()
       if (this.text[this.at] !== ':') throw new Refusal(this.at, 'A colon is expected here.')
       this.at += 1
@@ -134,6 +135,8 @@ class Reader {
   }
 
   private number(): number | string {
+    const whole = this.shortWhole()
+    if (whole >= 0) return whole
     NUMBER.lastIndex = this.at
     const match = NUMBER.exec(this.text)
     if (!match) throw new Refusal(this.at, this.at < this.text.length ? 'This is no JSON value.' : 'The text ends in the middle.')
@@ -142,6 +145,23 @@ class Reader {
     // up to 15 digits without exponent are always held (IEEE 754: 15 significant decimals survive binary64)
     if (match[0].length <= 15 && !/e/i.test(match[0])) return Number(match[0])
     return heldByDouble(match[0]) ? Number(match[0]) : match[0]
+  }
+
+  /** A whole number of up to nine digits, the commonest kind; −1 for anything else, which nothing was read of. */
+  private shortWhole(): number {
+    const { text } = this
+    let end = this.at
+    let value = 0
+    let code = text.charCodeAt(end)
+    while (code >= 48 && code <= 57 && end - this.at < 10) {
+      value = value * 10 + code - 48
+      code = text.charCodeAt((end += 1))
+    }
+    const length = end - this.at
+    const ends = code === 44 || code === 125 || code === 93 || code === 32 || code === 10 || code === 13
+    if (length === 0 || length > 9 || !ends || (length > 1 && text.charCodeAt(this.at) === 48)) return -1
+    this.at = end
+    return value
   }
 
   private string(): string {

@@ -7,7 +7,7 @@ import { readImageLayout } from './read-image-layout.ts'
 import { readParameter } from './read-parameter.ts'
 import { layWords } from './register-map.ts'
 import type { Role } from './roles.ts'
-import { checkRules, RULE_KEYS } from './rules.ts'
+import { checkRules, RULE_KEYS, rulesOf } from './rules.ts'
 import { problemOfValue } from './value-check.ts'
 
 const ROOT_KEYS = new Set<string>([
@@ -123,11 +123,4 @@ function checkRequired(required: unknown, byName: ReadonlyMap<string, Parameter>
   required.forEach((name, k) => {
     if (!byName.has(String(name))) list.add(under('/required', k), 'unknown-parameter', `${shown(name)} is no parameter of this schema.`)
   })
-}
-
-/** The schema's rules with its $defs, so that a $ref in a rule finds its target; null when there are none. */
-function rulesOf(root: Json): Json | null {
-  const rules = Object.fromEntries(RULE_KEYS.filter((key) => root[key] !== undefined).map((key) => [key, root[key]]))
-  if (Object.keys(rules).length === 0) return null
-  return root.$defs === undefined ? rules : { ...rules, $defs: root.$defs }
 }

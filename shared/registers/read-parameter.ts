@@ -14,7 +14,7 @@ const ANNOTATIONS = ['$comment', 'title', 'description', 'default', 'examples', 
 const ASSERTIONS = ['type', 'enum', 'const', ...BOUND_KEYS] as const
 const OWN = ['x-unit', 'x-register', 'x-role', 'x-bound', 'x-per-tick'] as const
 const KEYS = new Set<string>([...ANNOTATIONS, ...ASSERTIONS, ...OWN, '$ref'])
-const NAME = /^[A-Za-z_][A-Za-z0-9_-]{0,63}$/
+const NAME = /^[A-Za-z][A-Za-z0-9_-]{0,63}$/
 
 /** Reads one leaf of the schema; null (and problems) when it cannot stand. */
 export function readParameter(root: Json, name: string, leaf: unknown, mapOrder: ByteOrder, list: ProblemList): Parameter | null {
@@ -147,16 +147,17 @@ function checkRole(role: Role, perTick: boolean, unit: string | null, kind: Para
 const UNBOUNDED: Bounds = { minimum: null, maximum: null, exclusiveMinimum: null, exclusiveMaximum: null, multipleOf: null }
 
 function readBounds(leaf: Json, pointer: string, kind: ParameterKind, codec: NumberCodec | null, list: ProblemList): Bounds {
-  let bounds: { -readonly [key in keyof Bounds]: Bound | null } | null = null
-  for (const key of BOUND_KEYS) {
+  if (!BOUND_KEYS.some((key) => leaf[key] !== undefined)) return UNBOUNDED
+  const bound = (key: (typeof BOUND_KEYS)[number]): Bound | null => {
     const given = leaf[key]
-    if (given === undefined) continue
+    if (given === undefined) return null
     const exact = typeof given === 'number' || typeof given === 'string' ? exactly(given) : null
     if (kind !== 'number' && kind !== 'integer') list.add(under(pointer, key), 'bound-not-allowed', `A ${kind} has no ${key}.`)
     else if (!exact || (key === 'multipleOf' && exact.n <= 0n)) list.add(under(pointer, key), 'not-a-decimal', `${shown(given)} is no number that ${key} can be.`)
-    else (bounds ??= { ...UNBOUNDED })[key] = { text: String(given), exact, order: codec ? orderOf(codec, exact) : null }
+    else return { text: String(given), exact, order: codec ? orderOf(codec, exact) : null }
+    return null
   }
-  if (!bounds) return UNBOUNDED
+  const bounds: Bounds = { minimum: bound('minimum'), maximum: bound('maximum'), exclusiveMinimum: bound('exclusiveMinimum'), exclusiveMaximum: bound('exclusiveMaximum'), multipleOf: bound('multipleOf') }
   const low = bounds.minimum ?? bounds.exclusiveMinimum
   const high = bounds.maximum ?? bounds.exclusiveMaximum
   if (low && high && compare(low.exact, high.exact) > 0) {

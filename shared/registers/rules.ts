@@ -11,17 +11,36 @@ const NODE_KEYS = new Set<string>([...RULE_KEYS, '$ref', '$comment', 'title', 'd
 const LEAF_KEYS = new Set(['const', 'enum', 'minimum', 'maximum', 'exclusiveMinimum', 'exclusiveMaximum', 'multipleOf', 'not', 'allOf', 'anyOf', 'oneOf', '$comment', 'title', 'description'])
 const LISTS = ['allOf', 'anyOf', 'oneOf'] as const
 
-/** Checks the shape of the rules in a schema: only keywords that are evaluated, only parameters that exist. */
-export function checkRules(root: Json, names: ReadonlyMap<string, Parameter>, list: ProblemList): void {
-  for (const key of RULE_KEYS) if (root[key] !== undefined) checkPart(key, root[key], under('', key), names, list)
+/** What a walk over the rules needs: names that exist, the rules with their $defs, and what was checked already. */
+interface Walk {
+  readonly names: ReadonlyMap<string, Parameter>
+  readonly root: Json
+  readonly list: ProblemList
+  readonly seen: Set<unknown>
 }
 
-function checkNode(node: unknown, at: string, names: ReadonlyMap<string, Parameter>, list: ProblemList): void {
-  if (typeof node === 'boolean') return
+/** Checks the shape of the rules in a schema: only keywords that are evaluated, only parameters that exist, references to rules only. */
+export function checkRules(root: Json, names: ReadonlyMap<string, Parameter>, list: ProblemList): void {
+  const walk: Walk = { names, root: withRules(root), list, seen: new Set() }
+  for (const key of RULE_KEYS) if (root[key] !== undefined) checkPart(key, root[key], under('', key), walk)
+}
+
+/** The part of a schema that rules may refer to. */
+const withRules = (root: Json): Json => Object.fromEntries([...RULE_KEYS, '$defs'].filter((key) => root[key] !== undefined).map((key) => [key, root[key]]))
+
+/** The schema's rules with its $defs, so that a $ref in a rule finds its target; null when there are none. */
+export const rulesOf = (root: Json): Json | null => (RULE_KEYS.some((key) => root[key] !== undefined) ? withRules(root) : null)
+
+function checkNode(node: unknown, at: string, walk: Walk): void {
+  const { names, list } = walk
+  // a target that many refer to is walked once
+  if (typeof node === 'boolean' || walk.seen.has(node)) return
+  walk.seen.add(node)
   if (!isObject(node)) return list.add(at, 'not-an-object', 'A rule is an object, true or false.')
   list.onlyKeys(node, at, NODE_KEYS)
-  for (const key of RULE_KEYS) if (node[key] !== undefined) checkPart(key, node[key], under(at, key), names, list)
-  if (node.required !== undefined) checkNames(node.required, under(at, 'required'), names, list)
+  if (typeof node.$ref === 'string') checkReference(node.$ref, under(at, '$ref'), walk)
+  for (const key of RULE_KEYS) if (node[key] !== undefined) checkPart(key, node[key], under(at, key), walk)
+  if (node.required !== undefined) checkNames(node.required, under(at, 'required'), walk)
   if (node.properties === undefined) return
   if (!isObject(node.properties)) return list.add(under(at, 'properties'), 'not-an-object', 'properties must be an object.')
   for (const [name, leaf] of Object.entries(node.properties)) {
@@ -32,18 +51,25 @@ function checkNode(node: unknown, at: string, names: ReadonlyMap<string, Paramet
   }
 }
 
-function checkPart(key: (typeof RULE_KEYS)[number], value: unknown, at: string, names: ReadonlyMap<string, Parameter>, list: ProblemList): void {
+function checkReference(ref: string, at: string, walk: Walk): void {
+  const target = targetOf(walk.root, ref)
+  if (ref === '#' || target === undefined) walk.list.add(at, 'reference-to-no-rule', `${shown(ref)} is no rule; a rule refers to one in $defs.`)
+  else checkNode(target, ref.slice(1), walk)
+}
+
+function checkPart(key: (typeof RULE_KEYS)[number], value: unknown, at: string, walk: Walk): void {
+  const { names, list } = walk
   if (key === 'allOf' || key === 'anyOf' || key === 'oneOf') {
     if (!Array.isArray(value) || value.length === 0) return list.add(at, 'not-a-list', `${key} must be a list of rules.`)
-    value.forEach((node, k) => checkNode(node, under(at, k), names, list))
+    value.forEach((node, k) => checkNode(node, under(at, k), walk))
   } else if (key === 'dependentRequired' || key === 'dependentSchemas') {
     if (!isObject(value)) return list.add(at, 'not-an-object', `${key} must be an object.`)
     for (const [name, part] of Object.entries(value)) {
       if (!names.has(name)) list.add(under(at, name), 'unknown-parameter', `${shown(name)} is no parameter of this schema.`)
-      if (key === 'dependentRequired') checkNames(part, under(at, name), names, list)
-      else checkNode(part, under(at, name), names, list)
+      if (key === 'dependentRequired') checkNames(part, under(at, name), walk)
+      else checkNode(part, under(at, name), walk)
     }
-  } else checkNode(value, at, names, list)
+  } else checkNode(value, at, walk)
 }
 
 function checkLeaf(leaf: unknown, at: string, parameter: Parameter, list: ProblemList): void {
@@ -67,7 +93,7 @@ function checkLeaf(leaf: unknown, at: string, parameter: Parameter, list: Proble
   }
 }
 
-function checkNames(value: unknown, at: string, names: ReadonlyMap<string, Parameter>, list: ProblemList): void {
+function checkNames(value: unknown, at: string, { names, list }: Walk): void {
   if (!Array.isArray(value)) return list.add(at, 'not-a-list', 'A list of parameter names is wanted here.')
   value.forEach((name, k) => {
     if (!names.has(String(name))) list.add(under(at, k), 'unknown-parameter', `${shown(name)} is no parameter of this schema.`)
@@ -79,8 +105,9 @@ export function findRuleProblems(schema: ParameterSchema, values: ParameterValue
   const root = schema.rules
   if (!root) return []
   const problems: ValueProblem[] = []
+  const judging: Judging = { schema, values, known: new Map() }
   const judge = (node: unknown, at: string): void => {
-    if (holds(node, schema, values)) return
+    if (holds(node, judging)) return
     const said = isObject(node) ? (node.description ?? node.title) : undefined
     problems.push({ pointer: '', parameter: '', code: 'rule', message: typeof said === 'string' ? said : `The values break the schema's rule at ${at}.` })
   }
@@ -90,10 +117,26 @@ export function findRuleProblems(schema: ParameterSchema, values: ParameterValue
   return problems
 }
 
-function holds(node: unknown, schema: ParameterSchema, values: ParameterValues): boolean {
+interface Judging {
+  readonly schema: ParameterSchema
+  readonly values: ParameterValues
+  /** Verdicts by rule: references that fan out would else be followed 2^n times. */
+  readonly known: Map<Json, boolean>
+}
+
+function holds(node: unknown, judging: Judging): boolean {
   if (typeof node === 'boolean') return node
   if (!isObject(node)) return true
-  const all = (part: unknown): boolean => holds(part, schema, values)
+  const known = judging.known.get(node)
+  if (known !== undefined) return known
+  const verdict = nodeHolds(node, judging)
+  judging.known.set(node, verdict)
+  return verdict
+}
+
+function nodeHolds(node: Json, judging: Judging): boolean {
+  const { schema, values } = judging
+  const all = (part: unknown): boolean => holds(part, judging)
   const known = (name: unknown): boolean => {
     const parameter = schema.byName.get(String(name))
     return parameter !== undefined && effectiveValue(parameter, values) !== undefined

@@ -54,6 +54,7 @@ const REFUSED: [string, unknown, string, string][] = [
   ['constant without a value', schemaJson({ a: { type: 'number' } }), 'constant-without-value', '/properties/a'],
   ['a text parameter', schemaJson({ a: { type: 'string' } }), 'bad-type', '/properties/a/type'],
   ['a group', schemaJson({ a: { type: 'object', properties: {} } }), 'nested', '/properties/a'],
+  ['a name that objects have for themselves', JSON.parse('{ "x-image": { "length": 4 }, "properties": { "__proto__": { "type": "integer", "default": 0, "x-register": { "address": 0, "encoding": "u8" } } } }'), 'bad-name', '/properties/__proto__'],
   ['a name with a slash', schemaJson({ 'a/b': u8(0) }), 'bad-name', '/properties/a~1b'],
   ['unknown role', schemaJson({ a: role('torque.limit', 'A') }), 'bad-role', '/properties/a/x-role'],
   ['a role twice', schemaJson({ a: role('current.limit', 'A'), b: { ...role('current.limit', 'A'), 'x-register': { address: 4, encoding: 'f32' } } }), 'role-twice', '/properties/b/x-role'],

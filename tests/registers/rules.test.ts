@@ -3,7 +3,8 @@ import fc from 'fast-check'
 import { describe, expect, it } from 'vitest'
 import { findValueProblems } from '../../shared/registers/find-value-problems.ts'
 import type { ParameterValues } from '../../shared/registers/parameter-schema.ts'
-import { aSchema, type Json } from './a-schema.ts'
+import { readParameterSchema } from '../../shared/registers/read-parameter-schema.ts'
+import { aSchema, schemaJson, type Json } from './a-schema.ts'
 
 const properties: Json = {
   a: { type: 'integer', default: 0, minimum: 0, maximum: 9, 'x-register': { address: 0, encoding: 'u8' } },
@@ -64,6 +65,25 @@ describe('rules over several parameters', () => {
     expect(findValueProblems(schema, { on: false, a: 0 })).toEqual([])
     expect(findValueProblems(schema, { on: true, a: 1, b: 5 }).map((p) => p.message)).toEqual(['b stays below 5.', 'The values break the schema\'s rule at /if, /then.'])
     expect(findValueProblems(schema, { on: true, a: 2 })).toEqual([])
+  })
+
+  it('are judged once each, however often a hostile schema refers to them', () => {
+    const twice = (k: number) => ({ allOf: [{ $ref: `#/$defs/d${k}` }, { $ref: `#/$defs/d${k}` }] })
+    const $defs = { ...Object.fromEntries(Array.from({ length: 30 }, (_, k) => [`d${k}`, twice(k + 1)])), d30: { properties: { a: { maximum: 4 } } } }
+    const schema = aSchema(properties, {}, { $defs, allOf: [{ $ref: '#/$defs/d0' }] })
+    expect(findValueProblems(schema, { a: 4 })).toEqual([])
+    expect(findValueProblems(schema, { a: 5 })).toMatchObject([{ code: 'rule' }])
+  })
+
+  it('are checked where a reference leads, and lead to rules alone', () => {
+    const problemsOf = (ref: string, $defs: Json) => {
+      const reading = readParameterSchema(schemaJson(properties, {}, { $defs, allOf: [{ $ref: ref }] }))
+      return reading.kind === 'refused' ? reading.problems : []
+    }
+    expect(problemsOf('#/$defs/r', { r: { properties: { a: { minLength: 3 } } } })).toMatchObject([{ pointer: '/$defs/r/properties/a/minLength', code: 'unknown-key' }])
+    expect(problemsOf('#/$defs/r', { r: { required: ['nobody'] } })).toMatchObject([{ pointer: '/$defs/r/required/0', code: 'unknown-parameter' }])
+    expect(problemsOf('#/properties/a', {})).toMatchObject([{ pointer: '/allOf/0/$ref', code: 'reference-to-no-rule' }])
+    expect(problemsOf('#/$defs/r', { r: { properties: { a: { maximum: 3 } } } })).toEqual([])
   })
 
   it('round their bounds to raw values as the schema’s own are', () => {
