@@ -34,10 +34,10 @@ export function faultOfOrder(last: { address: number; length: number; line: numb
   return fault(`Line ${line} goes back to ${addressText(address)} after ${addressText(last.address)}; addresses must rise.`, { line, address })
 }
 
-/** Lines of a text without their ends; a last empty line is left out. */
+/** Lines of a text without their ends; empty lines at its end are left out. */
 export function linesOf(text: string): string[] {
   const lines = text.split(/\r\n|\n|\r/)
-  if (lines[lines.length - 1] === '') lines.pop()
+  while (lines.length > 0 && lines[lines.length - 1].trim() === '') lines.pop()
   return lines
 }
 

@@ -38,11 +38,12 @@ export function readHexRecord(line: string, number: number): HexRecord | FileFau
 
 const pair = (byte: number): string => byte.toString(16).toUpperCase().padStart(2, '0')
 
-/** A whole Intel HEX file. Addresses must rise, no byte stands twice, one end record closes it and nothing follows. */
+/** A whole Intel HEX file. Addresses must rise, no byte stands twice, at most one start address, one end record closes it and nothing follows. */
 export function readIntelHex(text: string): FileReading {
   const runs: { address: number; bytes: Uint8Array; line: number }[] = []
   let base = 0
   let segmented = false
+  let started = 0
   let last: { address: number; length: number; line: number } | null = null
   const lines = linesOf(text)
   for (const [k, line] of lines.entries()) {
@@ -57,6 +58,10 @@ export function readIntelHex(text: string): FileReading {
     if (type === 2 || type === 4) {
       segmented = type === 2
       base = (data[0] * 256 + data[1]) * (segmented ? 16 : 65536)
+    }
+    if (type === 3 || type === 5) {
+      if (started > 0) return fault(`Line ${number} is a second start address; line ${started} has one.`, { line: number, column: 1 })
+      started = number
     }
     if (type !== 0 || data.length === 0) continue
     const address = base + offset

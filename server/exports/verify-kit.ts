@@ -31,7 +31,9 @@ export function verifyKit(zip: Uint8Array, trustedKey: string | null): KitVerifi
   const { files } = reading
   const missing = OWN.filter((name) => !files.has(name))
   if (missing.length > 0) return refused(`The kit lacks ${missing.join(', ')}.`)
-  const text = (name: string): string => new TextDecoder().decode(files.get(name))
+  const unreadable = OWN.filter((name) => !name.endsWith('.sig') && textOf(files.get(name)!) === null)
+  if (unreadable.length > 0) return refused(`${unreadable.join(', ')} ${unreadable.length === 1 ? 'is' : 'are'} no text in UTF-8.`)
+  const text = (name: string): string => textOf(files.get(name)!)!
   const key = readKey(trustedKey ?? text('public-key.pem'))
   if (!key) return refused(trustedKey === null ? 'public-key.pem is no Ed25519 public key.' : 'The given key is no Ed25519 public key in PEM.')
 
@@ -51,6 +53,15 @@ export function verifyKit(zip: Uint8Array, trustedKey: string | null): KitVerifi
   return { kind: 'verified', keyId: keyId(key), keyTrusted: trustedKey !== null, release }
 }
 
+/** The text, byte for byte: a mark at its start is a part of it, since openssl and sha256sum see it too. */
+function textOf(bytes: Uint8Array): string | null {
+  try {
+    return new TextDecoder('utf-8', { fatal: true, ignoreBOM: true }).decode(bytes)
+  } catch {
+    return null
+  }
+}
+
 function readKey(pem: string): KeyObject | null {
   try {
     const key = createPublicKey(pem)
@@ -68,16 +79,21 @@ interface Statement {
 }
 
 function readStatement(manifest: string, files: ReadonlyMap<string, Uint8Array>, problems: string[]): KitSummary | null {
-  let statement: Statement
+  let statement: Statement | null
   try {
-    statement = JSON.parse(manifest) as Statement
+    statement = JSON.parse(manifest) as Statement | null
   } catch {
     return null
   }
-  if (statement._type !== STATEMENT_TYPE || statement.predicateType !== PREDICATE_TYPE || !Array.isArray(statement.subject)) return null
+  if (typeof statement !== 'object' || statement === null || statement._type !== STATEMENT_TYPE || statement.predicateType !== PREDICATE_TYPE || !Array.isArray(statement.subject)) return null
   const named = new Set<string>(OWN)
-  for (const subject of statement.subject as { name?: unknown; digest?: { sha256?: unknown } }[]) {
-    const name = String(subject.name)
+  for (const subject of statement.subject as ({ name?: unknown; digest?: { sha256?: unknown } | null } | null)[]) {
+    if (typeof subject?.name !== 'string') {
+      problems.push('An entry of the manifest names no file.')
+      continue
+    }
+    const { name } = subject
+    if (named.has(name)) problems.push(`${name} stands in the manifest twice, or names a file of the proof itself.`)
     const bytes = files.get(name)
     named.add(name)
     if (!bytes) problems.push(`${name} stands in the manifest and is missing.`)

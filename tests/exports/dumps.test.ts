@@ -28,6 +28,7 @@ describe('refused dumps', () => {
     ['hex', 'addresses that go back', ':0100020000FD\n:0100000000FF\n:00000001FF\n', { line: 2, address: 0, message: expect.stringMatching(/goes back/) }],
     ['hex', 'data beyond the image', ':020007000100F6\n:00000001FF\n', { line: 1, address: 8 }],
     ['hex', 'data far beyond', ':020000040001F9\n:0100000000FF\n:00000001FF\n', { line: 2, address: 0x10000 }],
+    ['hex', 'a second start address', ':0400000500000000F7\n:0400000300000000F9\n:020000000100FD\n:00000001FF\n', { line: 2, message: expect.stringMatching(/second start address; line 1/) }],
     ['hex', 'nothing but the end', ':00000001FF\n', { line: 1 }],
     ['srec', 'a wrong checksum', 'S10500000100FA\nS9030000FC\n', { line: 1, message: expect.stringMatching(/FA; its bytes give F9/) }],
     ['srec', 'a wrong length', 'S10600000100F8\nS9030000FC\n', { line: 1 }],
@@ -80,6 +81,11 @@ describe('accepted dumps', () => {
   it('takes segment addresses (type 02) and start records (03, 05)', () => {
     const schema = aSchema({ a: { type: 'integer', 'x-register': { address: 0, encoding: 'u16' } } }, { length: 2, loadAddress: 0x10 })
     expect(readDump('hex', bytes(':020000020001FB\n:040000031234 5678E5\n'.replace(' ', '') + ':020000000100FD\n:00000001FF\n'), schema)).toMatchObject({ kind: 'dump' })
+  })
+
+  it('passes over empty lines at the end, and a byte order mark', () => {
+    expect(readDump('hex', bytes('\ufeff:020000000100FD\n:00000001FF\n\n \n'), tiny)).toMatchObject({ kind: 'dump' })
+    expect(readDump('hex', bytes(':020000000100FD\n\n:00000001FF\n'), tiny)).toMatchObject({ kind: 'refused', line: 2 })
   })
 
   it('knows a format by the name’s ending', () => {

@@ -1,4 +1,5 @@
 import { describe, expect, it } from 'vitest'
+import { csvLine } from '../../server/exports/csv-text.ts'
 import type { ExportContext } from '../../server/exports/export-context.ts'
 import { EXPORT_FORMATS, exportFile, type ExportFormat } from '../../server/exports/export-file.ts'
 import type { ParameterSchema, ParameterValues } from '../../shared/registers/parameter-schema.ts'
@@ -104,6 +105,19 @@ describe('text files', () => {
     expect(lines[1]).toContain(`,"'=SUM(A1) */ #error ""x""\n`.trimEnd())
     expect(lines.some((line) => line.includes('"Off, maybe"'))).toBe(false)
     expect(file('csv', hostile, { reg: 'Off, maybe' }).text).toContain('"Off, maybe"')
+  })
+
+  it.each<[string, string]>([
+    // OWASP, CSV Injection: the characters that begin a formula, and cells that a separator or a quote would open
+    ['=1+1', "'=1+1"], ['+1+cmd()', "'+1+cmd()"], ['-2+3', "'-2+3"], ['@SUM(A1)', "'@SUM(A1)"], ['-1-1', "'-1-1"], ['+A1', "'+A1"], ['--1', "'--1"], ['-1.5e', "'-1.5e"], ['-', "'-"],
+    ['  =1', "  '=1"], ['\u200b=1', "\u200b'=1"], ['\uff1d1+1', "'\uff1d1+1"], ['a;=1', '"a;\'=1"'], ['a\n=1', '"a\n\'=1"'], ['\tx', '"\'\tx"'], ['\rx', '"\'\rx"'], ['a,=1', '"a,=1"'], ['say "x"', '"say ""x"""'],
+    ['-1.5', '-1.5'], ['+3', '+3'], ['-2e-7', '-2e-7'], ['1 - 2', '1 - 2'], ['a-b', 'a-b'], ['', ''],
+  ])('write the cell %j as %j', (given, written) => {
+    expect(csvLine([given])).toBe(`${written}\n`)
+  })
+
+  it('leave numbers as they are', () => {
+    expect(csvLine([-1.5, 0, null, 1e-9])).toBe('-1.5,0,,1e-9\n')
   })
 
   it('record every register with its bytes, value and rounding error', () => {

@@ -4,7 +4,7 @@ import { dirname } from 'node:path'
 import { unzipSync, zipSync } from 'fflate'
 import { beforeAll, describe, expect, it } from 'vitest'
 import type { ExportContext } from '../../server/exports/export-context.ts'
-import { firmwarePath, jointFiles, packKit, readmeFor, signKit } from '../../server/exports/kit.ts'
+import { firmwarePath, jointFiles, packKit, readmeFor, signKit, sumLines } from '../../server/exports/kit.ts'
 import { buildManifest, type ManifestInput } from '../../server/exports/manifest.ts'
 import { readZip } from '../../server/exports/read-zip.ts'
 import { sha256 } from '../../server/exports/record.ts'
@@ -56,6 +56,18 @@ beforeAll(() => {
 const altered = (changes: Record<string, Uint8Array | null>): Uint8Array => {
   const files = { ...unzipSync(zip), ...changes }
   return zipSync(Object.fromEntries(Object.entries(files).filter((entry): entry is [string, Uint8Array] => entry[1] !== null)))
+}
+const text = (name: string): string => new TextDecoder().decode(unzipSync(zip)[name])
+/** The kit with another manifest, everything signed with the same key again: what a maker of kits could do. */
+const signedAnew = (manifest: string): Uint8Array => {
+  const own = { 'manifest.json': new TextEncoder().encode(manifest), 'manifest.sig': signText(manifest, key), 'manifest.dsse.json': new TextEncoder().encode(sealManifest(manifest, key)) }
+  const files = { ...unzipSync(zip), ...own }
+  const sums = sumLines(Object.entries(files).filter(([path]) => !path.startsWith('SHA256SUMS')).map(([path, bytes]) => ({ path, bytes })))
+  return zipSync({ ...files, SHA256SUMS: new TextEncoder().encode(sums), 'SHA256SUMS.sig': signText(sums, key) })
+}
+const twice = (): object => {
+  const statement = JSON.parse(text('manifest.json')) as { subject: unknown[] }
+  return { ...statement, subject: [...statement.subject, statement.subject[0]] }
 }
 const problems = (kit: Uint8Array, trusted: string | null = pem): string => {
   const result = verifyKit(kit, trusted)
@@ -122,6 +134,11 @@ describe('a kit that was meddled with', () => {
     ['another key in the kit', () => altered({ 'public-key.pem': new TextEncoder().encode(publicKeyPem(generateKeyPairSync('ed25519').privateKey)) }), /not the given key/],
     ['an envelope of something else', () => altered({ 'manifest.dsse.json': new TextEncoder().encode(sealManifest('{}', key)) }), /another manifest/],
     ['sums that were signed by nobody', () => altered({ SHA256SUMS: new Uint8Array(2) }), /SHA256SUMS/],
+    ['a mark before the sums, which sha256sum would see', () => altered({ SHA256SUMS: Buffer.concat([Buffer.from('\ufeff'), Buffer.from(unzipSync(zip).SHA256SUMS)]) }), /SHA256SUMS/],
+    ['a manifest that is no text', () => altered({ 'manifest.json': new Uint8Array([0xff, 0xfe]) }), /manifest\.json is no text in UTF-8/],
+    ['a manifest of nothing, signed by whoever made the kit', () => signedAnew('null'), /no release manifest/],
+    ['a manifest whose subjects are nothing', () => signedAnew(JSON.stringify({ ...JSON.parse(text('manifest.json')) as object, subject: [null] })), /An entry of the manifest names no file/],
+    ['a manifest that names a file twice', () => signedAnew(JSON.stringify(twice())), /stands in the manifest twice/],
     ['a path that leaves the directory', () => altered({ '../evil': new Uint8Array(1) }), /leave the directory/],
     ['no zip', () => new TextEncoder().encode('no zip at all'), /no zip/],
     ['a cut zip', () => zip.slice(0, zip.length >> 1), /cannot be read/],
