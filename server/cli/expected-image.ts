@@ -47,8 +47,8 @@ function fromSet(file: string, text: string, { schema, joint: named, release, du
 
 /** Values of Detent's own record of an image (its .json), as they were typed. */
 function valuesOf(record: Record<string, unknown>): ParameterValues {
-  const registers = Array.isArray(record.registers) ? (record.registers as { parameter?: unknown; typed?: unknown }[]) : []
-  return Object.fromEntries(registers.filter((r) => typeof r.parameter === 'string').map((r) => [r.parameter as string, r.typed as ParameterValues[string]]))
+  const registers = Array.isArray(record.registers) ? (record.registers as unknown[]) : []
+  return Object.fromEntries(registers.filter(isObject).filter((r) => typeof r.parameter === 'string').map((r) => [r.parameter as string, r.typed as ParameterValues[string]]))
 }
 
 /**

@@ -1,7 +1,7 @@
 import { parseArgs } from 'node:util'
 import { KIT_LIMITS } from '../exports/read-zip.ts'
 import { verifyKit } from '../exports/verify-kit.ts'
-import { readBytes } from './read-dump-file.ts'
+import { readBytes } from './read-bytes.ts'
 import { readTextFile } from './read-set-file.ts'
 import { Usage } from './usage.ts'
 

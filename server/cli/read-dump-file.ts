@@ -1,18 +1,10 @@
-import { existsSync, readFileSync, statSync } from 'node:fs'
 import type { ParameterSchema } from '../../shared/registers/parameter-schema.ts'
 import type { DumpImage } from '../../shared/registers/read-back.ts'
 import { DUMP_FORMATS, formatOfName, MAX_DUMP_BYTES, readDump, type DumpFormat } from '../exports/read-dump.ts'
+import { readBytes } from './read-bytes.ts'
 import { Usage } from './usage.ts'
 
 const isFormat = (text: string): text is DumpFormat => (DUMP_FORMATS as readonly string[]).includes(text)
-
-/** Bytes of a file of bounded size. @throws Error saying what is wrong with it */
-export function readBytes(file: string, most: number): Uint8Array {
-  if (!existsSync(file)) throw new Error(`${file}: there is no such file.`)
-  const { size } = statSync(file)
-  if (size > most) throw new Error(`${file}: ${size} bytes are more than the ${most} that are read.`)
-  return new Uint8Array(readFileSync(file))
-}
 
 /** A dump as the bytes of the schema's image. @throws Error naming line or byte */
 export function readDumpFile(file: string, format: string | undefined, schema: ParameterSchema): DumpImage {

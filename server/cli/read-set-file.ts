@@ -1,18 +1,26 @@
-import { existsSync, readFileSync, statSync } from 'node:fs'
 import { dirname, join } from 'node:path'
 import type { MachineSet } from '../../shared/parameters/machine-set.ts'
 import { checkParameterSchemaText } from '../../shared/registers/check-parameter-schema.ts'
 import type { ParameterSchema } from '../../shared/registers/parameter-schema.ts'
 import { readSet } from '../modules/changes/read-set.ts'
+import { readBytes } from './read-bytes.ts'
 
 const largest = 16 * 1024 * 1024
 
-/** Reads a text file of bounded size. @throws Error saying what is wrong with it */
+/** Reads a text file of bounded size; a byte order mark is passed over. @throws Error saying what is wrong with it */
 export function readTextFile(file: string): string {
-  if (!existsSync(file)) throw new Error(`${file}: there is no such file.`)
-  const { size } = statSync(file)
-  if (size > largest) throw new Error(`${file}: ${size} bytes are more than the ${largest} that are read.`)
-  return readFileSync(file, 'utf8')
+  const bytes = readBytes(file, largest)
+  try {
+    return new TextDecoder('utf-8', { fatal: true }).decode(bytes)
+  } catch {
+    throw new Error(`${file}: byte ${firstNoText(bytes)} is no text in UTF-8.`)
+  }
+}
+
+/** Offset of the first byte that is no UTF-8: where the text written again has other bytes. */
+function firstNoText(bytes: Uint8Array): number {
+  const again = new TextEncoder().encode(new TextDecoder('utf-8', { ignoreBOM: true }).decode(bytes))
+  return bytes.findIndex((byte, k) => again[k] !== byte)
 }
 
 export interface SchemaFile {

@@ -4,6 +4,7 @@ import { compareReadBack, type ReadBack, type WordDifference } from '../../share
 import { expectedImage } from './expected-image.ts'
 import { readDumpFile } from './read-dump-file.ts'
 import { readSchemaFile } from './read-set-file.ts'
+import { sequenceNumber } from './sequence-number.ts'
 import { Usage } from './usage.ts'
 
 const hex = (bytes: Uint8Array) => [...bytes].map((byte) => byte.toString(16).toUpperCase().padStart(2, '0')).join(' ')
@@ -38,8 +39,7 @@ function valueLines(schema: ParameterSchema, read: ReadBack & { kind: 'equal' | 
 export async function readback(args: string[]): Promise<number> {
   const { values, positionals } = parseArgs({ args, allowPositionals: true, options: { schema: { type: 'string' }, against: { type: 'string' }, joint: { type: 'string' }, format: { type: 'string' }, release: { type: 'string' } } })
   if (positionals.length !== 1 || !values.schema) throw new Usage('readback takes one dump and the parameter schema it is read by.')
-  const release = values.release === undefined ? null : Number(values.release)
-  if (release !== null && (!Number.isInteger(release) || release < 0)) throw new Usage('--release takes a sequence number.')
+  const release = sequenceNumber(values.release)
   const schema = readSchemaFile(values.schema).schema
   const dump = readDumpFile(positionals[0], values.format, schema)
   const expected = values.against === undefined ? dump.image : expectedImage(values.against, { schema, joint: values.joint, release, dump })
