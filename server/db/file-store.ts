@@ -9,7 +9,7 @@ export interface ReceivedFile {
   readonly bytes: number
   /** its bytes, to be looked at before it is kept */
   content(): Promise<Buffer>
-  /** takes it away unless it was kept */
+  /** takes it away unless it was kept, and lets go of it: every file that was received is let go of in the end */
   discard(): Promise<void>
 }
 
@@ -23,6 +23,11 @@ export interface FileStore {
   keep(file: ReceivedFile): Promise<void>
   /** @throws StoredFileProblem when it is missing, or its bytes are not the ones its name states */
   read(sha256: string): Promise<Buffer>
+  /**
+   * Takes a file away that nothing names any more. @returns false, and leaves it, while somebody who received the same bytes has not let go of
+   * them: a row may be about to name it
+   */
+  remove(sha256: string): Promise<boolean>
 }
 
 export class FileTooLarge extends Error {}
@@ -56,19 +61,42 @@ class Received implements ReceivedFile {
   readonly path: string
   readonly sha256: string
   readonly bytes: number
-  constructor(path: string, sha256: string, bytes: number) {
+  private release: (() => void) | null
+  constructor(path: string, sha256: string, bytes: number, release: () => void) {
     this.path = path
     this.sha256 = sha256
     this.bytes = bytes
+    this.release = release
   }
   content = () => readFile(this.path)
-  discard = () => rm(this.path, { force: true })
+  discard = async () => {
+    await rm(this.path, { force: true })
+    this.release?.()
+    this.release = null
+  }
+}
+
+/** Counts who has which file in hand. */
+class Holds {
+  private readonly counts = new Map<string, number>()
+  has = (sha256: string) => this.counts.has(sha256)
+  /** @returns lets go again */
+  take(sha256: string): () => void {
+    this.counts.set(sha256, (this.counts.get(sha256) ?? 0) + 1)
+    return () => {
+      const left = this.counts.get(sha256)! - 1
+      if (left > 0) this.counts.set(sha256, left)
+      else this.counts.delete(sha256)
+    }
+  }
 }
 
 /** The store in a directory, made when the first file comes. What was left half received by a stop is taken away with the first file. */
 export function fileStore(directory: string): FileStore {
   const aside = join(directory, 'aside')
   const placeOf = (sha256: string) => placeIn(directory, sha256)
+  const holds = new Holds()
+  const removals = new Map<string, Promise<unknown>>()
   let ready: Promise<unknown> | undefined
   const prepare = () =>
     (ready ??= rm(aside, { recursive: true, force: true }).then(() => mkdir(aside, { recursive: true, mode: 0o700 })))
@@ -97,11 +125,14 @@ export function fileStore(directory: string): FileStore {
       } finally {
         await handle.close()
       }
-      return new Received(path, hash.digest('hex'), bytes)
+      const sha256 = hash.digest('hex')
+      return new Received(path, sha256, bytes, holds.take(sha256))
     },
 
     async keep(file) {
       if (!(file instanceof Received)) throw new TypeError('only a file that this store received can be kept')
+      // a removal that began before these bytes arrived must not take away what is kept now
+      await removals.get(file.sha256)
       const place = placeOf(file.sha256)
       const folder = join(place, '..')
       const made = await mkdir(folder, { recursive: true, mode: 0o700 })
@@ -119,6 +150,22 @@ export function fileStore(directory: string): FileStore {
       })
       if (createHash('sha256').update(bytes).digest('hex') !== sha256) throw new StoredFileProblem(sha256, 'altered')
       return bytes
+    },
+
+    async remove(sha256) {
+      if (!/^[0-9a-f]{64}$/.test(sha256) || holds.has(sha256)) return false
+      const place = placeOf(sha256)
+      const removal = rm(place, { force: true })
+      removals.set(sha256, removal)
+      try {
+        await removal
+      } finally {
+        removals.delete(sha256)
+      }
+      await syncDirectory(join(place, '..')).catch((error: NodeJS.ErrnoException) => {
+        if (error.code !== 'ENOENT') throw error
+      })
+      return true
     },
   }
 }

@@ -21,5 +21,6 @@ function demoBytes(name: string): Buffer {
 export async function demoFirmwareImage(files: FileStore, line: string, version: string): Promise<FirmwareImage> {
   const received = await files.receive(Readable.from([demoBytes(`${line} ${version}`)]), firmwareImageLimit)
   await files.keep(received)
+  await received.discard()
   return { sha256: received.sha256, bytes: received.bytes, format: 'bin', name: `${line}-${version}-demo.bin` }
 }

@@ -86,6 +86,38 @@ describe('the file store', () => {
     expect((await store.read(first.sha256)).toString()).toBe('some firmware')
   })
 
+  it('takes a file away only when nobody has the same bytes in hand', async () => {
+    const folder = aFolder()
+    const store = fileStore(folder)
+    const come = () => store.receive(Readable.from([Buffer.from('some firmware')]), 100)
+    const first = await come()
+    await store.keep(first)
+    expect(await store.remove(first.sha256)).toBe(false)
+    const second = await come()
+    await first.discard()
+    await first.discard()
+    expect(await store.remove(first.sha256)).toBe(false)
+    await store.keep(second)
+    await second.discard()
+    expect((await store.read(first.sha256)).toString()).toBe('some firmware')
+    expect(await store.remove(first.sha256)).toBe(true)
+    await expect(store.read(first.sha256)).rejects.toMatchObject({ what: 'missing' })
+    expect(await store.remove(first.sha256)).toBe(true)
+    expect(await store.remove('../../etc/passwd')).toBe(false)
+  })
+
+  it('keeps what comes while the same bytes are being taken away', async () => {
+    const store = fileStore(aFolder())
+    const first = await store.receive(Readable.from([Buffer.from('some firmware')]), 100)
+    await store.keep(first)
+    await first.discard()
+    const going = store.remove(first.sha256)
+    const second = await store.receive(Readable.from([Buffer.from('some firmware')]), 100)
+    await store.keep(second)
+    await going
+    expect((await store.read(second.sha256)).toString()).toBe('some firmware')
+  })
+
   it('reads nothing outside itself, whatever the name', async () => {
     const store = fileStore(aFolder())
     for (const name of ['../../../etc/passwd', '', 'A'.repeat(64), `${'a'.repeat(63)}/`]) await expect(store.read(name)).rejects.toMatchObject({ what: 'missing' })

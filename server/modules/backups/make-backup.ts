@@ -24,6 +24,8 @@ export interface BackupWish {
   occasion: BackupOccasion
   /** file of the workplace's private key, to be taken along; null leaves it out, as every backup does unless somebody asks */
   privateKey?: string | null
+  /** file of the key that opens second factors, likewise */
+  sealKey?: string | null
 }
 
 export interface MadeBackup {
@@ -33,6 +35,9 @@ export interface MadeBackup {
 
 /** Folders in which one is being made now: a second one would take as long again and find the same. */
 const underWay = new Set<string>()
+
+/** Is a backup being made? Its copy of the database may name files that the database names no more. */
+export const backupUnderWay = () => underWay.size > 0
 
 const has = async (ask: AskCopy, table: string) => (await ask(`select 1 from sqlite_master where type = 'table' and name = '${table}'`)).length > 0
 
@@ -53,7 +58,7 @@ async function lookInto(database: string) {
 }
 
 /** Writes a backup into a folder of no name yet. */
-async function write({ orm, files }: BackupSource, aside: string, { now, occasion, privateKey }: BackupWish): Promise<BackupRecord> {
+async function write({ orm, files }: BackupSource, aside: string, { now, occasion, privateKey, sealKey }: BackupWish): Promise<BackupRecord> {
   const database = join(aside, inBackup.database)
   await orm.em.getConnection().execute('vacuum into ?', [database])
   await chmod(database, 0o600)
@@ -66,6 +71,7 @@ async function write({ orm, files }: BackupSource, aside: string, { now, occasio
   await writeFile(join(aside, inBackup.publicKeys), publicKeys.join(''), { mode: 0o600 })
   await writeFile(join(aside, inBackup.checkpoints), checkpoints.map((c) => checkpointLine({ ...c, type: CHECKPOINT_TYPE, at: new Date(c.at).toISOString() })).join(''), { mode: 0o600 })
   if (privateKey) await copyFile(privateKey, join(aside, inBackup.privateKey))
+  if (sealKey) await copyFile(sealKey, join(aside, inBackup.sealKey))
   const record: BackupRecord = {
     form: 1, madeAt: now.toISOString(), occasion, tool: TOOL_VERSION,
     database: { sha256: copy!.sha256, bytes: copy!.bytes, sqlite },
@@ -74,9 +80,10 @@ async function write({ orm, files }: BackupSource, aside: string, { now, occasio
     trouble: moved.trouble,
     orphans: moved.files.filter((sha256) => !referenced.includes(sha256)),
     privateKey: Boolean(privateKey),
+    sealKey: Boolean(sealKey),
   }
   await writeFile(join(aside, inBackup.record), `${JSON.stringify(record, null, 2)}\n`, { mode: 0o600 })
-  for (const name of [inBackup.publicKeys, inBackup.checkpoints, inBackup.record, ...(privateKey ? [inBackup.privateKey] : [])]) await syncFile(join(aside, name))
+  for (const name of [inBackup.publicKeys, inBackup.checkpoints, inBackup.record, ...(privateKey ? [inBackup.privateKey] : []), ...(sealKey ? [inBackup.sealKey] : [])]) await syncFile(join(aside, name))
   await syncDirectory(aside)
   return record
 }
@@ -85,7 +92,8 @@ async function write({ orm, files }: BackupSource, aside: string, { now, occasio
  * Makes a backup while the program runs: a copy of the database through its one connection, the stored files beside it, public keys and
  * checkpoints; everything synced and checked under a temporary name, then given its name in one step.
  *
- * The workplace's private key and the key of the sessions are not in it: whoever has a backup reads everything and signs nothing.
+ * The workplace's private key, the key of the sessions and that of the second factors are not in it unless asked for: whoever has a backup
+ * reads everything and signs nothing.
  *
  * @throws DomainError wrong-state when one is being made already; verification-failed when the copy is not whole
  */

@@ -13,6 +13,7 @@ import { carryOverSet, previewCarryOver } from './carry-over-set.ts'
 import { compareVersions } from './compare-versions.ts'
 import { describeFirmwareLine } from './describe-firmware-line.ts'
 import { draftFirmwareVersion } from './draft-firmware-version.ts'
+import { dropFirmwareFile } from './drop-firmware-file.ts'
 import { editFirmwareVersion } from './edit-firmware-version.ts'
 import { FirmwareLine } from './firmware-line.entity.ts'
 import { firmwareName, imageOf, type FirmwareVersion } from './firmware-version.entity.ts'
@@ -144,14 +145,20 @@ export const firmwareRoutes: readonly RouteSpec[] = [
       const { file } = call.upload!
       mustMatch(call, call.place.version.revision)
       const image = await readFirmwareImage(call.upload!)
+      const before = imageOf(call.place.version)
       // kept before the transaction that names it: a file that nothing names is harmless, a name without its file is not
       await call.services.files.keep(file)
-      return call.act(async (em) => {
-        const version = await again(em, call.place.version)
-        mustMatch(call, version.revision)
-        await attachFirmwareImage(em, { version, image, person: call.person, now: call.now })
-        return versionAnswer(em, version, call)
-      })
+      try {
+        return await call.act(async (em) => {
+          const version = await again(em, call.place.version)
+          mustMatch(call, version.revision)
+          await attachFirmwareImage(em, { version, image, person: call.person, now: call.now })
+          return versionAnswer(em, version, call)
+        })
+      } finally {
+        await file.discard()
+        for (const sha256 of new Set([file.sha256, ...(before ? [before.sha256] : [])])) await dropFirmwareFile(call.services, sha256)
+      }
     },
   }),
   route({
@@ -161,13 +168,17 @@ export const firmwareRoutes: readonly RouteSpec[] = [
     access: 'draft firmware',
     place: onVersion,
     ifMatch: true,
-    handle: (call) =>
-      call.act(async (em) => {
+    handle: async (call) => {
+      const before = imageOf(call.place.version)
+      const answer = await call.act(async (em) => {
         const version = await again(em, call.place.version)
         mustMatch(call, version.revision)
         await detachFirmwareImage(em, { version, person: call.person, now: call.now })
         return versionAnswer(em, version, call)
-      }),
+      })
+      if (before) await dropFirmwareFile(call.services, before.sha256)
+      return answer
+    },
   }),
   route({
     method: 'get',

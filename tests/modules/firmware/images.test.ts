@@ -62,6 +62,14 @@ describe('the firmware image of a draft', () => {
     expect(await lastEntries(w)).toMatchObject([{ details: { sha256: shaOf(Buffer.from(hexText)), replaces: shaOf(raw) } }])
   })
 
+  it('leaves no file behind: neither the one replaced, nor one that was refused', async () => {
+    await expect(w.services.files.read(shaOf(raw))).rejects.toMatchObject({ what: 'missing' })
+    const late = Buffer.from('came over another state')
+    await upload(engineer, late, 'late.bin', 1).expect(412)
+    await expect(w.services.files.read(shaOf(late))).rejects.toMatchObject({ what: 'missing' })
+    expect((await w.services.files.read(shaOf(Buffer.from(hexText)))).toString()).toBe(hexText)
+  })
+
   it('is downloaded by whoever downloads, byte for byte, marked as a draft; the ledger tells', async () => {
     for (const role of ['builder', 'release manager', 'controls engineer'] as const) {
       const taken = await asBytes((await w.as(role)).get(`${path}/image`)).expect(200)
@@ -104,8 +112,25 @@ describe('the firmware image of a draft', () => {
     const { body } = await engineer.delete(`${path}/image`).set('If-Match', `"${revision}"`).expect(200)
     expect((body as FirmwareVersionView).firmwareImage).toBeNull()
     expect(await lastEntries(w)).toMatchObject([{ act: 'firmware image taken away' }])
+    await expect(w.services.files.read(shaOf(Buffer.alloc(8 * 1024 * 1024, 1)))).rejects.toMatchObject({ what: 'missing' })
     await engineer.delete(`${path}/image`).set('If-Match', `"${revision + 1}"`).expect(409)
     expect((await asBytes(engineer.get(`${path}/image`))).status).toBe(404)
+  })
+})
+
+describe('a firmware image that two drafts have', () => {
+  it('stays while either names it', async () => {
+    const w = await aWorkplace()
+    await aFirmware(w, { state: 'draft' })
+    await aFirmware(w, { state: 'draft', version: '2.2.0' })
+    const engineer = await w.as('controls engineer')
+    const attach = (version: string, bytes: Buffer, revision: number) => engineer.upload(`/api/firmware/hinge/${version}/image`, 'image', bytes, 'a.bin').set('If-Match', `"${revision}"`).expect(200)
+    await attach('2.1.0', raw, 1)
+    await attach('2.2.0', raw, 1)
+    await attach('2.1.0', Buffer.from('another'), 2)
+    expect((await w.services.files.read(shaOf(raw))).equals(raw)).toBe(true)
+    await engineer.delete('/api/firmware/hinge/2.2.0/image').set('If-Match', '"2"').expect(200)
+    await expect(w.services.files.read(shaOf(raw))).rejects.toMatchObject({ what: 'missing' })
   })
 })
 
