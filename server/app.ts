@@ -5,6 +5,7 @@ import type { Logger } from 'pino'
 import { pinoHttp } from 'pino-http'
 import { acceptBenchKeys } from './http/bench-key.ts'
 import { errorHandler, notFound } from './http/error-handler.ts'
+import { requestInLog } from './http/log.ts'
 import { mount, type RouteSpec } from './http/route.ts'
 import { sameSite } from './http/same-site.ts'
 import type { Services } from './http/services.ts'
@@ -22,6 +23,7 @@ import { ledgerRoutes } from './modules/ledger/routes.ts'
 import { machineRoutes } from './modules/machines/routes.ts'
 import { mailRoutes } from './modules/mail/routes.ts'
 import { peopleRoutes, publicPeopleRoutes } from './modules/people/routes.ts'
+import { publicSecondFactorRoutes, secondFactorRoutes } from './modules/people/second-factor/routes.ts'
 import { policyRoutes } from './modules/policy/routes.ts'
 import { releaseRoutes } from './modules/releases/routes.ts'
 import { reviewRoutes } from './modules/reviews/routes.ts'
@@ -29,7 +31,7 @@ import { searchRoutes } from './modules/search/routes.ts'
 
 /** Every route of the API that a signed-in person reaches; tests walk it. */
 export const routeTable: readonly RouteSpec[] = [
-  ...peopleRoutes, ...machineRoutes, ...firmwareRoutes, ...policyRoutes, ...changeRoutes, ...checkRoutes, ...reviewRoutes, ...commentRoutes, ...releaseRoutes, ...boardRoutes, ...benchKeyRoutes, ...keyRoutes, ...comparisonRoutes, ...ledgerRoutes, ...searchRoutes, ...backupRoutes, ...mailRoutes,
+  ...peopleRoutes, ...secondFactorRoutes, ...machineRoutes, ...firmwareRoutes, ...policyRoutes, ...changeRoutes, ...checkRoutes, ...reviewRoutes, ...commentRoutes, ...releaseRoutes, ...boardRoutes, ...benchKeyRoutes, ...keyRoutes, ...comparisonRoutes, ...ledgerRoutes, ...searchRoutes, ...backupRoutes, ...mailRoutes,
 ]
 
 const contentSecurity = (secure: boolean) =>
@@ -47,10 +49,11 @@ const contentSecurity = (secure: boolean) =>
         workerSrc: ["'self'"],
         formAction: ["'self'"],
         baseUri: ["'none'"],
+        objectSrc: ["'none'"],
         frameAncestors: ["'none'"],
       },
     },
-    strictTransportSecurity: secure ? { maxAge: 31_536_000, includeSubDomains: false } : false,
+    strictTransportSecurity: secure ? { maxAge: 31_536_000, includeSubDomains: true } : false,
     referrerPolicy: { policy: 'same-origin' },
   } as Parameters<typeof helmet>[0])
 
@@ -66,7 +69,7 @@ export function buildApp({ services, log, sessionSecret, client }: AppParts): Ex
   const app = express()
   app.disable('x-powered-by')
   if (services.config.secure) app.set('trust proxy', 1)
-  app.use(pinoHttp({ logger: log, genReqId: () => randomUUID(), autoLogging: false }))
+  app.use(pinoHttp({ logger: log, genReqId: () => randomUUID(), autoLogging: false, serializers: { req: requestInLog } }))
   app.use(contentSecurity(services.config.secure))
   const api = Router()
   api.use(express.json({ limit: '4mb', strict: true }))
@@ -74,6 +77,7 @@ export function buildApp({ services, log, sessionSecret, client }: AppParts): Ex
   api.use(acceptBenchKeys(services))
   api.use(sameSite(() => services.config.baseUrl))
   publicPeopleRoutes(api, services, passport)
+  publicSecondFactorRoutes(api, services)
   mount(api, services, routeTable)
   api.use(notFound)
   app.use('/api', api)

@@ -1,4 +1,5 @@
 import { join, resolve } from 'node:path'
+import { secondFactorRules, type SecondFactorRule } from '../shared/contract/second-factor.ts'
 
 /** How the program runs; read once at start, from the environment. */
 export interface Config {
@@ -8,6 +9,10 @@ export interface Config {
   port: number
   /** `demo` makes the demo workplace when the database is empty and shows its sign-ins; `workplace` starts empty */
   mode: 'demo' | 'workplace'
+  /** who needs a second factor; by default nobody in the demo, whoever signs in a real workplace */
+  secondFactor: SecondFactorRule
+  /** costly requests that one person may make in a minute */
+  costlyPerMinute: number
   /** where people reach the program: links in mails begin with it */
   baseUrl: string
   /** SMTP server as a URL, or null for the local fake transport */
@@ -42,12 +47,15 @@ export function readConfig(env: NodeJS.ProcessEnv): Config {
   const baseUrl = (env.DETENT_BASE_URL ?? `http://${host}:${port}`).replace(/\/$/, '')
   if (!/^https?:\/\/[^/\s]+/.test(baseUrl)) throw new Error(`DETENT_BASE_URL is "${baseUrl}"; it takes an http or https address.`)
   const dataDir = resolve(env.DETENT_DATA ?? '.data')
+  const mode = oneOf('DETENT_MODE', env.DETENT_MODE ?? 'demo', ['demo', 'workplace'])
   const hour = env.DETENT_BACKUP_HOUR ?? '2'
   return {
     dataDir,
     host,
     port,
-    mode: oneOf('DETENT_MODE', env.DETENT_MODE ?? 'demo', ['demo', 'workplace']),
+    mode,
+    secondFactor: oneOf('DETENT_SECOND_FACTOR', env.DETENT_SECOND_FACTOR ?? (mode === 'demo' ? 'optional' : 'signers'), secondFactorRules),
+    costlyPerMinute: whole('DETENT_COSTLY_PER_MINUTE', env.DETENT_COSTLY_PER_MINUTE ?? '120', 1, 1_000_000),
     baseUrl,
     smtpUrl: env.DETENT_SMTP_URL ?? null,
     mailFrom: env.DETENT_MAIL_FROM ?? 'Detent <detent@localhost>',

@@ -1,16 +1,16 @@
-import { randomBytes } from 'node:crypto'
-import { existsSync, mkdirSync, readFileSync, writeFileSync } from 'node:fs'
+import { mkdirSync } from 'node:fs'
 import { createServer } from 'node:http'
 import { availableParallelism } from 'node:os'
 import { join } from 'node:path'
 import { fileURLToPath } from 'node:url'
-import { pino } from 'pino'
 import { buildApp } from './app.ts'
 import { readConfig } from './config.ts'
 import { fileStore } from './db/file-store.ts'
+import { secretFile } from './db/secret-file.ts'
 import { holdDatabase } from './db/only-process.ts'
 import { assertTerms } from './db/terms.ts'
 import { demoBegins, makeDemo } from './demo/make-demo.ts'
+import { makeLog } from './http/log.ts'
 import { serveClient } from './http/serve-client.ts'
 import type { Services } from './http/services.ts'
 import { JobBoard } from './jobs/job-board.ts'
@@ -20,17 +20,11 @@ import { openWorkplaceDatabase, placesOf } from './modules/backups/open-workplac
 import { analysisStore } from './modules/checks/analysis-store.ts'
 import { keyFiles } from './modules/keys/key-store.ts'
 import { openWorkplaceKeys } from './modules/keys/workplace-keys.ts'
+import { openSeals, sealKeyName } from './modules/people/second-factor/open-seals.ts'
 import { startMailSender } from './modules/mail/send-mail.ts'
 import { Person } from './modules/people/person.entity.ts'
 
-const log = pino({ level: process.env.DETENT_LOG ?? 'warn', redact: ['req.headers.cookie', 'req.headers.authorization', 'req.headers["x-detent-token"]'] })
-
-/** The key that signs session cookies: made at the first start, kept beside the database for its owner alone. */
-function sessionSecret(dataDir: string): string {
-  const file = join(dataDir, 'session.key')
-  if (!existsSync(file)) writeFileSync(file, randomBytes(48).toString('base64url'), { mode: 0o600, flag: 'wx' })
-  return readFileSync(file, 'utf8')
-}
+const log = makeLog(process.env.DETENT_LOG ?? (process.env.DETENT_MODE === 'workplace' ? 'info' : 'warn'))
 
 /** Runs the server; it takes requests once `clientBuilt` is there. */
 async function start(clientBuilt: Promise<unknown>) {
@@ -40,6 +34,7 @@ async function start(clientBuilt: Promise<unknown>) {
   const release = holdDatabase(places.database)
   const orm = await openWorkplaceDatabase(config)
   log.info(await assertTerms(orm, places.database), 'the database is open')
+  const { secret: sessionKey } = secretFile(join(config.dataDir, 'session.key'), 'the key that signs session cookies')
   const here = fileURLToPath(new URL('.', import.meta.url))
   const checks = new JobBoard({
     threads: onWorkers({ workerFile: join(here, 'worker.js'), threads: availableParallelism() }),
@@ -49,12 +44,15 @@ async function start(clientBuilt: Promise<unknown>) {
   let wake = () => {}
   const toldFirst = config.mode === 'demo' && (await orm.em.fork().count(Person)) === 0
   const keys = await openWorkplaceKeys(orm.em.fork(), keyFiles(config.dataDir), toldFirst ? demoBegins(new Date()) : new Date())
-  const services: Services = { config, orm, now: () => new Date(), checks, files: fileStore(places.files), keys, mailQueued: () => wake() }
+  const { seals, made } = openSeals(config.dataDir)
+  if (made && (await orm.em.fork().count(Person, { secondFactorAt: { $ne: null } })) > 0)
+    log.error(`The key of the second factors was missing and made anew: the ones set up before are good no more. Put ${sealKeyName} back, or let people sign in with recovery codes.`)
+  const services: Services = { config, orm, now: () => new Date(), checks, files: fileStore(places.files), keys, seals, mailQueued: () => wake() }
   if (toldFirst) await makeDemo(services)
   const sender = startMailSender(services, log)
   wake = () => sender.wake()
   const backups = startDailyBackups(services, log)
-  const app = buildApp({ services, log, sessionSecret: sessionSecret(config.dataDir), client: serveClient(join(here, '../client')) })
+  const app = buildApp({ services, log, sessionSecret: sessionKey.toString('base64url'), client: serveClient(join(here, '../client')) })
   await clientBuilt
   const server = createServer(app)
   server.listen(config.port, config.host, () => {

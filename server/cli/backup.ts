@@ -26,12 +26,12 @@ export async function backup(args: string[]): Promise<number> {
     if (values['with-private-key']) throw new Usage('backup lists, or makes one.')
     return list()
   }
-  const { database, files, privateKey } = placesOf(readConfig(process.env))
+  const { database, files, privateKey, sealKey } = placesOf(readConfig(process.env))
   if (!existsSync(database)) throw new Error(`There is no workplace: ${database} does not exist. Set DETENT_DATA to its folder.`)
   if (values['with-private-key'] && !existsSync(privateKey)) throw new Error(`${privateKey} does not exist. No backup was made.`)
   const { folder, made } = await onDatabase(async (orm, config) => {
     const now = new Date()
-    const one = await makeBackup({ orm, files, folder: config.backupDir }, { now, occasion: 'command', privateKey: values['with-private-key'] ? privateKey : null })
+    const one = await makeBackup({ orm, files, folder: config.backupDir }, { now, occasion: 'command', privateKey: values['with-private-key'] ? privateKey : null, sealKey: values['with-private-key'] && existsSync(sealKey) ? sealKey : null })
     await orm.em.fork().transactional((em) => recordBackup(em, { made: one, takenAway: [], person: null, now }))
     return { folder: config.backupDir, made: one }
   })
@@ -39,6 +39,6 @@ export async function backup(args: string[]): Promise<number> {
   process.stdout.write(`${join(folder, made.name)}\n${megabytes(record.database.bytes)}, ${record.ledger?.entries ?? 0} ledger entries, ${record.files.sha256.length} stored files.\n`)
   for (const trouble of record.trouble) process.stdout.write(`A stored file is ${trouble.what}: ${trouble.sha256}. Take it from an older backup.\n`)
   if (record.orphans.length > 0) process.stdout.write(`${record.orphans.length} stored files are named by nothing in the database; they are in the backup all the same.\n`)
-  process.stdout.write(record.privateKey ? "It holds the workplace's private key: whoever has it can sign kits as this workplace.\n" : "The workplace's private key is not in it. After a loss of the key file too, a new key is made; what was signed stays provable.\n")
+  process.stdout.write(record.privateKey ? "It holds the workplace's private key and the key of the second factors: whoever has it can sign kits as this workplace.\n" : "The workplace's private key is not in it, nor the key that opens second factors. After a loss of the key files too, new ones are made: what was signed stays provable, and people sign in with recovery codes.\n")
   return record.trouble.length > 0 ? 1 : 0
 }

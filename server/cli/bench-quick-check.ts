@@ -20,6 +20,7 @@ import { analysisStore } from '../modules/checks/analysis-store.ts'
 import { FirmwareLine } from '../modules/firmware/firmware-line.entity.ts'
 import { FirmwareVersion } from '../modules/firmware/firmware-version.entity.ts'
 import { hashOf } from '../modules/firmware/schema-cache.ts'
+import { openSeals } from '../modules/people/second-factor/open-seals.ts'
 import { keyFiles } from '../modules/keys/key-store.ts'
 import { openWorkplaceKeys } from '../modules/keys/workplace-keys.ts'
 import { Machine } from '../modules/machines/machine.entity.ts'
@@ -71,7 +72,7 @@ export async function benchQuickCheck(clock: () => number, schema: unknown): Pro
   const fromSource = import.meta.url.endsWith('.ts')
   const workerFile = fileURLToPath(new URL(fromSource ? '../jobs/worker.ts' : './worker.js', import.meta.url))
   const checks = new JobBoard({ threads: onWorkers({ workerFile, threads: 1, ...(fromSource ? { execArgv: ['--import', 'tsx'] } : {}) }), store: analysisStore(orm, () => now) })
-  const services: Services = { config: readConfig({ DETENT_MODE: 'workplace', DETENT_DATA: folder }), orm, now: () => now, checks, files: fileStore(join(folder, 'files')), keys: await openWorkplaceKeys(orm.em.fork(), keyFiles(folder), now), mailQueued: () => {} }
+  const services: Services = { config: readConfig({ DETENT_MODE: 'workplace', DETENT_DATA: folder, DETENT_SECOND_FACTOR: 'optional', DETENT_COSTLY_PER_MINUTE: '1000000' }), orm, now: () => now, checks, files: fileStore(join(folder, 'files')), keys: await openWorkplaceKeys(orm.em.fork(), keyFiles(folder), now), seals: openSeals(folder).seals, mailQueued: () => {} }
   const server = buildApp({ services, log: pino({ level: 'silent' }), sessionSecret: 'for the bench alone' }).listen(0, '127.0.0.1')
   try {
     await once(server, 'listening')

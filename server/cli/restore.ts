@@ -33,10 +33,11 @@ export async function restore(args: string[]): Promise<number> {
     return 0
   }
   return whileHeld(async (config) => {
-    const { proof, keptAside, replaced, privateKeyTaken } = await restoreBackup(config, find(positionals[0], config), new Date())
+    const { proof, keptAside, replaced, privateKeyTaken, sealKeyMissing } = await restoreBackup(config, find(positionals[0], config), new Date())
     process.stdout.write(told(proof))
     process.stdout.write(`Restored into ${config.dataDir}.${keptAside ? ` The database that was there${replaced ? `, with ${replaced.entries} ledger entries,` : ''} is kept in ${keptAside}.` : ''}\n`)
     if (privateKeyTaken) process.stdout.write("The workplace's private key was taken from the backup.\n")
+    if (sealKeyMissing) process.stdout.write('People of this workplace have a second factor, and second-factor.key, which opens them, is not here: put it beside the database, or let people sign in with recovery codes.\n')
     process.stdout.write('All sessions and open links were ended. What was done after the backup is undone, also ended roles, disabled people and revoked bench keys: look at those first.\n')
     return 0
   })

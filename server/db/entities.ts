@@ -22,6 +22,7 @@ import { Machine } from '../modules/machines/machine.entity.ts'
 import { Mail } from '../modules/mail/mail.entity.ts'
 import { Link } from '../modules/people/link.entity.ts'
 import { Person } from '../modules/people/person.entity.ts'
+import { RecoveryCode } from '../modules/people/second-factor/recovery-code.entity.ts'
 import { RoleGrant } from '../modules/people/role-grant.entity.ts'
 import { SessionRecord } from '../modules/people/session.entity.ts'
 import { PolicyVersion } from '../modules/policy/policy-version.entity.ts'
@@ -35,7 +36,7 @@ import { Signature } from '../modules/reviews/signature.entity.ts'
 
 export const entities = [
   BenchKey, Board, BoardEvent, Bus, Change, ChangeEvent, CheckReport, Comment, CommentAnswer, DraftPoint, DriveTrain, Family, FirmwareLine, FirmwareVersion, Joint, JointAnalysis, LedgerCheckpoint, LedgerEntry, Link, Machine, Mail,
-  Person, PolicyVersion, ReadMark, Receipt, Release, ReleaseJoint, ReleaseKit, Revision, RoleGrant, SessionRecord, Signature, Withdrawal, WorkplaceKey,
+  Person, PolicyVersion, ReadMark, Receipt, RecoveryCode, Release, ReleaseJoint, ReleaseKit, Revision, RoleGrant, SessionRecord, Signature, Withdrawal, WorkplaceKey,
 ]
 
 /** Rows of these are written once: a flush that alters one is refused, and so is SQL that goes around the flush (triggers). */

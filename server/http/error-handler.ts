@@ -33,6 +33,7 @@ export const errorHandler = (log: Logger): ErrorRequestHandler => (error, req, r
   const known = asDomainError(error) ?? storage
   if (!known) log.error({ err: error as Error, requestId }, 'unexpected error')
   const problem = toProblem(known ?? new DomainError('unexpected', `This failed inside Detent and was logged as ${requestId}. What was saved before stands; nothing of this request was. Try again, and tell your administrator if it stays.`), requestId)
+  if (typeof problem.retryAfter === 'number') res.set('Retry-After', String(problem.retryAfter))
   res.status(problem.status).type('application/problem+json').set('Cache-Control', 'no-store').send(JSON.stringify(problem))
 }
 

@@ -6,9 +6,11 @@ import type { Request, Response, Router } from 'express'
 import { appendEntry } from '../modules/ledger/append-entry.ts'
 import type { LedgerSubject } from '../modules/ledger/ledger-entry.entity.ts'
 import { heldRoles } from '../modules/people/held-roles.ts'
-import { may, type Act, type HeldRole } from '../modules/people/permissions.ts'
+import { codeMinutes, type SecondFactorRule } from '../../shared/contract/second-factor.ts'
+import { may, signingActs, underRule, type Act, type HeldRole } from '../modules/people/permissions.ts'
 import { Person } from '../modules/people/person.entity.ts'
 import { benchKeyOf, rightsOf } from './bench-key.ts'
+import { budgetsOf, type Budgets } from './budget.ts'
 import { DomainError } from './errors.ts'
 import { Receipt } from './receipt.entity.ts'
 import { receiveUpload, type Upload, type UploadSpec } from './receive-upload.ts'
@@ -67,6 +69,8 @@ export interface RouteSpec<B extends TSchema = TSchema, P extends Place = Place>
   ifMatch?: boolean
   /** a bench key may take it too; every other route refuses one */
   benchKey?: true
+  /** takes much time, memory or disk: counted against the person's budget of a minute */
+  costly?: true
   /** the one file it takes, in a form; received when the person may, and thrown away again unless the handler keeps it */
   upload?: UploadSpec
   handle: (call: Call<Static<B>, P>) => Promise<Answer>
@@ -99,7 +103,7 @@ export function mustMatch(call: { ifMatch: number }, revision: number) {
 }
 
 /** Members of bodies that are secret: no fast hash of them is kept. */
-const secrets = new Set(['password', 'current', 'next', 'secret'])
+const secrets = new Set(['password', 'current', 'next', 'secret', 'code'])
 
 /** Names a request, so that a repeat under the same key is told from another one. */
 function requestHash(req: Request, body: unknown): string {
@@ -108,10 +112,10 @@ function requestHash(req: Request, body: unknown): string {
 }
 
 /** The same role asked again inside the transaction: what was ended or held meanwhile stops the act. */
-async function mustStillBeAllowed(em: EntityManager, { spec, req, person, place, now }: Acting) {
+async function mustStillBeAllowed(em: EntityManager, { spec, req, person, place, rule, now }: Acting) {
   const fresh = await em.findOneOrFail(Person, { id: person.id }, { refresh: true })
   if (fresh.disabledAt) throw new DomainError('not-signed-in', 'This person was disabled meanwhile. Nothing was done.')
-  const held = await rightsOf(em, benchKeyOf(req), await heldRoles(em, fresh), now)
+  const held = underRule(rule, fresh, await rightsOf(em, benchKeyOf(req), await heldRoles(em, fresh), now))
   if (spec.access !== 'signed-in') mustBeAllowed(held, spec, place)
 }
 
@@ -119,7 +123,20 @@ function mustBeAllowed(held: readonly HeldRole[], spec: RouteSpec, place: Place)
   if (spec.access === 'signed-in') return
   const answer = may(held, spec.access, place.machine)
   if (answer.allowed) return
-  throw new DomainError(answer.why.startsWith('Your signing role') ? 'signing-right-unconfirmed' : 'not-permitted', `${answer.why} Nothing was done.`, { recorded: spec.method !== 'get' })
+  const waits = held.some((h) => !h.confirmed) && answer.why.startsWith('Your signing role')
+  const code = !waits ? 'not-permitted' : answer.why.includes('second factor') ? 'second-factor-missing' : 'signing-right-unconfirmed'
+  throw new DomainError(code, `${answer.why} Nothing was done.`, { recorded: spec.method !== 'get' })
+}
+
+/**
+ * Where the workplace asks for a code at each signature, one must have been entered in this session lately.
+ *
+ * @throws DomainError code-asked
+ */
+function mustHaveEnteredCode(rule: SecondFactorRule, spec: RouteSpec, req: Request, now: Date) {
+  if (rule !== 'signatures' || spec.access === 'signed-in' || spec.method === 'get' || !signingActs.includes(spec.access)) return
+  const since = now.getTime() - (req.session.codeAt ?? Number.NEGATIVE_INFINITY)
+  if (since < 0 || since > codeMinutes * 60_000) throw new DomainError('code-asked', `This workplace asks for a code of your second factor before each signature. Nothing was done; enter one, then sign within ${codeMinutes} minutes.`)
 }
 
 interface Acting {
@@ -128,6 +145,7 @@ interface Acting {
   person: Person
   place: Place
   body: unknown
+  rule: SecondFactorRule
   now: Date
 }
 
@@ -207,7 +225,17 @@ async function record(services: Services, spec: RouteSpec, error: DomainError, p
   await services.orm.em.fork().transactional((em) => appendEntry(em, { at: now, person, act: 'refused', subject: place.subject, details: { asked: spec.summary, refusal: error.code, why: error.message } }))
 }
 
-async function answerTo(services: Services, spec: RouteSpec, req: Request, res: Response): Promise<Answer> {
+const asksSecret = (spec: RouteSpec) => Object.keys((spec.body?.properties as object | undefined) ?? {}).some((name) => secrets.has(name))
+
+/** @throws DomainError too-many-requests */
+function mustHaveBudget(budgets: Budgets, spec: RouteSpec, person: Person, now: Date) {
+  if (asksSecret(spec)) budgets.guesses.mustHaveLeft(person.id, now, 'There were too many wrong passwords or codes.')
+  if (!spec.costly) return
+  budgets.costly.mustHaveLeft(person.id, now, 'You asked for more costly things than the server does for one person in a minute.')
+  budgets.costly.spend(person.id, now)
+}
+
+async function answerTo(services: Services, budgets: Budgets, spec: RouteSpec, req: Request, res: Response): Promise<Answer> {
   const em = services.orm.em.fork()
   const now = services.now()
   const person = await em.findOneOrFail(Person, { id: personOf(req).id })
@@ -217,7 +245,8 @@ async function answerTo(services: Services, spec: RouteSpec, req: Request, res: 
     if (spec.method !== 'get') await record(services, spec, refusal, person, await nowhere(), now)
     throw refusal
   }
-  const held = await rightsOf(em, key, await heldRoles(em, person), now)
+  const rule = services.config.secondFactor
+  const held = underRule(rule, person, await rightsOf(em, key, await heldRoles(em, person), now))
   const params = req.params as Record<string, string>
   const query = req.query as Record<string, string>
   if (![...Object.values(params), ...Object.values(query)].every((v) => typeof v === 'string' && keepable(v))) throw new DomainError('invalid-request', "The address holds a character that can't stand in it, or names something twice. Nothing was done.")
@@ -227,13 +256,15 @@ async function answerTo(services: Services, spec: RouteSpec, req: Request, res: 
   let upload: Upload | null = null
   try {
     mustBeAllowed(held, spec, place)
+    mustHaveBudget(budgets, spec, person, now)
     const ifMatch = spec.ifMatch ? readIfMatch(req) : 0
     if (spec.upload) upload = await receiveUpload(req, res, services.files, spec.upload)
     const body: unknown = spec.body ? validBody(spec.body, (req.body as unknown) ?? {}) : undefined
-    const acting: Acting = { spec, req, person, place, body: upload ? { file: upload.file.sha256, name: upload.name } : body, now }
+    const acting: Acting = { spec, req, person, place, body: upload ? { file: upload.file.sha256, name: upload.name } : body, rule, now }
     // asked before the handler too: its guards see the state after the first request, and would refuse the repeat whose answer was lost
     const kept = spec.method === 'get' ? null : await keptAnswer(em, acting)
     if (kept) return kept
+    mustHaveEnteredCode(rule, spec, req, now)
     return await spec.handle({
       services,
       em,
@@ -251,6 +282,7 @@ async function answerTo(services: Services, spec: RouteSpec, req: Request, res: 
       act: (work) => transact(em, acting, work),
     })
   } catch (error) {
+    if (error instanceof DomainError && (error.code === 'wrong-password' || error.code === 'wrong-code')) budgets.guesses.spend(person.id, now)
     if (error instanceof DomainError && error.recorded) await record(services, spec, error, person, place, now)
     throw error
   } finally {
@@ -260,9 +292,10 @@ async function answerTo(services: Services, spec: RouteSpec, req: Request, res: 
 
 /** Puts the routes of the table on an Express router. */
 export function mount(router: Router, services: Services, specs: readonly RouteSpec[]) {
+  const budgets = budgetsOf(services.config)
   for (const spec of specs)
     router[spec.method](spec.path, (req, res, next) => {
-      answerTo(services, spec, req, res).then(
+      answerTo(services, budgets, spec, req, res).then(
         (answer) => {
           if (spec.method !== 'get') services.mailQueued()
           send(res, answer)

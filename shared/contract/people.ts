@@ -1,5 +1,6 @@
 import { Type, type Static } from '@sinclair/typebox'
 import { Key } from '../parameters/machine-set.ts'
+import type { OwnSecondFactor, SecondFactorRule } from './second-factor.ts'
 
 const strict = { additionalProperties: false }
 
@@ -51,8 +52,10 @@ export interface PersonView {
   state: 'invited' | 'active' | 'disabled'
   /** why signatures of this person wait for another signer's confirmation; null when they don't */
   signingHold: string | null
+  /** whether one is set up; null to whom it does not concern */
+  secondFactor: boolean | null
   roles: GrantView[]
-  may: { grantRoles: Allowed; endRoles: Allowed; disable: Allowed; enable: Allowed; reset: Allowed; confirmSigning: Allowed }
+  may: { grantRoles: Allowed; endRoles: Allowed; disable: Allowed; enable: Allowed; reset: Allowed; resetSecondFactor: Allowed; confirmSigning: Allowed }
 }
 
 export interface PeopleView {
@@ -68,6 +71,7 @@ export interface Me {
   roles: GrantView[]
   /** why this person's signatures wait for another signer's confirmation; null when they don't */
   signingHold: string | null
+  secondFactor: OwnSecondFactor
   /** acts of the permission matrix, by machine key; '*' holds what is not tied to one machine */
   acts: Record<string, string[]>
   /** to be sent as X-Detent-Token with every act */
@@ -100,6 +104,7 @@ export interface SessionView {
 /** What the sign-in page needs to know. */
 export interface WorkplaceView {
   mode: 'demo' | 'workplace'
+  secondFactor: SecondFactorRule
   /** demo mode only: the invented people and their passwords */
   signIns: { name: string; email: string; password: string; roles: string }[]
 }

@@ -2,11 +2,13 @@ import { useQuery } from '@tanstack/react-query'
 import { Suspense, useEffect, useRef } from 'react'
 import { Outlet, redirect, ScrollRestoration, useLocation, useNavigation } from 'react-router'
 import type { LoaderFunctionArgs } from 'react-router'
+import { CodeAsked } from '../features/people/components/code-asked.tsx'
 import { SignInAgain } from '../features/people/components/sign-in-again.tsx'
 import { useSignOut } from '../features/people/mutations.ts'
 import { SearchField } from '../features/search/components/search-field.tsx'
 import { machinesQuery } from '../features/machines/queries.ts'
 import { ProblemPanel } from '../components/problem/problem-panel.tsx'
+import { TextLink } from '../components/ui/text-link.tsx'
 import { TopBar } from '../components/ui/top-bar.tsx'
 import { Waiting } from '../components/ui/waiting.tsx'
 import { ApiProblem } from '../lib/api-client.ts'
@@ -64,11 +66,17 @@ export function SignedInLayout() {
       />
       <main ref={main} id="content" tabIndex={-1} aria-busy={busy} className="wrap relative overflow-x-clip pb-12 outline-none">
         <ProblemPanel className="mt-3" problem={signOut.error} />
+        {me.secondFactor.missing && pathname !== paths.account() && (
+          <p className="mt-3 border-l-[3px] border-plum bg-plum-wash px-4 py-2 text-13">
+            You can sign nothing yet: this workplace asks a second factor of everybody who signs. <TextLink to={paths.account()}>Set one up</TextLink>
+          </p>
+        )}
         <Suspense fallback={<Waiting className="pt-8" />}>
           <Outlet />
         </Suspense>
       </main>
       <SignInAgain email={me.email} />
+      <CodeAsked />
       <ScrollRestoration />
     </>
   )

@@ -36,6 +36,7 @@ export const fieldError = (problem: unknown, pointer: string): string | null =>
 
 let token = ''
 const signedOutListeners = new Set<() => void>()
+const codeAskedListeners = new Set<() => void>()
 /** Keys of acts whose outcome is unknown (no answer came, or the server failed), by what was asked: the same act again is the same intent. */
 const openKeys = new Map<string, string>()
 
@@ -46,6 +47,12 @@ export const setActToken = (value: string) => void (token = value)
 export function onSignedOut(listener: () => void): () => void {
   signedOutListeners.add(listener)
   return () => void signedOutListeners.delete(listener)
+}
+
+/** Told when the server asks for a code of the second factor before an act. Returns the way to stop listening. */
+export function onCodeAsked(listener: () => void): () => void {
+  codeAskedListeners.add(listener)
+  return () => void codeAskedListeners.delete(listener)
 }
 
 const isRecord = (v: unknown): v is Record<string, unknown> => typeof v === 'object' && v !== null && !Array.isArray(v)
@@ -76,6 +83,7 @@ async function answerOf(path: string, init: RequestInit): Promise<Response> {
   if (response.ok) return response
   const problem = await problemOf(response)
   if (problem.code === 'not-signed-in') for (const listener of signedOutListeners) listener()
+  if (problem.code === 'code-asked') for (const listener of codeAskedListeners) listener()
   throw problem
 }
 
@@ -96,6 +104,8 @@ export interface Act {
   body?: unknown
   /** revision that the act was decided on */
   ifMatch?: number
+  /** ends the asking; only for what alters nothing */
+  signal?: AbortSignal
 }
 
 /**
@@ -103,7 +113,7 @@ export interface Act {
  *
  * @throws ApiProblem
  */
-export async function act<T>({ method = 'POST', path, body, ifMatch }: Act): Promise<T> {
+export async function act<T>({ method = 'POST', path, body, ifMatch, signal }: Act): Promise<T> {
   const isForm = body instanceof FormData
   const json = isForm ? '' : JSON.stringify(body ?? {})
   const intent = isForm ? '' : `${method} ${path} ${ifMatch ?? ''} ${json}`
@@ -113,6 +123,7 @@ export async function act<T>({ method = 'POST', path, body, ifMatch }: Act): Pro
     const answer = await bodyOf<T>(
       await answerOf(path, {
         method,
+        ...(signal ? { signal } : {}),
         headers: {
           Accept: 'application/json',
           'Idempotency-Key': key,
@@ -126,7 +137,7 @@ export async function act<T>({ method = 'POST', path, body, ifMatch }: Act): Pro
     openKeys.delete(intent)
     return answer
   } catch (error) {
-    if (error instanceof ApiProblem && error.status >= 400 && error.status < 500) openKeys.delete(intent)
+    if (signal?.aborted || (error instanceof ApiProblem && error.status >= 400 && error.status < 500)) openKeys.delete(intent)
     throw error
   }
 }

@@ -8,6 +8,7 @@ import { Select } from '../components/ui/select.tsx'
 import { BenchKeysSection } from '../features/bench-keys/components/bench-keys-section.tsx'
 import { ChangePasswordForm } from '../features/people/components/change-password-form.tsx'
 import { RoleList } from '../features/people/components/role-list.tsx'
+import { SecondFactorSection } from '../features/people/components/second-factor-section.tsx'
 import { SessionList } from '../features/people/components/session-list.tsx'
 import { sessionsQuery } from '../features/people/queries.ts'
 import { machinesQuery } from '../features/machines/queries.ts'
@@ -51,6 +52,7 @@ export function Component() {
             <SectionHeading id="password" className="mb-3">Password</SectionHeading>
             <ChangePasswordForm email={me.email} />
           </section>
+          <SecondFactorSection own={me.secondFactor} />
           <section aria-labelledby="look">
             <SectionHeading id="look" className="mb-3">Look</SectionHeading>
             <Select label="Light or dark" width={200} value={theme} onChange={setTheme} options={themes.map((t) => ({ value: t, label: words[t] }))} />

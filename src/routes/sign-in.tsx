@@ -31,6 +31,7 @@ export function Component() {
           <SignInForm email={email} password={password} onEmail={setEmail} onPassword={setPassword} onSignedIn={() => void navigate(ownPath(search.get('next')), { replace: true })}>
             <TextLink to={paths.forgotten()}>Forgotten password</TextLink>
           </SignInForm>
+          {workplace.data?.mode === 'demo' && workplace.data.secondFactor === 'optional' && <p className="mt-6 max-w-[50ch] text-13 text-ink-2">The demo asks for no second factor. A real workplace asks it of everybody who signs.</p>}
         </div>
         {signIns.length > 0 && (
           <DemoSignIns

@@ -36,7 +36,7 @@ export type Reply = Answer | ((asked: Asked) => Answer)
 
 export const refusal = (status: number, code: string, detail: string, extra: object = {}): Reply => ({ status, body: { type: `/problems/${code}`, title: code, status, detail, errors: [], ...extra } })
 
-export const mirela: Me = { id: 7, name: 'Mirela Castanho', email: 'mirela@dunlin.example', roles: [{ id: 1, role: 'controls engineer', machine: null, confirmed: true }], signingHold: null, acts: { '*': [], dunlin: ['read', 'draft changes'], teasel: ['read', 'draft changes'] }, token: 'token' }
+export const mirela: Me = { id: 7, name: 'Mirela Castanho', email: 'mirela@dunlin.example', roles: [{ id: 1, role: 'controls engineer', machine: null, confirmed: true }], signingHold: null, secondFactor: { since: null, recoveryCodesLeft: 0, missing: false, rule: 'optional' }, acts: { '*': [], dunlin: ['read', 'draft changes'], teasel: ['read', 'draft changes'] }, token: 'token' }
 export const rafiq: Me = { ...mirela, id: 8, name: 'Rafiq Sandoval', roles: [{ id: 2, role: 'peer reviewer', machine: null, confirmed: true }, { id: 3, role: 'release manager', machine: null, confirmed: true }], acts: { '*': [], dunlin: ['read', 'sign peer review', 'sign release'], teasel: ['read', 'sign peer review', 'sign release'] } }
 
 const machines = [

@@ -45,6 +45,7 @@ export const aMe = (over: Partial<Me> = {}): Me => ({
   email: 'silvan.okoro@dunlin.example',
   roles: [{ id: 1, role: 'administrator', machine: null, confirmed: true }],
   signingHold: null,
+  secondFactor: { since: null, recoveryCodesLeft: 0, missing: false, rule: 'optional' },
   acts: { '*': ['read', 'make machines', 'propose policy', 'keep people', 'keep mail'] },
   token: 'token-of-silvan',
   ...over,

@@ -14,8 +14,9 @@ const aPerson = (over: Partial<PersonView> = {}): PersonView => ({
   email: 'wren@dunlin.example',
   state: 'active',
   signingHold: null,
+  secondFactor: true,
   roles: [{ id: 31, role: 'peer reviewer', machine: 'dunlin', confirmed: true }],
-  may: { grantRoles: yes, endRoles: yes, disable: yes, enable: no('Wren Halloran is not disabled.'), reset: yes, confirmSigning: no('Wren Halloran has no signing right that waits.') },
+  may: { grantRoles: yes, endRoles: yes, disable: yes, enable: no('Wren Halloran is not disabled.'), reset: yes, resetSecondFactor: yes, confirmSigning: no('Wren Halloran has no signing right that waits.') },
   ...over,
 })
 const machines = [{ key: 'dunlin', name: 'Dunlin', description: '', retired: false, joints: 19, buses: 3, currentVersion: '1.7.0', openChanges: 0 }]

@@ -5,7 +5,7 @@ import { describe, expect, it } from 'vitest'
 import { aMe, fakeServer, notSignedIn, problem } from './fake-server.ts'
 import { openApp } from './open-app.tsx'
 
-const demo = { mode: 'demo', signIns: [{ name: 'Mirela Castanho', email: 'mirela.castanho@dunlin.example', password: 'demo only mudflat knee', roles: 'controls engineer' }] }
+const demo = { mode: 'demo', secondFactor: 'optional', signIns: [{ name: 'Mirela Castanho', email: 'mirela.castanho@dunlin.example', password: 'demo only mudflat knee', roles: 'controls engineer' }] }
 const type = (label: string, text: string) => fireEvent.change(screen.getByLabelText(label), { target: { value: text } })
 const press = (name: string | RegExp) => fireEvent.click(screen.getByRole('button', { name }))
 

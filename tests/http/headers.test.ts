@@ -18,6 +18,7 @@ describe('security headers', () => {
       'worker-src': "'self'",
       'form-action': "'self'",
       'base-uri': "'none'",
+      'object-src': "'none'",
       'frame-ancestors': "'none'",
     })
     expect(headers).toMatchObject({ 'x-content-type-options': 'nosniff', 'referrer-policy': 'same-origin' })
@@ -28,7 +29,7 @@ describe('security headers', () => {
 
   it('ask for TLS behind https alone', async () => {
     const w = await aWorkplace({ DETENT_BASE_URL: 'https://detent.dunlin.example' })
-    expect((await supertest(w.app).get('/api/workplace')).headers['strict-transport-security']).toBe('max-age=31536000')
+    expect((await supertest(w.app).get('/api/workplace')).headers['strict-transport-security']).toBe('max-age=31536000; includeSubDomains')
   })
 })
 

@@ -13,6 +13,7 @@ import type { Services } from '../../server/http/services.ts'
 import { inPlace } from '../../server/jobs/in-place.ts'
 import { JobBoard } from '../../server/jobs/job-board.ts'
 import { analysisStore } from '../../server/modules/checks/analysis-store.ts'
+import { openSeals } from '../../server/modules/people/second-factor/open-seals.ts'
 import { keyFiles } from '../../server/modules/keys/key-store.ts'
 import { openWorkplaceKeys } from '../../server/modules/keys/workplace-keys.ts'
 import { filling, look, withRebuild } from './a-rebuild.ts'
@@ -84,12 +85,13 @@ async function open(folder: string, options: OpenOptions = {}): Promise<number> 
   const orm = await openDatabase(join(folder, 'detent.sqlite'), options)
   const now = () => new Date()
   const services: Services = {
-    config: readConfig({ DETENT_MODE: 'workplace', DETENT_DATA: folder }),
+    config: readConfig({ DETENT_MODE: 'workplace', DETENT_DATA: folder, DETENT_SECOND_FACTOR: 'optional', DETENT_COSTLY_PER_MINUTE: '1000000' }),
     orm,
     now,
     checks: new JobBoard({ threads: inPlace(), store: analysisStore(orm, now) }),
     files: fileStore(join(folder, 'files')),
     keys: await openWorkplaceKeys(orm.em.fork(), keyFiles(folder), now()),
+    seals: openSeals(folder).seals,
     mailQueued: () => {},
   }
   const server = createServer(buildApp({ services, log: pino({ level: process.env.DETENT_LOG ?? 'silent' }), sessionSecret: 'a secret for tests alone' }))

@@ -1,4 +1,4 @@
-import { randomUUID } from 'node:crypto'
+import { randomBytes, randomUUID } from 'node:crypto'
 import { rm } from 'node:fs/promises'
 import { tmpdir } from 'node:os'
 import { join } from 'node:path'
@@ -19,6 +19,7 @@ import { Machine } from '../../server/modules/machines/machine.entity.ts'
 import { hashPassword } from '../../server/modules/people/passwords.ts'
 import { Person } from '../../server/modules/people/person.entity.ts'
 import { RoleGrant } from '../../server/modules/people/role-grant.entity.ts'
+import { sealsOf } from '../../server/modules/people/second-factor/seals.ts'
 import type { Me, Role } from '../../shared/contract/people.ts'
 import { keysInMemory } from './keys-in-memory.ts'
 
@@ -32,8 +33,8 @@ export interface SignedIn {
   patch(path: string, body?: object): supertest.Test
   put(path: string, body?: object): supertest.Test
   delete(path: string): supertest.Test
-  /** puts one file in a form */
-  upload(path: string, field: string, bytes: Buffer, name: string): supertest.Test
+  /** sends one file in a form */
+  upload(path: string, field: string, bytes: Buffer, name: string, method?: 'put' | 'post'): supertest.Test
   me: Me
 }
 
@@ -65,12 +66,13 @@ export async function aWorkplace(env: NodeJS.ProcessEnv = {}): Promise<Workplace
   const orm = await openDatabase(':memory:')
   const folder = join(tmpdir(), `detent-test-${randomUUID()}`)
   const services: Services = {
-    config: readConfig({ DETENT_MODE: 'workplace', ...env }),
+    config: readConfig({ DETENT_MODE: 'workplace', DETENT_SECOND_FACTOR: 'optional', DETENT_COSTLY_PER_MINUTE: '1000000', ...env }),
     orm,
     now: () => time,
     checks: new JobBoard({ threads: inPlace(), store: analysisStore(orm, () => time) }),
     files: fileStore(folder),
     keys: await openWorkplaceKeys(orm.em.fork(), await firstKey(orm, time), time),
+    seals: sealsOf(randomBytes(32)),
     mailQueued: () => {},
   }
   const app = buildApp({ services, log: pino({ level: 'silent' }), sessionSecret: 'a secret for tests alone' })
@@ -102,7 +104,7 @@ export async function aWorkplace(env: NodeJS.ProcessEnv = {}): Promise<Workplace
         patch: (path, body = {}) => withToken(agent.patch(path)).send(body),
         put: (path, body = {}) => withToken(agent.put(path)).send(body),
         delete: (path) => withToken(agent.delete(path)),
-        upload: (path, field, bytes, name) => withToken(agent.put(path)).attach(field, bytes, name),
+        upload: (path, field, bytes, name, method = 'put') => withToken(agent[method](path)).attach(field, bytes, name),
         me,
       }
     },

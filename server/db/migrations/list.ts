@@ -10,6 +10,7 @@ import { Migration20261201123140 } from './20261201123140-read-marks-and-comment
 import { Migration20261201123623 } from './20261201123623-ledger-checkpoints.ts'
 import { Migration20261201135526 } from './20261201135526-ledger-counts.ts'
 import { Migration20261201142944 } from './20261201142944-hash-indexes.ts'
+import { Migration20261201143059 } from './20261201143059-second-factor.ts'
 
 /** Every migration in order. Classes, not files: the bundle carries them. */
 export const migrations = [
@@ -25,4 +26,5 @@ export const migrations = [
   { name: '20261201123623-ledger-checkpoints', class: Migration20261201123623 },
   { name: '20261201135526-ledger-counts', class: Migration20261201135526 },
   { name: '20261201142944-hash-indexes', class: Migration20261201142944 },
+  { name: '20261201143059-second-factor', class: Migration20261201143059 },
 ]

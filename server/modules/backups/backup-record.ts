@@ -10,6 +10,7 @@ export const inBackup = {
   publicKeys: 'public-keys.pem',
   checkpoints: 'checkpoints.jsonl',
   privateKey: 'workplace.key',
+  sealKey: 'second-factor.key',
 } as const
 
 /** What a backup's folder says of itself, in backup.json. */
@@ -25,6 +26,8 @@ export interface BackupRecord {
   trouble: BackupTrouble[]
   orphans: string[]
   privateKey: boolean
+  /** the key that opens second factors is in it too; left out by backups made before there were any */
+  sealKey?: boolean
 }
 
 /** A name that sorts by time: 2026-12-01T02-00-00Z, and -2 and so on for more of one second. */

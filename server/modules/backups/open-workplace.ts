@@ -1,10 +1,11 @@
 import { join } from 'node:path'
 import type { Config } from '../../config.ts'
 import { openDatabase, type Orm } from '../../db/orm.ts'
+import { sealKeyName } from '../people/second-factor/open-seals.ts'
 import { makeBackup } from './make-backup.ts'
 
 /** Where the parts of a workplace lie in its data folder. */
-export const placesOf = ({ dataDir }: Pick<Config, 'dataDir'>) => ({ database: join(dataDir, 'detent.sqlite'), files: join(dataDir, 'files'), privateKey: join(dataDir, 'workplace.key') })
+export const placesOf = ({ dataDir }: Pick<Config, 'dataDir'>) => ({ database: join(dataDir, 'detent.sqlite'), files: join(dataDir, 'files'), privateKey: join(dataDir, 'workplace.key'), sealKey: join(dataDir, sealKeyName) })
 
 /**
  * Opens the workplace's database. Before its schema is altered, a backup of it is made.

@@ -4,6 +4,7 @@ import { basename, join } from 'node:path'
 import type { Config } from '../../config.ts'
 import { syncDirectory } from '../../db/file-store.ts'
 import { openDatabase } from '../../db/orm.ts'
+import { readCopy } from '../../db/read-copy.ts'
 import { settleFile } from '../../db/settle-file.ts'
 import { putAlso, syncFile, transferStored } from '../../db/stored-files.ts'
 import { appendEntry } from '../ledger/append-entry.ts'
@@ -21,6 +22,8 @@ export interface Restored {
   replaced: LedgerEnd | null
   /** the private key was taken from the backup, because none was there */
   privateKeyTaken: boolean
+  /** people of the restored database have second factors, and no key is there that opens them */
+  sealKeyMissing: boolean
 }
 
 interface LedgerEnd {
@@ -63,6 +66,15 @@ async function mark(database: string, { backup, proof, replaced, keptAside, now 
   await syncFile(database)
 }
 
+/** Takes a key's file along where none is. @returns whether it did */
+async function takeKey(from: string, to: string): Promise<boolean> {
+  if (existsSync(to)) return false
+  await copyFile(from, to)
+  await chmod(to, 0o600)
+  await syncFile(to)
+  return true
+}
+
 /**
  * Puts a backup in the place of the workplace's database, after it is proven. Nobody may serve the database meanwhile.
  *
@@ -73,7 +85,7 @@ async function mark(database: string, { backup, proof, replaced, keptAside, now 
  */
 export async function restoreBackup(config: Pick<Config, 'dataDir'>, backup: string, now: Date): Promise<Restored> {
   const { dataDir } = config
-  const { database, files, privateKey } = placesOf(config)
+  const { database, files, privateKey, sealKey } = placesOf(config)
   await mkdir(dataDir, { recursive: true, mode: 0o700 })
   const work = join(dataDir, 'restoring')
   const proof = await proveBackup(backup, work)
@@ -84,17 +96,14 @@ export async function restoreBackup(config: Pick<Config, 'dataDir'>, backup: str
     const keptAside = existsSync(database) ? await keepAside(database, dataDir, now) : null
     await mark(copy, { backup, proof, replaced, keptAside, now })
     await transferStored(join(work, inBackup.files), files, proof.record.files.sha256)
-    const privateKeyTaken = proof.record.privateKey && !existsSync(privateKey)
-    if (privateKeyTaken) {
-      await copyFile(join(backup, inBackup.privateKey), privateKey)
-      await chmod(privateKey, 0o600)
-      await syncFile(privateKey)
-    }
+    const privateKeyTaken = proof.record.privateKey && (await takeKey(join(backup, inBackup.privateKey), privateKey))
+    if (proof.record.sealKey) await takeKey(join(backup, inBackup.sealKey), sealKey)
+    const sealed = await readCopy(copy, (ask) => ask<{ n: number }>('select count(*) as n from person where second_factor is not null'))
     // A log left beside would be played into the new database.
     for (const left of [`${database}-wal`, `${database}-shm`]) await rm(left, { force: true })
     await rename(copy, database)
     await syncDirectory(dataDir)
-    return { proof, keptAside, replaced, privateKeyTaken }
+    return { proof, keptAside, replaced, privateKeyTaken, sealKeyMissing: sealed[0].n > 0 && !existsSync(sealKey) }
   } finally {
     await rm(work, { recursive: true, force: true })
   }

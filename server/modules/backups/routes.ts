@@ -19,6 +19,7 @@ export const backupRoutes: readonly RouteSpec[] = [
     path: '/backups',
     summary: 'make a backup',
     access: 'keep backups',
+    costly: true,
     body: Nothing,
     handle: async (call) => {
       const { services, person, now, held } = call

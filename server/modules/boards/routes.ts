@@ -50,6 +50,7 @@ export const boardRoutes: readonly RouteSpec[] = [
     path: '/boards.csv',
     summary: 'export boards',
     access: 'signed-in',
+    costly: true,
     benchKey: true,
     async handle(call) {
       const text = exportBoards(await presentBoards(call.em, await readable(call)))
@@ -107,6 +108,7 @@ export const boardRoutes: readonly RouteSpec[] = [
     path: '/machines/:machine/flashes/bulk',
     summary: 'record flashes of a whole machine',
     access: 'record flashes',
+    costly: true,
     place: onMachine,
     body: RecordMachine,
     handle: (call) =>
@@ -136,6 +138,7 @@ export const boardRoutes: readonly RouteSpec[] = [
     path: '/machines/:machine/boards/preview',
     summary: 'preview an import of boards',
     access: 'record flashes',
+    costly: true,
     place: onMachine,
     body: BoardTable,
     handle: async (call) => ({ body: (await previewImport(call.em, { machine: call.place.found, text: call.body.text, speaker: speakerOf(call) })).preview }),
@@ -145,6 +148,7 @@ export const boardRoutes: readonly RouteSpec[] = [
     path: '/machines/:machine/boards/import',
     summary: 'import boards',
     access: 'record flashes',
+    costly: true,
     place: onMachine,
     body: ImportBoards,
     handle: (call) =>

@@ -32,6 +32,7 @@ export const comparisonRoutes: readonly RouteSpec[] = [
     path: '/compare',
     summary: 'compare two releases, revisions, changes or read-backs',
     access: 'read',
+    costly: true,
     handle: async ({ em, held, query }) => ({ body: compareSides(await sideNamed(em, held, 'a', query.a), await sideNamed(em, held, 'b', query.b)) }),
   }),
   route({

@@ -21,12 +21,13 @@ export const ledgerRoutes: readonly RouteSpec[] = [
     access: 'read',
     handle: async ({ em, held, query }) => ({ body: await readLedger(em, held, { before: readBefore(query), act: readWord(query, 'act'), machine: readWord(query, 'machine'), person: readWord(query, 'person') }) }),
   }),
-  route({ method: 'get', path: '/ledger/verify', summary: 'verify the ledger', access: 'read', handle: async ({ em }) => ({ body: await verifyLedger(em) }) }),
+  route({ method: 'get', path: '/ledger/verify', summary: 'verify the ledger', access: 'read', costly: true, handle: async ({ em }) => ({ body: await verifyLedger(em) }) }),
   route({
     method: 'get',
     path: '/ledger/export.jsonl',
     summary: 'export the ledger',
     access: 'read',
+    costly: true,
     async handle({ em, held, now }) {
       const { bytes } = await exportLedger(em, held)
       return { bytes, type: jsonLines, fileName: `detent-ledger-${day(now)}.jsonl` }
@@ -37,6 +38,7 @@ export const ledgerRoutes: readonly RouteSpec[] = [
     path: '/ledger/export.csv',
     summary: 'export the ledger as a table',
     access: 'read',
+    costly: true,
     handle: async ({ em, held, now }) => ({ bytes: await exportCsv(em, held), type: 'text/csv; charset=utf-8', fileName: `detent-ledger-${day(now)}.csv` }),
   }),
   route({ method: 'get', path: '/ledger/checkpoints', summary: 'read the checkpoints of the ledger', access: 'read', handle: async ({ em, held }) => ({ body: await readCheckpoints(em, held) }) }),
@@ -45,6 +47,7 @@ export const ledgerRoutes: readonly RouteSpec[] = [
     path: '/ledger/checkpoints.jsonl',
     summary: 'export the checkpoints of the ledger',
     access: 'read',
+    costly: true,
     handle: async ({ em, now }) => ({ bytes: await exportCheckpoints(em), type: jsonLines, fileName: `detent-checkpoints-${day(now)}.jsonl` }),
   }),
   route({
@@ -52,6 +55,7 @@ export const ledgerRoutes: readonly RouteSpec[] = [
     path: '/ledger/checkpoints',
     summary: 'sign a checkpoint of the ledger',
     access: 'keep backups',
+    costly: true,
     body: Nothing,
     handle: (call) =>
       call.act(async (em) => {
@@ -60,12 +64,13 @@ export const ledgerRoutes: readonly RouteSpec[] = [
         return { status: 201, body: await readCheckpoints(em, call.held) }
       }),
   }),
-  route({ method: 'get', path: '/ledger/checkpoints/verify', summary: 'hold its own checkpoints against the ledger', access: 'read', handle: async ({ em }) => ({ body: await verifyOwnCheckpoints(em) }) }),
+  route({ method: 'get', path: '/ledger/checkpoints/verify', summary: 'hold its own checkpoints against the ledger', access: 'read', costly: true, handle: async ({ em }) => ({ body: await verifyOwnCheckpoints(em) }) }),
   route({
     method: 'post',
     path: '/ledger/checkpoints/verify',
     summary: 'hold a file of checkpoints against the ledger',
     access: 'read',
+    costly: true,
     body: HeldCheckpoints,
     handle: async ({ em, body }) => ({ body: await verifyCheckpointFile(em, body.checkpoints) }),
   }),

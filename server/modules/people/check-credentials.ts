@@ -1,5 +1,5 @@
 import type { EntityManager } from '@mikro-orm/core'
-import { passwordMatches } from './passwords.ts'
+import { hashKnown, isOutdated, passwordMatches } from './passwords.ts'
 import { Person } from './person.entity.ts'
 
 export const normalEmail = (email: string) => email.trim().toLowerCase()
@@ -8,7 +8,9 @@ export const normalEmail = (email: string) => email.trim().toLowerCase()
 export async function checkCredentials(em: EntityManager, email: string, password: string): Promise<Person | null> {
   const person = await em.findOne(Person, { email: normalEmail(email) }, { populate: ['passwordHash'] })
   const right = await passwordMatches(person?.passwordHash, password)
-  return right && person && person.disabledAt === null ? person : null
+  if (!right || !person || person.disabledAt !== null) return null
+  if (isOutdated(person.passwordHash)) await em.nativeUpdate(Person, { id: person.id, passwordHash: person.passwordHash }, { passwordHash: await hashKnown(password) })
+  return person
 }
 
 /** Whether a signed-in person re-entered their own password. */

@@ -1,10 +1,12 @@
 import type { EntityManager } from '@mikro-orm/core'
+import type { SecondFactorRule } from '../../../shared/contract/second-factor.ts'
 import { DomainError } from '../../http/errors.ts'
 import { appendEntry } from '../ledger/append-entry.ts'
 import { queueMail } from '../mail/queue-mail.ts'
 import { freshPerson } from './find-person.ts'
 import { heldRoles } from './held-roles.ts'
 import { roleWords, signingConfirmedLetter } from './letters.ts'
+import { isSigning, underRule } from './permissions.ts'
 import type { Person } from './person.entity.ts'
 import { releaseSigning } from './person.entity.ts'
 import { confirm, RoleGrant } from './role-grant.entity.ts'
@@ -15,15 +17,18 @@ import { anySigner, mayConfirm, waitingOf, waits } from './signing-right.ts'
  *
  * @throws DomainError own-work, not-permitted (both recorded); wrong-state when nothing waits
  */
-export async function confirmSigning(em: EntityManager, { of, person: by, now }: { of: Person; person: Person; now: Date }): Promise<void> {
+export async function confirmSigning(em: EntityManager, { of, person: by, rule, now }: { of: Person; person: Person; rule: SecondFactorRule; now: Date }): Promise<void> {
   const signer = await freshPerson(em, of)
   const grants = await em.find(RoleGrant, { person: signer, endedAt: null }, { populate: ['machine'], refresh: true })
-  const waiting = await waitingOf(em, signer, grants)
+  const waiting = await waitingOf(em, signer, grants, rule)
   const hasSigner = await anySigner(em)
-  const answer = mayConfirm({ person: by, held: await heldRoles(em, by) }, waiting, hasSigner)
+  const held = underRule(rule, by, await heldRoles(em, by))
+  const answer = mayConfirm({ person: by, held }, waiting, hasSigner)
   if (!answer.allowed) {
     if (by.id === signer.id) throw new DomainError('own-work', `${answer.why} Nothing was confirmed.`, { recorded: true })
-    const stateOnly = !waits(waiting) || waiting.invited || Boolean(signer.disabledAt)
+    const signing = held.filter((h) => isSigning(h.role))
+    if (signing.length > 0 && signing.every((h) => h.lacksSecondFactor)) throw new DomainError('second-factor-missing', `${answer.why} Nothing was confirmed.`, { recorded: true })
+    const stateOnly = !waits(waiting) || waiting.invited || waiting.lacksSecondFactor || Boolean(signer.disabledAt)
     throw new DomainError(stateOnly ? 'wrong-state' : 'not-permitted', `${answer.why} Nothing was confirmed.`, { recorded: !stateOnly })
   }
   const roles = waiting.grants.filter((g) => !g.confirmedAt).map((g) => roleWords(g.role, g.machine?.key ?? null))

@@ -38,3 +38,20 @@ export const signingConfirmedLetter = (person: Person, by: Person) => letter(per
 export const disabledLetter = (person: Person, by: Person) => letter(person, 'You can no longer sign in to Detent', `${by.name} disabled your access. What you did stays under your name.`)
 
 export const enabledLetter = (person: Person, by: Person) => letter(person, 'You can sign in to Detent again', `${by.name} enabled your access again, with the password you had.`)
+
+export const secondFactorSetLetter = (person: Person) => letter(person, 'A second factor was set up in Detent', 'You set up a second factor: Detent asks for its code when you sign in. Your other sessions have ended.', tell)
+
+export const secondFactorRemovedLetter = (person: Person) => letter(person, 'Your second factor was removed in Detent', 'You removed your second factor: your password alone signs you in now. Your other sessions have ended.', tell)
+
+export const secondFactorResetLetter = (person: Person, by: Person | null, held: boolean) =>
+  letter(
+    person,
+    'Your second factor was reset in Detent',
+    `${by ? by.name : 'The operator of the server'} took your second factor away: your password alone signs you in now. All your sessions have ended. Set up another one on your account page.`,
+    ...(held ? ['Your signatures wait until another signer confirms you.'] : []),
+    tell,
+  )
+
+export const recoveryCodesMadeLetter = (person: Person) => letter(person, 'New recovery codes in Detent', 'You made new recovery codes; the ones before are no longer good.', tell)
+
+export const recoveryCodeUsedLetter = (person: Person, left: number) => letter(person, 'A recovery code was used in Detent', `One of your recovery codes was used in the place of your second factor; ${left === 0 ? 'none is' : left === 1 ? 'one is' : `${left} are`} left. New ones are made on your account page.`, tell)

@@ -11,6 +11,13 @@ export const Person = defineEntity({
     passwordHash: p.string().nullable().hidden().lazy(true, false),
     /** why the person's signatures are not accepted until another signer confirms them; null when they are */
     signingHold: p.string().nullable(),
+    /** the administrator whose reset of the second factor holds them; never the one to confirm */
+    signingHeldBy: p.integer().nullable(),
+    /** the second factor's secret, sealed with a key outside the database; null when there is none */
+    secondFactor: p.string().nullable().lazy(true, false),
+    secondFactorAt: p.datetime().nullable(),
+    /** the time step of the last code taken: neither it nor an earlier one is taken again */
+    secondFactorStep: p.integer().nullable(),
     disabledAt: p.datetime().nullable(),
     createdAt: p.datetime(),
   },
@@ -37,4 +44,21 @@ export function holdSigning(person: Person, why: string) {
 
 export function releaseSigning(person: Person) {
   person.signingHold = null
+  person.signingHeldBy = null
+}
+
+/** @param sealed  the secret, closed for this person */
+export function putSecondFactor(person: Person, { sealed, step }: { sealed: string; step: number }, now: Date) {
+  if (person.secondFactorAt) throw new DomainError('wrong-state', 'A second factor is set up already. Nothing was altered; remove it first, then set up another.')
+  person.secondFactor = sealed
+  person.secondFactorAt = now
+  person.secondFactorStep = step
+}
+
+/** @throws DomainError wrong-state when there is none */
+export function dropSecondFactor(person: Person) {
+  if (!person.secondFactorAt) throw new DomainError('wrong-state', `${person.name} has no second factor. Nothing was altered.`)
+  person.secondFactor = null
+  person.secondFactorAt = null
+  person.secondFactorStep = null
 }

@@ -1,16 +1,20 @@
 import type { EntityManager } from '@mikro-orm/core'
 import type { Allowed, GrantView, Me, PersonView } from '../../../shared/contract/people.ts'
+import type { SecondFactorRule } from '../../../shared/contract/second-factor.ts'
 import { administrators } from './last-administrator.ts'
 import { isInvited } from './make-link.ts'
-import { acts, isSigning, may, type HeldRole } from './permissions.ts'
+import { acts, isSigning, lacksSecondFactor, may, type HeldRole } from './permissions.ts'
 import { Person } from './person.entity.ts'
 import { RoleGrant } from './role-grant.entity.ts'
+import { codesLeft } from './second-factor/recovery-codes.ts'
 import { anySigner, mayConfirm, waitingOf } from './signing-right.ts'
 
 /** Who reads, and what they hold. */
 export interface Reader {
   person: Person
   held: readonly HeldRole[]
+  /** the workplace's; left out where no `may` of the answer is used */
+  rule?: SecondFactorRule
 }
 
 const presentGrant = (person: Person, g: RoleGrant): GrantView => ({
@@ -21,7 +25,7 @@ const presentGrant = (person: Person, g: RoleGrant): GrantView => ({
 })
 
 /** What the person may do, by machine: the client hides by it, the server decides again at each act. */
-export async function presentMe(em: EntityManager, { person, held }: Reader, token: string): Promise<Me> {
+export async function presentMe(em: EntityManager, { person, held, rule = 'optional' }: Reader, token: string): Promise<Me> {
   const grants = await em.find(RoleGrant, { person, endedAt: null }, { populate: ['machine'], orderBy: { id: 'asc' } })
   const machines = [null, ...new Set(held.flatMap((h) => (h.machine === null ? [] : [h.machine])))]
   return {
@@ -30,6 +34,12 @@ export async function presentMe(em: EntityManager, { person, held }: Reader, tok
     email: person.email,
     roles: grants.map((g) => presentGrant(person, g)),
     signingHold: person.signingHold ?? null,
+    secondFactor: {
+      since: person.secondFactorAt?.toISOString() ?? null,
+      recoveryCodesLeft: person.secondFactorAt ? await codesLeft(em, person) : 0,
+      missing: lacksSecondFactor(rule, person, held),
+      rule,
+    },
     acts: Object.fromEntries(machines.map((m) => [m ?? '*', acts.filter((a) => may(held, a, m).allowed)])),
     token,
   }
@@ -67,6 +77,7 @@ export async function presentPeople(em: EntityManager, people: readonly Person[]
       email: keeps.allowed || reader.person.id === person.id ? person.email : null,
       state: disabled ? 'disabled' : isInvited(person) ? 'invited' : 'active',
       signingHold: person.signingHold ?? null,
+      secondFactor: keeps.allowed || reader.person.id === person.id || reader.held.some((h) => isSigning(h.role)) ? Boolean(person.secondFactorAt) : null,
       roles: theirs.map((g) => presentGrant(person, g)),
       may: {
         grantRoles: first(refused, isDisabled),
@@ -74,7 +85,8 @@ export async function presentPeople(em: EntityManager, people: readonly Person[]
         disable: first(refused, isDisabled, onlyKeeper),
         enable: first(refused, !disabled && `${person.name} is not disabled.`),
         reset: first(refused, isDisabled),
-        confirmSigning: mayConfirm(reader, await waitingOf(em, person, theirs), hasSigner),
+        resetSecondFactor: first(refused, !person.secondFactorAt && `${person.name} has no second factor.`, person.id === reader.person.id && 'Remove your own on your account page.'),
+        confirmSigning: mayConfirm(reader, await waitingOf(em, person, theirs, reader.rule ?? 'optional'), hasSigner),
       },
     })
   }

@@ -2,8 +2,9 @@ import type { EntityManager } from '@mikro-orm/core'
 import { signingRoles, type Allowed } from '../../../shared/contract/people.ts'
 import { Link } from './link.entity.ts'
 import { isInvited } from './make-link.ts'
+import type { SecondFactorRule } from '../../../shared/contract/second-factor.ts'
 import type { HeldRole } from './permissions.ts'
-import { isSigning } from './permissions.ts'
+import { isSigning, lacksSecondFactor } from './permissions.ts'
 import type { Person } from './person.entity.ts'
 import { RoleGrant } from './role-grant.entity.ts'
 
@@ -25,8 +26,10 @@ export interface Waiting {
   invited: boolean
   /** signing roles held now */
   grants: RoleGrant[]
-  /** the administrator who asked for the reset that the hold comes from */
-  resetAskedBy: number | null
+  /** the administrators who asked for the resets that the hold comes from */
+  resetBy: number[]
+  /** the workplace asks for a second factor, and none is set up */
+  lacksSecondFactor: boolean
 }
 
 export const waits = ({ person, grants }: Waiting) => grants.length > 0 && (Boolean(person.signingHold) || grants.some((g) => !g.confirmedAt))
@@ -38,12 +41,14 @@ export async function lastAskedBy(em: EntityManager, person: Person): Promise<nu
 }
 
 /** @param grants  roles the person holds now */
-export async function waitingOf(em: EntityManager, person: Person, grants: readonly RoleGrant[]): Promise<Waiting> {
+export async function waitingOf(em: EntityManager, person: Person, grants: readonly RoleGrant[], rule: SecondFactorRule): Promise<Waiting> {
+  const resets = person.signingHold ? [await lastAskedBy(em, person), person.signingHeldBy] : []
   return {
     person,
     invited: isInvited(person),
     grants: grants.filter((g) => isSigning(g.role)),
-    resetAskedBy: person.signingHold ? await lastAskedBy(em, person) : null,
+    resetBy: resets.filter((id) => typeof id === 'number'),
+    lacksSecondFactor: lacksSecondFactor(rule, person, grants),
   }
 }
 
@@ -59,11 +64,13 @@ export function mayConfirm(by: { person: Person; held: readonly HeldRole[] }, wa
   if (by.person.id === person.id) return refuse('Nobody confirms their own signing right: another signer does.')
   const signing = by.held.filter((h) => isSigning(h.role))
   if (signing.length === 0) return refuse('This takes a signing role: peer reviewer or release manager.')
+  if (signing.every((h) => h.lacksSecondFactor)) return refuse('Your own signing role waits until you set up a second factor, on your account page.')
   if (workplaceHasSigner && !signing.some((h) => h.confirmed)) return refuse('Your own signing role waits for confirmation.')
   if (!waits(waiting)) return refuse(`${person.name} has no signing right that waits for confirmation.`)
   if (person.disabledAt) return refuse(`${person.name} is disabled.`)
   if (waiting.invited) return refuse(`${person.name} has not set a password yet; confirm after that, so that you know who holds the right.`)
+  if (waiting.lacksSecondFactor) return refuse(`${person.name} has not set up a second factor yet; confirm after that, so that you know who holds the right.`)
   if (waiting.grants.some((g) => !g.confirmedAt && g.grantedBy?.id === by.person.id)) return refuse('You granted this role: another signer confirms it.')
-  if (waiting.resetAskedBy === by.person.id) return refuse('You asked for the reset: another signer confirms it.')
+  if (waiting.resetBy.includes(by.person.id)) return refuse('You asked for the reset: another signer confirms it.')
   return { allowed: true }
 }

@@ -37,5 +37,7 @@ export const throttles = () => ({
     throttle(5, 15 * minute, (req) => `${accountOf(req)} ${addressOf(req)}`, { failuresOnly: false }),
     throttle(50, 15 * minute, addressOf, { failuresOnly: false }),
   ],
+  /** of one person wherever they come from: the password was right before, so that no stranger gets here */
+  code: [throttle(10, 15 * minute, (req) => (req.session.pending ? `person ${req.session.pending.person}` : addressOf(req)), { failuresOnly: true })],
   links: [throttle(100, 15 * minute, addressOf, { failuresOnly: true })],
 })

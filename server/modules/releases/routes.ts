@@ -60,6 +60,7 @@ export const releaseRoutes: readonly RouteSpec[] = [
     path: '/machines/:machine/releases/:version/kit.zip',
     summary: 'download the kit of a release',
     access: 'download',
+    costly: true,
     benchKey: true,
     place: onRelease,
     handle: async ({ services, em, place, query, held, person, benchKey, now }) => {

@@ -39,9 +39,9 @@ describe('changing the own password', () => {
   it('takes no short one: fourteen characters are refused, fifteen taken, counted as people count', async () => {
     const w = await aWorkplace()
     const here = await w.as('builder')
-    const { body } = await here.post('/api/account/password', { current: password, next: '😀'.repeat(14) }).expect(422)
+    const { body } = await here.post('/api/account/password', { current: password, next: '😀🦆🔩🌊🦿🐚🔧🌾🦀🪵🐌🌫🪶🦉' }).expect(422)
     expect(body).toMatchObject({ type: '/problems/weak-password', errors: [{ pointer: '/next' }] })
-    await here.post('/api/account/password', { current: password, next: '😀'.repeat(15) }).expect(200)
+    await here.post('/api/account/password', { current: password, next: '😀🦆🔩🌊🦿🐚🔧🌾🦀🪵🐌🌫🪶🦉🐟' }).expect(200)
   })
 })
 

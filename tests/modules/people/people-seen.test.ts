@@ -42,7 +42,7 @@ describe('who sees whom', () => {
     expect((await theirs.get(`/api/people/${person.id}`)).body.email).toBe(person.email)
     const { body } = await other.get(`/api/people/${person.id}`)
     expect(body.email).toBeNull()
-    expect(Object.keys(body).sort()).toEqual(['email', 'id', 'may', 'name', 'roles', 'signingHold', 'state'])
+    expect(Object.keys(body).sort()).toEqual(['email', 'id', 'may', 'name', 'roles', 'secondFactor', 'signingHold', 'state'])
   })
 
   it('shows nobody to who holds no role', async () => {

@@ -22,7 +22,7 @@ describe('what the sign-in page reads', () => {
   it('shows nobody in a real workplace', async () => {
     const w = await aWorkplace()
     const { body } = await supertest(w.app).get('/api/workplace').expect(200)
-    expect(body).toEqual({ mode: 'workplace', signIns: [] })
+    expect(body).toEqual({ mode: 'workplace', secondFactor: 'optional', signIns: [] })
   })
 })
 
@@ -72,7 +72,7 @@ describe('signing in', () => {
     const person = await w.person('Yuna Brandt', [['observer', null]])
     const { headers } = await supertest(w.app).post('/api/session').set('X-Forwarded-Proto', 'https').send({ email: person.email, password }).expect(200)
     expect((headers['set-cookie'] as unknown as string[])[0]).toMatch(/^__Host-detent=.*; HttpOnly; Secure; SameSite=Lax$/)
-    expect(headers['strict-transport-security']).toBe('max-age=31536000')
+    expect(headers['strict-transport-security']).toBe('max-age=31536000; includeSubDomains')
   })
 
   it('stops guessing at one account without locking it for others, and counts no success', async () => {

@@ -29,6 +29,7 @@ export function StateOfPerson({ person }: { person: PersonView }) {
     <>
       <span className={person.state === 'disabled' ? 'text-ink-2' : ''}>{person.state}</span>
       {waits && person.state !== 'disabled' && <span className="text-13 text-plum">, signing waits for confirmation</span>}
+      {person.secondFactor === true && person.state !== 'disabled' && <span className="text-13 text-ink-2">, second factor</span>}
     </>
   )
 }

@@ -11,6 +11,7 @@ import type { PersonAct } from '../mutations.ts'
 export function PersonActs({ person }: { person: PersonView }) {
   const personAct = usePersonAct(person.id)
   const [disabling, setDisabling] = useState(false)
+  const [resetting, setResetting] = useState(false)
   const { may } = person
   const pending = (what: PersonAct) => personAct.isPending && personAct.variables === what
   return (
@@ -18,6 +19,9 @@ export function PersonActs({ person }: { person: PersonView }) {
       <div className="flex flex-wrap gap-2">
         <Button unavailable={refusal(may.reset)} pending={pending('reset')} onClick={() => personAct.mutate('reset')}>
           {person.state === 'invited' ? 'Send the invitation again' : 'Send a reset link'}
+        </Button>
+        <Button unavailable={refusal(may.resetSecondFactor)} onClick={() => setResetting(true)}>
+          Reset the second factor…
         </Button>
         {person.state === 'disabled' ? (
           <Button unavailable={refusal(may.enable)} pending={pending('enable')} onClick={() => personAct.mutate('enable')}>
@@ -34,7 +38,20 @@ export function PersonActs({ person }: { person: PersonView }) {
           A link was mailed to {person.email ?? person.name}.
         </p>
       )}
-      {!disabling && <ProblemPanel className="mt-2" problem={personAct.error} />}
+      {!disabling && !resetting && <ProblemPanel className="mt-2" problem={personAct.error} />}
+      <ConfirmByName
+        open={resetting}
+        onClose={() => setResetting(false)}
+        title={`Reset the second factor of ${person.name}`}
+        name={person.name}
+        noun="person"
+        act="Reset it"
+        pending={pending('second-factor/reset')}
+        onConfirm={() => personAct.mutate('second-factor/reset', { onSuccess: () => setResetting(false) })}
+      >
+        <p>For somebody who lost app and recovery codes, after making sure, in person or by voice, that it is them. Their password alone signs them in then, all their sessions end, and they are told by mail. If they sign, another signer has to confirm them.</p>
+        <ProblemPanel problem={personAct.error} />
+      </ConfirmByName>
       <ConfirmByName
         open={disabling}
         onClose={() => setDisabling(false)}

@@ -6,6 +6,7 @@ import { Button } from '../../../components/ui/button.tsx'
 import { PasswordField } from '../../../components/ui/password-field.tsx'
 import { TextField } from '../../../components/ui/text-field.tsx'
 import { useSignIn } from '../mutations.ts'
+import { CodeStep } from './code-step.tsx'
 
 export interface SignInFormProps {
   email: string
@@ -21,6 +22,18 @@ export interface SignInFormProps {
 export function SignInForm({ email, password, onEmail, onPassword, fixedEmail = false, onSignedIn, children }: SignInFormProps) {
   const signIn = useSignIn()
   const [missing, setMissing] = useState(false)
+  const [awaited, setAwaited] = useState(false)
+  if (awaited)
+    return (
+      <CodeStep
+        email={email.trim()}
+        onSignedIn={onSignedIn}
+        onBack={() => {
+          setAwaited(false)
+          onPassword('')
+        }}
+      />
+    )
   return (
     <form
       noValidate
@@ -29,7 +42,7 @@ export function SignInForm({ email, password, onEmail, onPassword, fixedEmail = 
         event.preventDefault()
         const complete = email.trim() !== '' && password !== ''
         setMissing(!complete)
-        if (complete && !signIn.isPending) signIn.mutate({ email: email.trim(), password }, { onSuccess: onSignedIn })
+        if (complete && !signIn.isPending) signIn.mutate({ email: email.trim(), password }, { onSuccess: (me) => (me ? onSignedIn(me) : setAwaited(true)) })
       }}
     >
       {fixedEmail ? (
