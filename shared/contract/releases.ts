@@ -58,6 +58,14 @@ export interface ReleaseJointView {
   imageBytes: number
 }
 
+/** A concession that a release stands on, as it stands now. */
+export interface StandingConcession extends ConcessionRequest {
+  /** boards flashed with the release at the joints concerned, as recorded; null without a count */
+  used: number | null
+  /** one that is expired or used up stops the downloads */
+  state: 'holds' | 'expired' | 'used up'
+}
+
 export interface ReleaseView extends ReleaseSummary {
   reason: string
   contentHash: string
@@ -65,7 +73,7 @@ export interface ReleaseView extends ReleaseSummary {
   step: VersionStep
   stepReason: string
   signatures: SignatureView[]
-  concessions: ConcessionRequest[]
+  concessions: StandingConcession[]
   items: ReleaseJointView[]
   withdrawal: { reason: string; by: string; at: string } | null
   /** the signed manifest that its kit proves itself by; null for a release made before kits were kept */

@@ -1,7 +1,9 @@
 import type { EntityManager } from '@mikro-orm/core'
+import { DomainError } from '../../http/errors.ts'
 import type { Joint } from '../machines/joint.entity.ts'
 import type { Machine } from '../machines/machine.entity.ts'
 import type { Release } from '../releases/release.entity.ts'
+import { overdrawnBy } from '../releases/standing-concessions.ts'
 import { flash, type Board } from './board.entity.ts'
 import type { ComparedDump } from './compare-dump.ts'
 import { firmwareIn } from './locate.ts'
@@ -18,16 +20,25 @@ export interface Flash {
   readBack: ComparedDump | null
 }
 
+/** A concession for a number of boards is no concession for one more. @throws DomainError wrong-state, recorded in the ledger */
+async function mustBeConceded(em: EntityManager, { release, joint, serial, board }: { release: Release; joint: Joint; serial: string; board: number | null }) {
+  const overdrawn = await overdrawnBy(em, release, joint.key, board)
+  if (!overdrawn) return
+  const { characteristic, limit, count } = overdrawn
+  throw new DomainError('wrong-state', `The concession for ${characteristic} (${limit}) was for ${count} ${count === 1 ? 'board' : 'boards'} with ${release.version}, and as many are on record; ${serial} would be one more. The flash was not recorded. Keep ${serial} off ${joint.name} until the concession is renewed in a change that two people sign; if it holds these bytes already, its read-back puts that on record.`, { recorded: true })
+}
+
 /**
  * Records that a board was flashed with a release at a joint, with its read-back when there is one.
  *
  * It records what happened, be the release withdrawn or outdated: the state says so. The board that sat at the joint leaves it.
  *
- * @throws DomainError wrong-state for a retired board or machine; not-permitted when the board is on record where the speaker may not record
+ * @throws DomainError wrong-state for a retired board or machine, or one board more than a concession is for; not-permitted when the board is on record where the speaker may not record
  */
 export async function recordFlash(em: EntityManager, { machine, joint, release, serial, readBack }: Flash, speaker: Speaker): Promise<Board> {
   const firmware = firmwareIn(release, joint, '/joint')
   const { board, isNew } = await boardOf(em, machine, serial, speaker)
+  await mustBeConceded(em, { release, joint, serial, board: isNew ? null : board.id })
   const { moved, from } = await seatAt(em, board, machine, joint, speaker)
   if (moved && !isNew) await tell(em, board, speaker, { kind: 'moved', joint, from })
   flash(board, { release, imageOf: joint, firmware }, { by: speaker.person.name, at: speaker.now })

@@ -5,7 +5,7 @@ import type { HeldRole } from '../people/permissions.ts'
 import { mayDownload } from './permissions.ts'
 import { presentReleases } from './present.ts'
 import type { Release } from './release.entity.ts'
-import { expiredAt, standingConcessions } from './standing-concessions.ts'
+import { standingConcessions, whyNoMore } from './standing-concessions.ts'
 
 interface Asking {
   held: readonly HeldRole[]
@@ -22,19 +22,20 @@ export interface Taking {
   reason: string | null
 }
 
+/** Why downloads of the release are stopped: its concessions that hold no more, in words. */
+export const stopsOf = async (em: EntityManager, release: Release, now: Date): Promise<string[]> => (await standingConcessions(em, release, now)).flatMap((c) => whyNoMore(c) ?? [])
+
 /**
  * May somebody fetch files of this release now, and how are they marked?
  *
- * @throws DomainError not-permitted, wrong-state (an expired concession), invalid-request (a superseded release without a reason)
+ * @throws DomainError not-permitted, wrong-state (a concession that expired or is used up), invalid-request (a superseded release without a reason)
  */
 export async function mustBeTakeable(em: EntityManager, release: Release, { held, reason: given, now }: Asking): Promise<Taking> {
   const [{ state }] = await presentReleases(em, [release])
   const allowed = mayDownload(release.machine.key, held, state)
   if (!allowed.allowed) throw new DomainError('not-permitted', `${allowed.why} Nothing was downloaded.`, { recorded: true })
-  await em.populate(release, ['content'] as never)
-  const [expired] = expiredAt(standingConcessions(release), now)
-  if (expired)
-    throw new DomainError('wrong-state', `The concession for ${expired.characteristic} (${expired.limit}) held until ${expired.until}; it stops the downloads of ${release.machine.name} ${release.version}. Nothing was downloaded; renew it in a change that two people sign, or release without it.`)
+  const [why] = await stopsOf(em, release, now)
+  if (why) throw new DomainError('wrong-state', `${why}; it stops the downloads of ${release.machine.name} ${release.version}. Nothing was downloaded; renew it in a change that two people sign, or release without it.`)
   const reason = given?.trim().slice(0, 2000) || null
   if (state === 'superseded' && reason === null)
     throw new DomainError('invalid-request', `${release.machine.name} ${release.version} is superseded. Nothing was downloaded; say why you need it, or take the current release.`, { fields: [{ pointer: '/reason', detail: 'is needed for a superseded release' }] })

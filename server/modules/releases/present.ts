@@ -1,6 +1,6 @@
 import type { EntityManager } from '@mikro-orm/core'
 import type { Allowed } from '../../../shared/contract/people.ts'
-import type { ReleaseJointView, ReleaseSummary, ReleaseView } from '../../../shared/contract/releases.ts'
+import type { ReleaseJointView, ReleaseSummary, ReleaseView, StandingConcession } from '../../../shared/contract/releases.ts'
 import { Change } from '../changes/change.entity.ts'
 import { presentSignature } from '../changes/present.ts'
 import { versionsNamed } from '../firmware/firmware-authors.ts'
@@ -11,7 +11,7 @@ import { mayDownload, mayWithdraw } from './permissions.ts'
 import { ReleaseJoint } from './release-joint.entity.ts'
 import { ReleaseKit } from './release-kit.entity.ts'
 import { Release } from './release.entity.ts'
-import { expiredAt, standingConcessions } from './standing-concessions.ts'
+import { standingConcessions, whyNoMore } from './standing-concessions.ts'
 import { unfitJoints } from './unfit-joints.ts'
 import { Withdrawal } from './withdrawal.entity.ts'
 
@@ -37,12 +37,11 @@ export async function presentReleases(em: EntityManager, releases: readonly Rele
 }
 
 /** Whether somebody may download, all told: by role and state, and by what the release stands on. */
-async function mayTake(em: EntityManager, release: Release, held: readonly HeldRole[], state: ReleaseSummary['state'], now: Date): Promise<Allowed> {
+function mayTake(release: Release, held: readonly HeldRole[], state: ReleaseSummary['state'], concessions: readonly StandingConcession[]): Allowed {
   const role = mayDownload(release.machine.key, held, state)
   if (!role.allowed) return role
-  await em.populate(release, ['content'] as never)
-  const [expired] = expiredAt(standingConcessions(release), now)
-  return expired ? { allowed: false, why: `The concession for ${expired.characteristic} held until ${expired.until}; it stops the downloads until it is renewed.` } : role
+  const why = concessions.map(whyNoMore).find((w) => w !== null)
+  return why ? { allowed: false, why: `${why}; it stops the downloads until it is renewed or a release does without it.` } : role
 }
 
 export async function presentRelease(em: EntityManager, release: Release, held: readonly HeldRole[], now: Date): Promise<ReleaseView> {
@@ -55,6 +54,7 @@ export async function presentRelease(em: EntityManager, release: Release, held: 
   const withdrawal = await em.findOne(Withdrawal, { release }, { populate: ['person'] })
   const kit = await em.findOne(ReleaseKit, { release })
   const versions = await versionsNamed(em, [...new Set(Object.values(release.set.joints).map((j) => j.firmware))])
+  const concessions = await standingConcessions(em, release, now)
   const items = rows.map((row): ReleaseJointView => {
     const j = release.set.joints[row.joint.key]
     return { joint: row.joint.key, name: j.name, family: release.set.families[j.family].name, bus: release.set.buses[j.bus].name, address: j.address, firmware: j.firmware, revision: row.revision.number, isNew: !earlier.has(row.revision.id), imageSha256: row.imageSha256, imageBytes: row.image.length }
@@ -67,13 +67,13 @@ export async function presentRelease(em: EntityManager, release: Release, held: 
     step: release.step,
     stepReason: release.stepReason,
     signatures: signatures.map((s) => presentSignature(s, change.round)),
-    concessions: change.concessions,
+    concessions,
     items,
     withdrawal: withdrawal ? { reason: withdrawal.reason, by: withdrawal.person.name, at: withdrawal.at.toISOString() } : null,
     kit: kit && { manifestSha256: kit.manifestSha256, keyId: kit.keyId, bytes: kit.zipBytes },
     firmwareImages: versions.filter((v) => v.imageSha256).map(firmwareName).sort(),
     needsReason: summary.state === 'superseded',
     unfit: summary.state === 'withdrawn' ? [] : await unfitJoints(em, release),
-    may: { download: await mayTake(em, release, held, summary.state, now), withdraw: mayWithdraw(release.machine.key, held, summary.state) },
+    may: { download: mayTake(release, held, summary.state, concessions), withdraw: mayWithdraw(release.machine.key, held, summary.state) },
   }
 }

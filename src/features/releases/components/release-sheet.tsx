@@ -56,7 +56,10 @@ export function ReleaseSheet({ release, rail }: ReleaseSheetProps) {
             <ul>
               {release.concessions.map((c) => (
                 <li key={c.finding}>
-                  <span className="text-plum">{c.characteristic}</span>, {c.limit}, {c.until ? <>until <Time at={`${c.until}T12:00:00`} style="date" /></> : `for ${count(c.count ?? 0, 'board')}`}: {c.reason}
+                  <span className="text-plum">{c.characteristic}</span>, {c.limit}, {c.until && <>until <Time at={`${c.until}T12:00:00`} style="date" /></>}
+                  {c.until && c.count !== null && ', '}
+                  {c.count !== null && `for ${count(c.count, 'board')}, ${c.used === 0 ? 'none' : c.used} on record`}: {c.reason}
+                  {c.state !== 'holds' && <strong className="font-medium text-oxide"> {c.state === 'expired' ? 'It expired' : 'It is used up'}; the downloads are stopped.</strong>}
                 </li>
               ))}
             </ul>
