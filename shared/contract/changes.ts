@@ -93,7 +93,7 @@ export interface ChangeView extends ChangeSummary {
   signatures: SignatureView[]
   /** peer reviews that the policy in force asks for */
   peerReviewsNeeded: number
-  may: Record<'edit' | 'submit' | 'cancel' | 'return' | 'signPeerReview' | 'release' | 'bringUpToDate' | 'inviteWriter', Allowed>
+  may: Record<'edit' | 'submit' | 'cancel' | 'return' | 'signPeerReview' | 'release' | 'bringUpToDate' | 'inviteWriter' | 'takeBenchImage', Allowed>
 }
 
 export interface DraftPointView {

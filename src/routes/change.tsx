@@ -18,6 +18,7 @@ import { versionQuery } from '../features/reviews/queries.ts'
 import { useChangeEvents } from '../features/reviews/use-change-events.ts'
 import { useMe } from '../lib/me.ts'
 import { queryClient } from '../lib/query-client.ts'
+import { ChangeTools } from './change-tools.tsx'
 
 export async function loader({ params }: LoaderFunctionArgs) {
   const change = await queryClient.ensureQueryData(changeQuery(params.change!))
@@ -81,7 +82,12 @@ function useLiveCheck({ state, joints }: Looked) {
   return {
     check: query.data,
     stale,
-    panel: <CheckPanel change={view.key} query={query} stale={stale && query.data !== undefined} joints={joints} nameOf={nameIn({ set: state.set, base: view.base })} reportTo={paths.changeCheck(view.key)} note={(f) => (view.concessions.some((c) => c.finding === f.key) ? <p className="text-12 text-plum">concession requested</p> : null)} />,
+    panel: (
+      <>
+        <CheckPanel change={view.key} query={query} stale={stale && query.data !== undefined} joints={joints} nameOf={nameIn({ set: state.set, base: view.base })} reportTo={paths.changeCheck(view.key)} note={(f) => (view.concessions.some((c) => c.finding === f.key) ? <p className="text-12 text-plum">concession requested</p> : null)} />
+        <ChangeTools change={view} joints={joints} unavailable={state.saving === 'saved' ? null : 'The values are being saved.'} />
+      </>
+    ),
     proposes: (
       <>
         {version && !stale && <>, proposes <span className="num">{version.version}</span></>}
@@ -93,5 +99,10 @@ function useLiveCheck({ state, joints }: Looked) {
 
 function Reading({ change }: { change: ChangeView }) {
   const query = useQuery(checkQuery(change.key, change.revision))
-  return <ChangeReader change={change} findings={query.data?.findings ?? []} panel={(joints) => <CheckPanel change={change.key} query={query} stale={query.isPlaceholderData} joints={joints} nameOf={nameIn(change)} reportTo={paths.changeCheck(change.key)} />} />
+  return <ChangeReader change={change} findings={query.data?.findings ?? []} panel={(joints) => (
+    <>
+      <CheckPanel change={change.key} query={query} stale={query.isPlaceholderData} joints={joints} nameOf={nameIn(change)} reportTo={paths.changeCheck(change.key)} />
+      <ChangeTools change={change} joints={joints} unavailable={null} />
+    </>
+  )} />
 }

@@ -132,7 +132,7 @@ const release: ReleaseView = {
   machine: 'dunlin', machineName: 'Dunlin', version: '1.7.0', sequence: 9, state: 'current', title: 'Knee current limit', change: 'dunlin-47', releasedBy: 'Hedda Lindqvist', releasedAt: '2026-11-12T13:15:00Z', joints: 2,
   reason: 'The new gear train bears 6.6 N·m.', contentHash: 'c'.repeat(64), proposedStep: 'minor', step: 'patch', stepReason: 'It was so before.',
   signatures: [{ meaning: 'peer review', statement: 'I stand by it.', person: 'Rafiq Sandoval', at: '2026-11-11T09:30:00Z', contentHash: 'c', void: false }],
-  concessions: [{ finding: 'k', characteristic: 'torque against gear', limit: '6.97 N·m', reason: 'The stop takes it.', until: '2027-03-01', count: null }],
+  concessions: [{ finding: 'k', characteristic: 'torque against gear', limit: '6.97 N·m', reason: 'The stop takes it.', until: '2027-03-01', count: null, used: null, state: 'holds' }],
   items: [
     { joint: 'l1-knee', name: 'L1 knee', family: 'Knee', bus: 'fore', address: 0x33, firmware: 'hinge 2.1.0', revision: 12, isNew: true, imageSha256: '92b3e4a4a5063de9'.padEnd(64, '0'), imageBytes: 128 },
     { joint: 'winch', name: 'winch', family: 'Winch', bus: 'aft', address: 0x40, firmware: 'capstan 1.3.0', revision: 4, isNew: false, imageSha256: 'd962711bfd21fb06'.padEnd(64, '0'), imageBytes: 192 },

@@ -37,5 +37,6 @@ export function abilitiesOn(change: Change, person: Person, held: readonly HeldR
     release: all(inState(change, 'approved'), role('sign release'), notOwn(change, person), notSigned, newest),
     bringUpToDate: all(inState(change, 'draft', 'submitted', 'approved'), role('draft changes'), writes(change, person), facts.onNewest ? no('It is on the newest release already.') : yes),
     inviteWriter: all(inState(change, 'draft'), role('draft changes'), writes(change, person)),
+    takeBenchImage: all(inState(change, 'draft', 'submitted', 'approved'), role('draft changes'), writes(change, person)),
   }
 }
