@@ -36,9 +36,9 @@ it('one flipped bit of an image in the database file: refused and named, and not
     const em = orm.em.fork()
     const release = await em.findOneOrFail(Release, { version: '1.0.0' }, { populate: ['machine'] })
     const others = Object.keys(release.set.joints).filter((key) => key !== row.joint.key)
-    await expect(takeFile(em, release, row.joint.key, 'bin', current)).rejects.toMatchObject({ code: 'verification-failed', recorded: true, message: expect.stringContaining(`The image of ${row.joint.key} of Dunlin 1.0.0 is not what was signed: the stored bytes do not match the SHA-256 that was signed.`) })
+    await expect(takeFile(em, { release, joint: row.joint.key, format: 'bin', taking: current })).rejects.toMatchObject({ code: 'verification-failed', recorded: true, message: expect.stringContaining(`The image of ${row.joint.key} of Dunlin 1.0.0 is not what was signed: the stored bytes do not match the SHA-256 that was signed.`) })
     await expect(takeKit(em, w.services.files, release, current)).rejects.toMatchObject({ code: 'verification-failed', message: expect.stringContaining(row.joint.key) })
-    expect((await takeFile(em, release, others[0], 'bin', current)).bytes.length).toBeGreaterThan(0)
+    expect((await takeFile(em, { release, joint: others[0], format: 'bin', taking: current })).bytes.length).toBeGreaterThan(0)
   } finally {
     await orm.close(true)
   }

@@ -37,7 +37,7 @@ export async function proveReleases(em: EntityManager, files: FileStore): Promis
     const missing = Object.keys(release.set.joints).find((key) => !joints.some((row) => row.joint.key === key))
     if (missing !== undefined) throw new Error(`${release.machine.name} ${release.version} has no image for ${missing}.`)
     if ((await one.count(ReleaseKit, { release })) > 0) await takeKit(one, files, release, forProof)
-    else for (const row of joints) for (const format of EXPORT_FORMATS) await takeFile(one, release, row.joint.key, format, forProof)
+    else for (const row of joints) for (const format of EXPORT_FORMATS) await takeFile(one, { release, joint: row.joint.key, format, taking: forProof })
     proof.releases += 1
     proof.images += joints.length
   }

@@ -50,7 +50,7 @@ export const releaseRoutes: readonly RouteSpec[] = [
     handle: async ({ services, em, place, params, query, held, person, benchKey, now }) => {
       if (!isExportFormat(params.format)) throw new DomainError('not-found', `Images come as ${EXPORT_FORMATS.join(', ')}. Nothing was downloaded.`)
       const taking = await mustBeTakeable(em, place.release, { held, reason: query.reason, now })
-      const { bytes, type, fileName, sha256 } = await takeFile(em, place.release, params.joint, params.format, taking, query.board)
+      const { bytes, type, fileName, sha256 } = await takeFile(em, { release: place.release, joint: params.joint, format: params.format, taking, inHand: query.board })
       await recordDownload(services.orm, { act: 'release file downloaded', subject: { ...place.subject, joint: params.joint }, details: { format: params.format, sha256, ...told(taking), ...(query.board ? { board: query.board } : {}) }, person, benchKey, now })
       return { bytes, type, fileName, headers: { 'X-Detent-SHA256': sha256 } }
     },

@@ -21,14 +21,23 @@ export interface TakenFile {
   sha256: string
 }
 
+export interface FileWish {
+  release: Release
+  /** key of the joint */
+  joint: string
+  format: ExportFormat
+  taking: Taking
+  /** serial number of the board it is for, when the builder named it; else the board recorded at the joint counts */
+  inHand?: string
+}
+
 /**
  * One file of a joint, made from the stored bytes, which are proven again before they leave; the file itself must be the one that the
  * signed manifest names.
  *
- * @param inHand  serial number of the board it is for, when the builder named it; else the board recorded at the joint counts
  * @throws DomainError not-found, verification-failed; wrong-state when its board-bound values belong to another board
  */
-export async function takeFile(em: EntityManager, release: Release, jointKey: string, format: ExportFormat, { state, mark }: Taking, inHand?: string): Promise<TakenFile> {
+export async function takeFile(em: EntityManager, { release, joint: jointKey, format, taking: { state, mark }, inHand }: FileWish): Promise<TakenFile> {
   const joint = await em.findOne(Joint, { machine: release.machine, key: jointKey })
   const row = joint && (await em.findOne(ReleaseJoint, { release, joint }, { populate: ['image', 'revision', 'joint'] }))
   if (!row) throw new DomainError('not-found', `${release.machine.name} ${release.version} has no joint "${jointKey}". Nothing was downloaded.`)
