@@ -1,6 +1,8 @@
 import type { CurrentTransfer } from './current-transfer.ts'
 import { currentMonodromy, OuterCarrier, outerLayout, outerMonodromy } from './monodromy.ts'
-import { traceLoci, type LocusNode, type LocusSource } from './loci.ts'
+import { traceLoci, type LocusSource } from './loci.ts'
+import { imOf, reOf, type LocusNode } from './locus-node.ts'
+import { NEGLIGIBLE } from './locus-straightness.ts'
 import { complexMatrix, solveComplex } from './complex-matrix.ts'
 import type { LongResponse } from './long-source.ts'
 import type { OuterSteps } from './outer-steps.ts'
@@ -71,32 +73,49 @@ export function bandwidthsOf(T: MeasuredOverReference, dcGain: number, landmarks
       im[0] = out.T_im
     },
     // T keeps its value at zero frequency below the loop's slowest pole; two half decades of that are enough.
-    isLow: (above, below) => [above, below].every((node) => Math.hypot(node.re[0] - dcGain, node.im[0]) < 0.02 * Math.abs(dcGain)),
+    isLow: (above, below) => [above, below].every((node) => Math.hypot(reOf(node, 0) - dcGain, imOf(node, 0)) < 0.02 * Math.abs(dcGain)),
   }
   const relativeLevel = BANDWIDTH_LEVEL * Math.abs(dcGain)
   const reaches = Math.abs(dcGain) > BANDWIDTH_LEVEL
   let relative: Bandwidth = { kind: 'none' }
   let absolute: Bandwidth = { kind: 'none' }
-  traceLoci(source, (left: LocusNode, right: LocusNode) => {
-    const a = Math.hypot(left.re[0], left.im[0])
-    const b = Math.hypot(right.re[0], right.im[0])
+  const enough = (left: LocusNode, right: LocusNode): boolean => {
+    const a = Math.hypot(reOf(left, 0), imOf(left, 0))
+    const b = Math.hypot(reOf(right, 0), imOf(right, 0))
     const fall = (level: number): Bandwidth => ({ kind: 'bandwidth', hz: fallBetween(magnitude, left.psi, right.psi, level) / (2 * Math.PI * period) })
     if (relative.kind === 'none' && a > relativeLevel && b <= relativeLevel) relative = fall(relativeLevel)
     if (reaches && absolute.kind === 'none' && a > BANDWIDTH_LEVEL && b <= BANDWIDTH_LEVEL) absolute = fall(BANDWIDTH_LEVEL)
     return relative.kind !== 'none' && (absolute.kind !== 'none' || !reaches)
-  })
+  }
+  traceLoci(source, { floor: NEGLIGIBLE, enough })
   return { dcGain, relative, absolute }
 }
 
+/** Illinois' variant of regula falsi in ln |T|, halved now and then so that it is bounded. */
 function fallBetween(magnitude: (theta: number) => number, low: number, high: number, level: number): number {
   let a = low
   let b = high
-  for (let step = 0; step < 60 && b - a > 1e-13 * b; step++) {
-    const m = 0.5 * (a + b)
-    if (magnitude(m) > level) a = m
-    else b = m
+  let fa = Math.log(magnitude(a) / level)
+  let fb = Math.log(magnitude(b) / level)
+  let side = 0
+  for (let step = 0; step < 60 && b - a > 1e-13 * b && fb < 0; step++) {
+    let m = step % 8 === 7 ? 0.5 * (a + b) : (a * fb - b * fa) / (fb - fa)
+    if (!(m > a && m < b)) m = 0.5 * (a + b)
+    const f = Math.log(magnitude(m) / level)
+    if (Math.abs(f) < 1e-13) return m
+    if (f > 0) {
+      a = m
+      fa = f
+      if (side === 1) fb /= 2
+      side = 1
+    } else {
+      b = m
+      fb = f
+      if (side === -1) fa /= 2
+      side = -1
+    }
   }
-  return 0.5 * (a + b)
+  return b
 }
 
 /**

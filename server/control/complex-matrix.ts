@@ -146,14 +146,24 @@ export function complexEigenvalues(M: ComplexMatrix, outRe: Float64Array, outIm:
       sweeps = 0
       continue
     }
+    if (low === high - 1) {
+      wilkinsonShift(re, im, n, high)
+      outRe[high] = shift.re
+      outIm[high] = shift.im
+      outRe[low] = shift.otherRe
+      outIm[low] = shift.otherIm
+      high -= 2
+      sweeps = 0
+      continue
+    }
     if (sweeps === SWEEPS) throw new NumericError('no-convergence', { limit: SWEEPS, text: `A locus eigenvalue did not converge in ${SWEEPS} sweeps; the margin was not computed.` })
     sweeps++
     shiftedSweep(M, low, high, sweeps % 10 === 0)
   }
 }
 
-/** Shift of the last sweep; kept here so that no object is made in the inner loop. */
-const shift = { re: 0, im: 0 }
+/** Eigenvalues of the trailing 2 × 2 block, the one nearer to its last entry first: that is the shift; kept here so that no object is made in the inner loop. */
+const shift = { re: 0, im: 0, otherRe: 0, otherIm: 0 }
 
 function wilkinsonShift(re: Float64Array, im: Float64Array, n: number, high: number): void {
   const at = high * n + high
@@ -166,7 +176,7 @@ function wilkinsonShift(re: Float64Array, im: Float64Array, n: number, high: num
   const bci = re[at - n] * im[at - 1] + im[at - n] * re[at - 1]
   const qr = hr * hr - hi * hi + bcr
   const qi = 2 * hr * hi + bci
-  const modulus = Math.hypot(qr, qi)
+  const modulus = Math.sqrt(qr * qr + qi * qi)
   let rr = Math.sqrt((modulus + Math.abs(qr)) / 2)
   let ri = rr === 0 ? 0 : qi / (2 * rr)
   if (qr < 0) {
@@ -181,12 +191,13 @@ function wilkinsonShift(re: Float64Array, im: Float64Array, n: number, high: num
   const sr = hr + rr
   const si = hi + ri
   const d = sr * sr + si * si
-  shift.re = dr
-  shift.im = di
-  if (d > 0) {
-    shift.re -= (bcr * sr + bci * si) / d
-    shift.im -= (bci * sr - bcr * si) / d
-  }
+  // bc/(h ± root) is what the off-diagonal entries take from one and give to the other.
+  const mr = d > 0 ? (bcr * sr + bci * si) / d : 0
+  const mi = d > 0 ? (bci * sr - bcr * si) / d : 0
+  shift.re = dr - mr
+  shift.im = di - mi
+  shift.otherRe = re[at - n - 1] + mr
+  shift.otherIm = im[at - n - 1] + mi
 }
 
 let rotations = new Float64Array(0)

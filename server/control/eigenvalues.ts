@@ -163,7 +163,10 @@ export function hessenbergEigenvalues(H: Float64Array, n: number, re: Float64Arr
       w = -0.4375 * s * s
     }
     sweeps++
-    doubleStep(H, n, low, high, x, y, w)
+    shifts[0] = x
+    shifts[1] = y
+    shifts[2] = w
+    doubleStep(H, n, low, high)
   }
 }
 
@@ -202,8 +205,14 @@ function pairAt(H: Float64Array, n: number, high: number, shiftSum: number, re: 
   }
 }
 
-/** One implicit double-shift sweep on rows and columns low…high; x, y, w are sum and product data of the two shifts. */
-function doubleStep(H: Float64Array, n: number, low: number, high: number, x: number, y: number, w: number): void {
+/** Sum and product data of the two shifts of the next sweep; numbers handed to a large function would each become an object. */
+const shifts = new Float64Array(3)
+
+/** One implicit double-shift sweep on rows and columns low…high, by `shifts`. */
+function doubleStep(H: Float64Array, n: number, low: number, high: number): void {
+  let x = shifts[0]
+  let y = shifts[1]
+  const w = shifts[2]
   let p = 0
   let q = 0
   let r = 0

@@ -49,7 +49,7 @@ export class OuterSource implements MarginSource {
   }
 
   evaluate(psi: number, re: Float64Array, im: Float64Array): void {
-    this.transfer.at(psi / this.q)
+    this.transfer.atAgain(psi / this.q)
     this.transfer.loop(this.closure, this.L)
     complexEigenvalues(this.L, re, im)
   }
@@ -86,7 +86,7 @@ export class OuterSource implements MarginSource {
 
   sensitivityNorm(psi: number, floor: number): number {
     const { q, L, S } = this
-    this.transfer.at(psi / q)
+    this.transfer.atAgain(psi / q)
     this.transfer.loop(this.closure, L)
     invertSensitivity(L, S, this.det)
     if (floor > 0 && singularValueBound(S) <= floor) return 0

@@ -1,4 +1,6 @@
-import { fromMinusOne, traceLoci, type LocusNode, type MarginSource } from './loci.ts'
+import { traceLoci, type LocusWatch, type MarginSource } from './loci.ts'
+import { imOf, reOf, type LocusNode } from './locus-node.ts'
+import { fromMinusOne, NEGLIGIBLE } from './locus-straightness.ts'
 import { liftedPeak, sensitivityPeak, type Peak } from './sensitivity-peak.ts'
 
 /** Gain margins are searched this far, up and down. */
@@ -57,13 +59,9 @@ interface Crossing {
  * @source        control-model.md §4
  */
 export function marginsOf(source: MarginSource, wanted: 'gain-and-phase' | 'all' = 'all'): LoopMargins {
-  const nodes = traceLoci(source)
   const finder = new CrossingFinder(source)
-  const onCircle: Crossing[] = []
-  const candidates: Span[] = []
-  for (let k = 1; k < nodes.length; k++) {
-    for (let i = 0; i < source.q; i++) finder.between(nodes[k - 1], nodes[k], i, candidates, onCircle)
-  }
+  const nodes = traceLoci(source, finder)
+  const { onCircle, candidates } = finder
   const onAxis = [...endpoints(nodes), ...finder.contenders(candidates)]
   const toHz = 1 / (2 * Math.PI * source.period)
   const trueHz = (x: Crossing): number => Math.abs(source.strongest(x.psi, x.re, x.im)) * toHz
@@ -137,12 +135,12 @@ function delayMargin(source: MarginSource, crossings: readonly Crossing[], toHz:
 function endpoints(nodes: readonly LocusNode[]): Crossing[] {
   const found: Crossing[] = []
   const first = nodes[0]
+  const next = nodes[1]
   const last = nodes[nodes.length - 1]
-  for (let i = 0; i < last.re.length; i++) {
-    if (last.re[i] < 0 && Math.abs(last.im[i]) <= 1e-9 * -last.re[i]) found.push({ psi: last.psi, re: last.re[i], im: last.im[i] })
-    const next = nodes[1]
-    const flat = Math.abs(Math.hypot(next.re[i], next.im[i]) / Math.hypot(first.re[i], first.im[i]) - 1) < 0.01
-    if (first.re[i] < 0 && flat && Math.abs(first.im[i]) < 1e-3 * -first.re[i]) found.push({ psi: first.psi, re: first.re[i], im: first.im[i] })
+  for (let i = 0; i < last.q; i++) {
+    if (reOf(last, i) < 0 && Math.abs(imOf(last, i)) <= 1e-9 * -reOf(last, i)) found.push({ psi: last.psi, re: reOf(last, i), im: imOf(last, i) })
+    const flat = Math.abs(Math.hypot(reOf(next, i), imOf(next, i)) / Math.hypot(reOf(first, i), imOf(first, i)) - 1) < 0.01
+    if (reOf(first, i) < 0 && flat && Math.abs(imOf(first, i)) < 1e-3 * -reOf(first, i)) found.push({ psi: first.psi, re: reOf(first, i), im: imOf(first, i) })
   }
   return found
 }
@@ -159,8 +157,18 @@ interface Span {
   readonly about: number
 }
 
-/** Finds where one locus, between two nodes, meets the unit circle or the negative real axis. */
-class CrossingFinder {
+/**
+ * A locus this much below a crossing already found, which is the gain margin's at least, can neither cross the axis before it nor reach the unit
+ * circle, but for a peak of 18 dB between nodes: and what peaks so sharply rings, and is a landmark.
+ */
+const BELOW_CROSSING = 1 / 8
+const HIGHEST_FLOOR = 0.05
+
+/** Finds, while the loci are traced, where they meet the unit circle or the negative real axis. */
+class CrossingFinder implements LocusWatch {
+  floor = NEGLIGIBLE
+  readonly candidates: Span[] = []
+  readonly onCircle: Crossing[] = []
   private readonly source: MarginSource
   private readonly re: Float64Array
   private readonly im: Float64Array
@@ -171,15 +179,28 @@ class CrossingFinder {
     this.im = new Float64Array(source.q)
   }
 
-  between(a: LocusNode, b: LocusNode, i: number, candidates: Span[], onCircle: Crossing[]): void {
-    const ma = a.re[i] * a.re[i] + a.im[i] * a.im[i]
-    const mb = b.re[i] * b.re[i] + b.im[i] * b.im[i]
-    if (ma > 1 !== mb > 1) onCircle.push(this.root(a, b, i, 'circle'))
-    const pa = fromMinusOne(a.re[i], a.im[i])
-    const pb = fromMinusOne(b.re[i], b.im[i])
-    if (pa > 0 !== pb > 0 && Math.abs(pa - pb) < Math.PI) {
+  enough(left: LocusNode, right: LocusNode): boolean {
+    for (let i = 0; i < this.source.q; i++) this.between(left, right, i)
+    return false
+  }
+
+  private between(a: LocusNode, b: LocusNode, i: number): void {
+    const ar = reOf(a, i)
+    const ai = imOf(a, i)
+    const br = reOf(b, i)
+    const bi = imOf(b, i)
+    const ma = ar * ar + ai * ai
+    const mb = br * br + bi * bi
+    if (ma > 1 !== mb > 1) this.onCircle.push(this.root(a, b, i, 'circle'))
+    // The real axis lies between them where their imaginary parts differ in sign; its negative half, where they face each other there.
+    if (ai < 0 === bi < 0) return
+    const pa = fromMinusOne(ar, ai)
+    const pb = fromMinusOne(br, bi)
+    if (Math.abs(pa - pb) < Math.PI) {
       const t = pa === pb ? 0.5 : pa / (pa - pb)
-      candidates.push({ a, b, i, about: Math.sqrt(ma) ** (1 - t) * Math.sqrt(mb) ** t })
+      const about = Math.sqrt(ma) ** (1 - t) * Math.sqrt(mb) ** t
+      this.candidates.push({ a, b, i, about })
+      if (about < 1) this.floor = Math.max(this.floor, Math.min(HIGHEST_FLOOR, about * BELOW_CROSSING))
     }
   }
 
@@ -199,8 +220,8 @@ class CrossingFinder {
   /** Illinois' variant of regula falsi in ψ, halved when it stalls. */
   private root(a: LocusNode, b: LocusNode, i: number, line: 'circle' | 'axis'): Crossing {
     const value = (re: number, im: number): number => (line === 'circle' ? Math.log(Math.hypot(re, im)) : fromMinusOne(re, im))
-    let left: Crossing = { psi: a.psi, re: a.re[i], im: a.im[i] }
-    let right: Crossing = { psi: b.psi, re: b.re[i], im: b.im[i] }
+    let left: Crossing = { psi: a.psi, re: reOf(a, i), im: imOf(a, i) }
+    let right: Crossing = { psi: b.psi, re: reOf(b, i), im: imOf(b, i) }
     let fl = value(left.re, left.im)
     let fr = value(right.re, right.im)
     let side = 0

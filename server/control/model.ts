@@ -80,15 +80,18 @@ const T_LOWEST = 20 - 1 / 0.00393
 
 type Rule = 'positive' | 'not-negative' | 'any'
 
-const PLANT_RULES: readonly (readonly [keyof Plant, Rule])[] = [
+/** Names are put together once: a sweep guards every point. */
+const named = <K extends string>(part: string, rules: readonly (readonly [K, Rule])[]) => rules.map(([field, rule]) => ({ field, name: `${part}.${field}`, rule }))
+
+const PLANT_RULES = named<keyof Plant>('plant', [
   ['V_nom', 'positive'], ['R', 'positive'], ['R_on', 'not-negative'], ['L', 'positive'], ['k_t', 'positive'],
   ['k_e', 'not-negative'], ['N', 'positive'], ['eta', 'positive'], ['J_rotor', 'not-negative'], ['J_load', 'not-negative'],
   ['b_rotor', 'not-negative'], ['b_load', 'not-negative'], ['tau_c', 'not-negative'], ['i_lsb', 'not-negative'],
-]
-const FIRMWARE_RULES: readonly (readonly [keyof Firmware, Rule])[] = [
+])
+const FIRMWARE_RULES = named<keyof Firmware>('firmware', [
   ['f_c', 'positive'], ['f_o', 'positive'], ['K_pp', 'any'], ['K_ip', 'any'], ['K_pv', 'any'], ['K_iv', 'any'],
   ['K_pc', 'any'], ['K_ic', 'any'], ['omega_max', 'positive'], ['I_max', 'positive'], ['d_max', 'positive'],
-]
+])
 
 /**
  * Guards every value of a joint before any arithmetic touches it.
@@ -100,8 +103,8 @@ export function validateJointModel(model: JointModel): void {
   if (!plant || !firmware || !environment) {
     throw new NumericError('bad-input', { text: 'A joint needs plant, firmware and environment; nothing was computed.' })
   }
-  for (const [field, rule] of PLANT_RULES) guardNumber(`plant.${field}`, plant[field], rule)
-  for (const [field, rule] of FIRMWARE_RULES) guardNumber(`firmware.${field}`, firmware[field], rule)
+  for (const { field, name, rule } of PLANT_RULES) guardNumber(name, plant[field], rule)
+  for (const { field, name, rule } of FIRMWARE_RULES) guardNumber(name, firmware[field], rule)
   guardNumber('environment.V_bus', environment.V_bus, 'positive')
   guardNumber('environment.T_winding', environment.T_winding, 'any')
   if (environment.T_winding <= T_LOWEST || environment.T_winding > 1000) {

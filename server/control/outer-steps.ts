@@ -21,7 +21,42 @@ export interface OuterSteps {
   readonly start: Int32Array
 }
 
+/** The steps of a joint. */
 export function outerSteps(joint: SampledJoint): OuterSteps {
+  return stepsInto(joint, freshArrays)
+}
+
+/** As outerSteps, for steps that are read before the next joint's are asked for this way: their arrays are written anew then. */
+export function passingOuterSteps(joint: SampledJoint): OuterSteps {
+  return stepsInto(joint, passingArrays)
+}
+
+/** What the steps are written into. */
+interface Arrays {
+  readonly powers: readonly Float64Array[]
+  readonly inputs: readonly Float64Array[]
+  readonly length: Uint8Array
+  readonly H: Float64Array
+  readonly d: Float64Array
+  readonly start: Int32Array
+}
+
+function freshArrays(nz: number, q: number, starts: number): Arrays {
+  const kinds = Array.from({ length: q > 1 ? 2 : 1 })
+  return {
+    powers: kinds.map(() => new Float64Array(nz * nz)), inputs: kinds.map(() => new Float64Array(nz)),
+    length: new Uint8Array(q), H: new Float64Array(q * nz), d: new Float64Array(q), start: new Int32Array(starts),
+  }
+}
+
+let passing: { readonly nz: number; readonly q: number; readonly starts: number; readonly arrays: Arrays } | null = null
+
+function passingArrays(nz: number, q: number, starts: number): Arrays {
+  if (!passing || passing.nz !== nz || passing.q !== q || passing.starts !== starts) passing = { nz, q, starts, arrays: freshArrays(nz, q, starts) }
+  return passing.arrays
+}
+
+function stepsInto(joint: SampledJoint, arraysOf: (nz: number, q: number, starts: number) => Arrays): OuterSteps {
   const { nz, timing, rows, direct, between, shift, theta } = joint
   const { p, q, tick, offset } = timing
   const shortest = Math.floor(p / q)
@@ -37,9 +72,8 @@ export function outerSteps(joint: SampledJoint): OuterSteps {
   matrixProduct(one, before, size, short)
   const kinds = q > 1 ? 2 : 1
   if (kinds === 2) matrixProduct(one, short, size, long)
-  const length = new Uint8Array(q)
-  const H = new Float64Array(q * nz)
-  const d = new Float64Array(q)
+  const keepsAngle = (joint.model.firmware.sensor_delay ?? 0) > 0
+  const { powers, inputs, length, H, d, start } = arraysOf(nz, q, keepsAngle ? nz : nz - 1)
   for (let k = 0; k < q; k++) {
     const next = k + 1 === q ? 0 : k + 1
     const from = tick[k] + (offset[k] > 0 ? 1 : 0)
@@ -56,20 +90,10 @@ export function outerSteps(joint: SampledJoint): OuterSteps {
     for (let i = 0; i < nz; i++) sum += rows[next * nz + i] * M[i * size + nz]
     d[k] = sum
   }
-  const keepsAngle = (joint.model.firmware.sensor_delay ?? 0) > 0
-  const start = new Int32Array(keepsAngle ? nz : nz - 1)
   for (let i = 0, c = 0; i < nz; i++) if (keepsAngle || i !== theta) start[c++] = i
-  return {
-    q,
-    nz,
-    powers: kinds === 2 ? [pick(short, nz, size), pick(long, nz, size)] : [pick(short, nz, size)],
-    inputs: kinds === 2 ? [lastColumn(short, nz, size), lastColumn(long, nz, size)] : [lastColumn(short, nz, size)],
-    length,
-    H,
-    d,
-    shift,
-    start,
-  }
+  split(short, nz, size, powers[0], inputs[0])
+  if (kinds === 2) split(long, nz, size, powers[1], inputs[1])
+  return { q, nz, powers, inputs, length, H, d, shift, start }
 }
 
 interface Scratch {
@@ -91,14 +115,10 @@ function scratchOf(size: number): Scratch {
   return scratch
 }
 
-function lastColumn(M: Float64Array, n: number, size: number): Float64Array {
-  const out = new Float64Array(n)
-  for (let i = 0; i < n; i++) out[i] = M[i * size + n]
-  return out
-}
-
-function pick(M: Float64Array, n: number, size: number): Float64Array {
-  const out = new Float64Array(n * n)
-  for (let i = 0; i < n; i++) for (let j = 0; j < n; j++) out[i * n + j] = M[i * size + j]
-  return out
+/** The leading n × n part of M, and the first n of its last column. */
+function split(M: Float64Array, n: number, size: number, part: Float64Array, column: Float64Array): void {
+  for (let i = 0; i < n; i++) {
+    for (let j = 0; j < n; j++) part[i * n + j] = M[i * size + j]
+    column[i] = M[i * size + n]
+  }
 }

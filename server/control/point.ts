@@ -8,7 +8,7 @@ import { outerSteps } from './outer-steps.ts'
 import { outerSource } from './outer-source.ts'
 import { OuterTransfer } from './outer-transfer.ts'
 import { withValues, type ParameterName } from './parameters.ts'
-import { closedMode, sampleJoint, type SampledJoint } from './sampled-joint.ts'
+import { closedMode, sampleJoint, samplePassingJoint, type SampledJoint } from './sampled-joint.ts'
 import { stabilityOf, type Verdict } from './stability.ts'
 import { resonances } from './resonances.ts'
 import { verdictOfSampled, type PreparedOuter, type RootGuess, type StabilityVerdict } from './verdict.ts'
@@ -45,7 +45,8 @@ export type PointEvaluator = (values: ArrayLike<number>, guess: RootGuess) => Po
 export function pointEvaluator(model: JointModel, names: readonly ParameterName[], withMargins: boolean): PointEvaluator {
   if (!names.every((name) => OUTER_LAWS.includes(name))) {
     return (values, guess) => {
-      const joint = sampleJoint(withValues(model, names, values))
+      const changed = withValues(model, names, values)
+      const joint = withMargins ? sampleJoint(changed) : samplePassingJoint(changed)
       return evaluateSampled(joint, withMargins && joint.closes !== 'current' ? prepare(joint) : null, withMargins, guess)
     }
   }

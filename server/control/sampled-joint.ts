@@ -68,6 +68,36 @@ function scratchOf(size: number): Scratch {
   return scratch
 }
 
+/** What a sampled joint is written into. */
+interface Arrays {
+  readonly F: Float64Array
+  readonly G: Float64Array
+  readonly shift: Float64Array
+  readonly Ad: Float64Array
+  readonly Bd: Float64Array
+  readonly rows: Float64Array
+  readonly direct: Float64Array
+  readonly between: Uint8Array
+  // Rows over z, used while sampling.
+  readonly request: Float64Array
+  readonly applied: Float64Array
+}
+
+const freshArrays = (nz: number, nx: number, q: number): Arrays => ({
+  F: new Float64Array(nz * nz), G: new Float64Array(nz), shift: new Float64Array(nz), Ad: new Float64Array(nx * nx), Bd: new Float64Array(nx),
+  rows: new Float64Array(q * nz), direct: new Float64Array(q), between: new Uint8Array(q), request: new Float64Array(nz), applied: new Float64Array(nz),
+})
+
+/** The arrays of the last joint that was sampled to be read once. */
+let passing: { readonly nz: number; readonly nx: number; readonly q: number; readonly arrays: Arrays } | null = null
+
+function passingArrays(nz: number, nx: number, q: number): Arrays {
+  if (!passing || passing.nz !== nz || passing.nx !== nx || passing.q !== q) passing = { nz, nx, q, arrays: freshArrays(nz, nx, q) }
+  const { F, G, shift, rows, direct, between, request, applied } = passing.arrays
+  for (const array of [F, G, shift, rows, direct, between, request, applied]) array.fill(0)
+  return passing.arrays
+}
+
 /**
  * Samples a joint exactly: matrix exponentials over one current tick and over every offset at which the outer task reads θ.
  *
@@ -77,11 +107,20 @@ function scratchOf(size: number): Scratch {
 export function sampleJoint(model: JointModel): SampledJoint {
   validateJointModel(model)
   const timing = timingOf(model.firmware.f_c, model.firmware.f_o)
-  return sampleValidJoint(model, timing)
+  return sampleInto(model, timing, freshArrays)
 }
 
-/** As sampleJoint, for a model already validated and timed. */
-export function sampleValidJoint(model: JointModel, timing: Timing): SampledJoint {
+/**
+ * As sampleJoint, for a joint that is read before the next one is sampled this way: its arrays are written anew then.
+ *
+ * A verdict costs microseconds, and making arrays would be a third of them.
+ */
+export function samplePassingJoint(model: JointModel): SampledJoint {
+  validateJointModel(model)
+  return sampleInto(model, timingOf(model.firmware.f_c, model.firmware.f_o), passingArrays)
+}
+
+function sampleInto(model: JointModel, timing: Timing, arraysOf: (nz: number, nx: number, q: number) => Arrays): SampledJoint {
   const { plant, firmware, environment } = model
   const matrices = plantMatrices(plant, environment.T_winding)
   const { n, A, B, C_omega } = matrices
@@ -110,16 +149,15 @@ export function sampleValidJoint(model: JointModel, timing: Timing): SampledJoin
   const nz = r + so
   const gamma = supplyFactor(plant, firmware, environment)
   const K = firmware.K_pc + firmware.K_ic * timing.T_c
-  const F = new Float64Array(nz * nz)
-  const G = new Float64Array(nz)
+  // Without back-EMF the current loop does not see the mechanics: they are no states of it.
+  const nx = plant.k_e === 0 ? 1 : n - 1
+  const { F, G, shift, Ad, Bd, rows, direct, between, request, applied } = arraysOf(nz, nx, timing.q)
   // The request u = K·(i_ref − i) + x_c, as a row over z and a factor on i_ref (or on the oldest held i_ref).
-  const request = new Float64Array(nz)
   request[0] = -K
   if (integrates) request[xc] = 1
   let requestOfInput = 0
   if (so > 0) request[nz - 1] = K
   else requestOfInput = K
-  const applied = new Float64Array(nz)
   let appliedOfInput = 0
   if (D === 0) {
     for (let j = 0; j < nz; j++) applied[j] = gamma * request[j]
@@ -154,13 +192,9 @@ export function sampleValidJoint(model: JointModel, timing: Timing): SampledJoin
     G[r] = 1
     for (let j = 1; j < so; j++) F[(r + j) * nz + r + j - 1] = 1
   }
-  const shift = new Float64Array(nz)
   for (let j = theta; j < xc; j++) shift[j] = 1
 
   const { q, offset } = timing
-  const rows = new Float64Array(q * nz)
-  const direct = new Float64Array(q)
-  const between = new Uint8Array(q)
   const offsetRows = part ? rowsAtOffsets(part, size, q) : null
   for (let k = 0; k < q; k++) {
     const row = k * nz
@@ -177,10 +211,6 @@ export function sampleValidJoint(model: JointModel, timing: Timing): SampledJoin
       direct[k] = onVoltage * appliedOfInput
     }
   }
-  // Without back-EMF the current loop does not see the mechanics: they are no states of it.
-  const nx = plant.k_e === 0 ? 1 : n - 1
-  const Ad = new Float64Array(nx * nx)
-  const Bd = new Float64Array(nx)
   for (let i = 0; i < nx; i++) {
     for (let j = 0; j < nx; j++) Ad[i * nx + j] = step[i * size + j]
     Bd[i] = step[i * size + n]

@@ -1,4 +1,6 @@
-import type { LocusNode, MarginSource } from './loci.ts'
+import type { MarginSource } from './loci.ts'
+import { imOf, reOf, type LocusNode } from './locus-node.ts'
+import { peakBetween, type PeakFound } from './peak-search.ts'
 
 /** A peak over frequency. */
 export interface Peak {
@@ -8,45 +10,46 @@ export interface Peak {
   readonly hz: number
 }
 
-const GOLDEN = 0.5 * (Math.sqrt(5) - 1)
-
-/** Maximum of f on [low, high] by golden section to 2e-4 of the interval; the value errs by the square of that. */
-function goldenPeak(f: (psi: number) => number, low: number, high: number): { readonly psi: number; readonly value: number } {
-  let a = low
-  let b = high
-  let x = b - GOLDEN * (b - a)
-  let y = a + GOLDEN * (b - a)
-  let fx = f(x)
-  let fy = f(y)
-  for (let step = 0; step < 18; step++) {
-    if (fx > fy) {
-      b = y
-      y = x
-      fy = fx
-      x = b - GOLDEN * (b - a)
-      fx = f(x)
-    } else {
-      a = x
-      x = y
-      fx = fy
-      y = a + GOLDEN * (b - a)
-      fy = f(y)
-    }
-  }
-  return fx > fy ? { psi: x, value: fx } : { psi: y, value: fy }
-}
+/** |x + jy| of loop-sized numbers; Math.hypot guards against overflow at several times the cost. */
+const modulus = (x: number, y: number): number => Math.sqrt(x * x + y * y)
 
 /** A locus of settled nodes leaves its chord by at most this share of its modulus. */
 const CHORD_ERROR = 0.06
+const ROUNDING = 1e-3
 
 /** Distance of −1 from the chord of locus i between two nodes. */
 function toMinusOne(a: LocusNode, b: LocusNode, i: number): number {
-  const ar = a.re[i] + 1
-  const dr = b.re[i] - a.re[i]
-  const di = b.im[i] - a.im[i]
+  const ar = reOf(a, i) + 1
+  const ai = imOf(a, i)
+  const dr = reOf(b, i) + 1 - ar
+  const di = imOf(b, i) - ai
   const length = dr * dr + di * di
-  const t = length === 0 ? 0 : Math.min(1, Math.max(0, -(ar * dr + a.im[i] * di) / length))
-  return Math.hypot(ar + t * dr, a.im[i] + t * di)
+  const t = length === 0 ? 0 : Math.min(1, Math.max(0, -(ar * dr + ai * di) / length))
+  return modulus(ar + t * dr, ai + t * di)
+}
+
+/**
+ * How far a locus may leave the chord before node k: no further than it leaves the chord over that interval and a neighbouring one, which is about four times as
+ * far where the locus is smooth; and never more than settled nodes allow.
+ */
+function bulge(nodes: readonly LocusNode[], k: number, i: number): number {
+  const a = nodes[k - 1]
+  const b = nodes[k]
+  const size = Math.max(modulus(reOf(a, i), imOf(a, i)), modulus(reOf(b, i), imOf(b, i)))
+  if (k < 2 || k > nodes.length - 2) return CHORD_ERROR * size
+  const seen = Math.max(offChord(nodes[k - 2], a, b, i), offChord(a, b, nodes[k + 1], i))
+  return Math.min(CHORD_ERROR * size, seen + ROUNDING * size)
+}
+
+/** Distance of a locus at m from its chord from a to b. */
+function offChord(a: LocusNode, m: LocusNode, b: LocusNode, i: number): number {
+  const dr = reOf(b, i) - reOf(a, i)
+  const di = imOf(b, i) - imOf(a, i)
+  const mr = reOf(m, i) - reOf(a, i)
+  const mi = imOf(m, i) - imOf(a, i)
+  const length = dr * dr + di * di
+  const t = length === 0 ? 0 : Math.min(1, Math.max(0, (mr * dr + mi * di) / length))
+  return modulus(mr - t * dr, mi - t * di)
 }
 
 /** M_s: the largest 1/|1 + λ| over all loci, peaks between nodes included. */
@@ -63,7 +66,7 @@ export function sensitivityPeak(source: MarginSource, nodes: readonly LocusNode[
   let best = { psi: nodes[0].psi, value: 0 }
   for (const node of nodes) {
     for (let i = 0; i < q; i++) {
-      const value = 1 / Math.hypot(1 + node.re[i], node.im[i])
+      const value = 1 / modulus(1 + reOf(node, i), imOf(node, i))
       if (value > best.value) best = { psi: node.psi, value }
     }
   }
@@ -72,15 +75,14 @@ export function sensitivityPeak(source: MarginSource, nodes: readonly LocusNode[
   for (let k = 1; k < nodes.length; k++) {
     let allowed = Infinity
     for (let i = 0; i < q; i++) {
-      const size = Math.max(Math.hypot(nodes[k].re[i], nodes[k].im[i]), Math.hypot(nodes[k - 1].re[i], nodes[k - 1].im[i]))
-      allowed = Math.min(allowed, toMinusOne(nodes[k - 1], nodes[k], i) - CHORD_ERROR * size)
+      allowed = Math.min(allowed, toMinusOne(nodes[k - 1], nodes[k], i) - bulge(nodes, k, i))
     }
     intervals.push({ k, allowed })
   }
   intervals.sort((a, b) => a.allowed - b.allowed)
   for (const { k, allowed } of intervals) {
     if (allowed * best.value >= 1) break
-    const peak = goldenPeak(source.follow ? alongChords(source, nodes[k - 1], nodes[k], most) : most, nodes[k - 1].psi, nodes[k].psi)
+    const peak = peakBetween(source.follow ? alongChords(source, nodes[k - 1], nodes[k], most) : most, nodes[k - 1].psi, nodes[k].psi)
     if (peak.value > best.value) best = peak
   }
   most(best.psi)
@@ -95,7 +97,7 @@ function alongChords(source: MarginSource, a: LocusNode, b: LocusNode, all: (psi
   for (let i = 1; i < source.q; i++) if (toMinusOne(a, b, i) < toMinusOne(a, b, near)) near = i
   return (psi) => {
     const t = (psi - a.psi) / (b.psi - a.psi)
-    const at = source.follow?.(psi, a.re[near] + t * (b.re[near] - a.re[near]), a.im[near] + t * (b.im[near] - a.im[near]))
+    const at = source.follow?.(psi, reOf(a, near) + t * (reOf(b, near) - reOf(a, near)), imOf(a, near) + t * (imOf(b, near) - imOf(a, near)))
     return at ? 1 / Math.hypot(1 + at.re, at.im) : all(psi)
   }
 }
@@ -115,22 +117,22 @@ export function liftedPeak(source: MarginSource, nodes: readonly LocusNode[], M_
     const low = nodes[Math.max(0, k - 1)].psi
     const high = nodes[Math.min(nodes.length - 1, k + 1)].psi
     if (low < best.psi && best.psi < high) continue
-    const peak = goldenPeak(norm, low, high)
+    const peak = peakBetween(norm, low, high)
     if (peak.value > best.value) best = peak
   }
   return { ...best, hz: (best.psi * toHz) / source.q }
 }
 
 function nearOne(node: LocusNode): boolean {
-  for (let i = 0; i < node.re.length; i++) {
-    const size = node.re[i] ** 2 + node.im[i] ** 2
+  for (let i = 0; i < node.q; i++) {
+    const size = reOf(node, i) ** 2 + imOf(node, i) ** 2
     if (size > 1e-3 && size < 1e3) return true
   }
   return false
 }
 
-/** Peak of f near ψ: steps grow on both sides until f falls, then golden section. */
-function climb(f: (psi: number) => number, psi: number, step: number): { readonly psi: number; readonly value: number } {
+/** Peak of f near ψ: steps grow on both sides until f falls, then a search between. */
+function climb(f: (psi: number) => number, psi: number, step: number): PeakFound {
   const top = f(psi)
   const reach = (direction: number): number => {
     let at = psi
@@ -144,6 +146,6 @@ function climb(f: (psi: number) => number, psi: number, step: number): { readonl
     }
     return at
   }
-  const peak = goldenPeak(f, reach(-1), reach(1))
+  const peak = peakBetween(f, reach(-1), reach(1))
   return peak.value > top ? peak : { psi, value: top }
 }

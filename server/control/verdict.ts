@@ -2,8 +2,8 @@ import { Characteristic } from './characteristic.ts'
 import { evaluatePolynomial, largestRoot, rootWorkspace, type RootWorkspace } from './largest-root.ts'
 import { emptyLift, liftPlant, type LiftedPlant } from './lifted-plant.ts'
 import type { JointModel } from './model.ts'
-import { outerSteps, type OuterSteps } from './outer-steps.ts'
-import { sampleJoint, type SampledJoint } from './sampled-joint.ts'
+import { passingOuterSteps, type OuterSteps } from './outer-steps.ts'
+import { samplePassingJoint, type SampledJoint } from './sampled-joint.ts'
 import { EPSILON, stabilityOf, verdictOf, type Verdict } from './stability.ts'
 
 /** The answer that a tolerance vertex or a map's cell needs. */
@@ -52,7 +52,7 @@ const ENGINES_KEPT = 16
  * @source   control-model.md §3
  */
 export function verdict(model: JointModel): StabilityVerdict {
-  return verdictOfSampled(sampleJoint(model))
+  return verdictOfSampled(samplePassingJoint(model))
 }
 
 /** Outer steps and their lift, computed once for many laws on one sampled joint. */
@@ -68,7 +68,7 @@ export interface PreparedOuter {
  */
 export function verdictOfSampled(joint: SampledJoint, prepared: PreparedOuter | null = null, guess: RootGuess | null = null): StabilityVerdict {
   const { closes, timing } = joint
-  const steps = closes === 'current' ? null : (prepared?.steps ?? outerSteps(joint))
+  const steps = closes === 'current' ? null : (prepared?.steps ?? passingOuterSteps(joint))
   if (closes !== 'current' && steps) {
     const rho = radiusByPolynomial(joint, steps, closes, prepared?.lifted ?? null, guess)
     if (rho >= 0 && Math.abs(rho - 1) > NEAR) return { rho, verdict: verdictOf(rho, EPSILON), epsilon: EPSILON, route: 'polynomial' }

@@ -4,7 +4,7 @@ import type { JointModel } from '../model.ts'
 import { encoderCount } from '../plant.ts'
 import { simulateEveryTick } from '../simulation/simulate.ts'
 import { checkLog } from './bench-log.ts'
-import type { BenchLog } from './bench-log.ts'
+import type { BenchLog, CheckedLog } from './bench-log.ts'
 
 export type PredictedSignal = 'position' | 'speed' | 'current' | 'voltage'
 
@@ -18,10 +18,12 @@ export interface Comparison {
 }
 
 export interface LogPrediction {
-  /** s from the log's first row; at most about 2000 points, as the signals. */
+  /** s from the log's first row; one value a row, as the signals. */
   time: Float64Array
   set_point: Float64Array
   comparisons: Comparison[]
+  /** row ranges [from, to) without a gap between */
+  stretches: CheckedLog['stretches']
   repairs: string[]
   /** The log does not begin at rest, as the model does: speed (rad/s) or current (A) at its first row. */
   startsMoving: boolean
@@ -76,13 +78,12 @@ export function predictLog(model: JointModel, log: BenchLog, options: PredictOpt
   compare('current', current, record.i, false)
   const duty = checked.log.duty?.map((d) => d * model.environment.V_bus)
   compare('voltage', checked.log.voltage ?? duty, meanFrom(record.v, checked.dt / record.T_c), true)
-  const stride = Math.max(1, Math.ceil(times.length / 2000))
-  const thin = (column: Float64Array): Float64Array => column.filter((_, k) => k % stride === 0)
   const spanOfSpeed = Math.max(...comparisons.filter((c) => c.signal === 'speed').map((c) => spanOf(c.measured)), 0)
   return {
-    time: thin(times),
-    set_point: thin(set_point),
-    comparisons: comparisons.map((c) => ({ ...c, measured: thin(c.measured), predicted: thin(c.predicted) })),
+    time: times,
+    set_point,
+    comparisons,
+    stretches: checked.stretches,
     repairs: checked.repairs,
     startsMoving: Math.abs(speed?.[0] ?? 0) > 0.05 * spanOfSpeed || Math.abs(current[0]) > 0.2 * spanOf(current),
   }

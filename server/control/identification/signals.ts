@@ -1,5 +1,6 @@
 /** Signals that a log implies. */
 import type { CheckedLog } from './bench-log.ts'
+import { decimate } from './decimate.ts'
 
 /** Half-width of the window over which a position's slope is taken, s: wide against counts and a firmware's own ripple. */
 const HALF_WINDOW = 4e-3
@@ -80,7 +81,7 @@ export function voltageOf({ log }: CheckedLog, V_bus: number | undefined): Float
   return log.duty.map((d) => d * V_bus)
 }
 
-/** A residual to plot: at most about 2000 of its points, and its root mean square over all of them. */
+/** A residual to plot: at most about 2000 of its points, its peaks among them, and its root mean square over all. */
 export interface ResidualSeries {
   time: Float64Array
   value: Float64Array
@@ -107,10 +108,8 @@ export class ResidualCollector {
 
   series(): ResidualSeries {
     const n = this.value.length
-    const stride = Math.max(1, Math.ceil(n / 2000))
-    const time = Float64Array.from({ length: Math.ceil(n / stride) }, (_, k) => this.time[k * stride])
-    const value = Float64Array.from({ length: time.length }, (_, k) => this.value[k * stride])
+    const { x, y } = decimate(this.time, this.value, { from: 0, to: n, pieces: 1000 })
     const neighbourCorrelation = this.squares > 0 ? this.products / this.squares : 0
-    return { time, value, rms: n > 0 ? Math.sqrt(this.squares / n) : 0, neighbourCorrelation }
+    return { time: Float64Array.from(x), value: Float64Array.from(y as number[]), rms: n > 0 ? Math.sqrt(this.squares / n) : 0, neighbourCorrelation }
   }
 }

@@ -1,7 +1,7 @@
 import type { LoopCurve, LoopName } from '../../../shared/contract/checks.ts'
 import { frequencyResponses } from '../../control/frequency-response.ts'
 import { closuresOf } from '../../control/monodromy.ts'
-import { sampleJoint } from '../../control/sampled-joint.ts'
+import { closedMode } from '../../control/sampled-joint.ts'
 import type { CurvesInputs } from './requests.ts'
 
 export type CurvesResult = Partial<Record<LoopName, LoopCurve>>
@@ -32,19 +32,22 @@ function unwrapped(re: Float64Array, im: Float64Array): number[] {
   return out
 }
 
-/** Bode curves of every loop the joint closes. @throws NumericError */
+/** Bode curves of every loop the joint closes; loops of one task share their frequencies. @throws NumericError */
 export function curvesAnalysis({ model }: CurvesInputs): CurvesResult {
   const { f_c, f_o } = model.firmware
   const six = (v: number) => Number(v.toPrecision(6))
-  const curve = (loop: LoopName): LoopCurve => {
-    const [r] = frequencyResponses(model, [loop], frequencies(loop, f_c, f_o))
-    return {
-      hz: Array.from(r.hz, six),
-      openDb: Array.from(r.L_re, (re, k) => six(decibels(re, r.L_im[k]))),
-      openPhaseDeg: unwrapped(r.L_re, r.L_im),
-      closedDb: Array.from(r.T_re, (re, k) => six(decibels(re, r.T_im[k]))),
-      closedPhaseDeg: unwrapped(r.T_re, r.T_im),
-    }
-  }
-  return Object.fromEntries(closuresOf(sampleJoint(model).closes).map((loop) => [loop, curve(loop)]))
+  const loops = closuresOf(closedMode(model))
+  const responses = [loops.slice(0, 1), loops.slice(1)].flatMap((alike) => (alike.length === 0 ? [] : frequencyResponses(model, alike, frequencies(alike[0], f_c, f_o))))
+  return Object.fromEntries(
+    responses.map((r): [LoopName, LoopCurve] => [
+      r.loop,
+      {
+        hz: Array.from(r.hz, six),
+        openDb: Array.from(r.L_re, (re, k) => six(decibels(re, r.L_im[k]))),
+        openPhaseDeg: unwrapped(r.L_re, r.L_im),
+        closedDb: Array.from(r.T_re, (re, k) => six(decibels(re, r.T_im[k]))),
+        closedPhaseDeg: unwrapped(r.T_re, r.T_im),
+      },
+    ]),
+  )
 }
