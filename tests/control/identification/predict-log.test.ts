@@ -24,7 +24,7 @@ describe('prediction of a log from its own set-point', () => {
     expect(errors.voltage).toBeLessThan(8e-3)
     expect(p.startsMoving).toBe(false)
     expect(p.time.length).toBe(p.comparisons[0].predicted.length)
-    expect(p.time.length).toBeLessThanOrEqual(2000)
+    expect(p.time.length).toBe(Math.floor((0.9 * model.firmware.f_c) / RUN.every))
   })
 
   it('shows a wrong inertia in speed and current', () => {
