@@ -9,6 +9,7 @@ import { CommentAnswer } from '../modules/comments/comment-answer.entity.ts'
 import { Comment } from '../modules/comments/comment.entity.ts'
 import { CheckReport } from '../modules/checks/check-report.entity.ts'
 import { JointAnalysis } from '../modules/checks/joint-analysis.entity.ts'
+import { Evidence } from '../modules/evidence/evidence.entity.ts'
 import { FirmwareLine } from '../modules/firmware/firmware-line.entity.ts'
 import { FirmwareVersion } from '../modules/firmware/firmware-version.entity.ts'
 import { WorkplaceKey } from '../modules/keys/workplace-key.entity.ts'
@@ -35,7 +36,7 @@ import { ReadMark } from '../modules/reviews/read-mark.entity.ts'
 import { Signature } from '../modules/reviews/signature.entity.ts'
 
 export const entities = [
-  BenchKey, Board, BoardEvent, Bus, Change, ChangeEvent, CheckReport, Comment, CommentAnswer, DraftPoint, DriveTrain, Family, FirmwareLine, FirmwareVersion, Joint, JointAnalysis, LedgerCheckpoint, LedgerEntry, Link, Machine, Mail,
+  BenchKey, Board, BoardEvent, Bus, Change, ChangeEvent, CheckReport, Comment, CommentAnswer, DraftPoint, DriveTrain, Evidence, Family, FirmwareLine, FirmwareVersion, Joint, JointAnalysis, LedgerCheckpoint, LedgerEntry, Link, Machine, Mail,
   Person, PolicyVersion, ReadMark, Receipt, RecoveryCode, Release, ReleaseJoint, ReleaseKit, Revision, RoleGrant, SessionRecord, Signature, Withdrawal, WorkplaceKey,
 ]
 

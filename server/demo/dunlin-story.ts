@@ -1,5 +1,7 @@
 import type { MachineSet } from '../../shared/parameters/machine-set.ts'
+import type { Services } from '../http/services.ts'
 import { afterRelease } from './boards-story.ts'
+import { backAndForth, tellLog } from './evidence-story.ts'
 import type { Story } from './story.ts'
 
 const [mirela, tobias, rafiq, ingunn, hedda] = ['Mirela Castanho', 'Tobias Oyelaran', 'Rafiq Sandoval', 'Ingunn Veblen', 'Hedda Lindqvist']
@@ -8,7 +10,7 @@ const value = (family: string, name: string) => `/families/${family}/values/${na
 const own = (joint: string, name: string) => `/joints/${joint}/values/${name}`
 
 /** Five months of Dunlin: six releases, one of them withdrawn, and changes in every state. */
-export async function dunlinStory(story: Story, set: MachineSet): Promise<void> {
+export async function dunlinStory(story: Story, services: Services, set: MachineSet): Promise<void> {
   story.day(4)
   await story.through({ machine, title: 'First numbers for the walker', reason: 'Starting values from the drive trains, tried on one leg on the bench stand at reduced current.', author: mirela, content: set }, ingunn, hedda)
   await afterRelease(story, '1.0.0')
@@ -81,6 +83,7 @@ export async function dunlinStory(story: Story, set: MachineSet): Promise<void> 
     author: mirela,
     content: [[value('knee', 'velocityWindow'), 10], [value('knee', 'velocityGain'), 4.4], [value('knee', 'velocityIntegralGain'), 48], [value('knee', 'positionGain'), 66], [value('knee', 'currentLimit'), 3], [own('r3-knee', 'velocityGain'), undefined]],
   })
+  await tellLog(story, services, { machine, by: mirela, change: knee, name: 'l2-knee-soft-mud.csv', run: { joint: 'l2-knee', ...backAndForth(0.35), every: 8, seed: 1, really: { R: 1.03, J_load: 1.12, tau_c: 1.2 } } })
   await story.submit(knee, mirela)
   const ripple = await story.comment(knee, rafiq, 'Ten samples let more of the encoder step through. Was it heard on the bench?', { on: { kind: 'value', pointer: value('knee', 'velocityWindow') } })
   await story.comment(knee, mirela, 'Faint, only at rest and unloaded; with the shank on there is nothing to hear.', { under: ripple })

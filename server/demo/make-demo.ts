@@ -19,6 +19,7 @@ import { Mail } from '../modules/mail/mail.entity.ts'
 import { projectRoot } from '../project-root.ts'
 import { boardsStory } from './boards-story.ts'
 import { dunlin } from './dunlin.ts'
+import { evidenceStory } from './evidence-story.ts'
 import { dunlinStory } from './dunlin-story.ts'
 import { demoFirmwareImage } from './firmware-image.ts'
 import { Story } from './story.ts'
@@ -90,7 +91,8 @@ export async function makeDemo(services: Services): Promise<void> {
     ['teasel', 'Teasel', 'seed-sorting arm with a belt roller'],
   ] as const)
     await story.act(async (em, now) => makeMachine(em, { key, name, description, person: await story.person(em, administrator), now }))
-  await dunlinStory(story, dunlin)
+  await dunlinStory(story, services, dunlin)
   await teaselStory(story, teasel)
   await boardsStory(story, services)
+  await evidenceStory(story, services)
 }

@@ -1,6 +1,6 @@
 import { MessageChannel } from 'node:worker_threads'
 import { Piscina } from 'piscina'
-import type { Outcome, Task, TaskResult, Told } from './task.ts'
+import { telling, type Outcome, type Task, type TaskResult, type Told } from './task.ts'
 import { TimeLimit, WorkerLost, type Threads } from './threads.ts'
 
 export interface WorkerOptions {
@@ -23,7 +23,7 @@ export function onWorkers({ workerFile, threads, limitMs = 60_000, heapMiB = 512
     width: threads,
     async run<T extends Task>(task: T, told?: Told, stopped?: AbortSignal) {
       const limit = AbortSignal.timeout(limitMs)
-      const channel = task.kind === 'retune' && told ? new MessageChannel() : null
+      const channel = telling.has(task.kind) && told ? new MessageChannel() : null
       channel?.port1.on('message', told!)
       try {
         const signal = stopped ? AbortSignal.any([limit, stopped]) : limit

@@ -1,5 +1,7 @@
 import type { MapCells } from '../../shared/contract/checks.ts'
+import type { LogWindow } from '../../shared/contract/evidence.ts'
 import { NumericError } from '../control/errors.ts'
+import type { IdentificationReport } from '../control/identification/identify.ts'
 import type { JointModel } from '../control/model.ts'
 import { curvesAnalysis, type CurvesResult } from './analyses/curves.ts'
 import { mapRows } from './analyses/map.ts'
@@ -7,6 +9,10 @@ import { nominalAnalysis, type NominalResult } from './analyses/nominal.ts'
 import type { CurvesInputs, MapInputs, NominalInputs, RetuneInputs, StepInputs } from './analyses/requests.ts'
 import { retuneAnalysis, type RetuneResult } from './analyses/retune.ts'
 import { runStep, windowOf, type StepRun } from './analyses/step-response.ts'
+import { compareLog, type Compared, type CompareInputs } from './logs/compare-log.ts'
+import { identifyLog, type IdentifyInputs } from './logs/identify-log.ts'
+import { logWindow, type WindowInputs } from './logs/log-window.ts'
+import { readLog, type ReadLogInputs, type ReadLogResult } from './logs/read-log.ts'
 import { layOut, sweepPoints, type SweepLayout, type SweepPlan, type SweepPoint } from './analyses/tolerance-points.ts'
 
 /** A piece of work short enough to be interrupted between: what crosses to a worker thread. It keeps nothing from one to the next. */
@@ -18,6 +24,13 @@ export type Task =
   | { kind: 'step'; model: JointModel; step: StepInputs; slowest: number | null }
   | { kind: 'rows'; inputs: MapInputs; from: number; count: number }
   | { kind: 'retune'; inputs: RetuneInputs }
+  | { kind: 'read log'; inputs: ReadLogInputs }
+  | { kind: 'draw log'; inputs: WindowInputs }
+  | { kind: 'compare log'; inputs: CompareInputs }
+  | { kind: 'identify'; inputs: IdentifyInputs }
+
+/** Tasks long enough to tell how far they are. */
+export const telling: ReadonlySet<Task['kind']> = new Set(['retune', 'read log'])
 
 interface TaskResults {
   nominal: NominalResult
@@ -27,6 +40,10 @@ interface TaskResults {
   step: StepRun
   rows: MapCells
   retune: RetuneResult
+  'read log': ReadLogResult
+  'draw log': LogWindow
+  'compare log': Compared
+  identify: IdentificationReport
 }
 export type TaskResult<T extends Task> = TaskResults[T['kind']]
 
@@ -44,6 +61,10 @@ const work: { [K in Task['kind']]: (task: Extract<Task, { kind: K }>, told: Told
   step: ({ model, step, slowest }) => runStep(model, step, windowOf(model, slowest)),
   rows: ({ inputs, from, count }) => mapRows(inputs, from, count),
   retune: ({ inputs }, told) => retuneAnalysis(inputs, told),
+  'read log': ({ inputs }, told) => readLog(inputs, told),
+  'draw log': ({ inputs }) => logWindow(inputs),
+  'compare log': ({ inputs }) => compareLog(inputs),
+  identify: ({ inputs }) => identifyLog(inputs),
 }
 
 /** Does a task, wherever it is called. */

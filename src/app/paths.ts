@@ -20,6 +20,7 @@ export const paths = {
   machine: (machine: string) => `/machines/${part(machine)}`,
   bus: (machine: string, bus: string) => `/machines/${part(machine)}/bus/${part(bus)}`,
   joint: (machine: string, joint: string) => `/machines/${part(machine)}/joints/${part(joint)}`,
+  evidence: (machine: string, number: number) => `/machines/${part(machine)}/evidence/${number}`,
   family: (machine: string, family: string) => `/machines/${part(machine)}/families/${part(family)}`,
   firmware: () => '/firmware',
   firmwareComparison: (line: string, { from, to }: { from?: string; to?: string } = {}) => {

@@ -29,6 +29,7 @@ const pages: RouteObject[] = [
   { path: 'machines/:machine', lazy: () => import('../routes/machine.tsx') },
   { path: 'machines/:machine/bus/:bus', lazy: () => import('../routes/bus.tsx') },
   { path: 'machines/:machine/joints/:joint', lazy: () => import('../routes/joint.tsx') },
+  { path: 'machines/:machine/evidence/:evidence', lazy: () => import('../routes/evidence.tsx') },
   { path: 'machines/:machine/families/:family', lazy: () => import('../routes/family.tsx') },
   { path: 'firmware', lazy: () => import('../routes/firmware.tsx') },
   { path: 'firmware/:line/compare', lazy: () => import('../routes/firmware-compare.tsx') },

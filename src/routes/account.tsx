@@ -7,6 +7,7 @@ import { SectionHeading } from '../components/ui/section-heading.tsx'
 import { Select } from '../components/ui/select.tsx'
 import { BenchKeysSection } from '../features/bench-keys/components/bench-keys-section.tsx'
 import { ChangePasswordForm } from '../features/people/components/change-password-form.tsx'
+import { MailChoicesSection } from '../features/mail/components/mail-choices.tsx'
 import { RoleList } from '../features/people/components/role-list.tsx'
 import { SecondFactorSection } from '../features/people/components/second-factor-section.tsx'
 import { SessionList } from '../features/people/components/session-list.tsx'
@@ -46,6 +47,7 @@ export function Component() {
             </Region>
           </section>
           <BenchKeysSection />
+          <MailChoicesSection />
         </div>
         <div className="grid min-w-0 grid-cols-[minmax(0,1fr)] content-start gap-8">
           <section aria-labelledby="password">

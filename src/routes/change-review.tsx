@@ -5,6 +5,8 @@ import type { LoaderFunctionArgs } from 'react-router'
 import { paths } from '../app/paths.ts'
 import type { ChangeView } from '../../shared/contract/changes.ts'
 import type { CommentPlace } from '../../shared/contract/comments.ts'
+import type { Me } from '../../shared/contract/people.ts'
+import type { DiffView } from '../../shared/contract/reviews.ts'
 import { Region } from '../components/layout/region.tsx'
 import { SectionHeading } from '../components/ui/section-heading.tsx'
 import { TextLink } from '../components/ui/text-link.tsx'
@@ -22,6 +24,8 @@ import { CommentList } from '../features/comments/components/comment-list.tsx'
 import { CommentMark } from '../features/comments/components/comment-mark.tsx'
 import { commentsQuery } from '../features/comments/queries.ts'
 import { useHashTarget } from '../features/comments/use-hash-target.ts'
+import { ChangeEvidence } from '../features/evidence/components/change-evidence.tsx'
+import { changeEvidenceQuery } from '../features/evidence/queries.ts'
 import { peopleQuery } from '../features/people/queries.ts'
 import { ConcessionCard } from '../features/reviews/components/concession-card.tsx'
 import { Differences } from '../features/reviews/components/differences.tsx'
@@ -32,7 +36,7 @@ import { goToRowOf } from '../features/reviews/go-to-row.ts'
 import { diffQuery, effectsQuery, readingQuery } from '../features/reviews/queries.ts'
 import { useChangeEvents } from '../features/reviews/use-change-events.ts'
 import { useReading } from '../features/reviews/use-reading.ts'
-import { useMe } from '../lib/me.ts'
+import { holds, useMe } from '../lib/me.ts'
 import { queryClient } from '../lib/query-client.ts'
 
 export async function loader({ params }: LoaderFunctionArgs) {
@@ -40,6 +44,7 @@ export async function loader({ params }: LoaderFunctionArgs) {
   void queryClient.prefetchQuery(diffQuery(change.key, change.revision))
   void queryClient.prefetchQuery(readingQuery(change.key, change.revision))
   void queryClient.prefetchQuery(commentsQuery(change.key))
+  void queryClient.prefetchQuery(changeEvidenceQuery(change.key, change.revision))
   void queryClient.prefetchQuery(checkQuery(change.key, change.revision))
   return null
 }
@@ -136,6 +141,7 @@ export function Component() {
               </Region>
             </div>
           </section>
+          <ChangeEvidence machine={change.machine} change={change.key} revision={change.revision} joints={jointsOf(change, diff.data)} adding={addingTo(change, me)} onSent={(number) => void navigate(paths.evidence(change.machine, number))} />
         </div>
         <aside className="grid content-start gap-6">
           <Signing
@@ -161,6 +167,20 @@ export function Component() {
       </div>
     </>
   )
+}
+
+/** Joints that a log can be of: those that alter first. */
+function jointsOf(change: ChangeView, diff: DiffView | undefined) {
+  const touched = new Set(diff?.groups.flatMap((g) => g.joints) ?? [])
+  const all = Object.entries(change.set.joints).map(([key, { name }]) => ({ key, name }))
+  return [...all.filter((j) => touched.has(j.key)), ...all.filter((j) => !touched.has(j.key))]
+}
+
+/** Its writers add evidence until the first signature. */
+function addingTo(change: ChangeView, me: Me): { hold: string | null } | null {
+  if (!change.writers.includes(me.name) || !holds(me, 'upload evidence', change.machine)) return null
+  if (change.state !== 'draft' && change.state !== 'submitted') return null
+  return { hold: change.signatures.some((s) => !s.void) ? 'The change is signed; its evidence is part of what was signed.' : null }
 }
 
 const namesIn = (change: ChangeView) => ({

@@ -1,5 +1,5 @@
 import { useQuery, useSuspenseQuery } from '@tanstack/react-query'
-import { useParams } from 'react-router'
+import { useNavigate, useParams } from 'react-router'
 import type { LoaderFunctionArgs } from 'react-router'
 import { paths } from '../app/paths.ts'
 import { FilterField } from '../components/layout/filter-field.tsx'
@@ -17,6 +17,7 @@ import { SectionHeading } from '../components/ui/section-heading.tsx'
 import { TextLink } from '../components/ui/text-link.tsx'
 import { BoardHistory } from '../features/boards/components/board-history.tsx'
 import { jointBoardsQuery, machineBoardsQuery } from '../features/boards/queries.ts'
+import { JointEvidence } from '../features/evidence/components/joint-evidence.tsx'
 import { DriveTrainSheet } from '../features/machines/components/drive-train.tsx'
 import { DraftChangeButton } from '../features/machines/components/draft-change-button.tsx'
 import { MachineFrame } from '../features/machines/components/machine-frame.tsx'
@@ -32,6 +33,7 @@ export const loader = ({ params }: LoaderFunctionArgs) =>
 
 export function Component() {
   const params = useParams()
+  const navigate = useNavigate()
   const machine = useSuspenseQuery(machineQuery(params.machine!)).data
   const atJoint = useQuery(jointBoardsQuery(params.machine!, params.joint!))
   const boards = useQuery(machineBoardsQuery(params.machine!)).data
@@ -99,6 +101,7 @@ export function Component() {
           </SectionHeading>
           <DriveTrainSheet driveTrain={joint.driveTrain} />
         </section>
+        <JointEvidence machine={joint.machine} joint={joint.key} onSent={(number) => void navigate(paths.evidence(joint.machine, number))} />
         <section aria-labelledby="boards" className="mb-8">
           <SectionHeading id="boards" actions={<TextLink to={paths.bench(joint.machine, { joint: joint.key })}>bench</TextLink>}>
             Boards

@@ -59,7 +59,7 @@ describe('the ledger', () => {
 
 describe('the mail', () => {
   const mail = (over: Partial<MailView> = {}): MailView => ({
-    id: 5, to: 'wren@dunlin.example', person: 'Wren Halloran', subject: 'Your invitation to Detent', text: `Wren Halloran,\n\n${window.location.origin}/links/abc\nhttps://other.example/x\n`, state: 'failed', attempts: 8, createdAt: '2026-11-30T18:02:00Z', sentAt: null, lastError: 'connection refused', may: { retry: { allowed: true } }, ...over,
+    id: 5, to: 'wren@dunlin.example', person: 'Wren Halloran', subject: 'Your invitation to Detent', text: `Wren Halloran,\n\n${window.location.origin}/links/abc\nhttps://other.example/x\n`, state: 'failed', topic: 'account', attempts: 8, createdAt: '2026-11-30T18:02:00Z', sentAt: null, lastError: 'connection refused', may: { retry: { allowed: true } }, ...over,
   })
 
   it('links to this program alone, and sends again what failed', async () => {

@@ -11,6 +11,7 @@ import { Migration20261201123623 } from './20261201123623-ledger-checkpoints.ts'
 import { Migration20261201135526 } from './20261201135526-ledger-counts.ts'
 import { Migration20261201142944 } from './20261201142944-hash-indexes.ts'
 import { Migration20261201143059 } from './20261201143059-second-factor.ts'
+import { Migration20261201144454 } from './20261201144454-evidence-and-mail-choices.ts'
 
 /** Every migration in order. Classes, not files: the bundle carries them. */
 export const migrations = [
@@ -27,4 +28,5 @@ export const migrations = [
   { name: '20261201135526-ledger-counts', class: Migration20261201135526 },
   { name: '20261201142944-hash-indexes', class: Migration20261201142944 },
   { name: '20261201143059-second-factor', class: Migration20261201143059 },
+  { name: '20261201144454-evidence-and-mail-choices', class: Migration20261201144454 },
 ]

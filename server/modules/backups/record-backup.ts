@@ -30,5 +30,5 @@ export async function recordFailure(em: EntityManager, { why, now }: { why: stri
 }
 
 async function tellAdministrators(em: EntityManager, subject: string, text: string, now: Date) {
-  for (const person of await em.find(Person, { id: { $in: [...(await administrators(em))] } })) queueMail(em, { person, subject, text, now })
+  for (const person of await em.find(Person, { id: { $in: [...(await administrators(em))] } })) queueMail(em, { person, topic: 'workplace', subject, text, now })
 }

@@ -1,7 +1,11 @@
 import type { AskCopy } from '../../db/read-copy.ts'
 
 /** Every column that names a stored file. */
-const naming: readonly { table: string; column: string }[] = [{ table: 'firmware_version', column: 'image_sha256' }]
+const naming: readonly { table: string; column: string }[] = [
+  { table: 'firmware_version', column: 'image_sha256' },
+  { table: 'evidence', column: 'stored_sha256' },
+  { table: 'evidence', column: 'columns_sha256' },
+]
 
 /** SHA-256 of every stored file that the database names, sorted; columns that an older database has not name nothing. */
 export async function referencedFiles(ask: AskCopy): Promise<string[]> {

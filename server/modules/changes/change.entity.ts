@@ -94,6 +94,13 @@ export function renewHash(change: Change, contentHash: string, now: Date) {
   touch(change, now)
 }
 
+/** Evidence came or went before the first signature: the round goes on, on another hash. */
+export function takeEvidence(change: Change, contentHash: string, now: Date) {
+  mustBe(change, ['submitted'], 'given evidence')
+  change.contentHash = contentHash
+  touch(change, now)
+}
+
 /** The draft stands on another release from now on. */
 export function rebase(change: Change, release: Release, now: Date) {
   mustBe(change, ['draft'], 'brought up to date')

@@ -20,7 +20,7 @@ export async function returnChange(em: EntityManager, change: Change, { reason, 
   returnToDraft(change, now)
   await addEvent(em, change, { kind: 'returned', person, at: now, note: reason })
   for (const writer of await em.find(Person, { id: { $in: change.writers } }))
-    queueMail(em, { person: writer, subject: `Returned: ${change.machine.name} ${change.number}, ${change.title}`, text: `${person.name} returned change ${changeKey(change)}, "${change.title}".\n\nReason: ${reason}\n\nIt is a draft again; signatures on it are void.\n`, now })
+    queueMail(em, { person: writer, topic: 'return', subject: `Returned: ${change.machine.name} ${change.number}, ${change.title}`, text: `${person.name} returned change ${changeKey(change)}, "${change.title}".\n\nReason: ${reason}\n\nIt is a draft again; signatures on it are void.\n`, now })
 }
 
 /** Ends a change that will not be released. Its content stays readable. */

@@ -20,6 +20,7 @@ import { setOf } from './read-set.ts'
 import { cancelChange, returnChange } from './return-change.ts'
 import { goBackTo, mustWrite, saveDraftText, saveEdits } from './save-draft.ts'
 import { prepareSubmission, submitChange } from './submit-change.ts'
+import { tellSigners } from './tell-signers.ts'
 
 const BringUpToDate = Type.Object({ decisions: Type.Array(Type.Object({ pointer: Type.String({ maxLength: 400 }), keep: Type.Union([Type.Literal('yours'), Type.Literal('theirs')]) }, { additionalProperties: false }), { maxItems: 5000 }) }, { additionalProperties: false })
 
@@ -148,7 +149,10 @@ export const changeRoutes: readonly RouteSpec[] = [
       mustWrite(call.place.change, call.person)
       mustMatch(call, call.place.change.revision)
       const prepared = await prepareSubmission(call.services, call.em, call.place.change)
-      return actOnChange(call, (em, change) => submitChange(em, change, prepared, call))
+      return actOnChange(call, async (em, change) => {
+        await submitChange(em, change, prepared, call)
+        await tellSigners(em, change, { act: 'sign peer review', by: call.person, baseUrl: call.services.config.baseUrl, now: call.now })
+      })
     },
   }),
   route({

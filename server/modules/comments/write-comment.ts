@@ -48,6 +48,6 @@ export async function writeComment(em: EntityManager, change: Change, { request,
   const key = changeKey(change)
   await appendEntry(em, { at: now, person, act: 'comment written', subject: { machine: change.machine.key, change: key }, details: { comment: comment.number, ...(head ? { under: head.number } : {}), ...(comment.about ? { about: comment.about } : {}), text: comment.text, named: named.map((p) => p.name) } })
   for (const p of named)
-    queueMail(em, { person: p, subject: `You are named: ${change.machine.name} ${change.number}, ${change.title}`, text: `${person.name} names you in a comment on change ${key}, "${change.title}"${comment.about ? `, at ${comment.about}` : ''}:\n\n${comment.text}\n\n${baseUrl}/changes/${key}/review#comment-${comment.number}\n`, now })
+    queueMail(em, { person: p, topic: 'named', subject: `You are named: ${change.machine.name} ${change.number}, ${change.title}`, text: `${person.name} names you in a comment on change ${key}, "${change.title}"${comment.about ? `, at ${comment.about}` : ''}:\n\n${comment.text}\n\n${baseUrl}/changes/${key}/review#comment-${comment.number}\n`, now })
   return comment
 }

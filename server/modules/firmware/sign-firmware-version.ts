@@ -29,7 +29,7 @@ async function leaveTraces(em: EntityManager, { version, person, now }: Signing,
   await appendEntry(em, { at: now, person, act: `firmware ${act}`, subject: { firmware: name }, details: { schemaHash: version.schemaHash, imageHash: version.imageSha256 ?? null } })
   const consequence = act === 'published' ? 'Its schema can no longer be edited; changes can move joints to it. You count as an author of those changes.' : 'Changes can no longer move joints to it; releases that hold it stay as they are.'
   for (const writer of await em.find(Person, { id: { $in: version.writers }, disabledAt: null }))
-    queueMail(em, { person: writer, subject: `${name} is ${act}`, text: `${person.name} ${act} ${name}, with the schema ${version.schemaHash}${version.imageSha256 ? ` and the firmware image ${version.imageSha256}` : ' and without a firmware image'}.\n\n${consequence}\n`, now })
+    queueMail(em, { person: writer, topic: 'firmware', subject: `${name} is ${act}`, text: `${person.name} ${act} ${name}, with the schema ${version.schemaHash}${version.imageSha256 ? ` and the firmware image ${version.imageSha256}` : ' and without a firmware image'}.\n\n${consequence}\n`, now })
 }
 
 /**

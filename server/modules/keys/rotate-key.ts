@@ -32,5 +32,5 @@ export async function rotateKey(em: EntityManager, { next, replaces, person, now
   const key = keepPublicKey(em, next, { from: now, person })
   await appendEntry(em, { at: now, person, act: 'workplace key rotated', details: { keyId: key.keyId, replaces } })
   for (const reader of await concerned(em))
-    queueMail(em, { person: reader, subject: 'The workplace signs kits with another key', text: `${person.name} rotated the workplace's key. Kits of releases made from now on prove themselves with the public key\n\n${key.keyId}\n\nand kits made before with the key they were signed with,\n\n${replaces}\n\nfor the last ones. Both stay on the keys page. Tell whoever checks kits outside Detent.\n`, now })
+    queueMail(em, { person: reader, topic: 'workplace', subject: 'The workplace signs kits with another key', text: `${person.name} rotated the workplace's key. Kits of releases made from now on prove themselves with the public key\n\n${key.keyId}\n\nand kits made before with the key they were signed with,\n\n${replaces}\n\nfor the last ones. Both stay on the keys page. Tell whoever checks kits outside Detent.\n`, now })
 }

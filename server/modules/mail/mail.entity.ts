@@ -1,8 +1,8 @@
 import { defineEntity, p, type InferEntity } from '@mikro-orm/core'
+import type { MailState, MailTopic } from '../../../shared/contract/mail.ts'
 import { DomainError } from '../../http/errors.ts'
 import { Person } from '../people/person.entity.ts'
 
-export type MailState = 'queued' | 'sent' | 'failed'
 
 /** A mail to send: written in the transaction of the act it tells of, sent afterwards. */
 export const Mail = defineEntity({
@@ -13,6 +13,7 @@ export const Mail = defineEntity({
     to: p.string().length(254),
     subject: p.string().length(200),
     text: p.text(),
+    topic: p.string().$type<MailTopic>().default('account'),
     /** the single-use link in the text, shown masked outside demo mode */
     secretLink: p.string().nullable(),
     state: p.string().$type<MailState>(),
@@ -45,5 +46,6 @@ export function markUndelivered(mail: Mail, error: string, now: Date) {
 /** Sent again at once, with a full count of attempts before it. */
 export function retry(mail: Mail, now: Date) {
   if (mail.state === 'sent') throw new DomainError('wrong-state', 'This mail was sent already. Nothing was altered; a new link or notice comes from the act that makes it.')
+  if (mail.state === 'gathered') throw new DomainError('wrong-state', 'This mail went out in a digest. Nothing was altered; the digest stands in the list as a mail of its own.')
   Object.assign(mail, { state: 'queued', attempts: 0, nextAttemptAt: now })
 }

@@ -11,9 +11,10 @@ export const presentMail = (mail: Mail, { mode }: Config): MailView => ({
   subject: mail.subject,
   text: mode === 'demo' ? mail.text : masked(mail),
   state: mail.state,
+  topic: mail.topic,
   attempts: mail.attempts,
   createdAt: mail.createdAt.toISOString(),
   sentAt: mail.sentAt?.toISOString() ?? null,
   lastError: mail.lastError ?? null,
-  may: { retry: mail.state === 'sent' ? { allowed: false, why: 'It was sent already.' } : { allowed: true } },
+  may: { retry: mail.state === 'sent' ? { allowed: false, why: 'It was sent already.' } : mail.state === 'gathered' ? { allowed: false, why: 'It went out in a digest.' } : { allowed: true } },
 })

@@ -1,9 +1,10 @@
 import type { EntityManager } from '@mikro-orm/core'
-import type { MailPage } from '../../../shared/contract/mail.ts'
+import { ChooseMail, type MailChoices, type MailPage } from '../../../shared/contract/mail.ts'
 import { Nothing } from '../../../shared/contract/people.ts'
 import { DomainError } from '../../http/errors.ts'
 import { route, type Place, type RouteSpec } from '../../http/route.ts'
 import { readBefore } from '../ledger/page-query.ts'
+import { chooseMail, presentChoices } from './choices.ts'
 import { Mail } from './mail.entity.ts'
 import { presentMail } from './present.ts'
 import { retryMail } from './retry-mail.ts'
@@ -17,6 +18,15 @@ async function theMail(em: EntityManager, params: Record<string, string>): Promi
 }
 
 export const mailRoutes: readonly RouteSpec[] = [
+  route({ method: 'get', path: '/me/mail', summary: 'read which mails one wants', access: 'signed-in', handle: async ({ person }) => ({ body: presentChoices(person) }) }),
+  route({
+    method: 'put',
+    path: '/me/mail',
+    summary: 'choose which mails one wants',
+    access: 'signed-in',
+    body: ChooseMail,
+    handle: ({ act, body, person, now }) => act(async (em) => ({ body: presentChoices(await chooseMail(em, person, body as MailChoices, now)) })),
+  }),
   route({
     method: 'get',
     path: '/mail',

@@ -1,5 +1,6 @@
 import type { Logger } from 'pino'
 import type { Services } from '../../http/services.ts'
+import { gatherDigests } from './digest.ts'
 import { Mail, markSent, markUndelivered } from './mail.entity.ts'
 import { masked } from './mask.ts'
 import { mailTransport, type MailTransport } from './transports.ts'
@@ -59,7 +60,7 @@ export function startMailSender(services: Services, log: Logger, transport: Mail
   const run = async () => {
     while (!stopped) {
       woken = false
-      const sent = await sendDue(services, transport, log).catch((error: Error) => {
+      const sent = await gatherDigests(services).then(() => sendDue(services, transport, log)).catch((error: Error) => {
         log.error({ err: error }, 'the mail sender failed; it tries again')
         return 0
       })

@@ -3,6 +3,7 @@ import { open } from 'node:fs/promises'
 import { join } from 'node:path'
 import { createTransport } from 'nodemailer'
 import type { Config } from '../../config.ts'
+import { letterHtml } from './letter-html.ts'
 
 export interface OutgoingMail {
   id: number
@@ -24,6 +25,7 @@ const message = (mail: OutgoingMail, from: string) => ({
   to: { name: '', address: mail.to },
   subject: mail.subject,
   text: mail.text,
+  html: letterHtml(mail.subject, mail.text),
   date: mail.createdAt,
   messageId: `<mail-${mail.id}-${mail.createdAt.getTime()}@detent>`,
   disableFileAccess: true,

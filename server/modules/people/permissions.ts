@@ -7,6 +7,7 @@ export const matrix = {
   read: ['observer', 'controls engineer', 'peer reviewer', 'release manager', 'builder', 'administrator'],
   'draft changes': ['controls engineer'],
   'draft firmware': ['controls engineer'],
+  'upload evidence': ['controls engineer'],
   comment: ['controls engineer', 'peer reviewer', 'release manager', 'builder'],
   'return changes': ['peer reviewer', 'release manager'],
   'sign peer review': ['peer reviewer'],

@@ -1,4 +1,5 @@
 import { defineEntity, p, type InferEntity } from '@mikro-orm/core'
+import type { MailChoices } from '../../../shared/contract/mail.ts'
 import { DomainError } from '../../http/errors.ts'
 
 /** A person who may sign in. People are disabled, never deleted: their acts stay theirs. */
@@ -18,6 +19,8 @@ export const Person = defineEntity({
     secondFactorAt: p.datetime().nullable(),
     /** the time step of the last code taken: neither it nor an earlier one is taken again */
     secondFactorStep: p.integer().nullable(),
+    /** where it differs from what is usual for a topic */
+    mailChoices: p.json<MailChoices>().nullable(),
     disabledAt: p.datetime().nullable(),
     createdAt: p.datetime(),
   },

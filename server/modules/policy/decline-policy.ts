@@ -10,7 +10,7 @@ export async function declinePolicy(em: EntityManager, { version: { id }, reason
   const version = await freshVersion(em, { id } as PolicyVersion)
   decline(version, now)
   const { machine, author } = version
-  if (author && author.id !== person.id) queueMail(em, { person: author, subject: `Policy of ${machine.name}: version ${version.number} was declined`, text: [`${author.name},`, '', `${person.name} declined version ${version.number} of the policy of ${machine.name}:`, '', reason.trim(), '', 'Detent'].join('\n'), now })
+  if (author && author.id !== person.id) queueMail(em, { person: author, topic: 'policy', subject: `Policy of ${machine.name}: version ${version.number} was declined`, text: [`${author.name},`, '', `${person.name} declined version ${version.number} of the policy of ${machine.name}:`, '', reason.trim(), '', 'Detent'].join('\n'), now })
   await appendEntry(em, { at: now, person, act: 'policy declined', subject: { machine: machine.key, policy: version.number }, details: { reason: reason.trim(), author: author?.name ?? null } })
   return version
 }

@@ -21,7 +21,7 @@ export async function proposePolicy(em: EntityManager, { machine, request, baseU
   if (open) throw new DomainError('wrong-state', `Version ${open.number} of the policy waits for a signature. Nothing was proposed; have it signed or declined first.`)
   const version = em.create(PolicyVersion, { machine, number: (last?.number ?? 0) + 1, content: request.content, reason: request.reason.trim(), author: person, proposedAt: now, signedAt: null, declinedAt: null })
   for (const manager of await releaseManagersOf(em, machine, person))
-    queueMail(em, { person: manager, subject: `Policy of ${machine.name}: version ${version.number} waits for a signature`, text: [`${manager.name},`, '', `${person.name} proposes version ${version.number} of the policy of ${machine.name}:`, '', version.reason, '', `Read it and sign or decline it at ${baseUrl}/policy?machine=${machine.key}`, '', 'Detent'].join('\n'), now })
+    queueMail(em, { person: manager, topic: 'policy', subject: `Policy of ${machine.name}: version ${version.number} waits for a signature`, text: [`${manager.name},`, '', `${person.name} proposes version ${version.number} of the policy of ${machine.name}:`, '', version.reason, '', `Read it and sign or decline it at ${baseUrl}/policy?machine=${machine.key}`, '', 'Detent'].join('\n'), now })
   await em.flush()
   await appendEntry(em, { at: now, person, act: 'policy proposed', subject: { machine: machine.key, policy: version.number }, details: { reason: version.reason, content: version.content } })
   return version

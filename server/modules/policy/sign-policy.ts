@@ -22,7 +22,7 @@ export async function signPolicy(em: EntityManager, { version: { id }, person, n
   mustNotBeAuthor(version, person)
   sign(version, person, now)
   const { machine, author } = version
-  if (author) queueMail(em, { person: author, subject: `Policy of ${machine.name}: version ${version.number} is in force`, text: [`${author.name},`, '', `${person.name} signed version ${version.number} of the policy of ${machine.name}; it is in force. Checks made under the version before it are stale.`, '', 'Detent'].join('\n'), now })
+  if (author) queueMail(em, { person: author, topic: 'policy', subject: `Policy of ${machine.name}: version ${version.number} is in force`, text: [`${author.name},`, '', `${person.name} signed version ${version.number} of the policy of ${machine.name}; it is in force. Checks made under the version before it are stale.`, '', 'Detent'].join('\n'), now })
   await appendEntry(em, { at: now, person, act: 'policy signed', subject: { machine: machine.key, policy: version.number }, details: { statement: policyStatement, author: author?.name ?? null, content: version.content } })
   return version
 }

@@ -148,6 +148,6 @@ export async function releaseChange(em: EntityManager, change: Change, prepared:
   await appendEntry(em, { at: now, person, act: 'release made', subject: { machine: change.machine.key, release: request.version }, details: { sequence, contentHash: content.hash, manifestSha256, keyId: key.keyId, images: Object.fromEntries(prepared.joints.map((j) => [j.joint, j.sha256])) } })
   await keepCheckpoint(em, { key: prepared.key, now, occasion: 'release' })
   for (const writer of await em.find(Person, { id: { $in: change.writers } }))
-    queueMail(em, { person: writer, subject: `Released: ${change.machine.name} ${request.version}`, text: `${person.name} released change ${change.machine.key}-${change.number}, "${change.title}", as ${change.machine.name} ${request.version} (sequence number ${sequence}).\n`, now })
+    queueMail(em, { person: writer, topic: 'release', subject: `Released: ${change.machine.name} ${request.version}`, text: `${person.name} released change ${change.machine.key}-${change.number}, "${change.title}", as ${change.machine.name} ${request.version} (sequence number ${sequence}).\n`, now })
   return release
 }

@@ -16,5 +16,5 @@ export async function withdrawRelease(em: EntityManager, release: Release, { rea
   const name = `${release.machine.name} ${release.version}`
   const held = boards.length === 0 ? 'No board is on record with it.' : `Flash these boards again before they run; they hold it, as recorded or read back:\n\n${boardLines(boards)}`
   for (const builder of await whoFlashed(em, release))
-    queueMail(em, { person: builder, subject: `Withdrawn: ${name}`, text: `${person.name} withdrew ${name}, which you flashed. It must no longer be flashed.\n\n${reason.trim()}\n\n${held}\n`, now })
+    queueMail(em, { person: builder, topic: 'withdrawal', subject: `Withdrawn: ${name}`, text: `${person.name} withdrew ${name}, which you flashed. It must no longer be flashed.\n\n${reason.trim()}\n\n${held}\n`, now })
 }

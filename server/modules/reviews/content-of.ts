@@ -7,6 +7,7 @@ import type { Change } from '../changes/change.entity.ts'
 import { setOf } from '../changes/read-set.ts'
 import { packCheck } from '../checks/pack-check.ts'
 import { resolveJoint, sha256, type ResolvedJoint } from '../checks/resolve-joint.ts'
+import { evidenceOf } from '../evidence/evidence-of.ts'
 import { schemasFor } from '../firmware/schemas-for.ts'
 import { DomainError, type FieldProblem } from '../../http/errors.ts'
 
@@ -35,7 +36,7 @@ export interface Content {
  *
  * SHA-256 over the RFC 8785 form of: base release; for every joint its family, bus, address, schema hash, values with origin, drive train,
  * board binding and image hash; the buses; model and policy versions; the check (hash of its inputs, findings, figures to six digits); the
- * concessions; the reason.
+ * concessions; the reason; the hashes of the evidence.
  *
  * @throws DomainError content-invalid when a joint can't be encoded
  */
@@ -69,7 +70,7 @@ export async function contentOf(em: EntityManager, change: Change, check: CheckR
     check: { inputsHash: packed.inputsHash, findings: sixDigits(packed.findings), joints: packed.joints, figures: sixDigits(packed.figures) },
     concessions: change.concessions,
     reason: change.reason,
-    evidence: [],
+    evidence: await evidenceOf(em, change),
   }
   const text = canonicalize(content)!
   return { set, joints, schemas, schemaHashes: loaded.hashes, schemaDocuments: loaded.documents, text, hash: sha256(text) }

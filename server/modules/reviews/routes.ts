@@ -6,6 +6,7 @@ import { followChange, tellOf } from '../changes/events.ts'
 import { again, onChange } from '../changes/locate.ts'
 import { checkChange } from '../checks/check-change.ts'
 import { prepare, proposalFor, releaseChange } from '../releases/release-change.ts'
+import { tellSigners } from '../changes/tell-signers.ts'
 import { contentOf } from './content-of.ts'
 import { diffChange } from './diff-change.ts'
 import { lookAtEffects } from './look-at-effects.ts'
@@ -93,7 +94,10 @@ export const reviewRoutes: readonly RouteSpec[] = [
       await mustBeReady(call.em, change, call.person)
       await mustReenter(call.em, call.person, call.body.password)
       await recompute(call.services, call.em, change, call.body.contentHash)
-      return actOnChange(call, (em, fresh) => signPeerReview(em, fresh, { contentHash: call.body.contentHash, person: call.person, now: call.now }))
+      return actOnChange(call, async (em, fresh) => {
+        await signPeerReview(em, fresh, { contentHash: call.body.contentHash, person: call.person, now: call.now })
+        if (fresh.state === 'approved') await tellSigners(em, fresh, { act: 'sign release', by: call.person, baseUrl: call.services.config.baseUrl, now: call.now })
+      })
     },
   }),
   route({

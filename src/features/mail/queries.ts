@@ -1,5 +1,5 @@
-import { infiniteQueryOptions } from '@tanstack/react-query'
-import type { MailPage } from '../../../shared/contract/mail.ts'
+import { infiniteQueryOptions, queryOptions } from '@tanstack/react-query'
+import type { MailChoicesView, MailPage } from '../../../shared/contract/mail.ts'
 import { get, withQuery } from '../../lib/api-client.ts'
 
 /** The mail queue, newest first, page by page. */
@@ -9,3 +9,6 @@ export const mailQuery = infiniteQueryOptions({
   initialPageParam: null as number | null,
   getNextPageParam: (page) => page.next,
 })
+
+/** How one's own mails come. */
+export const mailChoicesQuery = queryOptions({ queryKey: ['mail', 'own choices'], queryFn: ({ signal }) => get<MailChoicesView>('/me/mail', { signal }) })

@@ -21,7 +21,7 @@ async function queued(w: Workplace, count = 1): Promise<number[]> {
   const ids: number[] = []
   const em = w.orm.em.fork()
   for (let i = 0; i < count; i += 1) {
-    const mail = queueMail(em, { to: `builder-${i}@dunlin.example`, subject: `Board ${i} flashed`, text: `Set it here:\n\n${link}\n`, secretLink: link, now: w.services.now() })
+    const mail = queueMail(em, { to: `builder-${i}@dunlin.example`, subject: `Board ${i} flashed`, text: `Set it here:\n\n${link}\n`, secretLink: link, now: w.services.now() })!
     await em.flush()
     ids.push(mail.id)
   }
@@ -79,7 +79,7 @@ describe('queueing mail', () => {
   it('keeps a subject one header line, and refuses a link that masking would miss', async () => {
     const w = await aWorkplace()
     const em = w.orm.em.fork()
-    const mail = queueMail(em, { to: 'builder@dunlin.example', subject: 'Change: knee\r\nBcc: all@dunlin.example', text: 'text', now: w.services.now() })
+    const mail = queueMail(em, { to: 'builder@dunlin.example', subject: 'Change: knee\r\nBcc: all@dunlin.example', text: 'text', now: w.services.now() })!
     expect(mail.subject).toBe('Change: knee Bcc: all@dunlin.example')
     expect(() => queueMail(em, { to: 'builder@dunlin.example', subject: 'A', text: 'no link here', secretLink: link, now: w.services.now() })).toThrow('does not stand in the text')
   })

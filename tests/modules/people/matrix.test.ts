@@ -8,6 +8,7 @@ const table: Record<Act, string> = {
   read: 'x x x x x x',
   'draft changes': '. x . . . .',
   'draft firmware': '. x . . . .',
+  'upload evidence': '. x . . . .',
   comment: '. x x x x .',
   'return changes': '. . x x . .',
   'sign peer review': '. . x . . .',

@@ -19,7 +19,7 @@ export function MailDialog({ mail, onClose }: { mail: MailView; onClose: () => v
       title={mail.subject}
       actions={
         <>
-          {mail.state !== 'sent' && (
+          {mail.state !== 'sent' && mail.state !== 'gathered' && (
             <Button unavailable={refusal(mail.may.retry)} pending={retry.isPending} onClick={() => retry.mutate(mail.id)}>
               Send it now
             </Button>

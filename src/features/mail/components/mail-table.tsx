@@ -14,6 +14,8 @@ const columns: Column<MailView>[] = [
 export function MailState({ mail }: { mail: MailView }) {
   if (mail.state === 'failed') return <span className="text-oxide">failed after {count(mail.attempts, 'attempt')}</span>
   if (mail.state === 'queued') return <span className="text-plum">{mail.attempts === 0 ? 'to be sent' : `to be sent again, ${count(mail.attempts, 'attempt')} so far`}</span>
+  if (mail.state === 'held') return <span className="text-ink-2">held for the day’s digest</span>
+  if (mail.state === 'gathered') return <span>in the digest of {mail.sentAt && <Time at={mail.sentAt} />}</span>
   return <span>sent {mail.sentAt && <Time at={mail.sentAt} />}</span>
 }
 
