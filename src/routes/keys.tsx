@@ -41,11 +41,11 @@ export function Component() {
         <section aria-labelledby="proving">
           <SectionHeading id="proving">Proving a kit without Detent</SectionHeading>
           <p className="mt-2 max-w-[80ch] text-13 text-ink-2">Unpack the kit, put the public key you know from this page in the place of its own, and run these in its folder (OpenSSL 3.0 or newer).</p>
-          <ol className="mt-2 grid gap-3">
+          <ol className="mt-2 grid grid-cols-[minmax(0,1fr)] gap-3">
             {commands.map(([does, command]) => (
               <li key={command}>
                 <p className="text-13">{does}</p>
-                <pre className="sheet num mt-1 overflow-x-auto px-3 py-2 text-12">{command}</pre>
+                <pre className="sheet num mt-1 px-3 py-2 text-12 whitespace-pre-wrap [overflow-wrap:anywhere]">{command}</pre>
               </li>
             ))}
           </ol>

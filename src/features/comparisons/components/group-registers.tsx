@@ -17,7 +17,7 @@ export function GroupRegisters({ group }: { group: ComparedJoints }) {
       {rows.length === 0 ? (
         group.problems.length === 0 && <p className="text-13 text-ink-2">Every byte of the images is the same.</p>
       ) : (
-        <div className="overflow-x-auto">
+        <div className="overflow-x-auto" tabIndex={0} role="region" aria-label={`registers of ${group.joints.map((j) => j.name).join(', ')}`}>
           <table className="table table-dense" aria-label={`registers that differ of ${group.joints.map((j) => j.name).join(', ')}`}>
             <thead>
               <tr>

@@ -6,7 +6,7 @@ import { percentChange } from '../../../lib/format.ts'
 /** What differs of joints by value: where they sit, the model, and each parameter in its unit. */
 export function GroupValues({ group }: { group: ComparedJoints }) {
   return (
-    <div className="overflow-x-auto">
+    <div className="overflow-x-auto" tabIndex={0} role="region" aria-label={`values of ${group.joints.map((j) => j.name).join(', ')}`}>
       <table className="table table-dense" aria-label={`values that differ of ${group.joints.map((j) => j.name).join(', ')}`}>
         <thead>
           <tr>

@@ -105,7 +105,7 @@ function Preview({ preview, nameOf }: { preview: CarryOverPreview; nameOf: (plac
         </div>
       )}
       {altered.length > 0 && (
-        <div className="overflow-x-auto">
+        <div className="overflow-x-auto" tabIndex={0} role="region" aria-label="what alters">
           <table className="table table-dense" aria-label="values that alter">
             <thead>
               <tr>

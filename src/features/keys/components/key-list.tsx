@@ -29,8 +29,8 @@ export function KeyList({ keys }: { keys: readonly WorkplaceKeyView[] }) {
             <Hash hash={key.keyId} className="block !text-ink [overflow-wrap:anywhere]" />
           </div>
           <p className="self-center text-13">
-            <a className="link" href={fileOf(key)} download={`detent-public-key-${key.keyId.slice(0, 8)}.pem`} aria-label={`download the public key ${key.keyId.slice(0, 8)}`}>
-              public key, .pem
+            <a className="link" href={fileOf(key)} download={`detent-public-key-${key.keyId.slice(0, 8)}.pem`}>
+              public key, .pem<span className="sr-only">, of {key.keyId.slice(0, 8)}</span>
             </a>
           </p>
         </li>
