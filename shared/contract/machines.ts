@@ -145,4 +145,22 @@ export interface BusView {
   reserved: { from: number; to: number }[]
   /** addresses at which a board may still be put */
   free: number
+  /** bytes of the register address of each joint's board, by joint */
+  addressBytes: Record<string, number>
+  /** addresses that open changes put boards at, which the release shown does not */
+  claims: BusClaim[]
+  /** addresses that changes would take from each other, or from a joint that stays */
+  contested: { address: number; claims: BusClaim[]; holder: string | null }[]
+  /** limits of the policy in force, % */
+  loadPercent: { advise: number; block: number }
+}
+
+/** An address that an open change gives a joint. */
+export interface BusClaim {
+  change: string
+  title: string
+  state: ChangeSummary['state']
+  joint: string
+  name: string
+  address: number
 }

@@ -8,9 +8,13 @@ import { Num } from '../components/ui/num.tsx'
 import { SectionHeading } from '../components/ui/section-heading.tsx'
 import { TextLink } from '../components/ui/text-link.tsx'
 import { AddressGrid } from '../features/machines/components/address-grid.tsx'
+import { BusAddresses } from '../features/machines/components/bus-addresses.tsx'
+import { BusLoad } from '../features/machines/components/bus-load.tsx'
+import { BusWhatIf } from '../features/machines/components/bus-what-if.tsx'
 import { DraftChangeButton } from '../features/machines/components/draft-change-button.tsx'
 import { machineBoardsQuery } from '../features/boards/queries.ts'
 import { MachineFrame } from '../features/machines/components/machine-frame.tsx'
+import { PullUp } from '../features/machines/components/pull-up.tsx'
 import { FromRelease } from '../features/machines/components/release-shown.tsx'
 import { TapTable } from '../features/machines/components/tap-table.tsx'
 import { busQuery, machineQuery } from '../features/machines/queries.ts'
@@ -62,7 +66,19 @@ export function Component() {
         <section aria-labelledby="grid" className="mb-8">
           <SectionHeading id="grid" className="mb-2">Addresses</SectionHeading>
           <AddressGrid bus={bus} />
+          <BusAddresses bus={bus} />
         </section>
+        <div className="mb-8 grid gap-x-10 gap-y-6 sm:grid-cols-2">
+          <section aria-labelledby="load">
+            <SectionHeading id="load">Load</SectionHeading>
+            <BusLoad bus={bus} settings={settings} />
+          </section>
+          <section aria-labelledby="pull-up">
+            <SectionHeading id="pull-up">Pull-up</SectionHeading>
+            <PullUp settings={settings} />
+          </section>
+        </div>
+        <BusWhatIf key={bus.key} bus={bus} />
         <section aria-labelledby="taps">
           <SectionHeading id="taps">What answers</SectionHeading>
           <TapTable bus={bus} />

@@ -63,6 +63,6 @@ export const aFamily = (): FamilyView => ({
 })
 
 export const aBus = (): BusView => ({
-  machine: 'dunlin', machineName: 'Dunlin', shown, key: 'fore', settings: busSettings, doubled: [0x33], free: 109, reserved: [{ from: 0, to: 7 }, { from: 0x78, to: 0x7f }],
+  machine: 'dunlin', machineName: 'Dunlin', shown, key: 'fore', settings: busSettings, doubled: [0x33], free: 109, reserved: [{ from: 0, to: 7 }, { from: 0x78, to: 0x7f }], addressBytes: {}, claims: [], contested: [], loadPercent: { advise: 70, block: 100 },
   taps: [{ address: 0x33, joint: 'l1-knee', name: 'L1 knee', reserved: false }, { address: 0x33, joint: null, name: 'depth gauge', reserved: false }, { address: 0x3b, joint: 'r1-knee', name: 'R1 knee', reserved: false }],
 })

@@ -1,15 +1,6 @@
+import { ADDRESSES, reserved } from '../../../shared/bus/addresses.ts'
 import type { Tap } from '../../../shared/contract/machines.ts'
 import type { MachineSet } from '../../../shared/parameters/machine-set.ts'
-import { reserved } from '../checks/findings/addresses.ts'
-
-const addresses = Array.from({ length: 128 }, (_, address) => address)
-
-/** The ranges that I²C keeps for its own uses, ends included. */
-export const reservedRanges = addresses.reduce<{ from: number; to: number }[]>((ranges, address) => {
-  if (!reserved(address)) return ranges
-  const last = ranges.at(-1)
-  return last && last.to === address - 1 ? [...ranges.slice(0, -1), { from: last.from, to: address }] : [...ranges, { from: address, to: address }]
-}, [])
 
 export interface BusPlan {
   taps: Tap[]
@@ -26,6 +17,6 @@ export function busPlan(set: MachineSet, bus: string): BusPlan {
   return {
     taps,
     doubled: [...new Set(taken.filter((a, i) => taken.indexOf(a) !== i))],
-    free: addresses.filter((a) => !reserved(a) && !taken.includes(a)).length,
+    free: ADDRESSES.filter((a) => !reserved(a) && !taken.includes(a)).length,
   }
 }

@@ -1,7 +1,9 @@
 import { describe, expect, it } from 'vitest'
 import { defaultPolicy } from '../../../shared/contract/policy.ts'
 import type { BusSettings, MachineSet } from '../../../shared/parameters/machine-set.ts'
-import { bitsPerRead, busFindings, pullUpWindow } from '../../../server/modules/checks/findings/buses.ts'
+import { bitsPerRead } from '../../../shared/bus/load.ts'
+import { pullUpWindow } from '../../../shared/bus/pull-up.ts'
+import { busFindings } from '../../../server/modules/checks/findings/buses.ts'
 import { aSet } from '../../support/a-set.ts'
 
 const withBus = (edit: Partial<BusSettings>): MachineSet => {

@@ -1,11 +1,9 @@
+import { reserved } from '../../../../shared/bus/addresses.ts'
 import type { MachineSet } from '../../../../shared/parameters/machine-set.ts'
 import type { RawFinding } from './finding.ts'
 
 const hex = (address: number) => `0x${address.toString(16).toUpperCase().padStart(2, '0')}`
 const source = 'UM10204, table of reserved addresses and the text under it'
-
-/** Addresses that I²C keeps for its own uses: 0x00–0x07 and 0x78–0x7F (UM10204). */
-export const reserved = (address: number) => address <= 0x07 || address >= 0x78
 
 /** Doubled and reserved addresses, bus by bus; other devices of the bus count. */
 export function addressFindings(set: MachineSet): RawFinding[] {

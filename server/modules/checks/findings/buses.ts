@@ -1,30 +1,13 @@
+import { busLoad } from '../../../../shared/bus/load.ts'
+import { pullUpWindow } from '../../../../shared/bus/pull-up.ts'
 import type { BusSettings, MachineSet } from '../../../../shared/parameters/machine-set.ts'
 import type { PolicyContent } from '../../../../shared/contract/policy.ts'
 import { shown, type RawFinding } from './finding.ts'
 
-/** Bits on the wire of one read of a board: start, address, register address, repeated start, address, data, stop; nine clocks a byte, ACK included. */
-export const bitsPerRead = (bytes: number, addressBytes: number): number => 3 + 9 * (2 + addressBytes + bytes)
-
-/** Pull-up window of a bus mode. Sources: UM10204 tables of electrical characteristics: I_OL at V_OL, rise time. */
-const modes = [
-  { upTo: 100_000, name: 'Standard-mode', I_OL: 0.003, t_r: 1000e-9 },
-  { upTo: 400_000, name: 'Fast-mode', I_OL: 0.003, t_r: 300e-9 },
-  { upTo: 1_000_000, name: 'Fast-mode Plus', I_OL: 0.02, t_r: 120e-9 },
-] as const
-
-/** R_p(min) = (V_DD − V_OL)/I_OL and R_p(max) = t_r/(0.8473·C_b), Ω; null above Fast-mode Plus, whose buses are driven otherwise. */
-export function pullUpWindow({ bitRate, supply, capacitance }: Pick<BusSettings, 'bitRate' | 'supply' | 'capacitance'>): { mode: string; low: number; high: number } | null {
-  const mode = modes.find((m) => bitRate <= m.upTo)
-  if (!mode) return null
-  const V_OL = supply > 2 ? 0.4 : 0.2 * supply
-  return { mode: mode.name, low: (supply - V_OL) / mode.I_OL, high: mode.t_r / (0.8473 * capacitance) }
-}
-
 function load(key: string, bus: BusSettings, addressBytes: readonly number[], policy: PolicyContent): RawFinding[] {
   if (bus.pollingRate === undefined || bus.bytesPerTransaction === undefined) return []
   const { pollingRate, bytesPerTransaction } = bus
-  const bits = addressBytes.reduce((sum, a) => sum + bitsPerRead(bytesPerTransaction, a), 0)
-  const value = ((bits * pollingRate) / bus.bitRate) * 100
+  const value = busLoad({ bitRate: bus.bitRate, pollingRate, bytesPerTransaction, addressBytes }).share * 100
   const { advise, block } = policy.busLoadPercent
   const level = value > block ? 'block' : value > advise ? 'advise' : 'pass'
   return [
