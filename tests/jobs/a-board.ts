@@ -1,7 +1,8 @@
 import type { JointModel } from '../../server/control/model.ts'
 import { request, type AnalysisRequest } from '../../server/jobs/analyses/requests.ts'
 import { inPlace } from '../../server/jobs/in-place.ts'
-import { JobBoard, type BoardOptions, type ResultStore, type StoredOutcome } from '../../server/jobs/job-board.ts'
+import { JobBoard, type BoardOptions } from '../../server/jobs/job-board.ts'
+import type { ResultStore, StoredEntry, StoredOutcome } from '../../server/jobs/results.ts'
 import type { Threads } from '../../server/jobs/threads.ts'
 
 /** A small gear motor in position mode; figures invented. */
@@ -29,9 +30,9 @@ export function aStore(): ResultStore & { rows: Map<string, StoredOutcome>; save
     async load(hashes: readonly string[]) {
       return new Map(hashes.flatMap((h) => (rows.has(h) ? [[h, rows.get(h)!] as const] : [])))
     },
-    async save({ hash, outcome }: { hash: string; outcome: StoredOutcome }) {
+    async save(entries: readonly StoredEntry[]) {
       store.saves += 1
-      rows.set(hash, JSON.parse(JSON.stringify(outcome)) as StoredOutcome)
+      for (const { hash, outcome } of entries) rows.set(hash, JSON.parse(JSON.stringify(outcome)) as StoredOutcome)
     },
   }
   return store

@@ -1,5 +1,5 @@
 import type { Orm } from '../../db/orm.ts'
-import type { ResultStore, StoredOutcome } from '../../jobs/job-board.ts'
+import type { ResultStore, StoredOutcome } from '../../jobs/results.ts'
 import { JointAnalysis } from './joint-analysis.entity.ts'
 
 /** SQLite binds at most 32766 values; a machine has 1000 joints with three analyses on two sides. */
@@ -13,8 +13,9 @@ export const analysisStore = (orm: Orm, now: () => Date): ResultStore => ({
       for (const row of await orm.em.fork().find(JointAnalysis, { hash: { $in: hashes.slice(k, k + atOnce) } }, { disableIdentityMap: true })) found.set(row.hash, row.outcome)
     return found
   },
-  async save({ hash, kind, outcome }) {
+  async save(entries) {
+    const rows = [...new Map(entries.map((e) => [e.hash, e])).values()].map(({ hash, kind, outcome }) => ({ hash, kind, outcome, createdAt: now() }))
     // Two requests may have computed the same at once: equal inputs, equal results, the first one stays.
-    await orm.em.fork().upsert(JointAnalysis, { hash, kind, outcome, createdAt: now() }, { onConflictFields: ['hash'], onConflictAction: 'ignore', disableIdentityMap: true })
+    await orm.em.fork().upsertMany(JointAnalysis, rows, { onConflictFields: ['hash'], onConflictAction: 'ignore', disableIdentityMap: true })
   },
 })

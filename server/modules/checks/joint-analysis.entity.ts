@@ -1,6 +1,6 @@
 import { defineEntity, p, type InferEntity } from '@mikro-orm/core'
 import type { AnalysisKind } from '../../jobs/analyses/requests.ts'
-import type { StoredOutcome } from '../../jobs/job-board.ts'
+import type { StoredOutcome } from '../../jobs/results.ts'
 
 /** Result of one analysis by the hash of its inputs and the model version: joints alike, reloads and restarts are answered from here. Immutable. */
 export const JointAnalysis = defineEntity({

@@ -3,7 +3,8 @@ import type { Progress } from '../../../shared/contract/checks.ts'
 import type { Services } from '../../http/services.ts'
 import type { AnalysisRequest } from '../../jobs/analyses/requests.ts'
 import { JobEnded } from '../../jobs/job.ts'
-import { QueueFull, type StoredOutcome } from '../../jobs/job-board.ts'
+import { QueueFull } from '../../jobs/job-board.ts'
+import type { StoredOutcome } from '../../jobs/results.ts'
 import { timingOf } from '../../control/timing.ts'
 import { DomainError } from '../../http/errors.ts'
 import type { Change } from '../changes/change.entity.ts'
@@ -55,10 +56,12 @@ export interface Look {
 /** A change's check as far as it is: the nominal analyses at once, the sweeps from the store or going on in the background. */
 export async function lookAtCheck(services: Services, em: EntityManager, change: Change, asker: number): Promise<Look> {
   const { hash, check } = await prepareChange(em, change)
-  const known = await services.checks.settle(nominalRequests(check), { asker, urgent: true, here: hereIfQuick() }).catch(worded)
+  const nominal = nominalRequests(check)
   const sweeps = toleranceRequests(check)
+  const before = await services.checks.known([...nominal, ...sweeps])
+  const known = await services.checks.settle(nominal, { asker, urgent: true, here: hereIfQuick(), before }).catch(worded)
   try {
-    for (const [h, outcome] of await services.checks.follow(checkTopic(change), sweeps, asker)) known.set(h, outcome)
+    for (const [h, outcome] of await services.checks.follow(checkTopic(change), sweeps, asker, before)) known.set(h, outcome)
   } catch (error) {
     if (!(error instanceof QueueFull)) throw error
     return { hash, check, known, complete: false, progress: { done: 0, total: 1, state: 'failed', problem: `The tolerances are not being computed: ${error.message}. Ask again when what runs is done.` } }

@@ -62,8 +62,8 @@ describe('a program that ends in the midst of a sweep', () => {
     const orm = await openDatabase(':memory:')
     const store = analysisStore(orm, () => new Date('2026-03-02T09:00:00Z'))
     const entry = { hash: 'a'.repeat(64), kind: 'nominal' as const, outcome: { kind: 'refused' as const, code: 'x', field: '', text: 'first' } }
-    await store.save(entry)
-    await store.save({ ...entry, outcome: { ...entry.outcome, text: 'second' } })
+    await store.save([entry])
+    await store.save([{ ...entry, outcome: { ...entry.outcome, text: 'second' } }])
     expect(await store.load([entry.hash, 'b'.repeat(64)])).toEqual(new Map([[entry.hash, entry.outcome]]))
     await orm.close(true)
   })
