@@ -102,7 +102,7 @@ export class Story {
       await this.act(async (tx, now) =>
         describe(await again(tx, change), { concessions: wanted.map((f) => ({ finding: f.key, characteristic: f.kind, limit: `${f.limit ?? ''} ${f.unit}`.trim() || f.kind, reason: concession || `${f.text} Agreed at the bench until the next release.`, until: new Date(now.getTime() + 120 * 86_400_000).toISOString().slice(0, 10), count: null })) }, now),
       )
-    const prepared = await prepareSubmission(this.then, em.fork(), await again(em, change))
+    const prepared = await prepareSubmission(this.then, em.fork(), await again(em, change), { held: await heldRoles(em, await this.person(em, by)), now: this.then.now() })
     await this.act(async (tx, now) => submitChange(tx, await again(tx, change), prepared, { person: await this.person(tx, by), now }))
   }
 

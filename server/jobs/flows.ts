@@ -1,4 +1,4 @@
-import type { MapCells } from '../../shared/contract/checks.ts'
+import type { MapCells, Stretch } from '../../shared/contract/checks.ts'
 import type { CurvesResult } from './analyses/curves.ts'
 import { gridOf, guardMap } from './analyses/map.ts'
 import type { NominalResult } from './analyses/nominal.ts'
@@ -13,6 +13,7 @@ export interface AnalysisResults {
   tolerance: ToleranceResult
   curves: CurvesResult
   map: MapCells
+  stretches: Stretch[]
   retune: RetuneResult
 }
 export type AnalysisResult = AnalysisResults[AnalysisKind]
@@ -89,7 +90,7 @@ async function map(inputs: MapInputs, site: FlowSite): Promise<MapCells> {
   }
 }
 
-const single = async <T extends Extract<Task, { kind: 'nominal' | 'curves' | 'retune' }>>(task: T, site: FlowSite) => {
+const single = async <T extends Extract<Task, { kind: 'nominal' | 'curves' | 'stretches' | 'retune' }>>(task: T, site: FlowSite) => {
   const result = await site.run(task)
   if (task.kind !== 'retune') site.advance(1)
   return result
@@ -111,6 +112,8 @@ export function flow(asked: AnalysisRequest, site: FlowSite): Promise<AnalysisRe
       return single({ kind: 'nominal', inputs: asked.inputs }, site)
     case 'curves':
       return single({ kind: 'curves', inputs: asked.inputs }, site)
+    case 'stretches':
+      return single({ kind: 'stretches', inputs: asked.inputs }, site)
     case 'tolerance':
       return tolerance(asked.inputs, site)
     case 'map':

@@ -1,4 +1,4 @@
-import type { MapCells } from '../../shared/contract/checks.ts'
+import type { MapCells, Stretch } from '../../shared/contract/checks.ts'
 import type { LogWindow } from '../../shared/contract/evidence.ts'
 import { NumericError } from '../control/errors.ts'
 import type { IdentificationReport } from '../control/identification/identify.ts'
@@ -6,9 +6,10 @@ import type { JointModel } from '../control/model.ts'
 import { curvesAnalysis, type CurvesResult } from './analyses/curves.ts'
 import { mapRows } from './analyses/map.ts'
 import { nominalAnalysis, type NominalResult } from './analyses/nominal.ts'
-import type { CurvesInputs, MapInputs, NominalInputs, RetuneInputs, StepInputs } from './analyses/requests.ts'
+import type { CurvesInputs, MapInputs, NominalInputs, RetuneInputs, StepInputs, StretchInputs } from './analyses/requests.ts'
 import { retuneAnalysis, type RetuneResult } from './analyses/retune.ts'
 import { runStep, windowOf, type StepRun } from './analyses/step-response.ts'
+import { unstableStretches } from './analyses/stretches.ts'
 import { compareLog, type Compared, type CompareInputs } from './logs/compare-log.ts'
 import { identifyLog, type IdentifyInputs } from './logs/identify-log.ts'
 import { logWindow, type WindowInputs } from './logs/log-window.ts'
@@ -23,6 +24,7 @@ export type Task =
   | { kind: 'points'; plan: SweepPlan; from: number; count: number }
   | { kind: 'step'; model: JointModel; step: StepInputs; slowest: number | null }
   | { kind: 'rows'; inputs: MapInputs; from: number; count: number }
+  | { kind: 'stretches'; inputs: StretchInputs }
   | { kind: 'retune'; inputs: RetuneInputs }
   | { kind: 'read log'; inputs: ReadLogInputs }
   | { kind: 'draw log'; inputs: WindowInputs }
@@ -39,6 +41,7 @@ interface TaskResults {
   points: SweepPoint[]
   step: StepRun
   rows: MapCells
+  stretches: Stretch[]
   retune: RetuneResult
   'read log': ReadLogResult
   'draw log': LogWindow
@@ -60,6 +63,7 @@ const work: { [K in Task['kind']]: (task: Extract<Task, { kind: K }>, told: Told
   points: ({ plan, from, count }) => sweepPoints(plan, from, count),
   step: ({ model, step, slowest }) => runStep(model, step, windowOf(model, slowest)),
   rows: ({ inputs, from, count }) => mapRows(inputs, from, count),
+  stretches: ({ inputs }) => unstableStretches(inputs),
   retune: ({ inputs }, told) => retuneAnalysis(inputs, told),
   'read log': ({ inputs }, told) => readLog(inputs, told),
   'draw log': ({ inputs }) => logWindow(inputs),

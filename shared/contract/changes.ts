@@ -93,6 +93,8 @@ export interface ChangeView extends ChangeSummary {
   signatures: SignatureView[]
   /** peer reviews that the policy in force asks for */
   peerReviewsNeeded: number
+  /** what a concession may ask by the policy in force; null: anything */
+  concessionRules: { lastDay: string; mostBoards: number } | null
   may: Record<'edit' | 'submit' | 'cancel' | 'return' | 'signPeerReview' | 'release' | 'bringUpToDate' | 'inviteWriter' | 'takeBenchImage', Allowed>
 }
 

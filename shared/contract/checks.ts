@@ -326,6 +326,39 @@ export interface MapView {
   released: { x: number; y: number } | null
 }
 
+const Pointer = Type.String({ pattern: '^(?:/(?:[^~/]|~0|~1)*)+$', maxLength: 400 })
+
+/** POST /changes/:change/check/quick: one joint with edits that are not saved yet. Nothing of it is kept. */
+export const AskQuick = Type.Object(
+  { joint: JointKey, edits: Type.Array(Type.Object({ pointer: Pointer, from: Type.Optional(Type.Unknown()), to: Type.Optional(Type.Unknown()) }, strict), { maxItems: 5000 }) },
+  strict,
+)
+export type AskQuick = Static<typeof AskQuick>
+
+/** The joint's nominal figures, and the findings that are about it alone; tolerances, buses and other joints wait for the save. */
+export interface QuickView {
+  joint: JointCheck
+  findings: Finding[]
+}
+
+/** POST /changes/:change/check/stretches: where on each ruler the joint would not be stable, all else as it stands. Bounds in the parameter's own unit. */
+export const AskStretches = Type.Object(
+  { joint: JointKey, rulers: Type.Array(Type.Object({ parameter: Type.String({ minLength: 1, maxLength: 64 }), low: Type.Number(), high: Type.Number() }, strict), { minItems: 1, maxItems: 16 }) },
+  strict,
+)
+export type AskStretches = Static<typeof AskStretches>
+
+export interface Stretch {
+  from: number
+  to: number
+}
+
+export interface StretchesView {
+  joint: string
+  /** one for each ruler whose parameter the model varies; in the parameter's unit, ascending */
+  rulers: { parameter: string; unstable: Stretch[] }[]
+}
+
 const positive = (maximum: number) => Type.Number({ exclusiveMinimum: 0, maximum })
 
 /** POST /changes/:change/check/starting-values: wanted closed-loop bandwidths, Hz; what is left out follows from the loop inside it. */

@@ -6,10 +6,19 @@ const limit = (unit: string, maximum = 1e6) => Type.Number({ minimum: 0, maximum
 const degrees = () => limit('degrees', 180)
 const percent = () => limit('percent', 1000)
 
-/** Limits of the findings and the count of peer reviews; one version of a machine's policy. Units in the names. */
+/** Roles that a policy may ask of whoever submits a change, besides the right to draft it. */
+export const proposerRoles = ['controls engineer', 'peer reviewer', 'release manager'] as const
+export type ProposerRole = (typeof proposerRoles)[number]
+const Proposer = Type.Union(proposerRoles.map((role) => Type.Literal(role)))
+
+/** Limits of the findings, the count of peer reviews, what a concession may ask, who may propose what; one version of a machine's policy. Units in the names. */
 export const PolicyContent = Type.Object(
   {
     peerReviews: Type.Integer({ minimum: 1, maximum: 5 }),
+    /** longest time and most boards that one concession may be asked for; absent in policies from before these rules: any */
+    concession: Type.Optional(Type.Object({ longestDays: Type.Integer({ minimum: 1, maximum: 3650 }), mostBoards: Type.Integer({ minimum: 1, maximum: 1_000_000 }) }, strict)),
+    /** role that whoever submits a change must hold, by the step of version that Detent proposes for it; absent: none but the right to draft */
+    mayPropose: Type.Optional(Type.Object({ patch: Proposer, minor: Proposer, major: Proposer }, strict)),
     phaseMarginDeg: Type.Object({ nominal: degrees(), worst: degrees(), block: degrees() }, strict),
     gainMarginDb: Type.Object({ nominal: limit('dB'), worst: limit('dB') }, strict),
     sensitivityPeak: Type.Object({ advise: limit('ratio'), concession: limit('ratio') }, strict),
@@ -31,6 +40,8 @@ export type PolicyContent = Static<typeof PolicyContent>
 /** What a machine begins with; sources stand beside each finding (server/modules/checks/findings). */
 export const defaultPolicy: PolicyContent = {
   peerReviews: 1,
+  concession: { longestDays: 366, mostBoards: 200 },
+  mayPropose: { patch: 'controls engineer', minor: 'controls engineer', major: 'controls engineer' },
   phaseMarginDeg: { nominal: 45, worst: 35, block: 30 },
   gainMarginDb: { nominal: 8, worst: 6 },
   sensitivityPeak: { advise: 1.7, concession: 2.0 },

@@ -1,15 +1,20 @@
 import { useQuery, useQueryClient, useSuspenseQuery } from '@tanstack/react-query'
-import { use, useState } from 'react'
+import { use, useMemo, useState } from 'react'
 import { useNavigate, useParams } from 'react-router'
 import type { LoaderFunctionArgs } from 'react-router'
 import { paths } from '../app/paths.ts'
 import type { ChangeView } from '../../shared/contract/changes.ts'
 import { CheckPanel } from '../features/checks/components/check-panel.tsx'
-import { checkQuery } from '../features/checks/queries.ts'
+import { Proposals } from '../features/checks/components/proposals.tsx'
+import { worstOf } from '../features/checks/figures.ts'
+import { checkQuery, quickQuery, stretchesQuery } from '../features/checks/queries.ts'
 import { ChangeEditor, type Looked } from '../features/changes/components/change-editor.tsx'
 import { ChangeReader } from '../features/changes/components/change-reader.tsx'
+import { laidOnto } from '../features/changes/laid-onto.ts'
 import { placeWords } from '../features/changes/place-words.ts'
 import { changeQuery, firmwareChoicesQuery, firmwareNames, schemasQuery } from '../features/changes/queries.ts'
+import { editsAbout, figuresFollowFrom } from '../features/changes/quick-question.ts'
+import { noStretches, type UnstableStretches } from '../features/changes/unstable-context.ts'
 import { peopleQuery } from '../features/people/queries.ts'
 import { PresenceLine } from '../features/reviews/components/presence-line.tsx'
 import { SavedLine, type OthersSave } from '../features/reviews/components/saved-line.tsx'
@@ -72,19 +77,34 @@ function Editing({ change }: { change: ChangeView }) {
   return <ChangeEditor change={change} personId={me.id} people={drafting} firmware={firmware} useCheck={useLiveCheck} onSubmitted={() => void navigate(paths.changeReview(change.key))} />
 }
 
-/** The check of the draft as saved; stale while anything on the screen is newer. */
-function useLiveCheck({ state, joints }: Looked) {
+/** The check of the draft: of the joint looked at within a blink of each key, of every joint once it is saved; stale while anything on the screen is newer. */
+function useLiveCheck({ state, tried, joints, rulersOf, onEdit }: Looked) {
   const { view } = state
   const present = use(PresentContext)
   const query = useQuery(checkQuery(view.key, view.revision))
-  const stale = state.saving !== 'saved' || query.isPlaceholderData || query.data === undefined
+  const stale = state.saving !== 'saved' || tried.length > 0 || query.isPlaceholderData || query.data === undefined
+  const worst = query.data ? worstOf(query.data.joints.filter((j) => joints.includes(j.joint))) : null
+  const quick = useQuick({ state, tried, joint: worst?.joint ?? joints[0] ?? null, stale })
+  const unstable = useUnstable({ state, joint: worst?.candidate ? worst.joint : null, stale, rulersOf })
   const version = useQuery({ ...versionQuery(view.key, view.revision), enabled: !stale && query.data?.counts.block === 0 }).data
+  const nameOf = nameIn({ set: state.set, base: view.base })
   return {
     check: query.data,
     stale,
+    unstable,
     panel: (
       <>
-        <CheckPanel change={view.key} query={query} stale={stale && query.data !== undefined} joints={joints} nameOf={nameIn({ set: state.set, base: view.base })} reportTo={paths.changeCheck(view.key)} note={(f) => (view.concessions.some((c) => c.finding === f.key) ? <p className="text-12 text-plum">concession requested</p> : null)} />
+        <CheckPanel
+          change={view.key}
+          query={query}
+          stale={stale && query.data !== undefined}
+          quick={quick}
+          joints={joints}
+          nameOf={nameOf}
+          reportTo={paths.changeCheck(view.key)}
+          note={(f) => (view.concessions.some((c) => c.finding === f.key) ? <p className="text-12 text-plum">concession requested</p> : null)}
+        />
+        {worst?.candidate && <Proposals change={view.key} revision={view.revision} joint={worst} nameOf={nameOf} unavailable={stale ? 'The check of the values as they stand is running.' : null} onApply={onEdit} />}
         <ChangeTools change={view} joints={joints} unavailable={state.saving === 'saved' ? null : 'The values are being saved.'} />
       </>
     ),
@@ -95,6 +115,23 @@ function useLiveCheck({ state, joints }: Looked) {
       </>
     ),
   }
+}
+
+/** The joint looked at with what is typed and what is being saved; nothing once the whole check knows as much. */
+function useQuick({ state: { view, set, pending }, tried, joint, stale }: Pick<Looked, 'state' | 'tried'> & { joint: string | null; stale: boolean }) {
+  const shown = useMemo(() => laidOnto(set, tried), [set, tried])
+  const as = joint === null ? null : figuresFollowFrom(shown, joint)
+  const saved = joint === null ? null : figuresFollowFrom(view.set, joint)
+  const edits = joint === null ? [] : editsAbout([...pending, ...tried], shown, joint)
+  const query = useQuery({ ...quickQuery({ change: view.key, joint: joint ?? '', as: as ?? '', edits }), enabled: stale && as !== null && as !== saved })
+  return stale && query.data ? { view: query.data, stale: query.isPlaceholderData } : undefined
+}
+
+/** Where along its rulers the joint looked at would not be stable. */
+function useUnstable({ state: { view }, joint, stale, rulersOf }: Pick<Looked, 'state' | 'rulersOf'> & { joint: string | null; stale: boolean }): UnstableStretches {
+  const rulers = joint === null ? [] : rulersOf(joint)
+  const { data } = useQuery({ ...stretchesQuery(view.key, view.revision, { joint: joint ?? '', rulers }), enabled: !stale && rulers.length > 0 })
+  return useMemo(() => (data ? { joint: data.joint, stretches: new Map(data.rulers.map((r) => [r.parameter, r.unstable])), stale } : noStretches), [data, stale])
 }
 
 function Reading({ change }: { change: ChangeView }) {

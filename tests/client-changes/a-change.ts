@@ -35,7 +35,7 @@ export function aChange(over: Partial<ChangeView> = {}): ChangeView {
   return {
     key: 'dunlin-47', machine: 'dunlin', machineName: 'Dunlin', number: 47, title: 'Stiffer knee for soft mud', state: 'draft', life: 'draft', author: 'Mirela Castanho', writers: ['Mirela Castanho'],
     baseVersion: '1.7.0', alteredAt: '2026-11-28T09:14:00Z', reason: 'The shank sinks.', revision: 3, concessions: [], contentHash: null, text: printSet(set), set, base: aSet(),
-    events: [{ kind: 'drafted', person: 'Mirela Castanho', at: '2026-11-28T09:14:00Z', note: '' }], signatures: [], peerReviewsNeeded: 1,
+    events: [{ kind: 'drafted', person: 'Mirela Castanho', at: '2026-11-28T09:14:00Z', note: '' }], signatures: [], peerReviewsNeeded: 1, concessionRules: { lastDay: '2027-11-28', mostBoards: 200 },
     may: { edit: allowed, submit: allowed, cancel: allowed, return: { allowed: false, why: 'It is a draft.' }, signPeerReview: { allowed: false, why: 'It is a draft.' }, release: { allowed: false, why: 'It is a draft.' }, bringUpToDate: { allowed: false, why: 'It is on the newest release.' }, inviteWriter: allowed, takeBenchImage: allowed },
     ...over,
   }

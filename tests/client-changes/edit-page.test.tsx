@@ -1,6 +1,6 @@
 // @vitest-environment jsdom
 import '../components/setup-dom.ts'
-import { fireEvent, screen, waitFor, within } from '@testing-library/react'
+import { act, fireEvent, screen, waitFor, within } from '@testing-library/react'
 import { describe, expect, it } from 'vitest'
 import type { ChangeView } from '../../shared/contract/changes.ts'
 import type { Edit } from '../../shared/parameters/edits.ts'
@@ -96,12 +96,13 @@ describe('the cascade', () => {
 
 describe('the table', () => {
   const cell = async (name: RegExp) => screen.findByRole('gridcell', { name })
+  const focus = (element: HTMLElement) => act(() => element.focus())
 
   it('is walked and edited with keys alone', async () => {
     const { edits } = aDraft()
     open('/changes/dunlin-47?view=table&family=knee')
-    const start = await cell(/^Position gain, family: 36/)
-    start.focus()
+    const start = await cell(/^Position gain, Knee family: 36/)
+    focus(start)
     for (const key of ['ArrowDown', 'ArrowDown', 'ArrowRight']) fireEvent.keyDown(document.activeElement!, { key })
     expect(document.activeElement?.getAttribute('aria-label')).toBe('Velocity gain, L1 knee: 3.2, from family')
     fireEvent.keyDown(document.activeElement!, { key: '4' })
@@ -112,7 +113,7 @@ describe('the table', () => {
     await waitFor(() => expect(edits()).toEqual([{ pointer: '/joints/l1-knee/values/velocityGain', to: 4.5 }]))
     expect(document.activeElement?.getAttribute('aria-label')).toMatch(/^Velocity integral gain, L1 knee/)
     const own = await cell(/^Velocity gain, R3 knee: 2.9, from joint/)
-    own.focus()
+    focus(own)
     fireEvent.keyDown(own, { key: 'Delete' })
     await cell(/^Velocity gain, R3 knee: 3.2, from family, released 2.9/)
     await waitFor(() => expect(edits().at(-1)).toEqual({ pointer: '/joints/r3-knee/values/velocityGain', from: 2.9 }))
@@ -121,16 +122,45 @@ describe('the table', () => {
   it('gives a joint value to the whole family in one act', async () => {
     const { acts } = aDraft()
     open('/changes/dunlin-47?view=table&family=knee')
-    ;(await cell(/^Velocity gain, R3 knee/)).focus()
+    focus(await cell(/^Velocity gain, R3 knee/))
     fireEvent.click(await screen.findByRole('button', { name: 'Give to the whole family' }))
-    await waitFor(() => expect(acts()).toHaveLength(1))
-    expect(acts()[0].body).toEqual({ edits: [{ pointer: '/families/knee/values/velocityGain', from: 3.2, to: 2.9 }, { pointer: '/joints/r3-knee/values/velocityGain', from: 2.9 }] })
+    const saves = () => acts().filter((a) => a.path.endsWith('/values'))
+    await waitFor(() => expect(saves()).toHaveLength(1))
+    expect(saves()[0].body).toEqual({ edits: [{ pointer: '/families/knee/values/velocityGain', from: 3.2, to: 2.9 }, { pointer: '/joints/r3-knee/values/velocityGain', from: 2.9 }] })
+  })
+
+  it('shows a pasted block before it is taken, and takes the good cells in one act', async () => {
+    const { acts } = aDraft()
+    open('/changes/dunlin-47?view=table&family=knee')
+    const start = await cell(/^Velocity gain, L1 knee/)
+    focus(start)
+    const clipboardData = { getData: () => '3.5\tfast\n30\t30' }
+    fireEvent.paste(start, { clipboardData })
+    const dialog = await screen.findByRole('dialog', { name: 'Paste a block' })
+    expect(within(dialog).getByRole('list', { name: "cells that can't be taken" }).textContent).toMatch(/^Velocity gain, R3 knee: “fast”/)
+    fireEvent.click(within(dialog).getByRole('button', { name: 'Take the 3 good ones' }))
+    const saves = () => acts().filter((a) => a.path.endsWith('/values'))
+    await waitFor(() => expect(saves()).toHaveLength(1))
+    expect(saves()[0].body).toEqual({ edits: [{ pointer: '/joints/l1-knee/values/velocityGain', to: 3.5 }, { pointer: '/joints/l1-knee/values/velocityIntegralGain', to: 30 }, { pointer: '/joints/r3-knee/values/velocityIntegralGain', to: 30 }] })
+    fireEvent.click(screen.getByRole('button', { name: 'undo' }))
+    await cell(/^Velocity gain, L1 knee: 3.2, from family/)
+  })
+
+  it('fills a value to the joints chosen', async () => {
+    const { acts } = aDraft()
+    open('/changes/dunlin-47?view=table&family=knee')
+    focus(await cell(/^Velocity gain, R3 knee/))
+    fireEvent.keyDown(document.activeElement!, { key: 'd', ctrlKey: true })
+    const dialog = await screen.findByRole('dialog', { name: /^Fill velocity gain 2\.9/ })
+    fireEvent.click(within(dialog).getByRole('checkbox', { name: 'L1 knee' }))
+    fireEvent.click(within(dialog).getByRole('button', { name: 'Fill 1 place' }))
+    await waitFor(() => expect(acts().filter((a) => a.path.endsWith('/values')).map((a) => a.body)).toEqual([{ edits: [{ pointer: '/joints/l1-knee/values/velocityGain', to: 2.9 }] }]))
   })
 
   it('shows only what is altered when asked', async () => {
     aDraft()
-    open('/changes/dunlin-47?view=table&family=knee&show=changed')
-    await screen.findByText('No value of this family differs from the release')
+    open('/changes/dunlin-47?view=table&family=knee&columns=family&show=changed')
+    await screen.findByText('No value here differs from the release')
   })
 
   it('edits addresses in hexadecimal, and says at once when two boards answer', async () => {

@@ -52,6 +52,14 @@ export interface MapInputs {
   y: AxisInputs
 }
 
+/** One value varied between two bounds, SI, all else as the model has it. */
+export interface StretchInputs {
+  model: JointModel
+  parameter: string
+  low: number
+  high: number
+}
+
 /** Gains that a retune may move, as factors of what stands, and what it must keep. */
 export interface RetuneInputs {
   model: JointModel
@@ -68,6 +76,7 @@ export type AnalysisRequest =
   | { kind: 'tolerance'; hash: string; inputs: ToleranceInputs }
   | { kind: 'curves'; hash: string; inputs: CurvesInputs }
   | { kind: 'map'; hash: string; inputs: MapInputs }
+  | { kind: 'stretches'; hash: string; inputs: StretchInputs }
   | { kind: 'retune'; hash: string; inputs: RetuneInputs }
 
 export type AnalysisKind = AnalysisRequest['kind']

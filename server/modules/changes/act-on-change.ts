@@ -19,7 +19,7 @@ export async function actOnChange<B>(call: Call<B, OnChange>, work: (em: Call<B,
     if (match) mustMatch(call, change.revision)
     await work(em, change)
     await em.flush()
-    return { body: await presentChange(em, change, call.person, call.held), etag: change.revision }
+    return { body: await presentChange(em, change, call), etag: change.revision }
   })
   const { body: view } = answer as { body: ChangeView }
   const told = { by: call.person.name, at: call.now.toISOString(), revision: view.revision }

@@ -4,6 +4,7 @@ import { emptySet } from '../../../shared/parameters/machine-set.ts'
 import { newestRelease } from '../machines/current-release.ts'
 import { Person } from '../people/person.entity.ts'
 import type { HeldRole } from '../people/permissions.ts'
+import { lastDayOf } from '../policy/concession-rules.ts'
 import { policyInForce } from '../policy/policy-in-force.ts'
 import { Signature } from '../reviews/signature.entity.ts'
 import { ChangeEvent } from './change-event.entity.ts'
@@ -54,7 +55,7 @@ export const presentSignature = (s: Signature, round: number): SignatureView => 
   void: s.round !== round,
 })
 
-export async function presentChange(em: EntityManager, change: Change, person: Person, held: readonly HeldRole[]): Promise<ChangeView> {
+export async function presentChange(em: EntityManager, change: Change, { person, held, now }: { person: Person; held: readonly HeldRole[]; now: Date }): Promise<ChangeView> {
   const [summary] = await presentSummaries(em, [change])
   const events = await em.find(ChangeEvent, { change }, { orderBy: { id: 'asc' }, populate: ['person'] })
   const signatures = await em.find(Signature, { change }, { orderBy: { id: 'asc' } })
@@ -72,6 +73,7 @@ export async function presentChange(em: EntityManager, change: Change, person: P
     events: events.map((e): ChangeEventView => ({ kind: e.kind, person: e.person?.name ?? null, at: e.at.toISOString(), note: e.note })),
     signatures: signatures.map((s) => presentSignature(s, change.round)),
     peerReviewsNeeded: policy.content.peerReviews,
+    concessionRules: policy.content.concession ? { lastDay: lastDayOf(policy.content.concession.longestDays, now), mostBoards: policy.content.concession.mostBoards } : null,
     may: abilitiesOn(change, person, held, { signatures: signatures.filter((s) => s.round === change.round), onNewest: newest === null || newest.id === change.baseRelease?.id }),
   }
 }

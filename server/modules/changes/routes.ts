@@ -61,7 +61,7 @@ export const changeRoutes: readonly RouteSpec[] = [
     summary: 'read a change',
     access: 'read',
     place: onChange,
-    handle: async ({ em, place, person, held }) => ({ body: await presentChange(em, place.change, person, held), etag: place.change.revision }),
+    handle: async ({ em, place, person, held, now }) => ({ body: await presentChange(em, place.change, { person, held, now }), etag: place.change.revision }),
   }),
   route({
     method: 'patch',
@@ -148,7 +148,7 @@ export const changeRoutes: readonly RouteSpec[] = [
     handle: async (call) => {
       mustWrite(call.place.change, call.person)
       mustMatch(call, call.place.change.revision)
-      const prepared = await prepareSubmission(call.services, call.em, call.place.change)
+      const prepared = await prepareSubmission(call.services, call.em, call.place.change, call)
       return actOnChange(call, async (em, change) => {
         await submitChange(em, change, prepared, call)
         await tellSigners(em, change, { act: 'sign peer review', by: call.person, baseUrl: call.services.config.baseUrl, now: call.now })

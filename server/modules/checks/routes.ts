@@ -1,4 +1,4 @@
-import { AskMap, AskRetune, AskStartingValues, type CheckView, type StoppedView } from '../../../shared/contract/checks.ts'
+import { AskMap, AskQuick, AskRetune, AskStartingValues, AskStretches, type CheckView, type StoppedView } from '../../../shared/contract/checks.ts'
 import { route, type RouteSpec } from '../../http/route.ts'
 import type { JobBoard } from '../../jobs/job-board.ts'
 import type { Change } from '../changes/change.entity.ts'
@@ -7,8 +7,10 @@ import { assembleCheck } from './assemble-check.ts'
 import { CheckReport } from './check-report.entity.ts'
 import { checkTopic, lookAtCheck, worded } from './look-at-check.ts'
 import { mapStability, mapTopic } from './map-stability.ts'
+import { quickCheck } from './quick-check.ts'
 import { reportJoint } from './report-joint.ts'
 import { retuneJoint, retuneTopic } from './retune-joint.ts'
+import { rulerStretches } from './ruler-stretches.ts'
 import { proposeStartingValues } from './starting-values.ts'
 import { streamEvents } from './stream-events.ts'
 
@@ -80,6 +82,24 @@ export const checkRoutes: readonly RouteSpec[] = [
     place: onChange,
     body: AskMap,
     handle: async ({ services, em, place, person, body }) => ({ body: await mapStability(services, em, place.change, body, person.id) }),
+  }),
+  route({
+    method: 'post',
+    path: '/changes/:change/check/quick',
+    summary: 'check a joint of a change with edits that are not saved',
+    access: 'read',
+    place: onChange,
+    body: AskQuick,
+    handle: async ({ services, em, place, person, body }) => ({ body: await quickCheck(services, em, place.change, body, person.id) }),
+  }),
+  route({
+    method: 'post',
+    path: '/changes/:change/check/stretches',
+    summary: 'see where values of a joint would make it unstable',
+    access: 'read',
+    place: onChange,
+    body: AskStretches,
+    handle: async ({ services, em, place, person, body }) => ({ body: await rulerStretches(services, em, place.change, body, person.id) }),
   }),
   route({
     method: 'post',

@@ -124,7 +124,7 @@ export async function releaseChange(em: EntityManager, change: Change, prepared:
   const open = inState(change, 'approved')
   if (!open.allowed) throw new DomainError('wrong-state', `${open.why} Only an approved change is released. Nothing was released.`)
   await mustBeAnother(em, change, person)
-  const rowsRead = await mustBeReady(em, change, person)
+  const rowsRead = await mustBeReady(em, change, person, now)
   const newest = await newestRelease(em, change.machine)
   if ((newest?.id ?? null) !== (change.baseRelease?.id ?? null)) throw new DomainError('base-outdated', `Release ${newest?.version} came meanwhile. Nothing was released; the change has to be brought up to date and signed again.`)
   if (change.contentHash !== content.hash || request.contentHash !== content.hash || change.machine.lastSequence + 1 !== sequence) throw moved()

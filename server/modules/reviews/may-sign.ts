@@ -9,6 +9,8 @@ import { openComments } from '../comments/open-comments.ts'
 import { firmwareAuthors } from '../firmware/firmware-authors.ts'
 import { reentered } from '../people/check-credentials.ts'
 import type { Person } from '../people/person.entity.ts'
+import { concessionProblems } from '../policy/concession-rules.ts'
+import { policyInForce } from '../policy/policy-in-force.ts'
 import { unreadBy } from './reading.ts'
 import { Signature } from './signature.entity.ts'
 
@@ -35,12 +37,13 @@ export async function mustBeAnother(em: EntityManager, change: Change, person: P
 const named = (row: Marked & { title?: string; field?: string; joint?: string }) => row.title ?? row.field ?? row.joint ?? row.key
 
 /**
- * What a signer has to have done before: every row of what alters read by themselves, as it stands now; every comment marked answered.
+ * What must hold before a signature: every row of what alters read by the signer, as it stands now; every comment marked answered; every concession
+ * within the policy in force, which may have been tightened since the change was submitted.
  *
  * @returns rows read
  * @throws DomainError wrong-state, with the count and the names of what is open
  */
-export async function mustBeReady(em: EntityManager, change: Change, person: Person): Promise<number> {
+export async function mustBeReady(em: EntityManager, change: Change, person: Person, now: Date): Promise<number> {
   const open = inState(change, 'submitted', 'approved')
   if (!open.allowed) throw new DomainError('wrong-state', `${open.why} There is nothing to sign. Nothing was done.`)
   const { unread, diff } = await unreadBy(em, change, person)
@@ -56,6 +59,8 @@ export async function mustBeReady(em: EntityManager, change: Change, person: Per
       fields: comments.slice(0, 50).map((c) => ({ pointer: '', detail: `comment ${c.number} by ${c.personName} is not answered` })),
       extra: { comments: comments.map((c) => c.number) },
     })
+  const beyond = concessionProblems(change.concessions, (await policyInForce(em, change.machine)).content, now)
+  if (beyond.length > 0) throw new DomainError('wrong-state', `${beyond[0].detail}. Nothing was signed; return the change, so that its concession is asked for again.`, { fields: beyond })
   return rows
 }
 

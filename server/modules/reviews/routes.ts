@@ -91,7 +91,7 @@ export const reviewRoutes: readonly RouteSpec[] = [
       const { change } = call.place
       mustMatch(call, change.revision)
       await mustBeAnother(call.em, change, call.person)
-      await mustBeReady(call.em, change, call.person)
+      await mustBeReady(call.em, change, call.person, call.now)
       await mustReenter(call.em, call.person, call.body.password)
       await recompute(call.services, call.em, change, call.body.contentHash)
       return actOnChange(call, async (em, fresh) => {
@@ -112,7 +112,7 @@ export const reviewRoutes: readonly RouteSpec[] = [
       const { change } = call.place
       mustMatch(call, change.revision)
       await mustBeAnother(call.em, change, call.person)
-      await mustBeReady(call.em, change, call.person)
+      await mustBeReady(call.em, change, call.person, call.now)
       await mustReenter(call.em, call.person, call.body.password)
       const content = await recompute(call.services, call.em, change, call.body.contentHash)
       const request = { contentHash: call.body.contentHash, version: call.body.version, stepReason: call.body.stepReason ?? '', person: call.person, now: call.now }

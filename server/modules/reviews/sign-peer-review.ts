@@ -15,7 +15,7 @@ export async function signPeerReview(em: EntityManager, change: Change, { conten
   if (!open.allowed) throw new DomainError('wrong-state', `${open.why} A peer review is signed while it is submitted. Nothing was signed.`)
   if (change.contentHash !== contentHash) throw new DomainError('content-differs', 'The change moved while you signed. Nothing was signed; reload and read it again.')
   await mustBeAnother(em, change, person)
-  const rowsRead = await mustBeReady(em, change, person)
+  const rowsRead = await mustBeReady(em, change, person, now)
   em.create(Signature, { change, round: change.round, meaning: 'peer review', statement: statements['peer review'], person: em.getReference(Person, person.id), personName: person.name, at: now, contentHash })
   await em.flush()
   const signed = await em.count(Signature, { change, round: change.round, meaning: 'peer review' })

@@ -9,6 +9,8 @@ export interface RulerDrawingProps {
   released: number | null
   /** Stretches in which the joint is unstable with the other values as they stand. */
   unstable?: readonly { from: number; to: number }[]
+  /** the stretches are of older values */
+  fading?: boolean
   /** Policy's stop, and the side it forbids. */
   policy?: { limit: number; forbidden: 'below' | 'above' }
   /** Values of their own held by joints of the family. */
@@ -22,7 +24,7 @@ const PAD = 6
 const Y = 9
 
 /** The drawing alone: line with notch, ticks, hatches, ball and figures. */
-export function RulerDrawing({ scale, value, released, unstable = [], policy, flags = [], width, figures, format }: RulerDrawingProps) {
+export function RulerDrawing({ scale, value, released, unstable = [], fading = false, policy, flags = [], width, figures, format }: RulerDrawingProps) {
   const x = (v: number) => PAD + scale.share(v) * (width - 2 * PAD)
   const notch = released === null ? null : x(released)
   const seated = value !== null && released !== null && value === released
@@ -30,7 +32,7 @@ export function RulerDrawing({ scale, value, released, unstable = [], policy, fl
   return (
     <svg width={width} height={figures ? 30 : 16} viewBox={`0 0 ${width} ${figures ? 30 : 16}`} aria-hidden="true">
       {unstable.map((u) => (
-        <g key={`${u.from} ${u.to}`}>
+        <g key={`${u.from} ${u.to}`} opacity={fading ? 0.4 : undefined}>
           <Hatch x1={x(u.from)} x2={x(u.to)} y={Y} depth={5} colour="var(--oxide)" />
           {[u.from, u.to].map((edge) => edge > scale.min && edge < scale.max && <path key={edge} d={`M${x(edge)} 6v8`} stroke="var(--oxide)" strokeWidth="1.3" />)}
         </g>

@@ -7,7 +7,7 @@ import { rulerScale, stepValue } from './ruler-scale.ts'
 import type { ScaleKind } from './ruler-scale.ts'
 import { useWidth } from './use-width.ts'
 
-export interface RulerProps extends Pick<RulerDrawingProps, 'value' | 'unstable' | 'policy' | 'flags'> {
+export interface RulerProps extends Pick<RulerDrawingProps, 'value' | 'unstable' | 'fading' | 'policy' | 'flags'> {
   /** Name of the value, for a screen reader. */
   label: string
   min: number

@@ -1,11 +1,11 @@
 import type { ChangeView } from '../../../shared/contract/changes.ts'
 import { editsBetween, type Edit } from '../../../shared/parameters/edits.ts'
 import type { MachineSet } from '../../../shared/parameters/machine-set.ts'
-import { withValueAt } from '../../../shared/parameters/paths.ts'
 import { editText, readText, type TextProblem } from '../../../shared/parameters/set-text.ts'
 import { ApiProblem } from '../../lib/api-client.ts'
 import type { DraftStorage } from './draft-storage.ts'
 import { decided, enqueue, type Batch, type Keep, type ValueConflict } from './edit-batches.ts'
+import { laidOnto } from './laid-onto.ts'
 import { textOnto } from './text-onto.ts'
 import { UndoSteps } from './undo-steps.ts'
 
@@ -20,6 +20,8 @@ export interface DraftState {
   view: ChangeView
   /** values as they stand for this person: saved ones with those not sent yet */
   set: MachineSet
+  /** edits of the set that the server has not taken yet */
+  pending: readonly Edit[]
   text: string
   saving: Saving
   savedAt: number | null
@@ -46,17 +48,6 @@ const isLost = (e: unknown) => e instanceof ApiProblem && (e.status === 0 || e.s
 
 const unexpected = (error: unknown) =>
   new ApiProblem({ code: 'unexpected', status: 0, title: 'Saving failed', detail: `Saving failed in this page: ${error instanceof Error ? error.message : String(error)}. What you typed is kept in this browser; load the page again.` })
-
-/** The set with edits laid over; an edit whose place somebody took away meanwhile is left to the server to refuse. */
-function laid(set: MachineSet, edits: readonly Edit[]): MachineSet {
-  return edits.reduce((s, e) => {
-    try {
-      return withValueAt(s, e.pointer, e.to)
-    } catch {
-      return s
-    }
-  }, set)
-}
 
 /**
  * Holds a draft while it is edited: sends edits in order, repeats them after a dropped connection, keeps what is unsaved in the browser,
@@ -350,9 +341,11 @@ export class DraftKeeper {
   }
 
   private snapshot(): DraftState {
+    const pending = this.queue.flatMap((b) => b.edits)
     return {
       view: this.view,
-      set: laid(this.view.set, this.queue.flatMap((b) => b.edits)),
+      set: laidOnto(this.view.set, pending),
+      pending,
       text: this.typed?.text ?? this.savedText(),
       saving: this.saving,
       savedAt: this.savedAt,

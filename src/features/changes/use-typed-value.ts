@@ -1,7 +1,8 @@
-import { useEffect, useRef, useState } from 'react'
+import { use, useEffect, useRef, useState } from 'react'
 import type { Value } from '../../../shared/parameters/machine-set.ts'
 import type { Edit } from '../../../shared/parameters/edits.ts'
 import { same } from '../../../shared/parameters/edits.ts'
+import { TriesContext } from './tried-edits.ts'
 import { readTyped, shownValue, valueText } from './typed-value.ts'
 import type { ValueAt } from './value-cells.ts'
 
@@ -11,22 +12,31 @@ export const editTo = (at: ValueAt, to: Value | undefined): Edit | null => (same
 const PAUSE = 600
 
 /**
- * A value while it is typed: kept as typed until it is settled, by leaving, by Enter, or after a pause when it can be read. What can't be
+ * A value while it is typed: checked at every key that leaves it readable, kept as typed until it is settled, by leaving, by Enter, or after a pause when it can be read. What can't be
  * is said in words when it is settled, and the value before is kept.
  */
 export function useTypedValue(at: ValueAt, onEdit: (edits: Edit[]) => void) {
   const [typed, setTyped] = useState<string | null>(null)
   const [error, setError] = useState<string | null>(null)
   const timer = useRef<ReturnType<typeof setTimeout>>(undefined)
-  useEffect(() => () => clearTimeout(timer.current), [])
+  const tries = use(TriesContext)
+  useEffect(
+    () => () => {
+      clearTimeout(timer.current)
+      tries?.put(at.pointer, null)
+    },
+    [tries, at.pointer],
+  )
 
   const put = (value: Value) => {
     const edit = editTo(at, value)
+    tries?.put(at.pointer, null)
     // What is inherited already needs no value of its own, unless one stands there.
     if (edit && !(at.own === undefined && same(at.value, value))) onEdit([edit])
   }
   const settle = (text: string) => {
     clearTimeout(timer.current)
+    tries?.put(at.pointer, null)
     if (text === valueText(at.value)) {
       setTyped(null)
       setError(null)
@@ -52,8 +62,9 @@ export function useTypedValue(at: ValueAt, onEdit: (edits: Edit[]) => void) {
       setTyped(text)
       setError(null)
       clearTimeout(timer.current)
+      const read = readTyped(at.parameter, text)
+      tries?.put(at.pointer, read.kind === 'value' ? editTo(at, read.value) : null)
       timer.current = setTimeout(() => {
-        const read = readTyped(at.parameter, text)
         if (read.kind === 'value') {
           put(read.value)
           setTyped((now) => (now === text && valueText(read.value) === text ? null : now))
@@ -70,6 +81,7 @@ export function useTypedValue(at: ValueAt, onEdit: (edits: Edit[]) => void) {
     },
     cancel() {
       clearTimeout(timer.current)
+      tries?.put(at.pointer, null)
       setTyped(null)
       setError(null)
     },

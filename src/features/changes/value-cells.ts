@@ -6,6 +6,9 @@ import type { Parameter, ParameterSchema } from '../../../shared/registers/param
 
 export type Schemas = Readonly<Record<string, ParameterSchema>>
 
+/** While they are read: one and the same object, so that nothing is drawn anew for it. */
+export const noSchemas: Schemas = {}
+
 /** Where a value is looked at: the family's own, or what one joint ends up with. */
 export type Place = { kind: 'family'; family: string } | { kind: 'joint'; joint: string; family: string }
 

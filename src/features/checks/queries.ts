@@ -1,5 +1,6 @@
 import { queryOptions } from '@tanstack/react-query'
-import type { AskMap, AskRetune, CheckView, JointReportView, MapView, Progress, RetuneView } from '../../../shared/contract/checks.ts'
+import type { AskMap, AskRetune, AskStretches, CheckView, JointReportView, MapView, Progress, QuickView, RetuneView, StretchesView } from '../../../shared/contract/checks.ts'
+import type { Edit } from '../../../shared/parameters/edits.ts'
 import { act, get } from '../../lib/api-client.ts'
 
 /** While work goes on in the background, its answer is read again this often, ms. */
@@ -54,4 +55,33 @@ export const retuneQuery = (change: string, revision: number, asked: AskRetune) 
     staleTime: Infinity,
     retry: false,
     refetchInterval: ({ state }) => (state.data && !state.data.proposal ? goesOn(state.data.progress) : false),
+  })
+
+/** Answers about values that were typed over are of no use for long, ms. */
+const TYPED_OVER = 30_000
+
+/**
+ * One joint as edits not saved yet would have it.
+ *
+ * @param as  what the joint's figures follow from, as text: the same once the edits are saved, so that the answer holds until the whole check is there
+ */
+export const quickQuery = ({ change, joint, as, edits }: { change: string; joint: string; as: string; edits: readonly Edit[] }) =>
+  queryOptions({
+    queryKey: ['checks', change, 'quick', joint, as],
+    queryFn: ({ signal }) => act<QuickView>({ path: `${at(change)}/quick`, body: { joint, edits }, signal }),
+    staleTime: Infinity,
+    gcTime: TYPED_OVER,
+    retry: false,
+    placeholderData: (before) => (before?.joint.joint === joint ? before : undefined),
+  })
+
+/** Where along the rulers given a joint would not be stable, all else as saved at the revision. Those of the revision before stay until the next are there. */
+export const stretchesQuery = (change: string, revision: number, asked: AskStretches) =>
+  queryOptions({
+    queryKey: ['checks', change, revision, 'stretches', asked],
+    queryFn: ({ signal }) => act<StretchesView>({ path: `${at(change)}/stretches`, body: asked, signal }),
+    staleTime: Infinity,
+    gcTime: TYPED_OVER,
+    retry: false,
+    placeholderData: (before) => (before?.joint === asked.joint ? before : undefined),
   })

@@ -1,9 +1,10 @@
 import { useQuery } from '@tanstack/react-query'
-import { useEffect, useMemo, useState } from 'react'
+import { useCallback, useEffect, useMemo, useState, useSyncExternalStore } from 'react'
 import type { ReactNode } from 'react'
 import { useSearchParams } from 'react-router'
 import type { ChangeView } from '../../../../shared/contract/changes.ts'
-import type { CheckView } from '../../../../shared/contract/checks.ts'
+import type { AskStretches, CheckView } from '../../../../shared/contract/checks.ts'
+import type { Edit } from '../../../../shared/parameters/edits.ts'
 import { fieldError } from '../../../lib/api-client.ts'
 import { ProblemPanel } from '../../../components/problem/problem-panel.tsx'
 import { Button } from '../../../components/ui/button.tsx'
@@ -11,8 +12,11 @@ import { alteredIn } from '../altered.ts'
 import type { DraftState } from '../draft-keeper.ts'
 import { useBringUpToDate, useCancelChange, useDescribeChange, useGoBackTo, useInviteWriter, useSubmitChange, type Current } from '../mutations.ts'
 import { draftPointsQuery, firmwareNames, schemasQuery, upToDateQuery } from '../queries.ts'
+import { rulerQuestions } from '../ruler-questions.ts'
 import { jointsInScope, scopeOf } from '../scope.ts'
 import { submitNeeds, unrequested } from '../submit-needs.ts'
+import { TriedEdits, TriesContext } from '../tried-edits.ts'
+import { UnstableContext, type UnstableStretches } from '../unstable-context.ts'
 import { useDraft } from '../use-draft.ts'
 import { useUndoKeys } from '../use-undo-keys.ts'
 import { BeforeSubmit } from './before-submit.tsx'
@@ -25,13 +29,31 @@ import { ReasonField } from './reason-field.tsx'
 import { SaveLine } from './save-line.tsx'
 import { TitleField } from './title-field.tsx'
 import { UpToDatePanel } from './up-to-date-panel.tsx'
+import { noSchemas } from '../value-cells.ts'
 import { ValueViews } from './value-views.tsx'
 import { WritersDialog } from './writers-dialog.tsx'
 
 export interface Looked {
   state: DraftState
+  /** edits in fields that are still typed in */
+  tried: readonly Edit[]
   /** joints in the scope */
   joints: string[]
+  /** rulers of a joint on which unstable stretches are asked for */
+  rulersOf: (joint: string) => AskStretches['rulers']
+  /** puts edits into the draft, as if they were typed */
+  onEdit: (edits: readonly Edit[]) => void
+}
+
+export interface Checked {
+  /** the check as known */
+  check: CheckView | undefined
+  /** it is of older values */
+  stale: boolean
+  /** unstable stretches of the rulers */
+  unstable: UnstableStretches
+  panel: ReactNode
+  proposes: ReactNode
 }
 
 export interface ChangeEditorProps {
@@ -39,8 +61,8 @@ export interface ChangeEditorProps {
   personId: number
   people: readonly { id: number; name: string }[]
   firmware: readonly string[]
-  /** the check as known, and whether it is of older values; asked for with the state of the draft */
-  useCheck: (looked: Looked) => { check: CheckView | undefined; stale: boolean; panel: ReactNode; proposes: ReactNode }
+  /** asked for with the state of the draft */
+  useCheck: (looked: Looked) => Checked
   onSubmitted: () => void
 }
 
@@ -60,8 +82,18 @@ export function ChangeEditor({ change, personId, people, firmware, useCheck, onS
   const [first] = useState(altered.most)
   const scope = scopeOf(search, set, first)
   const names = useMemo(() => firmwareNames(view.set, view.base), [view.set, view.base])
-  const schemas = useQuery(schemasQuery(view.key, names)).data ?? {}
-  const { check, stale, panel, proposes } = useCheck({ state, joints: jointsInScope(scope, set) })
+  const schemas = useQuery(schemasQuery(view.key, names)).data ?? noSchemas
+  // The same function every time: the cells of the table are drawn again only when their own value alters.
+  const edit = useCallback((edits: readonly Edit[]) => keeper.edit(edits), [keeper])
+  const [tries] = useState(() => new TriedEdits())
+  const tried = useSyncExternalStore(tries.subscribe, tries.get)
+  const { check, stale, unstable, panel, proposes } = useCheck({
+    state,
+    tried,
+    joints: jointsInScope(scope, set),
+    rulersOf: (joint) => rulerQuestions(set, view.base, joint, schemas),
+    onEdit: edit,
+  })
   useEffect(() => {
     // What was typed is in step with the other views as soon as one goes there.
     if (scope.view !== 'text') void keeper.flush()
@@ -102,6 +134,8 @@ export function ChangeEditor({ change, personId, people, firmware, useCheck, onS
               </Button>
             </div>
           )}
+          <TriesContext value={tries}>
+          <UnstableContext value={unstable}>
           <ValueViews
             changeKey={view.key}
             state={state}
@@ -111,10 +145,12 @@ export function ChangeEditor({ change, personId, people, firmware, useCheck, onS
             altered={altered}
             findings={check?.findings ?? []}
             firmware={firmware}
-            onEdit={(edits) => keeper.edit(edits)}
+            onEdit={edit}
             onType={(text) => keeper.type(text)}
             onDropText={() => keeper.dropText()}
           />
+          </UnstableContext>
+          </TriesContext>
           <div className="mt-6 grid gap-6 md:grid-cols-[minmax(0,1fr)_344px]">
             <ReasonField reason={view.reason} onSave={(reason) => describe.mutateAsync({ reason })} saving={describe.isPending} error={fieldError(describe.error, '/reason') ?? (describe.error ? describe.error.message : null)} />
             <BeforeSubmit
@@ -154,6 +190,7 @@ export function ChangeEditor({ change, personId, people, firmware, useCheck, onS
           key={view.concessions.length}
           open={unrequested(check.findings, view)}
           requested={view.concessions}
+          rules={view.concessionRules}
           today={new Date().toISOString().slice(0, 10)}
           onSave={(concessions) => concede.mutate({ concessions })}
           onClose={close}

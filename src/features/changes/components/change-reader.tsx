@@ -11,6 +11,7 @@ import { alteredIn } from '../altered.ts'
 import { useBringUpToDate, useCancelChange } from '../mutations.ts'
 import { firmwareNames, schemasQuery, upToDateQuery } from '../queries.ts'
 import { jointsInScope, scopeOf } from '../scope.ts'
+import { noSchemas } from '../value-cells.ts'
 import { ChangeHead } from './change-head.tsx'
 import { ReasonDialog } from './reason-dialog.tsx'
 import { UpToDatePanel } from './up-to-date-panel.tsx'
@@ -28,7 +29,7 @@ export function ChangeReader({ change, findings, panel }: ChangeReaderProps) {
   const [cancelling, setCancelling] = useState(false)
   const altered = useMemo(() => alteredIn(change.set, change.base), [change.set, change.base])
   const scope = scopeOf(search, change.set, altered.most)
-  const schemas = useQuery(schemasQuery(change.key, firmwareNames(change.set, change.base))).data ?? {}
+  const schemas = useQuery(schemasQuery(change.key, firmwareNames(change.set, change.base))).data ?? noSchemas
   const current = () => change
   const cancel = useCancelChange(current)
   const bring = useBringUpToDate(current)

@@ -1,5 +1,5 @@
 import { useState } from 'react'
-import type { ConcessionRequest } from '../../../../shared/contract/changes.ts'
+import type { ChangeView, ConcessionRequest } from '../../../../shared/contract/changes.ts'
 import type { Finding } from '../../../../shared/contract/checks.ts'
 import { ProblemPanel } from '../../../components/problem/problem-panel.tsx'
 import { Button } from '../../../components/ui/button.tsx'
@@ -13,6 +13,8 @@ export interface ConcessionDialogProps {
   /** findings outside policy without a request */
   open: readonly Finding[]
   requested: readonly ConcessionRequest[]
+  /** how far one may go by the policy in force; null: any */
+  rules: ChangeView['concessionRules']
   /** today, so that an end in the past is told at once */
   today: string
   onSave: (concessions: ConcessionRequest[]) => void
@@ -24,7 +26,7 @@ export interface ConcessionDialogProps {
 type Ends = 'date' | 'count'
 
 /** A request to release with a finding outside policy: characteristic, limit, reason, and its end by date or count. It is granted by the signatures. */
-export function ConcessionDialog({ open, requested, today, onSave, onClose, pending, problem }: ConcessionDialogProps) {
+export function ConcessionDialog({ open, requested, rules, today, onSave, onClose, pending, problem }: ConcessionDialogProps) {
   const [key, setKey] = useState(open[0]?.key ?? '')
   const finding = open.find((f) => f.key === key) ?? open[0]
   const [characteristic, setCharacteristic] = useState(finding ? characteristicOf(finding) : '')
@@ -34,7 +36,7 @@ export function ConcessionDialog({ open, requested, today, onSave, onClose, pend
   const [until, setUntil] = useState('')
   const [boards, setBoards] = useState('')
   const [pressed, setPressed] = useState(false)
-  const endError = ends === 'date' ? (until === '' ? 'A concession needs an end.' : until < today ? 'This day has passed.' : null) : /^[1-9]\d{0,5}$/.test(boards.trim()) ? null : 'A count is a whole number from 1.'
+  const endError = ends === 'date' ? dayError(until, today, rules) : countError(boards.trim(), rules)
   const reasonError = reason.trim() === '' ? 'Say why it is safe all the same.' : null
 
   const choose = (next: string) => {
@@ -91,9 +93,9 @@ export function ConcessionDialog({ open, requested, today, onSave, onClose, pend
           <div className="grid gap-3 sm:grid-cols-2">
             <Select<Ends> label="It ends" value={ends} onChange={setEnds} options={[{ value: 'date', label: 'on a day' }, { value: 'count', label: 'after a count of boards' }]} />
             {ends === 'date' ? (
-              <TextField label="Last day" type="date" min={today} value={until} onChange={setUntil} error={pressed ? endError : null} />
+              <TextField label="Last day" type="date" min={today} max={rules?.lastDay} help={rules && <>by policy {rules.lastDay} at the latest</>} value={until} onChange={setUntil} error={pressed ? endError : null} />
             ) : (
-              <TextField label="Boards" mono value={boards} onChange={setBoards} error={pressed ? endError : null} />
+              <TextField label="Boards" mono help={rules && <>by policy {rules.mostBoards} at most</>} value={boards} onChange={setBoards} error={pressed ? endError : null} />
             )}
           </div>
         </>
@@ -103,6 +105,17 @@ export function ConcessionDialog({ open, requested, today, onSave, onClose, pend
       <ProblemPanel problem={problem} />
     </Dialog>
   )
+}
+
+function dayError(until: string, today: string, rules: ConcessionDialogProps['rules']): string | null {
+  if (until === '') return 'A concession needs an end.'
+  if (until < today) return 'This day has passed.'
+  return rules && until > rules.lastDay ? `Policy allows ${rules.lastDay} at the latest.` : null
+}
+
+function countError(boards: string, rules: ConcessionDialogProps['rules']): string | null {
+  if (!/^[1-9]\d{0,5}$/.test(boards)) return 'A count is a whole number from 1.'
+  return rules && Number(boards) > rules.mostBoards ? `Policy allows ${rules.mostBoards} boards at most.` : null
 }
 
 const characteristicOf = (f: Finding) => [f.loop, f.kind].filter(Boolean).join(' ').slice(0, 200)

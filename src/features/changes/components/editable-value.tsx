@@ -1,4 +1,4 @@
-import { useRef } from 'react'
+import { use, useRef } from 'react'
 import type { Edit } from '../../../../shared/parameters/edits.ts'
 import type { MachineSet } from '../../../../shared/parameters/machine-set.ts'
 import { OriginMark } from '../../../components/ui/origin-mark.tsx'
@@ -6,6 +6,7 @@ import { ValueCell } from '../../../components/ui/value-cell.tsx'
 import { percentChange } from '../../../lib/format.ts'
 import { rulerRange, stepOf } from '../ruler-range.ts'
 import { numberOf, rangeText, shownValue, valueText } from '../typed-value.ts'
+import { UnstableContext } from '../unstable-context.ts'
 import { useTypedValue } from '../use-typed-value.ts'
 import { waysBack } from '../ways-back.ts'
 import { ownValuesOf, type ValueAt } from '../value-cells.ts'
@@ -29,6 +30,7 @@ function Quantity({ at, set, onEdit, title }: EditableValueProps) {
   // The cell tells a move of the ruler and a key typed through the same call; the ruler writes its value first.
   const fromRuler = useRef(false)
   const range = rulerRange(at)
+  const { stretches, stale } = use(UnstableContext)
   const [now, before] = [numberOf(at.value), numberOf(at.released)]
   const own = at.place.kind === 'family' ? ownValuesOf(set, at.place.family, at.parameter.name) : []
   return (
@@ -39,7 +41,7 @@ function Quantity({ at, set, onEdit, title }: EditableValueProps) {
       origin={at.origin}
       change={now !== null && before !== null ? percentChange(before, now) : null}
       changed={at.changed}
-      ruler={range && now !== null ? { ...range, value: now, released: before, step: stepOf(at), flags: own.flatMap((o) => numberOf(o.value) ?? []) } : undefined}
+      ruler={range && now !== null ? { ...range, value: now, released: before, step: stepOf(at), unstable: stretches.get(at.parameter.name), fading: stale, flags: own.flatMap((o) => numberOf(o.value) ?? []) } : undefined}
       step={stepOf(at)}
       write={(v) => {
         fromRuler.current = true

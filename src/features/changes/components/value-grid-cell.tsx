@@ -1,56 +1,65 @@
-import { useEffect, useRef, useState } from 'react'
-import type { KeyboardEvent } from 'react'
+import { memo, useEffect, useRef, useState } from 'react'
+import type { Dispatch, KeyboardEvent } from 'react'
 import type { Edit } from '../../../../shared/parameters/edits.ts'
+import { FindingMark } from '../../../components/ui/finding-mark.tsx'
 import { OriginMark } from '../../../components/ui/origin-mark.tsx'
+import type { GridAct } from '../grid-state.ts'
 import { shownValue } from '../typed-value.ts'
-import { editTo, useTypedValue } from '../use-typed-value.ts'
+import { useTypedValue } from '../use-typed-value.ts'
 import type { ValueAt } from '../value-cells.ts'
 
 export interface ValueGridCellProps {
-  id: string
-  /** null where the joint's firmware version has no such parameter */
+  row: number
+  column: number
+  /** null where the firmware version has no such parameter */
   at: ValueAt | null
   label: string
-  inTabOrder: boolean
+  /** of the row; a cell in another one says so */
+  unit: string | null
+  /** keys act on it */
+  chosen: boolean
+  selected: boolean
   emphasised: boolean
+  /** the first column of a family */
+  begins: boolean
+  /** a finding outside policy is about it */
+  outside: boolean
   editing: boolean
-  onChoose: () => void
-  onBegin: (() => void) | null
-  onEnd: (way: 'down' | 'right' | 'left' | 'stay') => void
-  onLeave: () => void
-  onEdit: (edits: Edit[]) => void
+  first: string | null
+  /** of the whole table */
+  rows: number
+  columns: number
+  dispatch: Dispatch<GridAct>
+  /** null: read only */
+  onEdit: ((edits: Edit[]) => void) | null
 }
 
-export function ValueGridCell({ at, ...rest }: ValueGridCellProps) {
-  if (!at)
-    return (
-      <td role="gridcell" data-cell={rest.id} tabIndex={rest.inTabOrder ? 0 : -1} onFocus={rest.onChoose} className="end text-ink-2" aria-label={`${rest.label}: not in its firmware version`}>
-        <span aria-hidden="true">·</span>
-      </td>
-    )
-  return <FilledCell at={at} {...rest} />
-}
+/** One value of the table. Drawn again only when something of it alters: there are many. */
+export const ValueGridCell = memo(function ValueGridCell(props: ValueGridCellProps) {
+  const { at, row, column, label, chosen, dispatch } = props
+  if (at) return <FilledCell {...props} at={at} />
+  return (
+    <td role="gridcell" aria-colindex={column + 2} data-cell={`${row} ${column}`} tabIndex={chosen ? 0 : -1} onFocus={() => dispatch({ kind: 'choose', row, column })} className={`end text-ink-2 ${ground(props)}`} aria-label={`${label}: not in its firmware version`}>
+      <span aria-hidden="true">·</span>
+    </td>
+  )
+})
 
-function FilledCell({ id, at, label, inTabOrder, emphasised, editing, onChoose, onBegin, onEnd, onLeave, onEdit }: Omit<ValueGridCellProps, 'at'> & { at: ValueAt }) {
-  const typed = useTypedValue(at, onEdit)
-  const [first, setFirst] = useState<string | null>(null)
+const ground = ({ selected, emphasised, begins, chosen }: ValueGridCellProps) => `${selected ? 'bg-brass-wash' : emphasised ? 'bg-sheet' : ''} ${begins ? 'border-l border-l-rule' : ''} ${chosen ? 'focus:bg-brass-wash' : ''}`
+
+function FilledCell(props: ValueGridCellProps & { at: ValueAt }) {
+  const { row, column, at, label, unit, chosen, selected, outside, editing, first, dispatch, onEdit } = props
+  const size = { rows: props.rows, columns: props.columns }
+  const typed = useTypedValue(at, onEdit ?? nothing)
   const inherited = at.own === undefined
-  const begin = (text: string | null) => {
-    if (!onBegin) return
-    setFirst(text)
-    onBegin()
-  }
+  const begin = (text: string | null) => onEdit && dispatch({ kind: 'begin', first: text })
   const onKey = (event: KeyboardEvent) => {
     if (editing || event.ctrlKey || event.metaKey || event.altKey) return
     if (event.key === 'Enter' || event.key === 'F2') {
       event.preventDefault()
       begin(null)
-    } else if ((event.key === 'Delete' || event.key === 'Backspace') && onBegin) {
-      event.preventDefault()
-      typed.cancel()
-      const edit = editTo(at, undefined)
-      if (edit) onEdit([edit])
-    } else if (/^[\d.+\-\u2212]$/.test(event.key) && !at.parameter.choices && at.parameter.kind !== 'boolean') {
+    } else if (event.key === 'Delete' || event.key === 'Backspace') typed.cancel()
+    else if (/^[\d.+\-\u2212]$/.test(event.key) && !at.parameter.choices && at.parameter.kind !== 'boolean') {
       event.preventDefault()
       begin(event.key)
     }
@@ -59,12 +68,20 @@ function FilledCell({ id, at, label, inTabOrder, emphasised, editing, onChoose, 
   return (
     <td
       role="gridcell"
-      data-cell={id}
-      tabIndex={inTabOrder ? 0 : -1}
-      aria-label={editing ? undefined : `${label}: ${shownValue(at.value)}, from ${at.origin}${at.changed ? `, released ${shownValue(at.released)}` : ''}${bad ? `, ${typed.error}` : ''}`}
+      aria-colindex={column + 2}
+      aria-selected={chosen || selected}
+      data-cell={`${row} ${column}`}
+      tabIndex={chosen ? 0 : -1}
+      aria-label={editing ? undefined : `${label}: ${shownValue(at.value)}, from ${at.origin}${at.changed ? `, released ${shownValue(at.released)}` : ''}${outside ? ', outside policy' : ''}${bad ? `, ${typed.error}` : ''}`}
       aria-invalid={bad || undefined}
-      className={`end relative ${emphasised ? 'bg-sheet' : ''} ${bad ? 'shadow-[inset_3px_0_0_var(--oxide)]' : ''} ${inTabOrder ? 'focus:bg-brass-wash' : ''}`}
-      onFocus={onChoose}
+      className={`end relative ${ground(props)} ${bad ? 'shadow-[inset_3px_0_0_var(--oxide)]' : ''}`}
+      onMouseDown={(event) => {
+        if (!event.shiftKey) return
+        // The focus stays where it is, so that the block reaches from there to here.
+        event.preventDefault()
+        dispatch({ kind: 'choose', row, column, extend: true })
+      }}
+      onFocus={() => dispatch({ kind: 'choose', row, column })}
       onKeyDown={onKey}
       onDoubleClick={() => begin(null)}
     >
@@ -77,17 +94,23 @@ function FilledCell({ id, at, label, inTabOrder, emphasised, editing, onChoose, 
           onType={typed.type}
           onDone={(text, way) => {
             const taken = typed.settle(text)
-            if (way === 'leave') onLeave()
-            else if (taken) onEnd(way)
+            if (way === 'leave') dispatch({ kind: 'leave' })
+            else if (taken) dispatch({ kind: 'end', way, size })
           }}
           onCancel={() => {
             typed.cancel()
-            onEnd('stay')
+            dispatch({ kind: 'end', way: 'stay', size })
           }}
         />
       ) : (
         <span className={`inline-flex items-center justify-end gap-[5px] ${at.changed ? 'text-brass' : inherited && at.place.kind === 'joint' ? 'text-ink-2' : ''}`}>
+          {outside && (
+            <FindingMark level="concession needed" size={10}>
+              {null}
+            </FindingMark>
+          )}
           <span className={`num ${at.changed || (!inherited && at.place.kind === 'joint') ? 'font-medium' : ''}`}>{typed.typing ? typed.text : shownValue(at.value)}</span>
+          {at.parameter.unit !== unit && <span className="unit text-12">{at.parameter.unit}</span>}
           <OriginMark origin={at.origin}>{null}</OriginMark>
         </span>
       )}
@@ -99,6 +122,8 @@ function FilledCell({ id, at, label, inTabOrder, emphasised, editing, onChoose, 
     </td>
   )
 }
+
+const nothing = () => {}
 
 interface CellEditorProps {
   at: ValueAt

@@ -1,150 +1,162 @@
-import { useRef, useState } from 'react'
-import type { KeyboardEvent } from 'react'
-import { byLaw } from '../../../../shared/parameters/laws.ts'
+import { useEffectEvent, useLayoutEffect, useMemo, useReducer, useRef } from 'react'
+import type { ClipboardEvent, KeyboardEvent } from 'react'
 import type { Edit } from '../../../../shared/parameters/edits.ts'
 import type { MachineSet } from '../../../../shared/parameters/machine-set.ts'
 import type { Parameter } from '../../../../shared/registers/parameter-schema.ts'
-import { HexAddress } from '../../../components/ui/hex-address.tsx'
-import { EmptyState } from '../../../components/ui/empty-state.tsx'
-import type { Showing } from '../scope.ts'
-import { jointsOf, ownValuesOf, parameterOfJoint, parametersOfFamily, valueAtPlace, type Place, type Schemas, type ValueAt } from '../value-cells.ts'
+import { gridState, moveOf, selectionOf, startState, type GridState } from '../grid-state.ts'
+import { shownValue, valueText } from '../typed-value.ts'
+import { useColumnWindow } from '../use-column-window.ts'
+import { editTo } from '../use-typed-value.ts'
+import { isOutOfPolicy, rowId, type Column, type TableCells } from '../value-table.ts'
+import { GridHead, gridWidths } from './grid-head.tsx'
 import { ValueGridCell } from './value-grid-cell.tsx'
-import { ValueInspector } from './value-inspector.tsx'
 
 export interface ValueGridProps {
+  label: string
   set: MachineSet
-  base: MachineSet
-  schemas: Schemas
-  family: string
+  columns: readonly Column[]
+  groups: readonly { law: string; rows: readonly Parameter[] }[]
+  cells: TableCells
+  /** values outside policy, as "joint\nparameter" */
+  out: ReadonlySet<string>
   /** its column stands out */
   joint: string | null
-  showing: Showing
   /** null: read only */
   onEdit: ((edits: Edit[]) => void) | null
-}
-
-interface Chosen {
-  row: number
-  column: number
+  /** told where keys act */
+  onChosen: (state: GridState) => void
+  onPaste: (text: string) => void
+  onFill: () => void
 }
 
 /**
- * All values of a family: parameters in rows by law, the family's value and what each joint ends up with in columns. A grid as in the
- * WAI-ARIA APG: arrows move, Enter or a digit edits, Esc leaves, Delete sets back to what is inherited.
+ * Values of many joints: parameters in rows by law, families and joints in columns. A grid as in the WAI-ARIA APG: arrows move, with Shift they select,
+ * Enter or a digit edits, Esc leaves, Delete sets back to what is inherited; a selection is copied as a spreadsheet takes it, and a block of one is pasted.
+ * Of many columns only those in sight are drawn.
  */
-export function ValueGrid({ set, base, schemas, family, joint, showing, onEdit }: ValueGridProps) {
-  const [chosen, setChosen] = useState<Chosen>({ row: 0, column: 0 })
-  const [editing, setEditing] = useState<string | null>(null)
-  const table = useRef<HTMLTableElement>(null)
-  const joints = jointsOf(set, family)
-  const places: Place[] = [{ kind: 'family', family }, ...joints.map((j): Place => ({ kind: 'joint', joint: j, family }))]
-  const cellsOf = (p: Parameter) =>
-    places.map((place) => {
-      const own = place.kind === 'joint' ? parameterOfJoint(set, place.joint, p.name, schemas) : p
-      return own && valueAtPlace(set, base, place, own, schemas)
-    })
-  const wanted = (p: Parameter, cells: readonly (ValueAt | null)[]) => showing === 'all' || (showing === 'changed' ? cells.some((c) => c?.changed || c?.originChanged) : ownValuesOf(set, family, p.name).length > 0)
-  const groups = byLaw(parametersOfFamily(set, family, schemas))
-    .map(({ law, things }) => ({ law, rows: things.map((p) => ({ parameter: p, cells: cellsOf(p) })).filter((r) => wanted(r.parameter, r.cells)) }))
-    .filter((g) => g.rows.length > 0)
-  const rows = groups.flatMap((g) => g.rows)
-  const numberOf = new Map(rows.map((r, i) => [r.parameter.name, i]))
-  const row = Math.min(chosen.row, rows.length - 1)
-  const at = rows[row]?.cells[chosen.column] ?? null
+export function ValueGrid({ label, set, columns, groups, cells, out, joint, onEdit, onChosen, onPaste, onFill }: ValueGridProps) {
+  const [state, dispatch] = useReducer(gridState, startState)
+  const frame = useRef<HTMLDivElement>(null)
+  const rows = useMemo(() => groups.flatMap((g) => g.rows), [groups])
+  const numberOf = useMemo(() => new Map(rows.map((r, i) => [rowId(r), i])), [rows])
+  const size = { rows: rows.length, columns: columns.length }
+  const row = Math.min(state.row, rows.length - 1)
+  const column = Math.min(state.column, columns.length - 1)
+  const spans = useColumnWindow(frame, columns.length, gridWidths, column)
+  const selection = selectionOf({ ...state, row, column })
+  const several = selection.top !== selection.bottom || selection.left !== selection.right
 
-  if (rows.length === 0)
-    return showing === 'all' ? (
-      <EmptyState title="No values yet">Give the family a joint with a firmware version; its parameters then stand here.</EmptyState>
-    ) : (
-      <EmptyState title={showing === 'changed' ? 'No value of this family differs from the release' : 'No joint has a value of its own here'}>Show all to see the rest.</EmptyState>
-    )
+  const tell = useEffectEvent(onChosen)
+  useLayoutEffect(() => tell({ ...state, row, column }), [state, row, column])
+  useLayoutEffect(() => {
+    if (state.focus > 0) frame.current?.querySelector<HTMLElement>(`[data-cell="${row} ${column}"]`)?.focus()
+    // Only a move asks for the focus.
+    // eslint-disable-next-line react-hooks/exhaustive-deps
+  }, [state.focus])
 
-  const focusCell = (r: number, c: number) => {
-    setChosen({ row: r, column: c })
-    table.current?.querySelector<HTMLElement>(`[data-cell="${r} ${c}"]`)?.focus()
+  const selected = () => rows.slice(selection.top, selection.bottom + 1).map((p) => columns.slice(selection.left, selection.right + 1).map((c) => cells.at(c, p)))
+  const clear = () => {
+    const edits = selected().flat().flatMap((at) => (at ? (editTo(at, undefined) ?? []) : []))
+    if (edits.length > 0) onEdit?.(edits)
   }
-  const moveTo = (r: number, c: number) => focusCell(Math.min(rows.length - 1, Math.max(0, r)), Math.min(places.length - 1, Math.max(0, c)))
   const onKey = (event: KeyboardEvent) => {
-    if (event.defaultPrevented || event.ctrlKey || event.metaKey || event.altKey) return
-    const [r, c] = [row, chosen.column]
-    const next: Record<string, () => void> = {
-      ArrowDown: () => moveTo(r + 1, c),
-      ArrowUp: () => moveTo(r - 1, c),
-      ArrowLeft: () => moveTo(r, c - 1),
-      ArrowRight: () => moveTo(r, c + 1),
-      Home: () => moveTo(r, 0),
-      End: () => moveTo(r, places.length - 1),
-      PageDown: () => moveTo(r + 10, c),
-      PageUp: () => moveTo(r - 10, c),
+    if (event.defaultPrevented || state.editing || event.altKey) return
+    if ((event.ctrlKey || event.metaKey) && event.key.toLowerCase() === 'd' && onEdit) {
+      event.preventDefault()
+      onFill()
     }
-    if (editing !== null || !Object.hasOwn(next, event.key)) return
+    if (event.ctrlKey || event.metaKey) return
+    if ((event.key === 'Delete' || event.key === 'Backspace') && onEdit) {
+      event.preventDefault()
+      clear()
+      return
+    }
+    const move = moveOf(event.key, size)
+    if (!move) return
     event.preventDefault()
-    next[event.key]()
+    dispatch({ kind: 'move', ...move, extend: event.shiftKey, size })
+  }
+  const onCopy = (event: ClipboardEvent) => {
+    if (state.editing) return
+    event.preventDefault()
+    event.clipboardData.setData('text/plain', selected().map((line) => line.map((at) => (at ? valueText(at.value) : '')).join('\t')).join('\n'))
+  }
+  const onPasted = (event: ClipboardEvent) => {
+    if (state.editing || !onEdit) return
+    event.preventDefault()
+    onPaste(event.clipboardData.getData('text/plain'))
   }
 
   return (
-    <>
-      {at && <ValueInspector key={at.pointer} at={at} set={set} schemas={schemas} onEdit={onEdit} />}
-      <div className={`table-frame mt-2 ${joints.length > 6 ? 'overflow-x-auto' : ''}`}>
-        <table ref={table} role="grid" aria-label={`values of the ${set.families[family].name} family`} aria-readonly={onEdit === null} className="table table-dense" onKeyDown={onKey}>
-          <thead>
+    <div ref={frame} className="mt-2 max-h-[min(76vh,900px)] overflow-auto border-b border-rule" style={{ scrollPaddingLeft: gridWidths.head, scrollPaddingTop: 76 }}>
+      <table
+        role="grid"
+        aria-label={label}
+        aria-readonly={onEdit === null}
+        aria-multiselectable="true"
+        aria-colcount={columns.length + 1}
+        aria-rowcount={rows.length + 1}
+        className="table table-dense"
+        style={{ tableLayout: 'fixed', width: gridWidths.head + columns.length * gridWidths.column }}
+        onKeyDown={onKey}
+        onCopy={onCopy}
+        onPaste={onPasted}
+      >
+        <colgroup>
+          <col style={{ width: gridWidths.head }} />
+          <col span={columns.length} style={{ width: gridWidths.column }} />
+        </colgroup>
+        <GridHead columns={columns} joint={joint} spans={spans} />
+        {groups.map((g) => (
+          <tbody key={g.law}>
             <tr>
-              <th scope="col">Parameter</th>
-              <th scope="col">Unit</th>
-              <th scope="col" className="end">
-                Family
+              <th scope="rowgroup" colSpan={columns.length + 1} className="!border-hairline !pt-3 !text-ink-2">
+                <span className="sticky left-[10px]">{g.law}</span>
               </th>
-              {joints.map((j) => (
-                <th key={j} scope="col" className={`end ${j === joint ? '!text-ink' : ''}`}>
-                  {set.joints[j].name}
-                  <span className="block font-normal">
-                    <HexAddress address={set.joints[j].address} />
-                  </span>
-                </th>
-              ))}
             </tr>
-          </thead>
-          {groups.map((g) => (
-            <tbody key={g.law}>
-              <tr>
-                <th scope="rowgroup" colSpan={2 + places.length} className="!border-hairline !pt-3 !text-ink-2">
-                  {g.law}
-                </th>
-              </tr>
-              {g.rows.map(({ parameter, cells }) => {
-                const r = numberOf.get(parameter.name)!
-                return (
-                  <tr key={parameter.name}>
-                    <td role="rowheader" title={parameter.description || undefined}>
-                      {parameter.title}
-                    </td>
-                    <td className="text-13 text-ink-2">{parameter.unit}</td>
-                    {cells.map((cell, c) => (
+            {g.rows.map((parameter) => {
+              const r = numberOf.get(rowId(parameter))!
+              return (
+                <tr key={rowId(parameter)} aria-rowindex={r + 2}>
+                  <td role="rowheader" title={parameter.description || undefined} className="sticky left-0 z-[2] bg-paper">
+                    <span className="flex items-baseline justify-between gap-2">
+                      <span className="truncate">{parameter.title}</span>
+                      <span className="text-12 whitespace-nowrap text-ink-2">{parameter.unit}</span>
+                    </span>
+                  </td>
+                  {spans.map(({ index, gap }) => [
+                    gap > 0 && <td key={`gap ${index}`} role="presentation" colSpan={gap} />,
+                    index < columns.length && (
                       <ValueGridCell
-                        key={places[c].kind === 'joint' ? (places[c] as { joint: string }).joint : 'family'}
-                        id={`${r} ${c}`}
-                        at={cell}
-                        label={`${parameter.title}, ${c === 0 ? 'family' : set.joints[joints[c - 1]].name}`}
-                        inTabOrder={r === row && c === chosen.column}
-                        emphasised={c > 0 && joints[c - 1] === joint}
-                        editing={editing === `${r} ${c}`}
-                        onChoose={() => setChosen({ row: r, column: c })}
-                        onBegin={onEdit ? () => setEditing(`${r} ${c}`) : null}
-                        onEnd={(way) => {
-                          setEditing(null)
-                          moveTo(r + (way === 'down' ? 1 : 0), c + (way === 'right' ? 1 : way === 'left' ? -1 : 0))
-                        }}
-                        onLeave={() => setEditing((now) => (now === `${r} ${c}` ? null : now))}
-                        onEdit={onEdit ?? (() => {})}
+                        key={columns[index].key}
+                        row={r}
+                        column={index}
+                        at={cells.at(columns[index], parameter)}
+                        unit={parameter.unit}
+                        label={`${parameter.title}, ${columns[index].title}`}
+                        chosen={r === row && index === column}
+                        selected={several && r >= selection.top && r <= selection.bottom && index >= selection.left && index <= selection.right}
+                        emphasised={columns[index].key === joint}
+                        begins={index > 0 && columns[index].place.kind === 'family'}
+                        outside={isOutOfPolicy(out, cells.at(columns[index], parameter), set)}
+                        editing={state.editing && r === row && index === column}
+                        first={state.editing && r === row && index === column ? state.first : null}
+                        rows={rows.length}
+                        columns={columns.length}
+                        dispatch={dispatch}
+                        onEdit={onEdit}
                       />
-                    ))}
-                  </tr>
-                )
-              })}
-            </tbody>
-          ))}
-        </table>
-      </div>
-    </>
+                    ),
+                  ])}
+                </tr>
+              )
+            })}
+          </tbody>
+        ))}
+      </table>
+      <p className="sr-only" role="status">
+        {several ? `${selection.bottom - selection.top + 1} by ${selection.right - selection.left + 1} cells selected, at ${shownValue(cells.at(columns[column], rows[row])?.value)}` : ''}
+      </p>
+    </div>
   )
 }

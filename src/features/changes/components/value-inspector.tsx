@@ -1,3 +1,4 @@
+import { use } from 'react'
 import type { Edit } from '../../../../shared/parameters/edits.ts'
 import type { MachineSet, Value } from '../../../../shared/parameters/machine-set.ts'
 import { toPointer } from '../../../../shared/parameters/paths.ts'
@@ -7,6 +8,7 @@ import { Ruler } from '../../../components/ui/ruler.tsx'
 import { percentChange } from '../../../lib/format.ts'
 import { rulerRange, stepOf } from '../ruler-range.ts'
 import { heldText, numberOf, rangeText, registerText, shownValue } from '../typed-value.ts'
+import { UnstableContext } from '../unstable-context.ts'
 import { useTypedValue } from '../use-typed-value.ts'
 import { waysBack } from '../ways-back.ts'
 import { ownValuesOf, type Schemas, type ValueAt } from '../value-cells.ts'
@@ -23,6 +25,8 @@ export function ValueInspector({ at, set, onEdit }: ValueInspectorProps) {
   const { parameter, place } = at
   const typed = useTypedValue(at, onEdit ?? (() => {}))
   const range = rulerRange(at)
+  const { joint, stretches, stale } = use(UnstableContext)
+  const known = joint !== null && (place.kind === 'joint' ? place.joint === joint : set.joints[joint]?.family === place.family)
   const where = place.kind === 'family' ? `${set.families[place.family].name} family` : set.joints[place.joint].name
   const now = numberOf(at.value)
   const before = numberOf(at.released)
@@ -56,6 +60,8 @@ export function ValueInspector({ at, set, onEdit }: ValueInspectorProps) {
             value={now}
             released={before}
             step={stepOf(at)}
+            unstable={known ? stretches.get(parameter.name) : undefined}
+            fading={stale}
             flags={place.kind === 'family' ? ownValuesOf(set, place.family, parameter.name).flatMap((o) => numberOf(o.value) ?? []) : undefined}
             onChange={onEdit ? (v) => typed.move(String(v)) : undefined}
             onSettle={onEdit ? (v) => typed.move(String(v)) : undefined}

@@ -8,7 +8,7 @@ import { Button } from '../../../components/ui/button.tsx'
 import { EmptyState } from '../../../components/ui/empty-state.tsx'
 import { ViewSwitch } from '../../../components/ui/view-switch.tsx'
 import type { DraftState } from '../draft-keeper.ts'
-import { editViews, scopeQuery, showings, type Scope, type Showing } from '../scope.ts'
+import { editViews, scopeQuery, type Scope } from '../scope.ts'
 import type { Schemas } from '../value-cells.ts'
 import { AddBusDialog } from './add-bus-dialog.tsx'
 import { AddFamilyDialog } from './add-family-dialog.tsx'
@@ -18,8 +18,8 @@ import { CascadeView } from './cascade-view.tsx'
 import { DriveTrainTable } from './drive-train-table.tsx'
 import { JointsTable } from './joints-table.tsx'
 import { ScopeChips } from './scope-chips.tsx'
+import { TableView } from './table-view.tsx'
 import { TextView } from './text-view.tsx'
-import { ValueGrid } from './value-grid.tsx'
 
 export interface ValueViewsProps {
   changeKey: string
@@ -37,8 +37,6 @@ export interface ValueViewsProps {
   onDropText: () => void
 }
 
-const showingWords: Record<Showing, string> = { all: 'all', changed: 'changed', own: "joints' own" }
-
 /** The three views of the same values, and the switch between them. */
 export function ValueViews(props: ValueViewsProps) {
   const { state, base, scope, altered, onEdit, onType } = props
@@ -55,7 +53,7 @@ export function ValueViews(props: ValueViewsProps) {
         ) : scope.family === null ? (
           <NoFamily {...props} />
         ) : scope.view === 'table' ? (
-          <TableView {...props} family={scope.family} />
+          <Tables {...props} family={scope.family} />
         ) : (
           <CascadeView set={state.set} base={base} schemas={props.schemas} family={scope.family} joint={scope.joint} onEdit={onEdit} driveTrainTo={`${scopeQuery(scope, { view: 'table' })}#drive-train`} />
         )}
@@ -68,23 +66,23 @@ const pointerOf = (scope: Scope) => (scope.joint ? toPointer(['joints', scope.jo
 
 type Adding = 'joint' | 'family' | 'bus' | null
 
-function TableView({ state: { set }, base, schemas, scope, family, firmware, onEdit }: ValueViewsProps & { family: string }) {
+/** Everything of the set in tables: values, the family's joints and drive train, buses. */
+function Tables({ state: { set }, base, schemas, scope, family, firmware, findings, onEdit }: ValueViewsProps & { family: string }) {
   const [adding, setAdding] = useState<Adding>(null)
   return (
     <>
-      <div className="mb-3 flex flex-wrap items-center justify-between gap-3">
-        <ViewSwitch label="rows shown" views={showings.map((showing) => ({ label: showingWords[showing], to: scopeQuery(scope, { showing }), current: scope.showing === showing }))} />
-        {onEdit && (
-          <Button small onClick={() => setAdding('family')}>
-            Add a family
-          </Button>
-        )}
-      </div>
-      <ValueGrid key={family} set={set} base={base} schemas={schemas} family={family} joint={scope.joint} showing={scope.showing} onEdit={onEdit} />
+      <TableView set={set} base={base} schemas={schemas} scope={scope} findings={findings} onEdit={onEdit} />
       <div className="mt-8 grid gap-8">
         <JointsTable set={set} base={base} family={family} firmware={firmware} onEdit={onEdit} onAdd={() => setAdding('joint')} />
         <DriveTrainTable key={family} set={set} base={base} family={family} onEdit={onEdit} />
         <BusesTable set={set} base={base} onEdit={onEdit} onAdd={() => setAdding('bus')} />
+        {onEdit && (
+          <div>
+            <Button small onClick={() => setAdding('family')}>
+              Add a family
+            </Button>
+          </div>
+        )}
       </div>
       {onEdit && <AddDialogs adding={adding} onClose={() => setAdding(null)} set={set} scope={scope} firmware={firmware} onEdit={onEdit} />}
     </>

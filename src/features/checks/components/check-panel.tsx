@@ -1,6 +1,6 @@
 import type { UseQueryResult } from '@tanstack/react-query'
 import type { ReactNode } from 'react'
-import type { CheckView, JointCheck } from '../../../../shared/contract/checks.ts'
+import type { CheckView, JointCheck, QuickView } from '../../../../shared/contract/checks.ts'
 import { PolePlot } from '../../../components/charts/pole-plot.tsx'
 import { ProblemPanel } from '../../../components/problem/problem-panel.tsx'
 import { EmptyState } from '../../../components/ui/empty-state.tsx'
@@ -22,6 +22,8 @@ export interface CheckPanelProps {
   query: UseQueryResult<CheckView>
   /** the values on the screen are newer than those checked */
   stale: boolean
+  /** one joint with what is typed, where that is known sooner than the whole check; stale while a later key is being looked at */
+  quick?: { view: QuickView; stale: boolean }
   /** joints looked at */
   joints: readonly string[]
   nameOf: (joint: string) => string
@@ -30,21 +32,33 @@ export interface CheckPanelProps {
   note?: (finding: CheckView['findings'][number]) => ReactNode
 }
 
-/** The live check beside the editor: what the values on the screen do. An older answer stays while the next is computed, and says so. */
-export function CheckPanel({ change, query, stale, joints, nameOf, reportTo, note }: CheckPanelProps) {
+/**
+ * The live check beside the editor: what the values on the screen do. The joint looked at comes first, within a blink; what is older stays, dimmed,
+ * while the next is computed, and says so.
+ */
+export function CheckPanel({ change, query, stale, quick, joints, nameOf, reportTo, note }: CheckPanelProps) {
   const check = query.data
   if (!check) return query.isError ? <ProblemPanel problem={query.error} onRetry={() => void query.refetch()} /> : <Waiting what="the check" lines={6} />
   const shown = check.joints.filter((j) => joints.includes(j.joint))
-  const worst = worstOf(shown)
+  const early = stale ? quick?.view : undefined
+  const old = stale && (quick?.stale ?? true)
+  const worst = early?.joint ?? worstOf(shown)
+  const dim = (older: boolean) => (older ? 'opacity-60' : '')
   return (
-    <section aria-label="live check" aria-busy={stale} className={stale ? 'opacity-60' : ''}>
+    <section aria-label="live check" aria-busy={stale}>
       {query.isError && <ProblemPanel className="mb-3" problem={query.error} onRetry={() => void query.refetch()} />}
-      <Head check={check} joint={worst} stale={stale} among={shown.length} nameOf={nameOf} />
+      <div className={dim(old)}>
+        <Head check={check} joint={worst} state={old ? 'stale' : early ? 'early' : 'fresh'} among={shown.length} nameOf={nameOf} />
+      </div>
       {!stale && <ToleranceWalk change={change} check={check} className="border-b border-hairline py-2" />}
       {worst?.candidate ? (
         <>
-          <JointFiguresShown joint={worst} check={check} nameOf={nameOf} />
-          <StepOverlay change={change} inputs={check.inputsHash} joint={worst.joint} enabled={!stale} />
+          <div className={dim(old)}>
+            <JointFiguresShown joint={worst} findings={early?.findings ?? check.findings} nameOf={nameOf} />
+          </div>
+          <div className={dim(stale)}>
+            <StepOverlay change={change} inputs={check.inputsHash} joint={worst.joint} enabled={!stale} />
+          </div>
         </>
       ) : (
         <p className="border-b border-hairline py-3 text-13 text-ink-2">{worst ? `Nothing was computed for ${nameOf(worst.joint)}; the findings say why.` : 'No joint stands here yet.'}</p>
@@ -52,16 +66,16 @@ export function CheckPanel({ change, query, stale, joints, nameOf, reportTo, not
       <SectionHeading level={3} className="mt-4 mb-1" aux={undefined} actions={<TextLink to={reportTo}>full report</TextLink>}>
         Findings
       </SectionHeading>
-      {check.findings.length === 0 ? <EmptyState title="Nothing to judge yet">Findings appear with the first joint.</EmptyState> : <FindingList findings={check.findings} nameOf={nameOf} narrow note={note} />}
+      <div className={dim(stale)}>{check.findings.length === 0 ? <EmptyState title="Nothing to judge yet">Findings appear with the first joint.</EmptyState> : <FindingList findings={check.findings} nameOf={nameOf} narrow note={note} />}</div>
     </section>
   )
 }
 
-function Head({ check, joint, stale, among, nameOf }: { check: CheckView; joint: JointCheck | null; stale: boolean; among: number; nameOf: (joint: string) => string }) {
+function Head({ check, joint, state, among, nameOf }: { check: CheckView; joint: JointCheck | null; state: 'fresh' | 'early' | 'stale'; among: number; nameOf: (joint: string) => string }) {
   const figures = joint?.candidate
   const released = joint?.released ?? null
   const slow = (s: number | null | undefined) => (s === null || s === undefined ? null : s * 1e3)
-  const others = check.verdict !== null && check.verdict !== figures?.verdict
+  const others = state === 'fresh' && check.verdict !== null && check.verdict !== figures?.verdict
   return (
     <div className="flex flex-wrap items-start gap-x-4 gap-y-1 border-b border-ink pb-3">
       <div className="min-w-0 flex-1">
@@ -81,7 +95,12 @@ function Head({ check, joint, stale, among, nameOf }: { check: CheckView; joint:
         )}
       </div>
       <div className="text-right text-12 text-ink-2">
-        {stale ? (
+        {state === 'early' ? (
+          <>
+            as typed, the rest follows
+            <br />
+          </>
+        ) : state === 'stale' ? (
           <span className="text-plum">
             stale, checking
             <br />
@@ -109,8 +128,8 @@ function Head({ check, joint, stale, among, nameOf }: { check: CheckView; joint:
   )
 }
 
-function JointFiguresShown({ joint, check, nameOf }: { joint: JointCheck; check: CheckView; nameOf: (joint: string) => string }) {
-  const figures = figuresOf(joint, check.findings)
+function JointFiguresShown({ joint, findings, nameOf }: { joint: JointCheck; findings: CheckView['findings']; nameOf: (joint: string) => string }) {
+  const figures = figuresOf(joint, findings)
   const period = formatQuantity(joint.candidate!.hyperperiodS, 's')
   return (
     <>

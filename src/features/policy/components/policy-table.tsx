@@ -4,7 +4,7 @@ import { Num } from '../../../components/ui/num.tsx'
 import { Table } from '../../../components/ui/table.tsx'
 import type { Column } from '../../../components/ui/table.tsx'
 import { limitAt, policyFields } from '../policy-fields.ts'
-import type { PolicyField } from '../policy-fields.ts'
+import type { Limit, PolicyField } from '../policy-fields.ts'
 
 export interface PolicyTableProps {
   label: string
@@ -27,13 +27,18 @@ export function PolicyTable({ label, content, before }: PolicyTableProps) {
         <>
           {differs(f) && (
             <>
-              <Num className="text-ink-2" value={String(limitAt(before!, f.pointer))} /> <Arrow />{' '}
+              <Shown limit={limitAt(before!, f.pointer)} className="text-ink-2" /> <Arrow />{' '}
             </>
           )}
-          <Num className={differs(f) ? 'font-medium text-brass' : ''} value={String(limitAt(content, f.pointer))} unit={f.unit} />
+          <Shown limit={limitAt(content, f.pointer)} className={differs(f) ? 'font-medium text-brass' : ''} unit={f.unit} />
         </>
       ),
     },
   ]
   return <Table dense label={label} rows={policyFields} columns={columns} rowKey={(f) => f.pointer} chosen={differs} />
+}
+
+function Shown({ limit, className, unit }: { limit: Limit | undefined; className: string; unit?: string }) {
+  if (typeof limit === 'number') return <Num className={className} value={String(limit)} unit={unit} />
+  return <span className={className}>{limit ?? 'no rule'}</span>
 }
