@@ -1,19 +1,13 @@
 import type { Progress } from '../../shared/contract/checks.ts'
-import type { AnalysisKind, AnalysisRequest } from './analyses/requests.ts'
+import type { AnalysisRequest } from './analyses/requests.ts'
 import { FairQueue } from './fair-queue.ts'
-import { flow, Refused, unitsOf, type AnalysisResult } from './flows.ts'
+import { flow, Refused } from './flows.ts'
 import { Job, JobEnded } from './job.ts'
-import { Recent } from './recent.ts'
+import { Results, type ResultStore, type StoredOutcome } from './results.ts'
 import { perform, type Outcome, type Task, type TaskResult } from './task.ts'
-import { TimeLimit, type Threads } from './threads.ts'
-
-export type StoredOutcome = Outcome<AnalysisResult>
-
-/** Results for ever, by hash. */
-export interface ResultStore {
-  load(hashes: readonly string[]): Promise<Map<string, StoredOutcome>>
-  save(entry: { hash: string; kind: AnalysisKind; outcome: StoredOutcome }): Promise<void>
-}
+import { TaskRunner } from './task-runner.ts'
+import type { Threads } from './threads.ts'
+import { Listeners, progressOf, type Topic } from './topics.ts'
 
 export interface BoardOptions {
   threads: Threads
@@ -21,7 +15,7 @@ export interface BoardOptions {
   /** milliseconds from any start */
   clock?: () => number
   limits?: Partial<Limits>
-  /** told of what nobody waits for: a result that could not be stored */
+  /** told of what nobody waits for: results that could not be stored */
   warn?: (error: Error) => void
 }
 
@@ -37,24 +31,20 @@ const usual: Limits = { waiting: 6000, waitingOfOne: 2500, jobMs: 600_000 }
 /** What is asked when there is no room; the caller words it for the person. */
 export class QueueFull extends Error {}
 
-interface Topic {
-  wanted: ReadonlyMap<string, AnalysisRequest>
-  finished: Set<string>
-  stopped: boolean
-  failed: string
-  asker: number
-}
-
-interface Waiting {
-  task: Task
-  job: Job
-  attempts: number
-  done: (outcome: Outcome<TaskResult<Task>>) => void
-  fail: (error: Error) => void
-}
-
 /** How long a piece under way may go on after its job was stopped, ms, before its thread is ended. */
 const graceMs = 1000
+
+type Known = Map<string, StoredOutcome>
+
+interface SettleOptions {
+  asker: number
+  /** before what only goes on in the background */
+  urgent?: boolean
+  /** those that are quick enough to be done in this very thread */
+  here?: (asked: AnalysisRequest) => boolean
+  /** what `known` told of these before */
+  before?: Known | null
+}
 
 /**
  * Analyses wanted, under way and known.
@@ -64,51 +54,38 @@ const graceMs = 1000
  */
 export class JobBoard {
   private readonly threads: Threads
-  private readonly store: ResultStore
   private readonly clock: () => number
   private readonly limits: Limits
-  private readonly warn: (error: Error) => void
-  private readonly recent = new Recent<StoredOutcome>(300)
+  private readonly results: Results
+  private readonly runner: TaskRunner
   private readonly jobs = new Map<string, Job>()
   private readonly jobQueue = new FairQueue<Job>()
-  private readonly taskQueue = new FairQueue<Waiting>()
   private readonly topics = new Map<string, Topic>()
-  private readonly listeners = new Map<string, Set<() => void>>()
-  private readonly saving = new Set<Promise<void>>()
+  private readonly listeners = new Listeners()
   private active = 0
-  private busy = 0
   private settled = 0
   private closed = false
 
   constructor({ threads, store, clock = () => performance.now(), limits, warn = () => {} }: BoardOptions) {
     this.threads = threads
-    this.store = store
     this.clock = clock
     this.limits = { ...usual, ...limits }
-    this.warn = warn
+    this.results = new Results(store, warn)
+    this.runner = new TaskRunner({ threads, clock, jobMs: this.limits.jobMs, advance: (job, units) => this.advance(job, units) })
   }
 
   /** What is known of these, from memory or the store. */
-  async known(asked: readonly AnalysisRequest[]): Promise<Map<string, StoredOutcome>> {
-    const found = new Map<string, StoredOutcome>()
-    const missing: string[] = []
-    for (const hash of new Set(asked.map((a) => a.hash))) {
-      const outcome = this.recent.get(hash)
-      if (outcome) found.set(hash, outcome)
-      else missing.push(hash)
-    }
-    if (missing.length > 0) for (const [hash, outcome] of await this.store.load(missing)) this.keep(found, hash, outcome)
-    return found
+  known(asked: readonly AnalysisRequest[]): Promise<Known> {
+    return this.results.known(asked)
   }
 
   /**
-   * Every result, computed where it is not known; urgent ones before what only goes on in the background.
+   * Every result, computed where it is not known.
    *
-   * @param here  those that are quick enough to be done in this very thread
    * @throws QueueFull, JobEnded
    */
-  async settle(asked: readonly AnalysisRequest[], { asker, urgent = false, here = () => false }: { asker: number; urgent?: boolean; here?: (asked: AnalysisRequest) => boolean }): Promise<Map<string, StoredOutcome>> {
-    const found = await this.known(asked)
+  async settle(asked: readonly AnalysisRequest[], { asker, urgent = false, here = () => false, before = null }: SettleOptions): Promise<Known> {
+    const found = await this.results.known(asked, before)
     const missing = [...new Map(asked.filter((a) => !found.has(a.hash)).map((a) => [a.hash, a])).values()]
     const elsewhere = missing.filter((a) => !this.doHere(a, found, here))
     const topic = `settle ${(this.settled += 1)}`
@@ -123,25 +100,27 @@ export class JobBoard {
   }
 
   /** Nominal analyses that are quick enough need no thread of their own. */
-  private doHere(asked: AnalysisRequest, found: Map<string, StoredOutcome>, here: (asked: AnalysisRequest) => boolean): boolean {
+  private doHere(asked: AnalysisRequest, found: Known, here: (asked: AnalysisRequest) => boolean): boolean {
     if ((asked.kind !== 'nominal' && asked.kind !== 'curves') || !here(asked) || this.jobs.has(asked.hash)) return false
     const outcome = perform(asked.kind === 'nominal' ? { kind: 'nominal', inputs: asked.inputs } : { kind: 'curves', inputs: asked.inputs })
-    this.keep(found, asked.hash, outcome)
-    void this.save(asked, outcome)
+    found.set(asked.hash, outcome)
+    this.results.remember(asked.hash, outcome)
+    void this.results.save({ hash: asked.hash, kind: asked.kind, outcome })
     return true
   }
 
   /**
    * Sets what a topic looks at, and starts what is missing. What it wanted before and nobody else wants is stopped.
    *
+   * @param before  what `known` told of these before
    * @returns what is known at once
    * @throws QueueFull; the topic then wants nothing
    */
-  async follow(name: string, asked: readonly AnalysisRequest[], asker: number): Promise<Map<string, StoredOutcome>> {
-    const found = await this.known(asked)
+  async follow(name: string, asked: readonly AnalysisRequest[], asker: number, before: Known | null = null): Promise<Known> {
+    const found = await this.results.known(asked, before)
     const wanted = new Map(asked.map((a) => [a.hash, a]))
-    const before = this.topics.get(name)
-    const sameAgain = before !== undefined && before.wanted.size === wanted.size && [...wanted.keys()].every((h) => before.wanted.has(h))
+    const earlier = this.topics.get(name)
+    const sameAgain = earlier !== undefined && earlier.wanted.size === wanted.size && [...wanted.keys()].every((h) => earlier.wanted.has(h))
     if (!sameAgain) {
       this.forget(name)
       this.topics.set(name, { wanted, finished: new Set(), stopped: false, failed: '', asker })
@@ -207,22 +186,7 @@ export class JobBoard {
 
   progressOf(name: string): Progress {
     const topic = this.topics.get(name)
-    if (!topic) return { done: 0, total: 0, state: 'done', problem: '' }
-    let done = 0
-    let total = 0
-    let open = 0
-    for (const [hash, asked] of topic.wanted) {
-      const units = unitsOf(asked)
-      total += units
-      if (topic.finished.has(hash)) {
-        done += units
-        continue
-      }
-      open += 1
-      done += Math.min(units, this.jobs.get(hash)?.done ?? 0)
-    }
-    const state = open === 0 ? 'done' : topic.failed ? 'failed' : topic.stopped ? 'stopped' : 'running'
-    return { done, total, state, problem: state === 'failed' ? topic.failed : '' }
+    return topic ? progressOf(topic, (hash) => this.jobs.get(hash)?.done ?? 0) : { done: 0, total: 0, state: 'done', problem: '' }
   }
 
   /** Hashes that a topic looks at. */
@@ -232,17 +196,11 @@ export class JobBoard {
 
   /** Tells when a topic's progress moved; returns the way to stop listening. */
   listen(name: string, listener: () => void): () => void {
-    const own = this.listeners.get(name) ?? new Set()
-    own.add(listener)
-    this.listeners.set(name, own)
-    return () => {
-      own.delete(listener)
-      if (own.size === 0) this.listeners.delete(name)
-    }
+    return this.listeners.add(name, listener)
   }
 
   private tell(name: string): void {
-    for (const listener of this.listeners.get(name) ?? []) listener()
+    this.listeners.tell(name)
   }
 
   private tellAll(job: Job): void {
@@ -258,8 +216,8 @@ export class JobBoard {
   async close(): Promise<void> {
     this.closed = true
     for (const job of this.jobs.values()) this.end(job, new JobEnded('stopped', 'The program is closing.'))
-    await this.threads.close()
-    await Promise.allSettled(this.saving)
+    await this.runner.close()
+    await this.results.settle()
   }
 
   private mustHold(missing: readonly AnalysisRequest[], asker: number): void {
@@ -295,7 +253,7 @@ export class JobBoard {
     job.ended = true
     this.jobs.delete(job.asked.hash)
     this.jobQueue.drop((j) => j === job)
-    for (const waiting of this.taskQueue.drop((w) => w.job === job)) waiting.fail(error)
+    this.runner.drop(job, error)
     setTimeout(() => job.abort.abort(), graceMs).unref()
     job.end.reject(error)
   }
@@ -316,7 +274,7 @@ export class JobBoard {
     job.startedAt = this.clock()
     try {
       const result = await flow(job.asked, {
-        run: (task) => this.runTask(job, task),
+        run: (task) => this.runner.run(job, task),
         advance: (units) => this.advance(job, units),
         width: this.threads.width,
         clock: this.clock,
@@ -336,62 +294,15 @@ export class JobBoard {
 
   private async finish(job: Job, outcome: StoredOutcome): Promise<void> {
     if (job.ended) return
-    await this.save(job.asked, outcome)
+    const { hash, kind } = job.asked
+    await this.results.save({ hash, kind, outcome })
     if (job.ended) return
     job.ended = true
     job.done = job.total
-    this.recent.set(job.asked.hash, outcome)
-    this.jobs.delete(job.asked.hash)
+    this.results.remember(hash, outcome)
+    this.jobs.delete(hash)
     job.end.resolve(outcome)
     // Topics note the result in their own turn first.
     setImmediate(() => this.tellAll(job))
-  }
-
-  private keep(found: Map<string, StoredOutcome>, hash: string, outcome: StoredOutcome): void {
-    found.set(hash, outcome)
-    this.recent.set(hash, outcome)
-  }
-
-  private save(asked: AnalysisRequest, outcome: StoredOutcome): Promise<void> {
-    const saved = this.store.save({ hash: asked.hash, kind: asked.kind, outcome }).catch((error: Error) => this.warn(error))
-    this.saving.add(saved)
-    return saved.finally(() => this.saving.delete(saved))
-  }
-
-  private async runTask<T extends Task>(job: Job, task: T): Promise<TaskResult<T>> {
-    if (job.ended) throw new JobEnded('stopped', 'It was stopped.')
-    if (this.clock() - job.startedAt! > this.limits.jobMs)
-      throw new JobEnded('failed', `It took longer than ${this.limits.jobMs / 1000} s and was ended. What was known before is kept; rates with a simpler ratio, a shorter window or fewer bounds make it quicker.`)
-    const outcome = await new Promise<Outcome<TaskResult<Task>>>((done, fail) => {
-      this.taskQueue.put(job.asker, { task, job, attempts: 0, done, fail }, { urgent: job.urgent })
-      this.startTasks()
-    })
-    if (outcome.kind === 'refused') throw new Refused(outcome)
-    return outcome.result as TaskResult<T>
-  }
-
-  private startTasks(): void {
-    while (!this.closed && this.busy < this.threads.width) {
-      const waiting = this.taskQueue.take()
-      if (!waiting) return
-      this.busy += 1
-      void this.attempt(waiting).finally(() => {
-        this.busy -= 1
-        this.startTasks()
-      })
-    }
-  }
-
-  /** A thread that ends under a task does not take the request with it: once more on another, then a clear problem. */
-  private async attempt(waiting: Waiting): Promise<void> {
-    waiting.attempts += 1
-    try {
-      waiting.done(await this.threads.run(waiting.task, (done) => this.advance(waiting.job, done - waiting.job.done), waiting.job.abort.signal))
-    } catch (error) {
-      if (waiting.job.ended) waiting.fail(new JobEnded('stopped', 'It was stopped.'))
-      else if (error instanceof TimeLimit) waiting.fail(new JobEnded('failed', `It was ended because ${error.message}. What was known before is kept; rates with a simpler ratio, a shorter window or fewer bounds make it quicker.`))
-      else if (waiting.attempts < 2) this.taskQueue.put(waiting.job.asker, waiting, { urgent: true })
-      else waiting.fail(new JobEnded('failed', `The thread that computed it ended twice (${(error as Error).message}). What was known before is kept; start it again, and tell your administrator if it ends again.`))
-    }
   }
 }
