@@ -33,7 +33,7 @@ export const BASELINE: JointModel = {
 
 const { plant, firmware } = BASELINE
 
-/** Eight bounds: 256 vertices. */
+/** Eight bounds that all move the loop: 256 vertices, no two alike. */
 export const BASELINE_BOX = {
   R: [plant.R * 0.88, plant.R * 1.12],
   L: [plant.L * 0.8, plant.L * 1.2],
@@ -41,7 +41,7 @@ export const BASELINE_BOX = {
   J_load: [plant.J_load * 0.7, plant.J_load * 2],
   b_load: [plant.b_load * 0.5, plant.b_load * 2],
   eta: [plant.eta, 1],
-  V_bus: [10.5, 13.5],
+  R_on: [0.3, 0.8],
   T_winding: [0, 105],
 } as const
 

@@ -1,3 +1,4 @@
+import type { SqlEntityManager } from '@mikro-orm/sqlite'
 import type { Orm } from '../../db/orm.ts'
 import type { ResultStore, StoredOutcome } from '../../jobs/results.ts'
 import { JointAnalysis } from './joint-analysis.entity.ts'
@@ -16,6 +17,7 @@ export const analysisStore = (orm: Orm, now: () => Date): ResultStore => ({
   async save(entries) {
     const rows = [...new Map(entries.map((e) => [e.hash, e])).values()].map(({ hash, kind, outcome }) => ({ hash, kind, outcome, createdAt: now() }))
     // Two requests may have computed the same at once: equal inputs, equal results, the first one stays.
-    await orm.em.fork().upsertMany(JointAnalysis, rows, { onConflictFields: ['hash'], onConflictAction: 'ignore', disableIdentityMap: true })
+    // Not by upsertMany, which reads back what it has written.
+    await (orm.em.fork() as SqlEntityManager).createQueryBuilder(JointAnalysis).insert(rows).onConflict('hash').ignore().execute()
   },
 })
