@@ -225,6 +225,20 @@ async function record(services: Services, spec: RouteSpec, error: DomainError, p
   await services.orm.em.fork().transactional((em) => appendEntry(em, { at: now, person, act: 'refused', subject: place.subject, details: { asked: spec.summary, refusal: error.code, why: error.message } }))
 }
 
+const nothingToRead = () => new DomainError('not-found', 'There is nothing at this address that you may read. Check the address, or ask an administrator for a role on the machine.')
+
+/**
+ * Where a request leads. Of a machine that the person may not read, the answer is the same whether it exists or not, and whatever it has.
+ *
+ * @throws DomainError not-found
+ */
+async function placeOf(em: EntityManager, spec: RouteSpec, params: Record<string, string>, held: readonly HeldRole[]): Promise<Place> {
+  if (params.machine !== undefined && !may(held, 'read', params.machine).allowed) throw nothingToRead()
+  const place = await (spec.place ?? nowhere)(em, params)
+  if (place.machine !== null && !may(held, 'read', place.machine).allowed) throw nothingToRead()
+  return place
+}
+
 const asksSecret = (spec: RouteSpec) => Object.keys((spec.body?.properties as object | undefined) ?? {}).some((name) => secrets.has(name))
 
 /** @throws DomainError too-many-requests */
@@ -250,9 +264,7 @@ async function answerTo(services: Services, budgets: Budgets, spec: RouteSpec, r
   const params = req.params as Record<string, string>
   const query = req.query as Record<string, string>
   if (![...Object.values(params), ...Object.values(query)].every((v) => typeof v === 'string' && keepable(v))) throw new DomainError('invalid-request', "The address holds a character that can't stand in it, or names something twice. Nothing was done.")
-  const place = await (spec.place ?? nowhere)(em, params)
-  if (place.machine !== null && !may(held, 'read', place.machine).allowed)
-    throw new DomainError('not-found', 'There is nothing at this address that you may read. Check the address, or ask an administrator for a role on the machine.')
+  const place = await placeOf(em, spec, params, held)
   let upload: Upload | null = null
   try {
     mustBeAllowed(held, spec, place)

@@ -1,5 +1,6 @@
 // Fifty people reading and editing on a large database: npx tsx tests/load/load.ts [SECONDS]; writes its figures into tests/RELIABILITY.md.
 import { loadavg } from 'node:os'
+import autocannon from 'autocannon'
 import { dunlin } from '../../server/demo/dunlin.ts'
 import { Child } from '../reliability/a-child.ts'
 import { aBench } from '../reliability/a-bench.ts'
@@ -19,32 +20,11 @@ const row = (what: string, times: readonly number[]) => {
   return `| ${what} | ${sorted.length} | ${ms(percentile(sorted, 50))} | ${ms(percentile(sorted, 95))} | ${ms(percentile(sorted, 99))} | ${ms(sorted.at(-1) ?? NaN)} |`
 }
 
-/** A point read on bare Express, fifty at a time: what this machine can do at this moment. */
-async function bareTimes(port: number): Promise<number[]> {
-  const times: number[] = []
-  for (let round = 0; round < 10; round += 1)
-    await Promise.all(
-      Array.from({ length: 50 }, async (_, i) => {
-        const began = performance.now()
-        await (await fetch(`http://127.0.0.1:${port}/${1 + ((i * 7 + round) % size.releases)}`)).text()
-        times.push(performance.now() - began)
-      }),
-    )
-  return times
-}
-
-/** The same number of reads at the same concurrency, of who is signed in: session, rights and all. */
-async function ownTimes(port: number, cookie: string): Promise<number[]> {
-  const times: number[] = []
-  for (let round = 0; round < 10; round += 1)
-    await Promise.all(
-      Array.from({ length: 50 }, async () => {
-        const began = performance.now()
-        await (await fetch(`http://127.0.0.1:${port}/api/me`, { headers: { Cookie: cookie } })).text()
-        times.push(performance.now() - began)
-      }),
-    )
-  return times
+/** Fifty connections that ask one address as fast as it answers, for some seconds. */
+async function atFull(url: string, headers: Record<string, string> = {}) {
+  const { latency, requests, non2xx, errors } = await autocannon({ url, connections: 50, duration: 5, headers })
+  if (non2xx > 0 || errors > 0) throw new Error(`${url}: ${non2xx} refused, ${errors} failed`)
+  return { median: latency.p50, p99: latency.p99, perSecond: requests.average }
 }
 
 async function main(): Promise<number> {
@@ -57,8 +37,8 @@ async function main(): Promise<number> {
     const seats = await fill(folder, secret, new Date())
     const port = await child.open(folder)
     beginFrom(dunlin.families.knee.values.velocityGain)
-    const bare = await bareTimes(await child.ask<number>({ do: 'bare' }))
-    const own = await ownTimes(port, seats[0].cookie)
+    const bare = await atFull(`http://127.0.0.1:${await child.ask<number>({ do: 'bare' })}/250`)
+    const own = await atFull(`http://127.0.0.1:${port}/api/me`, { Cookie: seats[0].cookie })
     const samples: Sample[] = []
     const memory: number[] = []
     const until = performance.now() + seconds * 1000
@@ -71,7 +51,6 @@ async function main(): Promise<number> {
     const kinds = [...new Set(samples.map((s) => s.what))].sort()
     const timesOf = (list: readonly Sample[]) => list.map((s) => s.ms)
     const halves = [memory.slice(Math.floor(memory.length / 4), Math.floor(memory.length / 2)), memory.slice(Math.floor((memory.length * 3) / 4))].map((part) => part.reduce((a, b) => a + b, 0) / Math.max(1, part.length) / 2 ** 20)
-    const median = (times: number[]) => percentile([...times].sort((a, b) => a - b), 50)
     writeFigures(
       'load',
       [
@@ -83,7 +62,7 @@ async function main(): Promise<number> {
         row('all saves', timesOf(samples.filter((s) => saves.has(s.what)))),
         ...kinds.map((what) => row(what, timesOf(samples.filter((s) => s.what === what)))),
         '',
-        `Fifty at a time, a bare Express point read takes ${ms(median(bare))} ms (median) and Detent's own shortest read, who is signed in, ${ms(median(own))} ms: ${(median(own) / median(bare)).toFixed(1)} times as long.`,
+        `Asked as fast as it answers, by fifty connections (autocannon): a bare Express point read of the same database ${bare.perSecond.toFixed(0)} a second, p99 ${bare.p99} ms; Detent's own shortest read, who is signed in, session and rights and all, ${own.perSecond.toFixed(0)} a second, p99 ${own.p99} ms: ${(bare.perSecond / own.perSecond).toFixed(1)} times the work.`,
         `Memory of the process: ${halves[0].toFixed(0)} MiB on average in the second quarter of the run, ${halves[1].toFixed(0)} MiB in the last.`,
         ...[...new Set(failures.map((f) => `${f.what}: ${f.status}`))].map((f) => `\nRefused or failed: ${f}`),
       ].join('\n'),

@@ -1,6 +1,7 @@
 import supertest from 'supertest'
 import { describe, expect, it } from 'vitest'
 import { Link } from '../../../server/modules/people/link.entity.ts'
+import { SessionRecord } from '../../../server/modules/people/session.entity.ts'
 import { aWorkplace, password } from '../../support/workplace.ts'
 import { countEntries, lastEntry, mailedSecret, mailsTo, personNow } from './read-back.ts'
 
@@ -42,6 +43,44 @@ describe('changing the own password', () => {
     const { body } = await here.post('/api/account/password', { current: password, next: '😀🦆🔩🌊🦿🐚🔧🌾🦀🪵🐌🌫🪶🦉' }).expect(422)
     expect(body).toMatchObject({ type: '/problems/weak-password', errors: [{ pointer: '/next' }] })
     await here.post('/api/account/password', { current: password, next: '😀🦆🔩🌊🦿🐚🔧🌾🦀🪵🐌🌫🪶🦉🐟' }).expect(200)
+  })
+})
+
+describe('a new password', () => {
+  it('has up to 200 characters of any kind, all of which count', async () => {
+    const w = await aWorkplace()
+    const person = await w.person('Yuna Brandt', [['observer', null]])
+    const here = await w.signIn(person)
+    const long = Array.from({ length: 40 }, (_, i) => `k${i * 7}ß `).join('').slice(0, 199)
+    await here.post('/api/account/password', { current: password, next: `${long}x` }).expect(200)
+    await supertest(w.app).post('/api/session').send({ email: person.email, password: `${long}y` }).expect(401)
+    await supertest(w.app).post('/api/session').send({ email: person.email, password: `${long}X` }).expect(401)
+    await supertest(w.app).post('/api/session').send({ email: person.email, password: `${long}x` }).expect(200)
+  })
+
+  it('is none of the common ones, nor the account itself, by change and by link alike', async () => {
+    const w = await aWorkplace()
+    const person = await w.person('Rafiq Sandoval', [['peer reviewer', null]])
+    const here = await w.signIn(person)
+    await supertest(w.app).post('/api/reset').send({ email: person.email }).expect(202)
+    const secret = await mailedSecret(w, person.email)
+    for (const common of ['passwordpassword', 'qwertyuiop123456', 'Rafiq Sandoval 2026']) {
+      const refused = await here.post('/api/account/password', { current: password, next: common }).expect(422)
+      expect(refused.body).toMatchObject({ type: '/problems/weak-password', errors: [{ pointer: '/next' }], detail: expect.stringContaining('Nothing was altered') })
+      expect((await supertest(w.app).post('/api/links/use').send({ secret, password: common }).expect(422)).body.errors[0].pointer).toBe('/password')
+    }
+    await supertest(w.app).post('/api/links/use').send({ secret, password: next }).expect(200)
+  })
+
+  it('renews the session it is set in', async () => {
+    const w = await aWorkplace()
+    const here = await w.as('builder')
+    const [before] = await w.orm.em.fork().find(SessionRecord, {})
+    await here.post('/api/account/password', { current: password, next }).expect(200)
+    const after = await w.orm.em.fork().find(SessionRecord, {})
+    expect(after).toHaveLength(1)
+    expect(after[0].idHash).not.toBe(before.idHash)
+    await here.get('/api/me').expect(200)
   })
 })
 
