@@ -48,7 +48,7 @@ function once(bytes: Buffer, random: Choices): Buffer {
 
 /** Some alterations of a good input, as a seed draws them; now and then two good ones spliced. */
 export function mutated(good: readonly Buffer[], random: Choices): Buffer {
-  let bytes = Buffer.from(random.of(good))
+  let bytes: Buffer = Buffer.from(random.of(good))
   if (random.next() < 0.1) {
     const other = random.of(good)
     bytes = Buffer.concat([bytes.subarray(0, random.below(bytes.length + 1)), other.subarray(random.below(other.length + 1))])
