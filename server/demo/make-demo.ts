@@ -53,7 +53,7 @@ async function people(story: Story, services: Services) {
     await story.act(async (em, now) => invitePerson(em, { request: { name, email, roles: roles.map((role) => ({ role, machine: null })) }, person: await story.person(em, administrator), baseUrl, now }))
     await setPassword(email)
   }
-  const confirm = (of: string, by: string) => story.act(async (em, now) => confirmSigning(em, { of: await story.person(em, of), person: await story.person(em, by), rule: services.config.secondFactor, now }))
+  const confirm = (of: string, by: string) => story.act(async (em, now) => confirmSigning(em, { of: await story.person(em, of), person: await story.person(em, by), rule: 'optional', now }))
   await confirm('Hedda Lindqvist', 'Rafiq Sandoval')
   await confirm('Rafiq Sandoval', 'Hedda Lindqvist')
   await confirm('Ingunn Veblen', 'Hedda Lindqvist')

@@ -54,7 +54,11 @@ export class DatabaseSessionStore extends Store {
     const fields = { person, data: JSON.stringify(data), seenAt: now }
     const record = await em.findOne(SessionRecord, { idHash: hashOf(id) })
     if (record) em.assign(record, fields)
-    else em.create(SessionRecord, { ...fields, idHash: hashOf(id), createdAt: now, expiresAt: new Date(now.getTime() + absoluteMs) })
+    else {
+      // what is over is of no use to anybody; a new session is the time to sweep
+      await em.nativeDelete(SessionRecord, { $or: [{ expiresAt: { $lt: now } }, { seenAt: { $lt: new Date(now.getTime() - idleMs) } }] })
+      em.create(SessionRecord, { ...fields, idHash: hashOf(id), createdAt: now, expiresAt: new Date(now.getTime() + absoluteMs) })
+    }
     await em.flush()
   }
 }

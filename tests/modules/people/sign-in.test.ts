@@ -1,3 +1,4 @@
+import argon2 from 'argon2'
 import supertest from 'supertest'
 import { describe, expect, it } from 'vitest'
 import { demoSignIns } from '../../../server/modules/people/demo-sign-ins.ts'
@@ -6,7 +7,7 @@ import { Person } from '../../../server/modules/people/person.entity.ts'
 import { SessionRecord } from '../../../server/modules/people/session.entity.ts'
 import { roles } from '../../../shared/contract/people.ts'
 import { aWorkplace, password } from '../../support/workplace.ts'
-import { countEntries, lastEntry } from './read-back.ts'
+import { countEntries, lastEntry, personNow } from './read-back.ts'
 
 describe('what the sign-in page reads', () => {
   it('shows the demo people in demo mode, one at least for every role', async () => {
@@ -100,6 +101,26 @@ describe('signing in', () => {
   })
 })
 
+describe('a password kept with less than is asked now', () => {
+  it('is hashed anew at the next sign-in, and at no refused one', async () => {
+    const w = await aWorkplace()
+    const person = await w.person('Yuna Brandt', [['observer', null]])
+    const weaker = await argon2.hash(password, { type: argon2.argon2id, memoryCost: 8192, timeCost: 1, parallelism: 1 })
+    await w.orm.em.fork().nativeUpdate(Person, { id: person.id }, { passwordHash: weaker })
+    await supertest(w.app).post('/api/session').send({ email: person.email, password: `${password}!` }).expect(401)
+    expect((await personNow(w, person.id)).passwordHash).toBe(weaker)
+    await w.signIn(person)
+    const { passwordHash } = await personNow(w, person.id)
+    // OWASP, Password Storage Cheat Sheet: argon2id with at least 19 MiB of memory, two passes and one lane
+    const [m, t, p] = ['m', 't', 'p'].map((name) => Number(new RegExp(`^\\$argon2id\\$v=19\\$.*\\b${name}=(\\d+)`).exec(passwordHash)?.[1]))
+    expect(m).toBeGreaterThanOrEqual(19 * 1024)
+    expect(t).toBeGreaterThanOrEqual(2)
+    expect(p).toBeGreaterThanOrEqual(1)
+    await w.signIn(person)
+    expect((await personNow(w, person.id)).passwordHash).toBe(passwordHash)
+  })
+})
+
 describe('who is signed in', () => {
   it('tells roles, acts by machine and the token', async () => {
     const w = await aWorkplace()
@@ -184,5 +205,7 @@ describe('own sessions', () => {
     }
     w.at(new Date(Date.parse('2026-03-03T09:00:02Z') + 168 * 3600_000))
     await kept.get('/api/me').expect(401)
+    await w.signIn(person)
+    expect(await w.orm.em.fork().count(SessionRecord), 'what is over is swept').toBe(1)
   })
 })
