@@ -54,6 +54,8 @@ async function furnish(orm: Orm, schema: unknown, now: Date): Promise<string> {
 /** A person's requests, with cookie and token. */
 async function signIn(api: string): Promise<(method: string, path: string, body?: unknown) => Promise<Response>> {
   const session = await fetch(`${api}/session`, { method: 'POST', headers: { 'Content-Type': 'application/json' }, body: JSON.stringify({ email, password }) })
+  // The answer's last byte waits for the session to be stored.
+  await session.text()
   const cookie = session.headers.getSetCookie().map((c) => c.split(';')[0]).join('; ')
   const { token } = (await (await fetch(`${api}/me`, { headers: { cookie } })).json()) as { token: string }
   return async (method, path, body) => {

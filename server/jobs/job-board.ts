@@ -189,6 +189,11 @@ export class JobBoard {
     return topic ? progressOf(topic, (hash) => this.jobs.get(hash)?.done ?? 0) : { done: 0, total: 0, state: 'done', problem: '' }
   }
 
+  /** Analyses of a topic that are done. */
+  finishedOf(name: string): number {
+    return this.topics.get(name)?.finished.size ?? 0
+  }
+
   /** Hashes that a topic looks at. */
   wantedBy(name: string): string[] {
     return [...(this.topics.get(name)?.wanted.keys() ?? [])]

@@ -202,7 +202,7 @@ export interface StoppedView {
 }
 
 /** GET /changes/:change/check/events, `text/event-stream`: each message's data is one of these as JSON. After `done` the matching GET or POST answers the whole. */
-export type CheckEvent = { kind: 'check'; progress: Progress } | { kind: 'map' | 'retune'; hash: string; progress: Progress }
+export type CheckEvent = { kind: 'check'; progress: Progress; /** sweeps that are done: more of them, more findings */ finished: number } | { kind: 'map' | 'retune'; hash: string; progress: Progress }
 
 /** Bode curve of a loop: L broken, T closed. Phases unwrapped, degrees. */
 export interface LoopCurve {

@@ -19,7 +19,7 @@ export function streamEvents(board: JobBoard, change: Change, person: number): (
   const held = open.get(person) ?? 0
   if (held >= mostOpen) throw new DomainError('too-many-requests', `You follow ${held} checks already. Close one of the pages that show a check, and reload.`)
   const sources: [topic: string, event: () => CheckEvent | null][] = [
-    [checkTopic(change), () => ({ kind: 'check', progress: board.progressOf(checkTopic(change)) })],
+    [checkTopic(change), () => ({ kind: 'check', progress: board.progressOf(checkTopic(change)), finished: board.finishedOf(checkTopic(change)) })],
     ...(['map', 'retune'] as const).map((kind): [string, () => CheckEvent | null] => {
       const topic = kind === 'map' ? mapTopic(change, person) : retuneTopic(change, person)
       return [topic, () => {

@@ -2,13 +2,14 @@ import { queryOptions } from '@tanstack/react-query'
 import type { AskMap, AskRetune, AskStretches, CheckView, JointReportView, MapView, Progress, QuickView, RetuneView, StretchesView } from '../../../shared/contract/checks.ts'
 import type { Edit } from '../../../shared/parameters/edits.ts'
 import { act, get } from '../../lib/api-client.ts'
+import { isStreamed } from './streamed.ts'
 
-/** While work goes on in the background, its answer is read again this often, ms. */
+/** While work goes on in the background and no stream tells of it, its answer is read again this often, ms. */
 const EVERY = 800
 
 const at = (change: string) => `/changes/${encodeURIComponent(change)}/check`
-const goesOn = (progress: Progress | undefined) => (progress?.state === 'running' ? EVERY : false)
-const whileRunning = ({ state }: { state: { data?: Pick<CheckView, 'complete' | 'progress'> } }) => (state.data && !state.data.complete ? goesOn(state.data.progress) : false)
+const goesOn = (change: string, progress: Progress | undefined) => (progress?.state === 'running' && !isStreamed(change) ? EVERY : false)
+const whileRunning = (change: string) => ({ state }: { state: { data?: Pick<CheckView, 'complete' | 'progress'> } }) => (state.data && !state.data.complete ? goesOn(change, state.data.progress) : false)
 
 /** The check of a change as saved at a revision: nominal findings at once, those over the tolerances as they come. While a newer one runs, the one before is shown, marked stale. */
 export const checkQuery = (change: string, revision: number) =>
@@ -16,7 +17,7 @@ export const checkQuery = (change: string, revision: number) =>
     queryKey: ['checks', change, revision],
     queryFn: ({ signal }) => get<CheckView>(at(change), { signal }),
     placeholderData: (before, query) => (query?.queryKey[1] === change ? before : undefined),
-    refetchInterval: whileRunning,
+    refetchInterval: whileRunning(change),
   })
 
 /** The check of a change as it stands, for lists: its revision is not known there. */
@@ -25,7 +26,7 @@ export const checkNowQuery = (change: string) =>
     queryKey: ['checks', change, 'now'],
     queryFn: ({ signal }) => get<CheckView>(at(change), { signal }),
     staleTime: 60_000,
-    refetchInterval: whileRunning,
+    refetchInterval: whileRunning(change),
   })
 
 /** Curves, histories and corners of one joint, `of` a revision or the hash of what was checked. The one of the revision before stays until the next is there, never that of another joint. */
@@ -34,7 +35,7 @@ export const jointReportQuery = (change: string, of: number | string, joint: str
     queryKey: ['checks', change, of, 'joint', joint],
     queryFn: ({ signal }) => get<JointReportView>(`${at(change)}/joints/${encodeURIComponent(joint)}`, { signal }),
     placeholderData: (before) => (before?.joint === joint ? before : undefined),
-    refetchInterval: whileRunning,
+    refetchInterval: whileRunning(change),
   })
 
 /** A stability map; the same question again answers it as far as it is. */
@@ -44,7 +45,7 @@ export const mapQuery = (change: string, revision: number, asked: AskMap) =>
     queryFn: () => act<MapView>({ path: `${at(change)}/map`, body: asked }),
     staleTime: Infinity,
     retry: false,
-    refetchInterval: ({ state }) => (state.data && !state.data.cells ? goesOn(state.data.progress) : false),
+    refetchInterval: ({ state }) => (state.data && !state.data.cells ? goesOn(change, state.data.progress) : false),
   })
 
 /** A search for gains with a larger worst margin, as far as it is. */
@@ -54,7 +55,7 @@ export const retuneQuery = (change: string, revision: number, asked: AskRetune) 
     queryFn: () => act<RetuneView>({ path: `${at(change)}/retune`, body: asked }),
     staleTime: Infinity,
     retry: false,
-    refetchInterval: ({ state }) => (state.data && !state.data.proposal ? goesOn(state.data.progress) : false),
+    refetchInterval: ({ state }) => (state.data && !state.data.proposal ? goesOn(change, state.data.progress) : false),
   })
 
 /** Answers about values that were typed over are of no use for long, ms. */

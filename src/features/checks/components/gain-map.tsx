@@ -11,6 +11,7 @@ import { axesOf, axisAround, letters, modeOf, pickedValue, usualAxes } from '../
 import { useStopCheck } from '../mutations.ts'
 import { mapQuery } from '../queries.ts'
 import { limitOf } from '../report-data.ts'
+import { useCheckStream } from '../use-check-stream.ts'
 
 /** Two values of the set that a cell stands for; the place and what it takes. */
 export interface Tried {
@@ -48,6 +49,7 @@ export function GainMap({ change, revision, report, base, onTry, whyNot }: GainM
   const options = choices.map((value) => ({ value, label: letters[value]!.words }))
   const problem = point.error ?? map.error
   const view = point.data && map.data
+  useCheckStream(change, view !== undefined && !view.cells)
   return (
     <section aria-label="stability map">
       {view?.cells ? (

@@ -10,6 +10,7 @@ import { Progress } from '../../../components/ui/progress.tsx'
 import { letters, modeOf } from '../letters.ts'
 import { useStopCheck } from '../mutations.ts'
 import { retuneQuery } from '../queries.ts'
+import { useCheckStream } from '../use-check-stream.ts'
 import { ProposalView } from './proposal-view.tsx'
 import { optionalNumber, type ProposalDialogProps } from './starting-values-dialog.tsx'
 
@@ -37,6 +38,7 @@ export function RetuneDialog({ change, revision, joint, nameOf, pending, problem
   const wrong = rangeProblem(from, to)
   const view = asked ? search.data : undefined
   const going = view !== undefined && !view.proposal && view.progress.state === 'running'
+  useCheckStream(change, going)
   const halted = view && !view.proposal && (view.progress.state === 'stopped' || view.progress.state === 'failed') ? view.progress : null
   const send = () => {
     const next: AskRetune = { joint: joint.joint, gains: gains.map((gain) => ({ gain, from: Number(from), to: Number(to) })) }

@@ -3,9 +3,11 @@ import { ProblemPanel } from '../../../components/problem/problem-panel.tsx'
 import { Button } from '../../../components/ui/button.tsx'
 import { Progress } from '../../../components/ui/progress.tsx'
 import { useResumeCheck, useStopCheck } from '../mutations.ts'
+import { useCheckStream } from '../use-check-stream.ts'
 
 /** How far the walk over the tolerances has come, with the way to stop it or to go on; nothing once the check is complete. */
 export function ToleranceWalk({ change, check, className = '' }: { change: string; check: Pick<CheckView, 'complete' | 'progress'>; className?: string }) {
+  useCheckStream(change, !check.complete)
   const stop = useStopCheck(change)
   const resume = useResumeCheck(change)
   if (check.complete) return null
