@@ -1,9 +1,10 @@
 import { useQuery, useQueryClient, useSuspenseQuery } from '@tanstack/react-query'
-import { use, useMemo, useState } from 'react'
+import { use, useCallback, useMemo, useState } from 'react'
 import { useNavigate, useParams } from 'react-router'
 import type { LoaderFunctionArgs } from 'react-router'
 import { paths } from '../app/paths.ts'
 import type { ChangeView } from '../../shared/contract/changes.ts'
+import type { Finding } from '../../shared/contract/checks.ts'
 import { CheckPanel } from '../features/checks/components/check-panel.tsx'
 import { Proposals } from '../features/checks/components/proposals.tsx'
 import { worstOf } from '../features/checks/figures.ts'
@@ -87,7 +88,8 @@ function useLiveCheck({ state, tried, joints, rulersOf, onEdit }: Looked) {
   const quick = useQuick({ state, tried, joint: worst?.joint ?? joints[0] ?? null, stale })
   const unstable = useUnstable({ state, joint: worst?.candidate ? worst.joint : null, stale, rulersOf })
   const version = useQuery({ ...versionQuery(view.key, view.revision), enabled: !stale && query.data?.counts.block === 0 }).data
-  const nameOf = nameIn({ set: state.set, base: view.base })
+  const nameOf = useMemo(() => nameIn({ set: state.set, base: view.base }), [state.set, view.base])
+  const note = useCallback((f: Finding) => (view.concessions.some((c) => c.finding === f.key) ? <p className="text-12 text-plum">concession requested</p> : null), [view.concessions])
   return {
     check: query.data,
     stale,
@@ -102,7 +104,7 @@ function useLiveCheck({ state, tried, joints, rulersOf, onEdit }: Looked) {
           joints={joints}
           nameOf={nameOf}
           reportTo={paths.changeCheck(view.key)}
-          note={(f) => (view.concessions.some((c) => c.finding === f.key) ? <p className="text-12 text-plum">concession requested</p> : null)}
+          note={note}
         />
         {worst?.candidate && <Proposals change={view.key} revision={view.revision} joint={worst} nameOf={nameOf} unavailable={stale ? 'The check of the values as they stand is running.' : null} onApply={onEdit} />}
         <ChangeTools change={view} joints={joints} unavailable={state.saving === 'saved' ? null : 'The values are being saved.'} />

@@ -43,7 +43,7 @@ export function Component() {
           )
         }
       >
-        the limits that checks judge by, and how many peers review
+        the limits that checks judge by, how many peers review, what a concession may ask and who proposes what
       </PageHead>
       {machines.length === 0 ? (
         <EmptyState title="There is no machine yet.">A machine begins with a first policy when it is made.</EmptyState>

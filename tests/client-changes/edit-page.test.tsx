@@ -271,7 +271,7 @@ describe('the live check', () => {
     aDraft({}, aCheck({ findings: [finding(), finding({ key: 'a', level: 'pass', text: 'The bus watchdog is on.' })] }))
     open('/changes/dunlin-47?family=knee')
     const panel = await screen.findByRole('region', { name: 'live check' })
-    expect(within(panel).getByText('stable')).toBeTruthy()
+    expect(within(panel).getAllByText('stable').length).toBeGreaterThan(0)
     expect(panel.textContent).toContain('0.99631')
     expect(panel.textContent).toContain('0.99472')
     const row = within(panel).getByRole('row', { name: /velocity phase 55\.3 .* 46\.4/ })

@@ -6,7 +6,7 @@ import { ROLES } from '../../shared/registers/roles.ts'
 import type { CheckView, Finding } from '../../shared/contract/checks.ts'
 import { letterLines, partOf, toleranceOf, withPart } from '../../src/features/changes/drive-train-letters.ts'
 import { placeWords } from '../../src/features/changes/place-words.ts'
-import { submitNeeds } from '../../src/features/changes/submit-needs.ts'
+import { submitNeeds, unfitJoints } from '../../src/features/changes/submit-needs.ts'
 import { textMarkers } from '../../src/features/changes/text-markers.ts'
 import { textSchema } from '../../src/features/changes/text-schema.ts'
 import { heldText, readTyped, registerText } from '../../src/features/changes/typed-value.ts'
@@ -149,7 +149,7 @@ describe('words for places', () => {
 describe('what is needed before submitting', () => {
   const finding: Finding = { key: 'phase margin/velocity/knee', kind: 'phase margin', level: 'concession needed', joints: ['l1-knee'], value: 33, limit: 35, unit: '°', text: '', remedy: '', source: '' }
   const check = (over: Partial<CheckView>): CheckView => ({ inputsHash: '', modelVersion: '1', policyNumber: 1, joints: [], findings: [], counts: { pass: 1, advise: 0, 'concession needed': 0, block: 0 }, verdict: 'stable', checkedAt: '', complete: true, progress: { done: 1, total: 1, state: 'done', problem: '' }, ...over })
-  const needs = (over: Partial<Parameters<typeof submitNeeds>[0]>) => submitNeeds({ change: aChange(), set, schemas, saving: 'saved', check: check({}), stale: false, ...over })
+  const needs = (over: Partial<Parameters<typeof submitNeeds>[0]>) => submitNeeds({ change: aChange(), set, saving: 'saved', check: check({}), stale: false, unfit: unfitJoints(over.set ?? set, schemas), ...over })
 
   it('is all met', () => expect(needs({}).map((n) => `${n.state}: ${n.words}`)).toEqual(['met: values fit the schema on 3 joints', 'met: check is fresh, nothing blocks', 'met: the reason is written']))
   it('names what is open', () => {

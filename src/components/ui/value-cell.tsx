@@ -20,6 +20,8 @@ export interface ValueCellProps {
   /** Makes the number a field and the ruler a slider. */
   onChange?: (text: string) => void
   onSettle?: (text: string) => void
+  /** Esc in the field: what was typed is taken back. */
+  onCancel?: () => void
   /** Writes a value the ruler gives as text; three significant digits unless given. */
   write?: (value: number) => string
   /** Arrow keys in the field. */
@@ -32,11 +34,12 @@ export interface ValueCellProps {
 }
 
 /** One value where it acts: name, change, number, unit, origin, and the ruler of what it may be. */
-export function ValueCell({ title, value, unit = '', origin, change, changed = false, ruler, onChange, onSettle, write = toText, step, chosen = false, onFocus, error, note }: ValueCellProps) {
+export function ValueCell({ title, value, unit = '', origin, change, changed = false, ruler, onChange, onSettle, onCancel, write = toText, step, chosen = false, onFocus, error, note }: ValueCellProps) {
   const id = useId()
   const classes = ['value-cell', changed ? 'value-cell-changed' : '', chosen ? 'value-cell-chosen' : ''].filter(Boolean).join(' ')
   const onKey = (event: KeyboardEvent) => {
     if (event.key === 'Enter') onSettle?.(value)
+    if (event.key === 'Escape') onCancel?.()
     const way = event.key === 'ArrowUp' ? 1 : event.key === 'ArrowDown' ? -1 : 0
     const next = step === undefined || way === 0 ? null : stepNumberText(value, way * step * (event.shiftKey ? 10 : 1))
     if (next === null) return

@@ -26,6 +26,9 @@ export type GridAct =
 
 export const startState: GridState = { row: 0, column: 0, fromRow: 0, fromColumn: 0, editing: false, first: null, focus: 0 }
 
+/** Begun in the first row of a column. */
+export const startAt = (column: number): GridState => ({ ...startState, column, fromColumn: column })
+
 const held = (n: number, count: number) => Math.max(0, Math.min(count - 1, n))
 const wayOf = { down: [1, 0], right: [0, 1], left: [0, -1], stay: [0, 0] } as const
 

@@ -30,16 +30,16 @@ export const unrequested = (findings: readonly Finding[], change: Pick<ChangeVie
 export interface Standing {
   change: ChangeView
   set: MachineSet
-  schemas: Schemas
   saving: Saving
   check: CheckView | undefined
   /** the check shown is not of the values as they stand */
   stale: boolean
+  /** joints whose values don't fit their schema; looked up once for each set, since it takes every value of every joint */
+  unfit: readonly string[]
 }
 
 /** What must hold before a change can be submitted, each in words. The server judges for itself when it is. */
-export function submitNeeds({ change, set, schemas, saving, check, stale }: Standing): Need[] {
-  const unfit = unfitJoints(set, schemas)
+export function submitNeeds({ change, set, saving, check, stale, unfit }: Standing): Need[] {
   const joints = Object.keys(set.joints).length
   const open = check ? unrequested(check.findings, change) : []
   const blocks = check?.counts.block ?? 0

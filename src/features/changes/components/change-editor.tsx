@@ -3,7 +3,7 @@ import { useCallback, useEffect, useMemo, useState, useSyncExternalStore } from 
 import type { ReactNode } from 'react'
 import { useSearchParams } from 'react-router'
 import type { ChangeView } from '../../../../shared/contract/changes.ts'
-import type { AskStretches, CheckView } from '../../../../shared/contract/checks.ts'
+import type { AskStretches, CheckView, Finding } from '../../../../shared/contract/checks.ts'
 import type { Edit } from '../../../../shared/parameters/edits.ts'
 import { fieldError } from '../../../lib/api-client.ts'
 import { ProblemPanel } from '../../../components/problem/problem-panel.tsx'
@@ -14,7 +14,7 @@ import { useBringUpToDate, useCancelChange, useDescribeChange, useGoBackTo, useI
 import { draftPointsQuery, firmwareNames, schemasQuery, upToDateQuery } from '../queries.ts'
 import { rulerQuestions } from '../ruler-questions.ts'
 import { jointsInScope, scopeOf } from '../scope.ts'
-import { submitNeeds, unrequested } from '../submit-needs.ts'
+import { submitNeeds, unfitJoints, unrequested } from '../submit-needs.ts'
 import { TriedEdits, TriesContext } from '../tried-edits.ts'
 import { UnstableContext, type UnstableStretches } from '../unstable-context.ts'
 import { useDraft } from '../use-draft.ts'
@@ -66,6 +66,8 @@ export interface ChangeEditorProps {
   onSubmitted: () => void
 }
 
+const noFindings: readonly Finding[] = []
+
 type Open = 'concession' | 'points' | 'writers' | 'cancel' | null
 
 /** A draft under its writer's hands: values in three views, the live check beside, reason, what is needed to submit. */
@@ -80,7 +82,7 @@ export function ChangeEditor({ change, personId, people, firmware, useCheck, onS
   const altered = useMemo(() => alteredIn(set, view.base), [set, view.base])
   // Chosen once: the page does not move to another family because a value fell back into its notch.
   const [first] = useState(altered.most)
-  const scope = scopeOf(search, set, first)
+  const scope = useMemo(() => scopeOf(search, set, first), [search, set, first])
   const names = useMemo(() => firmwareNames(view.set, view.base), [view.set, view.base])
   const schemas = useQuery(schemasQuery(view.key, names)).data ?? noSchemas
   // The same function every time: the cells of the table are drawn again only when their own value alters.
@@ -99,6 +101,27 @@ export function ChangeEditor({ change, personId, people, firmware, useCheck, onS
     if (scope.view !== 'text') void keeper.flush()
   }, [keeper, scope.view])
 
+  const findings = check?.findings ?? noFindings
+  // The views are drawn again when something of the draft alters, not at every key and every answer of the check.
+  const views = useMemo(
+    () => (
+      <ValueViews
+        changeKey={view.key}
+        state={state}
+        base={view.base}
+        schemas={schemas}
+        scope={scope}
+        altered={altered}
+        findings={findings}
+        firmware={firmware}
+        onEdit={edit}
+        onType={(text) => keeper.type(text)}
+        onDropText={() => keeper.dropText()}
+      />
+    ),
+    [view.key, state, view.base, schemas, scope, altered, findings, firmware, edit, keeper],
+  )
+
   const current: Current = async () => {
     await keeper.flush()
     return keeper.getState().view
@@ -114,7 +137,8 @@ export function ChangeEditor({ change, personId, people, firmware, useCheck, onS
   const newer = useQuery({ ...upToDateQuery(view.key, view.revision), enabled: outdated })
   const points = useQuery({ ...draftPointsQuery(view.key, view.revision), enabled: open === 'points' || state.conflicts.length > 0 })
   const sets = [set, view.base]
-  const needs = submitNeeds({ change: view, set, schemas, saving: state.saving, check, stale })
+  const unfit = useMemo(() => unfitJoints(set, schemas), [set, schemas])
+  const needs = submitNeeds({ change: view, set, saving: state.saving, check, stale, unfit })
   const others = view.writers.filter((w) => people.find((p) => p.id === personId)?.name !== w)
 
   return (
@@ -136,19 +160,7 @@ export function ChangeEditor({ change, personId, people, firmware, useCheck, onS
           )}
           <TriesContext value={tries}>
           <UnstableContext value={unstable}>
-          <ValueViews
-            changeKey={view.key}
-            state={state}
-            base={view.base}
-            schemas={schemas}
-            scope={scope}
-            altered={altered}
-            findings={check?.findings ?? []}
-            firmware={firmware}
-            onEdit={edit}
-            onType={(text) => keeper.type(text)}
-            onDropText={() => keeper.dropText()}
-          />
+          {views}
           </UnstableContext>
           </TriesContext>
           <div className="mt-6 grid gap-6 md:grid-cols-[minmax(0,1fr)_344px]">

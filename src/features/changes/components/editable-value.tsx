@@ -8,7 +8,7 @@ import { rulerRange, stepOf } from '../ruler-range.ts'
 import { numberOf, rangeText, shownValue, valueText } from '../typed-value.ts'
 import { UnstableContext } from '../unstable-context.ts'
 import { useTypedValue } from '../use-typed-value.ts'
-import { waysBack } from '../ways-back.ts'
+import { promoted, waysBack } from '../ways-back.ts'
 import { ownValuesOf, type ValueAt } from '../value-cells.ts'
 
 export interface EditableValueProps {
@@ -65,20 +65,23 @@ function Quantity({ at, set, onEdit, title }: EditableValueProps) {
             }
           : undefined
       }
+      onCancel={onEdit ? typed.cancel : undefined}
       error={typed.error}
-      note={<Notes at={at} own={own.length} onEdit={onEdit} onClear={typed.cancel} bare={range === null} />}
+      note={<Notes at={at} set={set} own={own.length} onEdit={onEdit} onClear={typed.cancel} bare={range === null} />}
     />
   )
 }
 
-function Notes({ at, own, onEdit, onClear, bare }: { at: ValueAt; own: number; onEdit: EditableValueProps['onEdit']; onClear: () => void; bare: boolean }) {
+function Notes({ at, set, own, onEdit, onClear, bare }: { at: ValueAt; set: MachineSet; own: number; onEdit: EditableValueProps['onEdit']; onClear: () => void; bare: boolean }) {
   const parts = [
     own > 0 && `${own === 1 ? 'one joint has' : `${own} joints have`} a value of its own`.replace('have a value of its own', 'have values of their own'),
     bare && rangeText(at.parameter),
   ].filter(Boolean)
   // A family's values stand above firmware defaults as a rule; only what alters is worth a line here.
   const ways = onEdit && (at.place.kind === 'joint' || at.changed) ? waysBack(at).slice(0, 1) : []
-  if (parts.length === 0 && ways.length === 0) return null
+  // A value bound to a board is a joint's own by nature.
+  const up = onEdit !== null && at.place.kind === 'joint' && at.own !== undefined && !at.parameter.boardBound
+  if (parts.length === 0 && ways.length === 0 && !up) return null
   return (
     <>
       {parts.join('; ')}
@@ -96,12 +99,25 @@ function Notes({ at, own, onEdit, onClear, bare }: { at: ValueAt; own: number; o
           <span className="sr-only">, {at.parameter.title}</span>
         </button>
       ))}
+      {up && (
+        <button
+          type="button"
+          className="link text-12"
+          onClick={() => {
+            onClear()
+            onEdit?.(promoted(at, set))
+          }}
+        >
+          give to the family
+          <span className="sr-only">, {at.parameter.title}</span>
+        </button>
+      )}
     </>
   )
 }
 
 /** A switch or one of a few words. */
-function Choice({ at, onEdit, title }: EditableValueProps) {
+function Choice({ at, set, onEdit, title }: EditableValueProps) {
   const typed = useTypedValue(at, onEdit ?? (() => {}))
   const choices = at.parameter.choices?.map(String) ?? ['on', 'off']
   const name = title ?? at.parameter.title
@@ -128,7 +144,7 @@ function Choice({ at, onEdit, title }: EditableValueProps) {
         <OriginMark origin={at.origin} />
       </div>
       <p className="text-12 text-ink-2">
-        <Notes at={at} own={0} onEdit={onEdit} onClear={typed.cancel} bare={false} />
+        <Notes at={at} set={set} own={0} onEdit={onEdit} onClear={typed.cancel} bare={false} />
       </p>
     </div>
   )

@@ -19,7 +19,7 @@ export function GridHead({ columns, joint, spans }: GridHeadProps) {
         <th scope="col" className="left-0 !z-[6]">
           Parameter
         </th>
-        {spans.map(({ index, gap }) => [
+        {spans.flatMap(({ index, gap }) => [
           gap > 0 && <td key={`gap ${index}`} role="presentation" colSpan={gap} className="sticky top-0 z-[5] !border-ink bg-paper" />,
           index < columns.length && (
             <th key={columns[index].key} scope="col" aria-colindex={index + 2} className={`end !whitespace-normal ${columns[index].key === joint ? '!text-ink' : ''} ${index > 0 && columns[index].place.kind === 'family' ? 'border-l border-l-rule' : ''}`}>

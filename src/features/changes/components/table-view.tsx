@@ -68,8 +68,8 @@ export function TableView({ set, base, schemas, scope, findings, onEdit }: Table
         <Nothing showing={showing} filtered={origin !== null} />
       ) : (
         <ValueGrid
-          // Another choice of rows or columns begins at its own first cell.
-          key={`${families.join()} ${showing} ${origin ?? ''}`}
+          // Another choice of rows, columns, family or joint begins at its own first cell.
+          key={`${families.join()} ${showing} ${origin ?? ''} ${scope.joint ?? scope.family}`}
           label={families.length === 1 ? `values of the ${set.families[families[0]].name} family` : 'values of every joint'}
           set={set}
           columns={columns}
@@ -77,6 +77,7 @@ export function TableView({ set, base, schemas, scope, findings, onEdit }: Table
           cells={cells}
           out={out}
           joint={scope.joint}
+          at={scope.joint ?? `family ${scope.family}`}
           onEdit={onEdit}
           onChosen={setStands}
           onPaste={(text) => setPasted({ text })}

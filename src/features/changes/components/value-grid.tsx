@@ -3,7 +3,7 @@ import type { ClipboardEvent, KeyboardEvent } from 'react'
 import type { Edit } from '../../../../shared/parameters/edits.ts'
 import type { MachineSet } from '../../../../shared/parameters/machine-set.ts'
 import type { Parameter } from '../../../../shared/registers/parameter-schema.ts'
-import { gridState, moveOf, selectionOf, startState, type GridState } from '../grid-state.ts'
+import { gridState, moveOf, selectionOf, startAt, type GridState } from '../grid-state.ts'
 import { shownValue, valueText } from '../typed-value.ts'
 import { useColumnWindow } from '../use-column-window.ts'
 import { editTo } from '../use-typed-value.ts'
@@ -21,6 +21,8 @@ export interface ValueGridProps {
   out: ReadonlySet<string>
   /** its column stands out */
   joint: string | null
+  /** key of the column that is looked at first */
+  at: string
   /** null: read only */
   onEdit: ((edits: Edit[]) => void) | null
   /** told where keys act */
@@ -34,8 +36,9 @@ export interface ValueGridProps {
  * Enter or a digit edits, Esc leaves, Delete sets back to what is inherited; a selection is copied as a spreadsheet takes it, and a block of one is pasted.
  * Of many columns only those in sight are drawn.
  */
-export function ValueGrid({ label, set, columns, groups, cells, out, joint, onEdit, onChosen, onPaste, onFill }: ValueGridProps) {
-  const [state, dispatch] = useReducer(gridState, startState)
+export function ValueGrid({ label, set, columns, groups, cells, out, joint, at, onEdit, onChosen, onPaste, onFill }: ValueGridProps) {
+  // Keys act first where one looked before: on the joint or family of the address.
+  const [state, dispatch] = useReducer(gridState, Math.max(0, columns.findIndex((c) => c.key === at)), startAt)
   const frame = useRef<HTMLDivElement>(null)
   const rows = useMemo(() => groups.flatMap((g) => g.rows), [groups])
   const numberOf = useMemo(() => new Map(rows.map((r, i) => [rowId(r), i])), [rows])
@@ -46,6 +49,12 @@ export function ValueGrid({ label, set, columns, groups, cells, out, joint, onEd
   const selection = selectionOf({ ...state, row, column })
   const several = selection.top !== selection.bottom || selection.left !== selection.right
 
+  useLayoutEffect(() => {
+    // The column begun at stands beside the head of its rows.
+    if (frame.current) frame.current.scrollLeft = Math.max(0, column - 1) * gridWidths.column
+    // Once: from here on the reader scrolls.
+    // eslint-disable-next-line react-hooks/exhaustive-deps
+  }, [])
   const tell = useEffectEvent(onChosen)
   useLayoutEffect(() => tell({ ...state, row, column }), [state, row, column])
   useLayoutEffect(() => {
@@ -124,7 +133,7 @@ export function ValueGrid({ label, set, columns, groups, cells, out, joint, onEd
                       <span className="text-12 whitespace-nowrap text-ink-2">{parameter.unit}</span>
                     </span>
                   </td>
-                  {spans.map(({ index, gap }) => [
+                  {spans.flatMap(({ index, gap }) => [
                     gap > 0 && <td key={`gap ${index}`} role="presentation" colSpan={gap} />,
                     index < columns.length && (
                       <ValueGridCell

@@ -1,7 +1,6 @@
 import { use } from 'react'
 import type { Edit } from '../../../../shared/parameters/edits.ts'
-import type { MachineSet, Value } from '../../../../shared/parameters/machine-set.ts'
-import { toPointer } from '../../../../shared/parameters/paths.ts'
+import type { MachineSet } from '../../../../shared/parameters/machine-set.ts'
 import { Button } from '../../../components/ui/button.tsx'
 import { OriginMark } from '../../../components/ui/origin-mark.tsx'
 import { Ruler } from '../../../components/ui/ruler.tsx'
@@ -10,7 +9,7 @@ import { rulerRange, stepOf } from '../ruler-range.ts'
 import { heldText, numberOf, rangeText, registerText, shownValue } from '../typed-value.ts'
 import { UnstableContext } from '../unstable-context.ts'
 import { useTypedValue } from '../use-typed-value.ts'
-import { waysBack } from '../ways-back.ts'
+import { promoted, waysBack } from '../ways-back.ts'
 import { ownValuesOf, type Schemas, type ValueAt } from '../value-cells.ts'
 
 export interface ValueInspectorProps {
@@ -31,7 +30,6 @@ export function ValueInspector({ at, set, onEdit }: ValueInspectorProps) {
   const now = numberOf(at.value)
   const before = numberOf(at.released)
   const change = now !== null && before !== null ? percentChange(before, now) : null
-  const familyValue = set.families[place.family].values[parameter.name] as Value | undefined
   const ways = onEdit ? waysBack(at) : []
   const unit = parameter.unit ?? ''
   return (
@@ -87,7 +85,7 @@ export function ValueInspector({ at, set, onEdit }: ValueInspectorProps) {
             </Button>
           ))}
           {place.kind === 'joint' && at.own !== undefined && (
-            <Button small onClick={() => onEdit(promoted(at, place.family, familyValue))}>
+            <Button small onClick={() => onEdit(promoted(at, set))}>
               Give to the whole family
             </Button>
           )}
@@ -95,12 +93,4 @@ export function ValueInspector({ at, set, onEdit }: ValueInspectorProps) {
       )}
     </section>
   )
-}
-
-/** The joint's own value becomes the family's; the joint inherits it. */
-function promoted(at: ValueAt, family: string, familyValue: Value | undefined): Edit[] {
-  return [
-    { pointer: toPointer(['families', family, 'values', at.parameter.name]), ...(familyValue === undefined ? {} : { from: familyValue }), to: at.own },
-    { pointer: at.pointer, from: at.own },
-  ]
 }

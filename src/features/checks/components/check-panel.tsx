@@ -1,4 +1,5 @@
 import type { UseQueryResult } from '@tanstack/react-query'
+import { useMemo } from 'react'
 import type { ReactNode } from 'react'
 import type { CheckView, JointCheck, QuickView } from '../../../../shared/contract/checks.ts'
 import { PolePlot } from '../../../components/charts/pole-plot.tsx'
@@ -14,6 +15,7 @@ import { figuresOf, worstOf } from '../figures.ts'
 import { BeforeAfter } from './before-after.tsx'
 import { FigureRows } from './figure-rows.tsx'
 import { FindingList } from './finding-list.tsx'
+import { JointsTouched } from './joints-touched.tsx'
 import { StepOverlay } from './step-overlay.tsx'
 import { ToleranceWalk } from './tolerance-walk.tsx'
 
@@ -38,6 +40,20 @@ export interface CheckPanelProps {
  */
 export function CheckPanel({ change, query, stale, quick, joints, nameOf, reportTo, note }: CheckPanelProps) {
   const check = query.data
+  // Long lists beside what alters at every key: drawn again when they alter themselves.
+  const rest = useMemo(
+    () =>
+      check && (
+        <>
+          <JointsTouched check={check} nameOf={nameOf} />
+          <SectionHeading level={3} className="mt-4 mb-1" actions={<TextLink to={reportTo}>full report</TextLink>}>
+            Findings
+          </SectionHeading>
+          {check.findings.length === 0 ? <EmptyState title="Nothing to judge yet">Findings appear with the first joint.</EmptyState> : <FindingList findings={check.findings} nameOf={nameOf} narrow note={note} />}
+        </>
+      ),
+    [check, nameOf, reportTo, note],
+  )
   if (!check) return query.isError ? <ProblemPanel problem={query.error} onRetry={() => void query.refetch()} /> : <Waiting what="the check" lines={6} />
   const shown = check.joints.filter((j) => joints.includes(j.joint))
   const early = stale ? quick?.view : undefined
@@ -63,10 +79,7 @@ export function CheckPanel({ change, query, stale, quick, joints, nameOf, report
       ) : (
         <p className="border-b border-hairline py-3 text-13 text-ink-2">{worst ? `Nothing was computed for ${nameOf(worst.joint)}; the findings say why.` : 'No joint stands here yet.'}</p>
       )}
-      <SectionHeading level={3} className="mt-4 mb-1" aux={undefined} actions={<TextLink to={reportTo}>full report</TextLink>}>
-        Findings
-      </SectionHeading>
-      <div className={dim(stale)}>{check.findings.length === 0 ? <EmptyState title="Nothing to judge yet">Findings appear with the first joint.</EmptyState> : <FindingList findings={check.findings} nameOf={nameOf} narrow note={note} />}</div>
+      <div className={dim(stale)}>{rest}</div>
     </section>
   )
 }
