@@ -11,7 +11,7 @@ import type { SampledJoint } from './sampled-joint.ts'
  */
 /** P at frequencies that the transfer which asked last remembers; another one that asks takes it over, for an array of its own would cost more than it saves. */
 const memory = new Float64Array(16_384)
-let rememberedBy: OuterTransfer | null = null
+let rememberedFor: object | null = null
 
 export class OuterTransfer {
   readonly q: number
@@ -72,8 +72,8 @@ export class OuterTransfer {
   atAgain(theta: number): void {
     const { kept, P } = this
     const size = P.re.length
-    if (rememberedBy !== this) {
-      rememberedBy = this
+    if (rememberedFor !== kept) {
+      rememberedFor = kept
       kept.clear()
     }
     let at = kept.get(theta)
