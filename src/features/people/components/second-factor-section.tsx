@@ -31,7 +31,7 @@ export function SecondFactorSection({ own }: { own: OwnSecondFactor }) {
       ) : (
         <>
           <p className="text-13">
-            Set up since <Time at={own.since} style="long" />; {count(own.recoveryCodesLeft, 'recovery code')} left.
+            Set up on <Time at={own.since} style="long" />; {count(own.recoveryCodesLeft, 'recovery code')} left.
           </p>
           {own.recoveryCodesLeft < 3 && <p className="text-13 text-plum">Make new recovery codes before they run out.</p>}
           <div className="mt-3 flex flex-wrap gap-2">
