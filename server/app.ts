@@ -17,6 +17,7 @@ import { changeRoutes } from './modules/changes/routes.ts'
 import { checkRoutes } from './modules/checks/routes.ts'
 import { commentRoutes } from './modules/comments/routes.ts'
 import { comparisonRoutes } from './modules/comparisons/routes.ts'
+import { deskRoutes } from './modules/desk/routes.ts'
 import { evidenceRoutes } from './modules/evidence/routes.ts'
 import { firmwareRoutes } from './modules/firmware/routes.ts'
 import { keyRoutes } from './modules/keys/routes.ts'
@@ -32,7 +33,7 @@ import { searchRoutes } from './modules/search/routes.ts'
 
 /** Every route of the API that a signed-in person reaches; tests walk it. */
 export const routeTable: readonly RouteSpec[] = [
-  ...peopleRoutes, ...secondFactorRoutes, ...machineRoutes, ...firmwareRoutes, ...policyRoutes, ...changeRoutes, ...checkRoutes, ...reviewRoutes, ...commentRoutes, ...evidenceRoutes, ...releaseRoutes, ...boardRoutes, ...benchKeyRoutes, ...keyRoutes, ...comparisonRoutes, ...ledgerRoutes, ...searchRoutes, ...backupRoutes, ...mailRoutes,
+  ...peopleRoutes, ...secondFactorRoutes, ...machineRoutes, ...firmwareRoutes, ...policyRoutes, ...changeRoutes, ...checkRoutes, ...reviewRoutes, ...commentRoutes, ...evidenceRoutes, ...deskRoutes, ...releaseRoutes, ...boardRoutes, ...benchKeyRoutes, ...keyRoutes, ...comparisonRoutes, ...ledgerRoutes, ...searchRoutes, ...backupRoutes, ...mailRoutes,
 ]
 
 const contentSecurity = (secure: boolean) =>

@@ -40,6 +40,7 @@ export async function tellLog(story: Story, services: Services, { machine, by, n
   const evidence = await story.act(async (tx, now) =>
     receiveEvidence(tx, { machine: await tx.findOneOrFail(Machine, { key: machine }), change: change ? await againChange(tx, change) : null, joint: run.joint, upload, layout, person: await story.person(tx, by), now }),
   )
+  await file.discard()
   const { mapping } = await proposeMapping(services.orm.em.fork(), found, layout)
   const { now } = story
   const fork = services.orm.em.fork()

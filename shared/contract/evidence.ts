@@ -7,7 +7,7 @@ import type { Allowed } from './people.ts'
 const strict = { additionalProperties: false }
 
 /** Most bytes of one bench log. */
-export const logLimit = 200 * 1024 * 1024
+export const logLimit = 200_000_000
 
 /** What a column of a bench log may hold. Output-referred, but for the electrical ones. */
 export const logSignals = ['time', 'set-point', 'position', 'speed', 'current', 'voltage', 'duty'] as const

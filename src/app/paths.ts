@@ -47,8 +47,9 @@ export const paths = {
   },
   board: (serial: string) => `/boards/${part(serial)}`,
   audit: (machine: string) => `/machines/${part(machine)}/audit`,
-  bench: (machine: string, { joint, serial }: { joint?: string; serial?: string } = {}) => {
-    const query = new URLSearchParams(Object.entries({ joint, serial }).flatMap(([k, v]) => (v ? [[k, v]] : []))).toString()
+  /** `withdrawn`: to record what was flashed although the newest release is withdrawn */
+  bench: (machine: string, { joint, serial, withdrawn }: { joint?: string; serial?: string; withdrawn?: boolean } = {}) => {
+    const query = new URLSearchParams(Object.entries({ joint, serial, withdrawn: withdrawn ? 'yes' : undefined }).flatMap(([k, v]) => (v ? [[k, v]] : []))).toString()
     return `/machines/${part(machine)}/bench${query && `?${query}`}`
   },
   benchCard: (machine: string, version: string, joint: string) => `/machines/${part(machine)}/releases/${part(version)}/joints/${part(joint)}/card`,

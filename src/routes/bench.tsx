@@ -5,6 +5,7 @@ import { paths } from '../app/paths.ts'
 import { PageHead } from '../components/layout/page-head.tsx'
 import { Region } from '../components/layout/region.tsx'
 import { useUrlText } from '../components/layout/use-url-state.ts'
+import { Button } from '../components/ui/button.tsx'
 import { EmptyState } from '../components/ui/empty-state.tsx'
 import { LinkButton } from '../components/ui/link-button.tsx'
 import { TextLink } from '../components/ui/text-link.tsx'
@@ -22,7 +23,8 @@ export function Component() {
   const boards = useSuspenseQuery(machineBoardsQuery(useParams().machine!)).data
   const [joint] = useUrlText('joint')
   const [serial] = useUrlText('serial')
-  const release = boards.current
+  const [allTheSame, setAllTheSame] = useUrlText('withdrawn')
+  const release = boards.current ?? (allTheSame === '' ? null : boards.newest)
   const card = useQuery({ ...cardQuery(boards.machine, release?.version ?? '', joint), enabled: release !== null && joint !== '' })
   const picked = release !== null && joint !== ''
   return (
@@ -34,13 +36,21 @@ export function Component() {
               <TextLink to={paths.machine(boards.machine)}>{boards.machineName}</TextLink>, bench
             </>
           }
-          title={release ? `Flash ${boards.machineName} ${release.version}` : `${boards.machineName} at the bench`}
+          title={release && boards.current ? `Flash ${boards.machineName} ${release.version}` : release ? `What was flashed: ${boards.machineName} ${release.version}, withdrawn` : `${boards.machineName} at the bench`}
           documentTitle={`Bench, ${boards.machineName}`}
           actions={<LinkButton to={paths.audit(boards.machine)}>Audit sheet</LinkButton>}
         />
       </div>
       {!release ? (
-        <EmptyState title="There is nothing to flash" action={<LinkButton to={paths.releases(boards.machine)}>To its releases</LinkButton>}>
+        <EmptyState
+          title="There is nothing to flash"
+          action={
+            <>
+              <LinkButton to={paths.releases(boards.machine)}>To its releases</LinkButton>
+              {boards.newest && boards.mayRecord.allowed && <Button onClick={() => setAllTheSame('yes')}>Record what was flashed all the same</Button>}
+            </>
+          }
+        >
           {boards.newest ? `${boards.newest.version} is withdrawn, and no release came after it. Boards that hold it wait for the next one.` : 'Nothing is released yet.'}
         </EmptyState>
       ) : (
@@ -50,7 +60,7 @@ export function Component() {
           </div>
           {picked && (
             <div className="pt-3 lg:pt-0">
-              <TextLink className="mb-2 inline-block text-13 lg:hidden" to={paths.bench(boards.machine)}>
+              <TextLink className="mb-2 inline-block text-13 lg:hidden" to={paths.bench(boards.machine, { withdrawn: boards.current === null })}>
                 all joints of {boards.machineName}
               </TextLink>
               <Region query={card} what="the joint" lines={8}>

@@ -20,6 +20,8 @@ import { waitingFor } from '../features/changes/waiting-for.ts'
 import { CheckBrief } from '../features/checks/components/check-brief.tsx'
 import { NamedSection } from '../features/comments/components/named-section.tsx'
 import { namingQuery } from '../features/comments/queries.ts'
+import { OtherTasks } from '../features/desk/components/other-tasks.tsx'
+import { deskQuery } from '../features/desk/queries.ts'
 import { ledgerQuery } from '../features/ledger/queries.ts'
 import { count } from '../lib/format.ts'
 import { holds, useMe } from '../lib/me.ts'
@@ -29,6 +31,7 @@ export const loader = () => {
   void queryClient.prefetchQuery(changesQuery())
   void queryClient.prefetchQuery(namingQuery)
   void queryClient.prefetchQuery(benchTasksQuery)
+  void queryClient.prefetchQuery(deskQuery)
   return null
 }
 
@@ -36,20 +39,22 @@ export function Component() {
   const me = useMe()
   const changes = useQuery({ ...changesQuery(), refetchOnWindowFocus: true })
   const tasks = useQuery({ ...benchTasksQuery, refetchOnWindowFocus: true }).data ?? []
+  const desk = useQuery({ ...deskQuery, refetchOnWindowFocus: true }).data ?? { tasks: [], signed: [] }
   const naming = useQuery({ ...namingQuery, refetchOnWindowFocus: true }).data ?? []
   // How long things wait is read off when they were fetched: the page does not tick.
   const now = changes.dataUpdatedAt
   const first = me.name.split(' ')[0]
-  const waiting = waitingFor(changes.data ?? [], me.name, (act, machine) => holds(me, act, machine))
+  const waiting = waitingFor((changes.data ?? []).filter((c) => !desk.signed.includes(c.key)), me.name, (act, machine) => holds(me, act, machine))
   const parts = [
     waiting.toSign.length > 0 && `${waiting.toSign.length} to read and sign`,
     waiting.toRelease.length > 0 && `${waiting.toRelease.length} to release`,
     waiting.returned.length > 0 && `${waiting.returned.length} returned to you`,
     naming.length > 0 && `${naming.length} naming you`,
     tasks.length > 0 && `${tasks.length} at the bench`,
+    desk.tasks.length > 0 && `${desk.tasks.length} besides`,
   ].filter(Boolean)
   const toRead = waiting.toSign.length + waiting.toRelease.length + waiting.returned.length
-  const total = toRead + naming.length + tasks.length
+  const total = toRead + naming.length + tasks.length + desk.tasks.length
   const open = (changes.data ?? []).filter((c) => c.state !== 'released' && c.state !== 'cancelled')
   return (
     <>
@@ -71,8 +76,9 @@ export function Component() {
                 <Group title="To read and sign" changes={waiting.toSign} act="Read and sign" now={now} />
                 <Group title="To release" changes={waiting.toRelease} act="Read and release" now={now} />
                 <Group title="Returned to you" changes={waiting.returned} act="Take it up again" now={now} toDraft />
+                <OtherTasks tasks={desk.tasks} now={now} />
                 <Group title="Your drafts" changes={waiting.drafts} act="Go on" now={now} toDraft />
-                {toRead + waiting.drafts.length === 0 && <EmptyState title={tasks.length > 0 ? 'No change waits for you' : 'Nothing waits for you'}>Changes land here when they are submitted for your review, approved for your release, or returned to you.</EmptyState>}
+                {toRead + waiting.drafts.length + desk.tasks.length === 0 && <EmptyState title={tasks.length > 0 ? 'No change waits for you' : 'Nothing waits for you'}>Changes land here when they are submitted for your review, approved for your release, or returned to you.</EmptyState>}
                 {waiting.away.length > 0 && <Away changes={waiting.away} />}
               </div>
               <div className="min-w-0">

@@ -109,9 +109,9 @@ function Read({ log, reading }: { log: EvidenceView; reading: NonNullable<Eviden
         </div>
         <div className="min-w-0">
           <MeasuredPredicted machine={log.machine} number={log.number} against={against} from={stretch.from} chooser={chooser} />
-          <Identification log={log} against={against} drafts={drafts} onDrafted={(change) => void navigate(paths.change(change))} />
         </div>
       </div>
+      <Identification log={log} against={against} drafts={drafts} onDrafted={(change) => void navigate(paths.change(change))} />
     </>
   )
 }

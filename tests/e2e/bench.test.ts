@@ -3,6 +3,7 @@ import { tmpdir } from 'node:os'
 import { join } from 'node:path'
 import type { BrowserContext, Locator, Page } from 'playwright-core'
 import { afterAll, beforeAll, describe, expect, it } from 'vitest'
+import { faultsOf } from './axe.ts'
 import { openBrowser } from './chromium.ts'
 import { startServer, type RunningServer } from './server.ts'
 
@@ -138,6 +139,7 @@ describe('at a desk', () => {
     await field.fill('H-0404')
     await field.press('Enter')
     expect(await page.evaluate(() => document.activeElement?.getAttribute('aria-label') ?? document.querySelector(`label[for="${document.activeElement?.id}"]`)?.textContent)).toBe('Serial number at wrist roll')
+    expect(await faultsOf(page, 'the recording of a machine')).toEqual([])
     await page.getByRole('button', { name: /^Record 5 flashes of/ }).click()
     await page.getByRole('row', { name: /H-0404.*wrist pitch.*current/ }).waitFor()
   })
@@ -180,6 +182,17 @@ describe('a withdrawal, seen by three people', () => {
     expect(await first.textContent()).toMatch(/withdrawn release on board/)
     await page.goto(`${server.url}/machines/dunlin/bench`)
     await page.getByText('There is nothing to flash').waitFor()
+  })
+
+  it('is warned of where a flash of it is put on record all the same, and marked for good', async () => {
+    await page.getByRole('button', { name: 'Record what was flashed all the same' }).click()
+    await page.getByRole('link', { name: /L3 knee/ }).click()
+    await page.getByRole('alert').filter({ hasText: '1.4.0 is withdrawn' }).waitFor()
+    expect(await page.getByRole('button', { name: /^Download/ }).count()).toBe(0)
+    expect(await faultsOf(page, 'a withdrawn release at the bench')).toEqual([])
+    await page.getByRole('button', { name: 'Record the withdrawn release' }).click()
+    await page.getByRole('heading', { name: 'L3 knee is recorded' }).waitFor()
+    await page.getByText('the release managers were told').waitFor()
   })
 
   it('leaves an observer a machine without a current release', async () => {

@@ -11,6 +11,7 @@ import { Release } from '../../server/modules/releases/release.entity.ts'
 import { Revision } from '../../server/modules/releases/revision.entity.ts'
 import { Withdrawal } from '../../server/modules/releases/withdrawal.entity.ts'
 import type { RevisionContent } from '../../shared/contract/releases.ts'
+import type { ConcessionRequest } from '../../shared/contract/changes.ts'
 import type { MachineSet } from '../../shared/parameters/machine-set.ts'
 import { aFirmware } from './a-firmware.ts'
 import { aSet } from './a-set.ts'
@@ -35,13 +36,15 @@ export interface ReleaseToMake {
   releasedBy?: Person
   /** the reason, when it was withdrawn */
   withdrawn?: string
+  /** that it stands on, as its signed content has them */
+  concessions?: ConcessionRequest[]
 }
 
 /**
  * Puts a release straight into the database with everything a release act leaves: identities, drive trains, revisions, encoded images.
  * No change, signature or ledger entry belongs to it. Firmware named "hinge 2.1.0" is made from the small schema when it is missing.
  */
-export async function aRelease(w: Workplace, { machine: key = 'dunlin', version = '1.0.0', set = aSet(), title = `Release ${version}`, releasedBy, withdrawn }: ReleaseToMake = {}): Promise<Release> {
+export async function aRelease(w: Workplace, { machine: key = 'dunlin', version = '1.0.0', set = aSet(), title = `Release ${version}`, releasedBy, withdrawn, concessions }: ReleaseToMake = {}): Promise<Release> {
   await aMachine(w, key)
   const em = w.orm.em.fork()
   const now = w.services.now()
@@ -50,7 +53,7 @@ export async function aRelease(w: Workplace, { machine: key = 'dunlin', version 
   const machine = await em.findOneOrFail(Machine, { key })
   machine.lastSequence += 1
   machine.lastChange += 1
-  const content = JSON.stringify({ set })
+  const content = JSON.stringify({ set, ...(concessions ? { concessions } : {}) })
   const release = em.create(Release, {
     machine, version, sequence: machine.lastSequence, changeNumber: machine.lastChange, changeTitle: title, reason: 'Made for a test.', set, content, contentHash: sha256(content),
     proposedStep: 'minor', step: 'minor', stepReason: '', releasedBy: person, releasedAt: now,

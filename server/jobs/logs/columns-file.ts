@@ -32,6 +32,10 @@ export function packColumns({ rows, signals, columns, setPointUnit }: StoredColu
   return gzipSync(body, { level: 1 })
 }
 
+/** Where they lie, or copied where they lie askew. */
+const doublesAt = (body: Buffer, at: number, rows: number): Float64Array =>
+  (body.byteOffset + at) % 8 === 0 ? new Float64Array(body.buffer, body.byteOffset + at, rows) : new Float64Array(body.buffer.slice(body.byteOffset + at, body.byteOffset + at + rows * 8))
+
 /** @throws Error for bytes that are not a columns file */
 export function unpackColumns(bytes: Uint8Array): StoredColumns {
   const body = gunzipSync(bytes, { maxOutputLength: 2 * logLimit })
@@ -40,7 +44,7 @@ export function unpackColumns(bytes: Uint8Array): StoredColumns {
   if (head.format !== FORMAT) throw new Error('the stored columns are of another form')
   const start = Math.ceil((end + 1) / 8) * 8
   const { rows, signals, setPointUnit } = head
-  return { rows, signals, setPointUnit, columns: signals.map((_, k) => new Float64Array(body.buffer.slice(body.byteOffset + start + k * rows * 8, body.byteOffset + start + (k + 1) * rows * 8))) }
+  return { rows, signals, setPointUnit, columns: signals.map((_, k) => doublesAt(body, start + k * rows * 8, rows)) }
 }
 
 /** A stored file's bytes, held against its name. @throws NumericError bad-input when they differ or are missing */

@@ -45,12 +45,14 @@ export function benchLogOf({ signals, columns }: Pick<StoredColumns, 'signals' |
  * @throws NumericError bad-input, not-finite, too-large (each names the column or row)
  */
 export function readLog({ file, layout, mapping }: ReadLogInputs, told: (done: number) => void): ReadLogResult {
-  const text = unpacked(readStored(file))
-  const places = [...new Set(mapping.map((m) => m.column))]
-  const read = readRows(text, layout, places, told)
-  const columns = mapping.map(({ column, unit }) => {
+  const places = mapping.map((m) => m.column)
+  const read = readRows(unpacked(readStored(file)), layout, places, told)
+  const { columns } = read
+  // in place: a million rows are read into no more memory than they need
+  mapping.forEach(({ unit }, k) => {
     const factor = factorOf(unit)
-    return read.columns[places.indexOf(column)].map((v) => v * factor)
+    const column = columns[k]
+    if (factor !== 1) for (let row = 0; row < column.length; row++) column[row] *= factor
   })
   const signals = mapping.map((m) => m.signal)
   const log = benchLogOf({ signals, columns })

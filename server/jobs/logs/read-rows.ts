@@ -31,7 +31,7 @@ export function readRows(bytes: Uint8Array, layout: LogLayout, wanted: readonly 
   const width = layout.columns.length
   const delimiter = layout.delimiter.charCodeAt(0)
   const point = layout.decimal.charCodeAt(0)
-  let capacity = 16_384
+  let capacity = roomFor(bytes)
   let columns = wanted.map(() => new Float64Array(capacity))
   const slot = new Int32Array(width).fill(-1)
   wanted.forEach((column, k) => (slot[column] = k))
@@ -96,7 +96,15 @@ export function readRows(bytes: Uint8Array, layout: LogLayout, wanted: readonly 
   told(bytes.length)
   const repairs = judged(rows, bad, layout)
   if (cutOff) repairs.push('The last line ends in the middle and was left out.')
-  return { columns: columns.map((c) => c.slice(0, rows)), rows, repairs }
+  return { columns: columns.map((c) => c.subarray(0, rows)), rows, repairs }
+}
+
+/** Rows there may be, by the length of the first lines: growing means copying. */
+function roomFor(bytes: Uint8Array): number {
+  const seen = Math.min(bytes.length, 65_536)
+  let lines = 1
+  for (let k = 0; k < seen; k++) if (bytes[k] === LF) lines += 1
+  return Math.min(MAX_ROWS, Math.ceil((1.1 * bytes.length * lines) / seen) + 64)
 }
 
 interface Bad {

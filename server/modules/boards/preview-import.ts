@@ -7,6 +7,7 @@ import { Joint } from '../machines/joint.entity.ts'
 import type { Machine } from '../machines/machine.entity.ts'
 import { may } from '../people/permissions.ts'
 import { Release } from '../releases/release.entity.ts'
+import { Withdrawal } from '../releases/withdrawal.entity.ts'
 import { Board, serialKey } from './board.entity.ts'
 import { readBoardTable, type TypedRow } from './read-board-table.ts'
 import type { Speaker } from './speaker.ts'
@@ -27,6 +28,8 @@ interface Known {
   joints: ReadonlyMap<string, Joint>
   releases: ReadonlyMap<string, Release>
   sitting: ReadonlyMap<number, Board>
+  /** ids of releases */
+  withdrawn: ReadonlySet<number>
   speaker: Speaker
 }
 
@@ -66,7 +69,7 @@ function stepOf(typed: TypedRow, k: Known): Step {
   else if (seats) row.does.push(`moves from ${board.joint?.name ?? 'no joint'} to ${joint?.name ?? 'no joint'}`)
   const sitting = joint && k.sitting.get(joint.id)
   if (seats && sitting && sitting.id !== board?.id) row.does.push(`${sitting.serial} leaves ${joint.name}`)
-  if (flashes) row.does.push(`recorded as flashed with ${release.version}`)
+  if (flashes) row.does.push(`recorded as flashed with ${release.version}${k.withdrawn.has(release.id) ? ', which is withdrawn' : ''}`)
   if (seats && !flashes && firmware !== null && firmware !== board?.firmware) row.does.push(`firmware ${firmware}`)
   if (!seats && !flashes && firmware !== null && firmware !== board?.firmware) row.problem = `holds ${board?.firmware ?? 'no firmware'} on record; firmware comes with the release that it is flashed with`
   return { row, joint, release, firmware, seats, flashes }
@@ -99,6 +102,7 @@ export async function previewImport(em: EntityManager, { machine, text, speaker 
     boards: new Map(boards.map((b) => [b.serialKey, b])),
     joints: new Map((await em.find(Joint, { machine, retiredAt: null })).map((j) => [j.key, j as Joint])),
     releases: new Map((await em.find(Release, { machine })).map((r) => [r.version, r as Release])),
+    withdrawn: new Set((await em.find(Withdrawal, { release: { machine } })).map((w) => w.release.id)),
     sitting: new Map(boards.flatMap((b) => (b.joint ? [[b.joint.id, b] as const] : []))),
   }
   const steps = typed.map((t) => stepOf(t, known))

@@ -1,5 +1,6 @@
 import type { EntityManager } from '@mikro-orm/core'
 import { DomainError } from '../../http/errors.ts'
+import { isWithdrawn } from '../machines/current-release.ts'
 import type { Joint } from '../machines/joint.entity.ts'
 import type { Machine } from '../machines/machine.entity.ts'
 import type { Release } from '../releases/release.entity.ts'
@@ -10,6 +11,7 @@ import { firmwareIn } from './locate.ts'
 import { boardOf, seatAt } from './seat-board.ts'
 import { tell, type Speaker } from './speaker.ts'
 import { takeReadBack } from './take-read-back.ts'
+import { tellOfWithdrawn } from './tell-of-withdrawn.ts'
 
 export interface Flash {
   machine: Machine
@@ -31,18 +33,26 @@ async function mustBeConceded(em: EntityManager, { release, joint, serial, board
 /**
  * Records that a board was flashed with a release at a joint, with its read-back when there is one.
  *
- * It records what happened, be the release withdrawn or outdated: the state says so. The board that sat at the joint leaves it.
+ * It records what happened, be the release withdrawn or outdated: the state says so, and the release managers are told of a withdrawn one.
+ * The board that sat at the joint leaves it.
  *
  * @throws DomainError wrong-state for a retired board or machine, or one board more than a concession is for; not-permitted when the board is on record where the speaker may not record
  */
-export async function recordFlash(em: EntityManager, { machine, joint, release, serial, readBack }: Flash, speaker: Speaker): Promise<Board> {
+export async function recordFlash(em: EntityManager, asked: Flash, speaker: Speaker): Promise<Board> {
+  const board = await putOnRecord(em, asked, speaker)
+  await tellOfWithdrawn(em, asked.release, [board], speaker)
+  return board
+}
+
+/** One flash on record, nobody told by mail yet. @throws DomainError as recordFlash */
+export async function putOnRecord(em: EntityManager, { machine, joint, release, serial, readBack }: Flash, speaker: Speaker): Promise<Board> {
   const firmware = firmwareIn(release, joint, '/joint')
   const { board, isNew } = await boardOf(em, machine, serial, speaker)
   await mustBeConceded(em, { release, joint, serial, board: isNew ? null : board.id })
   const { moved, from } = await seatAt(em, board, machine, joint, speaker)
   if (moved && !isNew) await tell(em, board, speaker, { kind: 'moved', joint, from })
   flash(board, { release, imageOf: joint, firmware }, { by: speaker.person.name, at: speaker.now })
-  await tell(em, board, speaker, { kind: 'flash recorded', joint, release, details: { firmware, readBack: readBack ? readBack.result.verdict : 'none' } })
+  await tell(em, board, speaker, { kind: 'flash recorded', joint, release, details: { firmware, ...((await isWithdrawn(em, release)) ? { withdrawn: true } : {}), readBack: readBack ? readBack.result.verdict : 'none' } })
   if (readBack) await takeReadBack(em, board, readBack, speaker)
   return board
 }

@@ -5,8 +5,9 @@ import type { Machine } from '../machines/machine.entity.ts'
 import type { Release } from '../releases/release.entity.ts'
 import { serialKey, type Board } from './board.entity.ts'
 import { noJoint } from './locate.ts'
-import { recordFlash } from './record-flash.ts'
+import { putOnRecord } from './record-flash.ts'
 import type { Speaker } from './speaker.ts'
+import { tellOfWithdrawn } from './tell-of-withdrawn.ts'
 
 export interface Pairing {
   joint: string
@@ -31,13 +32,14 @@ export function doubled(pairs: readonly Pairing[]): FieldProblem[] {
 /**
  * Records one flash for each of many joints: all of them, or none.
  *
- * @throws DomainError invalid-request with a pointer for each doubled serial number or joint, unknown joint; what recordFlash throws
+ * @throws DomainError invalid-request with a pointer for each doubled serial number or joint, unknown joint; what putOnRecord throws
  */
 export async function recordMachine(em: EntityManager, { machine, release, boards }: { machine: Machine; release: Release; boards: readonly Pairing[] }, speaker: Speaker): Promise<Board[]> {
   const problems = doubled(boards)
   if (problems.length > 0) throw new DomainError('invalid-request', `${problems.length === 1 ? 'One board or joint stands' : `${problems.length} boards or joints stand`} twice. Nothing was recorded; correct what is named.`, { fields: problems })
   const joints = new Map((await em.find(Joint, { machine, retiredAt: null })).map((j) => [j.key, j]))
   const recorded: Board[] = []
-  for (const [i, { joint, serial }] of boards.entries()) recorded.push(await recordFlash(em, { machine, joint: joints.get(joint) ?? noJoint(machine, joint, `/boards/${i}/joint`), release, serial, readBack: null }, speaker))
+  for (const [i, { joint, serial }] of boards.entries()) recorded.push(await putOnRecord(em, { machine, joint: joints.get(joint) ?? noJoint(machine, joint, `/boards/${i}/joint`), release, serial, readBack: null }, speaker))
+  await tellOfWithdrawn(em, release, recorded, speaker)
   return recorded
 }

@@ -10,14 +10,29 @@ import { again, subjectOf } from './locate.ts'
 import { mustAttach } from './may-attach.ts'
 import { checkForEvidence, renewContent } from './renew-content.ts'
 
+interface Outcome {
+  mapping: ColumnMapping[]
+  result: ReadLogResult
+  person: Person
+}
+
 /**
  * Keeps what was read of a log: from here on it is evidence, and part of the content of its change.
  *
  * @throws DomainError wrong-state when its change was signed, or the log removed, meanwhile
  */
-export async function finishReading(services: Services, evidence: Evidence, { mapping, result, person }: { mapping: ColumnMapping[]; result: ReadLogResult; person: Person }): Promise<void> {
+export async function finishReading(services: Services, evidence: Evidence, { mapping, result, person }: Outcome): Promise<void> {
   const file = await services.files.receive(Readable.from([Buffer.from(result.columns)]), 2 * logLimit)
   await services.files.keep(file)
+  // in hand until a row names it: nobody takes it away for an orphan meanwhile
+  try {
+    await note(services, evidence, { mapping, result, person, columnsSha256: file.sha256 })
+  } finally {
+    await file.discard()
+  }
+}
+
+async function note(services: Services, evidence: Evidence, { mapping, result, person, columnsSha256 }: Outcome & { columnsSha256: string }): Promise<void> {
   const fork = services.orm.em.fork()
   const before = await again(fork, evidence)
   const check = await checkForEvidence(services, fork, before.change)
@@ -25,10 +40,10 @@ export async function finishReading(services: Services, evidence: Evidence, { ma
   await services.orm.em.fork().transactional(async (em) => {
     const fresh = await again(em, evidence)
     if (fresh.change) await mustAttach(em, fresh.change, person)
-    markRead(fresh, { mapping, reading: result.reading, columnsSha256: file.sha256 }, now)
+    markRead(fresh, { mapping, reading: result.reading, columnsSha256 }, now)
     if (fresh.change) await renewContent(em, fresh.change, check, now)
     const columns = Object.fromEntries(mapping.map((m) => [m.signal, `${fresh.layout.columns[m.column].name} in ${m.unit}`]))
-    await appendEntry(em, { at: now, person, act: 'evidence read', subject: subjectOf(fresh), details: { evidence: fresh.number, name: fresh.name, sha256: fresh.sha256, rows: result.reading.rows, columns, columnsSha256: file.sha256, repairs: result.reading.repairs } })
+    await appendEntry(em, { at: now, person, act: 'evidence read', subject: subjectOf(fresh), details: { evidence: fresh.number, name: fresh.name, sha256: fresh.sha256, rows: result.reading.rows, columns, columnsSha256, repairs: result.reading.repairs } })
   })
   const after = (await again(services.orm.em.fork(), evidence)).change
   if (after) tellOf(services, after.id, { kind: 'moved', by: person.name, at: now.toISOString(), revision: after.revision, state: after.state })

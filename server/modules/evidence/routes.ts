@@ -58,11 +58,11 @@ export const evidenceRoutes: readonly RouteSpec[] = [
     handle: async ({ em, place }) => ({ body: await presentEvidenceList(em, place.change.machine, { change: place.change.id }) }),
   }),
   route<never, OnMachine>({
-    method: 'post', path: '/machines/:machine/joints/:joint/evidence', summary: 'upload a bench log of a joint', access: 'upload evidence', place: onReleasedJoint as (em: EntityManager, params: Record<string, string>) => Promise<OnMachine>, upload,
+    method: 'post', path: '/machines/:machine/joints/:joint/evidence', summary: 'upload a bench log of a joint', access: 'upload evidence', place: onReleasedJoint as (em: EntityManager, params: Record<string, string>) => Promise<OnMachine>, upload, costly: true,
     handle: (call) => receive(call, { machine: call.place.found, change: null }),
   }),
   route<never, OnChange>({
-    method: 'post', path: '/changes/:change/joints/:joint/evidence', summary: 'upload a bench log to a change', access: 'upload evidence', place: onJointOfChange, upload,
+    method: 'post', path: '/changes/:change/joints/:joint/evidence', summary: 'upload a bench log to a change', access: 'upload evidence', place: onJointOfChange, upload, costly: true,
     handle: (call) => receive(call, { machine: call.place.change.machine, change: call.place.change }),
   }),
   route<never, OnEvidence>({
@@ -70,7 +70,7 @@ export const evidenceRoutes: readonly RouteSpec[] = [
     handle: (call) => view(call, call.em, call.place.evidence),
   }),
   route<typeof ReadLog, OnEvidence>({
-    method: 'post', path: '/machines/:machine/evidence/:evidence/read', summary: 'read the columns of a bench log', access: 'upload evidence', place: onEvidence, body: ReadLog,
+    method: 'post', path: '/machines/:machine/evidence/:evidence/read', summary: 'read the columns of a bench log', access: 'upload evidence', place: onEvidence, body: ReadLog, costly: true,
     async handle(call) {
       const { evidence } = call.place
       const { mapping } = call.body as ReadLog
@@ -123,15 +123,15 @@ export const evidenceRoutes: readonly RouteSpec[] = [
     handle: async ({ services, place, query }) => ({ body: await drawLog(services, place.evidence, { from: numberIn(query, 'from'), to: numberIn(query, 'to'), pieces: numberIn(query, 'pieces') ?? 700 }) }),
   }),
   route<never, OnEvidence>({
-    method: 'get', path: '/machines/:machine/evidence/:evidence/comparison', summary: 'a bench log beside its prediction', access: 'read', place: onEvidence,
+    method: 'get', path: '/machines/:machine/evidence/:evidence/comparison', summary: 'a bench log beside its prediction', access: 'read', place: onEvidence, costly: true,
     handle: async ({ services, em, place, query }) => ({ body: await compare(services, em, place.evidence, { change: query.change, from: numberIn(query, 'from') }) }),
   }),
   route<never, OnEvidence>({
-    method: 'get', path: '/machines/:machine/evidence/:evidence/identification', summary: 'drive train values identified from a bench log', access: 'read', place: onEvidence,
+    method: 'get', path: '/machines/:machine/evidence/:evidence/identification', summary: 'drive train values identified from a bench log', access: 'read', place: onEvidence, costly: true,
     handle: async ({ services, em, place, query }) => ({ body: await identifyFrom(services, em, place.evidence, { change: query.change, T_winding: temperatureIn(query) }) }),
   }),
   route<typeof UseIdentified, OnEvidence>({
-    method: 'post', path: '/machines/:machine/evidence/:evidence/use', summary: 'use identified values in a draft', access: 'draft changes', place: onEvidence, body: UseIdentified,
+    method: 'post', path: '/machines/:machine/evidence/:evidence/use', summary: 'use identified values in a draft', access: 'draft changes', place: onEvidence, body: UseIdentified, costly: true,
     async handle(call) {
       const asked = call.body as UseIdentified
       const { evidence } = call.place

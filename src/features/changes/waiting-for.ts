@@ -26,7 +26,7 @@ export function waitingFor(changes: readonly ChangeSummary[], name: string, hold
     toSign: oldestFirst.filter((c) => c.state === 'submitted' && !wrote(c) && holds('sign peer review', c.machine)),
     toRelease: oldestFirst.filter((c) => c.state === 'approved' && !wrote(c) && holds('sign release', c.machine)),
     returned: oldestFirst.filter((c) => c.state === 'draft' && wrote(c) && c.life !== 'draft'),
-    drafts: oldestFirst.filter((c) => c.state === 'draft' && wrote(c) && c.life === 'draft').reverse(),
+    drafts: oldestFirst.filter((c) => c.state === 'draft' && wrote(c) && c.life === 'draft'),
     away: oldestFirst.filter((c) => (c.state === 'submitted' || c.state === 'approved') && wrote(c)),
   }
 }

@@ -153,8 +153,8 @@ describe('bench logs of a joint', () => {
   it('takes no more than 200 MB, and keeps nothing of what came before', async () => {
     const before = await listStored(w.services.files.directory)
     const row = `${'0.5,'.repeat(15)}0.5\n`
-    const refusal = await sendLog(w.engineer, atJoint, Buffer.alloc(200 * 1024 * 1024 + 1, row), 'too-long.csv').expect(413)
-    expect(refusal.body).toMatchObject({ type: '/problems/body-too-large', limit: 200 * 1024 * 1024 })
+    const refusal = await sendLog(w.engineer, atJoint, Buffer.alloc(200_000_001, row), 'too-long.csv').expect(413)
+    expect(refusal.body).toMatchObject({ type: '/problems/body-too-large', limit: 200_000_000 })
     expect(await listStored(w.services.files.directory)).toEqual(before)
   })
 

@@ -7,6 +7,7 @@ import { ProblemPanel } from '../../../components/problem/problem-panel.tsx'
 import { BoardMark } from '../../../components/ui/board-mark.tsx'
 import { Button } from '../../../components/ui/button.tsx'
 import { Caution } from '../../../components/ui/caution.tsx'
+import { ErrorPanel } from '../../../components/ui/error-panel.tsx'
 import { Hash } from '../../../components/ui/hash.tsx'
 import { LinkButton } from '../../../components/ui/link-button.tsx'
 import { ReleaseMark } from '../../../components/ui/release-mark.tsx'
@@ -59,7 +60,8 @@ export function BenchJoint({ card, boards, serial: given, takeFile }: BenchJoint
   const notItsOwn = foreign ? `The values of ${card.name} in ${card.version} were measured on ${card.calibratedFor}, not on ${inHand}. Measure them on ${inHand} and release them first.` : inHand === '' ? card.binding : null
   const refused = refusal(card.may.download) ?? notItsOwn
   const result = compare.data
-  const act = !result ? 'Record without a read-back' : result.verdict === 'equal' ? 'Record the flash' : 'Record that it differs'
+  const withdrawn = card.state === 'withdrawn'
+  const act = withdrawn ? 'Record the withdrawn release' : !result ? 'Record without a read-back' : result.verdict === 'equal' ? 'Record the flash' : 'Record that it differs'
   const missing = refusal(card.may.record) ?? (inHand === '' ? 'Write the serial number of the board first.' : null)
   return (
     <div className="pb-24">
@@ -75,6 +77,7 @@ export function BenchJoint({ card, boards, serial: given, takeFile }: BenchJoint
         <TapDrawing state={card.board?.state ?? 'unknown'} />
       </header>
       <Caution className="mt-2" />
+      {card.state === 'withdrawn' && <ErrorPanel className="mt-3" title={`${card.version} is withdrawn`} happened="It must not be flashed, and no board may run with it." todo="If it was flashed all the same, record it: the board is marked, and the release managers are told." />}
       <ol className="mt-3">
         <Step at={inHand === '' ? 'now' : 'done'} title={inHand === '' ? 'Which board?' : <>Board <span className="num">{inHand}</span></>}>
           {another ? (
@@ -151,7 +154,7 @@ export function BenchJoint({ card, boards, serial: given, takeFile }: BenchJoint
       <ProblemPanel className="mt-3" problem={record.error} shown={['/serial']} />
       <footer className="fixed inset-x-0 bottom-0 z-10 border-t border-hairline bg-paper px-[14px] pt-[10px] pb-3 lg:static lg:mt-4 lg:border-0 lg:px-0">
         <div className="flex gap-[10px]">
-          <Button kind={result?.verdict === 'differs' ? 'danger' : result ? 'primary' : 'plain'} className="min-h-[44px] flex-1 text-16 lg:flex-none" pending={record.isPending} unavailable={missing} onClick={() => record.mutate({ serial: inHand, joint: card.joint, release: card.version, ...(dump && result ? { readBack: dump } : {}) })}>
+          <Button kind={withdrawn || result?.verdict === 'differs' ? 'danger' : result ? 'primary' : 'plain'} className="min-h-[44px] flex-1 text-16 lg:flex-none" pending={record.isPending} unavailable={missing} onClick={() => record.mutate({ serial: inHand, joint: card.joint, release: card.version, ...(dump && result ? { readBack: dump } : {}) })}>
             {act}
           </Button>
           <LinkButton className="min-h-[44px]" to={paths.benchCard(card.machine, card.version, card.joint)}>
@@ -177,13 +180,14 @@ function Recorded({ board, boards, joint, onAgain }: { board: BoardView; boards:
         <span className="num">{board.serial}</span>: {board.why}
       </p>
       <BoardMark state={board.state} className="mt-1" />
+      {board.state === 'withdrawn release on board' && <ErrorPanel className="mt-3" title="This board holds a withdrawn release" happened="It is on record, and the release managers were told." todo="Keep its joint from running until it is flashed with a release that stands, and read back." />}
       <div className="mt-4 grid gap-2 sm:flex">
         {next && (
-          <LinkButton kind="primary" className="min-h-[44px]" to={paths.bench(board.machine, { joint: next.joint })}>
+          <LinkButton kind="primary" className="min-h-[44px]" to={paths.bench(board.machine, { joint: next.joint, withdrawn: boards.current === null })}>
             Next: {next.name}
           </LinkButton>
         )}
-        <LinkButton className="min-h-[44px]" to={paths.bench(board.machine)}>
+        <LinkButton className="min-h-[44px]" to={paths.bench(board.machine, { withdrawn: boards.current === null })}>
           All joints
         </LinkButton>
         <LinkButton className="min-h-[44px]" to={paths.board(board.serial)}>

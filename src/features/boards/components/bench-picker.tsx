@@ -22,6 +22,8 @@ interface BenchPickerProps {
 /** Picks the joint at work: by a scanned serial number, or from the list, most pressing first. */
 export function BenchPicker({ boards, joint, serial, autoFocus = false }: BenchPickerProps) {
   const navigate = useNavigate()
+  // without a current release only what was flashed all the same is recorded here
+  const withdrawn = boards.current === null
   const [typed, setTyped] = useState('')
   const [words, setWords] = useState<string | null>(null)
   const field = useRef<HTMLInputElement>(null)
@@ -31,10 +33,10 @@ export function BenchPicker({ boards, joint, serial, autoFocus = false }: BenchP
     setTyped('')
     if (found.kind === 'joint') {
       setWords(null)
-      void navigate(paths.bench(boards.machine, { joint: found.joint, serial: found.serial ?? undefined }))
+      void navigate(paths.bench(boards.machine, { joint: found.joint, serial: found.serial ?? undefined, withdrawn }))
     } else {
       setWords(found.words)
-      if (found.kind === 'board') void navigate(paths.bench(boards.machine, { serial: found.serial }))
+      if (found.kind === 'board') void navigate(paths.bench(boards.machine, { serial: found.serial, withdrawn }))
     }
   }
   return (
@@ -63,7 +65,7 @@ export function BenchPicker({ boards, joint, serial, autoFocus = false }: BenchP
         {mostPressingFirst(boards.joints).map((j) => (
           <li key={j.joint} className="border-b border-hairline">
             <Link
-              to={paths.bench(boards.machine, { joint: j.joint, serial: joint === null ? (serial ?? undefined) : undefined })}
+              to={paths.bench(boards.machine, { joint: j.joint, serial: joint === null ? (serial ?? undefined) : undefined, withdrawn })}
               aria-current={j.joint === joint ? 'page' : undefined}
               className={`grid min-h-[48px] grid-cols-[3.2rem_minmax(0,1fr)_auto] items-center gap-x-3 px-1 py-[6px] text-ink no-underline hover:bg-brass-wash ${j.joint === joint ? 'bg-brass-wash' : ''}`}
             >

@@ -3,7 +3,7 @@ import { paths } from '../../../app/paths.ts'
 import { Hash } from '../../../components/ui/hash.tsx'
 import { TextLink } from '../../../components/ui/text-link.tsx'
 import { Time } from '../../../components/ui/time.tsx'
-import { count, formatDuration } from '../../../lib/format.ts'
+import { count, quantityText } from '../../../lib/format.ts'
 
 /** Logs, newest first: what was measured, how long, by whom, and which change they speak for. */
 export function EvidenceList({ logs, of }: { logs: readonly EvidenceSummary[]; of: 'joint' | 'change' }) {
@@ -15,7 +15,7 @@ export function EvidenceList({ logs, of }: { logs: readonly EvidenceSummary[]; o
             <TextLink to={paths.evidence(log.machine, log.number)}>{log.name}</TextLink>{' '}
             <span className="text-13 text-ink-2">
               {of === 'change' && `${log.jointName}, `}
-              {log.reading ? `${log.reading.signals.filter((s) => s !== 'time').join(', ')}; ${count(log.reading.rows, 'row')} over ${formatDuration(log.reading.to - log.reading.from)}` : 'columns not read yet: open it to name them'}
+              {log.reading ? `${log.reading.signals.filter((s) => s !== 'time').join(', ')}; ${count(log.reading.rows, 'row')} over ${quantityText(log.reading.to - log.reading.from, 's')}` : 'columns not read yet: open it to name them'}
             </span>
           </span>
           <Hash hash={log.sha256} bytes={4} className="!text-12" />

@@ -47,18 +47,22 @@ export function Identification({ log, against, drafts, onDrafted }: Identificati
       <Region query={query} what="the identification" lines={7}>
         {(data) => (
           <>
-            <IdentifiedTable values={data.values} chosen={new Set(letters)} onChoose={setChosen} />
-            <p className="mt-1 text-12 text-ink-2">{foundBy(data)}</p>
-            {data.repairs.length > 0 && <ul className="mt-1 text-13 text-ink-2">{data.repairs.map((r) => <li key={r}>{r}</li>)}</ul>}
-            <div className="mt-3 flex flex-wrap items-center gap-3">
-              <Button kind="primary" unavailable={!log.may.use.allowed ? log.may.use.why : letters.length === 0 ? 'Choose a value that the log gives.' : null} onClick={() => setUsing(true)}>
-                Use these in the drive train…
-              </Button>
-              <span className="text-12 text-ink-2">as edits of a draft: nothing alters before it is checked, signed and released</span>
-            </div>
-            <div className="mt-4 grid gap-y-3">
-              <Residual title="current or voltage not explained" part={data.electrical} />
-              <Residual title="motion not explained" part={data.mechanical} />
+            <div className="mt-2 grid grid-cols-[minmax(0,1fr)] gap-x-12 gap-y-4 xl:grid-cols-2">
+              <div className="min-w-0">
+                <IdentifiedTable values={data.values} chosen={new Set(letters)} onChoose={setChosen} />
+                <p className="mt-1 text-12 text-ink-2">{foundBy(data)}</p>
+                {data.repairs.length > 0 && <ul className="mt-1 text-13 text-ink-2">{data.repairs.map((r) => <li key={r}>{r}</li>)}</ul>}
+                <div className="mt-3 flex flex-wrap items-center gap-3">
+                  <Button kind="primary" unavailable={!log.may.use.allowed ? log.may.use.why : letters.length === 0 ? 'Choose a value that the log gives.' : null} onClick={() => setUsing(true)}>
+                    Use these in the drive train…
+                  </Button>
+                  <span className="text-12 text-ink-2">as edits of a draft: nothing alters before it is checked, signed and released</span>
+                </div>
+              </div>
+              <div className="grid min-w-0 grid-cols-[minmax(0,1fr)] content-start gap-y-3">
+                <Residual title="current or voltage not explained" part={data.electrical} />
+                <Residual title="motion not explained" part={data.mechanical} />
+              </div>
             </div>
             {using && <UseDialog log={log} letters={letters} values={data.values} T_winding={T} drafts={drafts} onDrafted={onDrafted} onClose={() => setUsing(false)} />}
           </>

@@ -9,7 +9,7 @@ const letterWords: Record<IdentifiedLetter, string> = { R: 'winding resistance a
 export function IdentifiedTable({ values, chosen, onChoose }: { values: readonly IdentifiedValue[]; chosen: ReadonlySet<IdentifiedLetter>; onChoose: (chosen: ReadonlySet<IdentifiedLetter>) => void }) {
   const toggle = (letter: IdentifiedLetter, on: boolean) => onChoose(new Set(on ? [...chosen, letter] : [...chosen].filter((l) => l !== letter)))
   return (
-    <ul className="mt-2 border-t border-rule" aria-label="identified values">
+    <ul className="border-t border-rule" aria-label="identified values">
       {values.map((v) => (
         <li key={v.letter} className="grid grid-cols-[minmax(0,1fr)] gap-x-4 border-b border-hairline py-2 sm:grid-cols-[minmax(0,1fr)_190px_190px]">
           <span>

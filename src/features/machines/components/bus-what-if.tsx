@@ -56,7 +56,9 @@ export function BusWhatIf({ bus }: { bus: BusView }) {
         <TextField label="an address" mono value={address} placeholder="0x2A" onChange={setAddress} />
       </div>
       <p role="status" className="min-h-6 pt-1 text-13">{address.trim() !== '' && addressWords(bus, address)}</p>
-      {fits ? (
+      {fits && !altered ? (
+        <p className="text-13 text-ink-2">Alter a figure, and load and pull-up are worked out with it beside those as released; write an address, and what stands there is told.</p>
+      ) : fits ? (
         <div className="grid gap-x-10 sm:grid-cols-2">
           <div>
             <SectionHeading level={3}>Load, tried</SectionHeading>
