@@ -14,7 +14,7 @@ import { OuterTransfer } from './outer-transfer.ts'
 import { velocityQuantum } from './plant.ts'
 import { resonances, unfold } from './resonances.ts'
 import { sampleJoint, type SampledJoint } from './sampled-joint.ts'
-import { stabilityOf, verdictOf, type Stability, type Verdict } from './stability.ts'
+import { guardRadius, stabilityOf, verdictOf, type Stability, type Verdict } from './stability.ts'
 
 /** Eigenvalues below this modulus have died out after one hyperperiod and are not reported. */
 const SIGNIFICANT = 1e-3
@@ -112,6 +112,7 @@ function overall(joint: SampledJoint, last: Stability): Omit<LinearReport, 'loop
   const { p, q, T_c, T_o, T_h } = timing
   const perTick = closes === 'current'
   const rho = perTick ? last.rho ** p : last.rho
+  guardRadius(rho)
   const epsilon = perTick ? Math.max(last.epsilon, p * (last.epsilon - 1e-9)) : last.epsilon
   const list: SignificantEigenvalue[] = []
   const spectrum = { re: last.re.slice(), im: last.im.slice() }

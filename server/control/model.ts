@@ -78,6 +78,9 @@ export const DELAY_LIMIT = 64
 /** Copper at this temperature and below would have no resistance by the linear law. */
 const T_LOWEST = 20 - 1 / 0.00393
 
+/** No joint's value is larger than this, nor, unless it is 0, smaller than its inverse; what is would overflow on its way. A limit that is not there is larger. */
+const SIZE_LIMIT = 1e30
+
 type Rule = 'positive' | 'not-negative' | 'any'
 
 /** Names are put together once: a sweep guards every point. */
@@ -103,9 +106,9 @@ export function validateJointModel(model: JointModel): void {
   if (!plant || !firmware || !environment) {
     throw new NumericError('bad-input', { text: 'A joint needs plant, firmware and environment; nothing was computed.' })
   }
-  for (const { field, name, rule } of PLANT_RULES) guardNumber(name, plant[field], rule)
-  for (const { field, name, rule } of FIRMWARE_RULES) guardNumber(name, firmware[field], rule)
-  guardNumber('environment.V_bus', environment.V_bus, 'positive')
+  for (const { field, name, rule } of PLANT_RULES) guardSized(name, plant[field], rule, SIZE_LIMIT)
+  for (const { field, name, rule } of FIRMWARE_RULES) guardSized(name, firmware[field], rule, field === 'omega_max' || field === 'I_max' ? Infinity : SIZE_LIMIT)
+  guardSized('environment.V_bus', environment.V_bus, 'positive', SIZE_LIMIT)
   guardNumber('environment.T_winding', environment.T_winding, 'any')
   if (environment.T_winding <= T_LOWEST || environment.T_winding > 1000) {
     outOfRange('environment.T_winding', environment.T_winding, `above ${T_LOWEST.toFixed(2)} °C and at most 1000 °C`)
@@ -141,8 +144,8 @@ function guardDriveTrain(plant: Plant): void {
     if (!(plant.J_load + plant.J_rotor > 0)) outOfRange('plant.J_load', plant.J_load, 'above 0 where J_rotor is 0')
     return
   }
-  guardNumber('plant.k_s', plant.k_s, 'positive')
-  guardNumber('plant.d_s', plant.d_s, 'not-negative')
+  guardSized('plant.k_s', plant.k_s, 'positive', SIZE_LIMIT)
+  guardSized('plant.d_s', plant.d_s, 'not-negative', SIZE_LIMIT)
   guardNumber('plant.J_rotor', plant.J_rotor, 'positive')
   guardNumber('plant.J_load', plant.J_load, 'positive')
 }
@@ -154,6 +157,12 @@ export function guardNumber(field: string, value: unknown, rule: Rule): void {
   }
   if (rule === 'positive' && value <= 0) outOfRange(field, value, 'above 0')
   if (rule === 'not-negative' && value < 0) outOfRange(field, value, 'at least 0')
+}
+
+function guardSized(field: string, value: unknown, rule: Rule, most: number): void {
+  guardNumber(field, value, rule)
+  const size = Math.abs(value as number)
+  if (size !== 0 && (size < 1 / SIZE_LIMIT || size > most)) outOfRange(field, value, `0 or of a joint's size, ${1 / SIZE_LIMIT} to ${SIZE_LIMIT} SI; check its unit`)
 }
 
 /** An integer within [low, high], or an error that names the field. */

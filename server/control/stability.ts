@@ -1,5 +1,6 @@
 import { eigenvalueError } from './eigenvalue-error.ts'
 import { eigenvalues, spectralRadius } from './eigenvalues.ts'
+import { NumericError } from './errors.ts'
 import type { ControlMode } from './model.ts'
 import { currentMonodromy, outerMonodromy, type Monodromy } from './monodromy.ts'
 import type { OuterSteps } from './outer-steps.ts'
@@ -31,6 +32,12 @@ export function monodromyOf(joint: SampledJoint, steps: OuterSteps | null, closu
   return closure === 'current' || !steps ? currentMonodromy(joint) : outerMonodromy(joint, steps, closure)
 }
 
+/** @throws NumericError not-finite where the values together are beyond what can be computed */
+export function guardRadius(rho: number): void {
+  if (Number.isFinite(rho)) return
+  throw new NumericError('not-finite', { field: 'rho', value: rho, text: 'The loop grows beyond every number within one hyperperiod; no verdict was given. Check the gains and the units of the drive train.' })
+}
+
 /**
  * Stability of one closure from all eigenvalues of its monodromy matrix.
  *
@@ -42,6 +49,7 @@ export function stabilityOf(joint: SampledJoint, steps: OuterSteps | null, closu
   const { n, Phi } = monodromyOf(joint, steps, closure)
   const { re, im } = eigenvalues(Phi, n)
   const rho = spectralRadius(re, im, n)
+  guardRadius(rho)
   let epsilon = EPSILON
   if (Math.abs(rho - 1) < 1e-3) {
     for (let k = 0; k < n; k++) {

@@ -4,7 +4,7 @@ import { emptyLift, liftPlant, type LiftedPlant } from './lifted-plant.ts'
 import type { JointModel } from './model.ts'
 import { passingOuterSteps, type OuterSteps } from './outer-steps.ts'
 import { samplePassingJoint, type SampledJoint } from './sampled-joint.ts'
-import { EPSILON, stabilityOf, verdictOf, type Verdict } from './stability.ts'
+import { EPSILON, guardRadius, stabilityOf, verdictOf, type Verdict } from './stability.ts'
 
 /** The answer that a tolerance vertex or a map's cell needs. */
 export interface StabilityVerdict {
@@ -75,6 +75,7 @@ export function verdictOfSampled(joint: SampledJoint, prepared: PreparedOuter | 
   }
   const stability = stabilityOf(joint, steps, closes)
   const rho = closes === 'current' ? stability.rho ** timing.p : stability.rho
+  guardRadius(rho)
   return { rho, verdict: verdictOf(rho, stability.epsilon), epsilon: stability.epsilon, route: 'eigenvalues' }
 }
 

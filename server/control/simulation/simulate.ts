@@ -76,11 +76,24 @@ export const MAX_TICKS = 2_000_000
  */
 export function simulate(model: JointModel, options: SimulationOptions): SimulationResult {
   const { record, switchings } = simulateEveryTick(model, options)
+  const metrics = metricsOf(record, model.firmware.mode, options)
+  guardFinite(metrics)
   return {
-    metrics: metricsOf(record, model.firmware.mode, options),
+    metrics,
     traces: decimate(record, options.trace_points ?? 1200),
     ticks: record.count,
     switchings,
+  }
+}
+
+/** @throws NumericError not-finite where a signal has left the range of numbers */
+function guardFinite(metrics: SimulationMetrics): void {
+  const { riseTime, settlingTime, overshoot, peak } = metrics.step ?? { riseTime: { kind: 'not reached' as const }, settlingTime: { kind: 'does not settle' as const }, overshoot: 0, peak: 0 }
+  const times = [riseTime, settlingTime].map((t) => (t.kind === 'time' ? t.seconds : 0))
+  const figures = [...Object.entries(metrics), ['overshoot', overshoot], ['peak', peak], ['times', times[0] + times[1]]] as [string, unknown][]
+  for (const [field, value] of figures) {
+    if (typeof value !== 'number' || Number.isFinite(value)) continue
+    throw new NumericError('not-finite', { field: `simulation.${field}`, value, text: `The simulated response left the range of numbers (${field} is ${value}); nothing of it was kept. Check the gains and the units of the drive train.` })
   }
 }
 
