@@ -115,6 +115,9 @@ describe('keys in the table', () => {
     expect(a).toMatchObject({ row: 3, column: 4, fromRow: 3, fromColumn: 4, focus: 1 })
     const b = gridState(a, { kind: 'move', rows: 2, columns: -1, extend: true, size })
     expect(selectionOf(b)).toEqual({ top: 3, bottom: 5, left: 3, right: 4 })
+    // the cell that a selection reached takes the focus; that keeps the selection, a press on it does not
+    expect(gridState(b, { kind: 'choose', row: 5, column: 3 })).toBe(b)
+    expect(selectionOf(gridState(b, { kind: 'choose', row: 5, column: 3, anew: true }))).toEqual({ top: 5, bottom: 5, left: 3, right: 3 })
     expect(selectionOf(gridState(b, { kind: 'move', rows: -1, columns: 0, size }))).toEqual({ top: 4, bottom: 4, left: 3, right: 3 })
   })
 

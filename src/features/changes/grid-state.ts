@@ -18,7 +18,8 @@ export interface GridSize {
 }
 
 export type GridAct =
-  | { kind: 'choose'; row: number; column: number; extend?: boolean }
+  /** `extend`: the selection reaches here; `anew`: it begins here, even where this cell is chosen already */
+  | { kind: 'choose'; row: number; column: number; extend?: boolean; anew?: boolean }
   | { kind: 'move'; rows: number; columns: number; extend?: boolean; size: GridSize }
   | { kind: 'begin'; first: string | null }
   | { kind: 'end'; way: 'down' | 'right' | 'left' | 'stay'; size: GridSize }
@@ -37,9 +38,9 @@ const standAt = (state: GridState, row: number, column: number, extend: boolean)
 export function gridState(state: GridState, act: GridAct): GridState {
   switch (act.kind) {
     case 'choose':
-      // The editor inside the chosen cell takes the focus too: that is no new choice.
-      if (act.row === state.row && act.column === state.column) return act.extend || state.editing || (state.fromRow === act.row && state.fromColumn === act.column) ? state : standAt(state, act.row, act.column, false)
-      return { ...standAt(state, act.row, act.column, act.extend ?? false), editing: false }
+      // The chosen cell takes the focus when a selection reached it, and so does the editor inside it: that is no new choice.
+      if (act.row === state.row && act.column === state.column && !act.anew) return state
+      return { ...standAt(state, act.row, act.column, act.extend ?? false), editing: state.editing && act.row === state.row && act.column === state.column }
     case 'move':
       return { ...standAt(state, held(state.row + act.rows, act.size.rows), held(state.column + act.columns, act.size.columns), act.extend ?? false), editing: false, focus: state.focus + 1 }
     case 'begin':

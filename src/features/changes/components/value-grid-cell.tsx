@@ -76,7 +76,11 @@ function FilledCell(props: ValueGridCellProps & { at: ValueAt }) {
       aria-invalid={bad || undefined}
       className={`end relative ${ground(props)} ${bad ? 'shadow-[inset_3px_0_0_var(--oxide)]' : ''}`}
       onMouseDown={(event) => {
-        if (!event.shiftKey) return
+        if (editing || event.button !== 0) return
+        if (!event.shiftKey) {
+          dispatch({ kind: 'choose', row, column, anew: true })
+          return
+        }
         // The focus stays where it is, so that the block reaches from there to here.
         event.preventDefault()
         dispatch({ kind: 'choose', row, column, extend: true })

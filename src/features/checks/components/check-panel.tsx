@@ -35,8 +35,8 @@ export interface CheckPanelProps {
 }
 
 /**
- * The live check beside the editor: what the values on the screen do. The joint looked at comes first, within a blink; what is older stays, dimmed,
- * while the next is computed, and says so.
+ * The live check beside the editor: what the values on the screen do. The joint looked at comes first, within a blink; what is older stays, marked at
+ * its edge, while the next is computed, and says so.
  */
 export function CheckPanel({ change, query, stale, quick, joints, nameOf, reportTo, note }: CheckPanelProps) {
   const check = query.data
@@ -59,27 +59,28 @@ export function CheckPanel({ change, query, stale, quick, joints, nameOf, report
   const early = stale ? quick?.view : undefined
   const old = stale && (quick?.stale ?? true)
   const worst = early?.joint ?? worstOf(shown)
-  const dim = (older: boolean) => (older ? 'opacity-60' : '')
+  // Marked by its edge, not by fainter ink: what is stale is read all the same.
+  const aged = (older: boolean) => (older ? '-ml-2 border-l-2 border-dashed border-plum pl-[6px]' : '')
   return (
     <section aria-label="live check" aria-busy={stale}>
       {query.isError && <ProblemPanel className="mb-3" problem={query.error} onRetry={() => void query.refetch()} />}
-      <div className={dim(old)}>
+      <div className={aged(old)}>
         <Head check={check} joint={worst} state={old ? 'stale' : early ? 'early' : 'fresh'} among={shown.length} nameOf={nameOf} />
       </div>
       {!stale && <ToleranceWalk change={change} check={check} className="border-b border-hairline py-2" />}
       {worst?.candidate ? (
         <>
-          <div className={dim(old)}>
+          <div className={aged(old)}>
             <JointFiguresShown joint={worst} findings={early?.findings ?? check.findings} nameOf={nameOf} />
           </div>
-          <div className={dim(stale)}>
+          <div className={aged(stale)}>
             <StepOverlay change={change} inputs={check.inputsHash} joint={worst.joint} enabled={!stale} />
           </div>
         </>
       ) : (
         <p className="border-b border-hairline py-3 text-13 text-ink-2">{worst ? `Nothing was computed for ${nameOf(worst.joint)}; the findings say why.` : 'No joint stands here yet.'}</p>
       )}
-      <div className={dim(stale)}>{rest}</div>
+      <div className={aged(stale)}>{rest}</div>
     </section>
   )
 }
