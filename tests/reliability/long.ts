@@ -15,7 +15,11 @@ async function main(): Promise<number> {
   const file = bench.file('child')
   const random = seeded(seed)
   let n = 0
-  const told = ({ what, faults, done }: PointResult) => {
+  /** what was seen so far: written also when the run ends early */
+  const seen: PointResult[] = []
+  const told = (result: PointResult) => {
+    const { what, faults, done } = result
+    seen.push(result)
     n += 1
     process.stdout.write(`${n}  ${what}: ${faults.length > 0 ? `FAULT ${faults.join('; ')}` : done ? 'after' : 'before'}\n`)
   }
@@ -48,6 +52,12 @@ async function main(): Promise<number> {
       new Date(),
     )
     return bad.length === 0 ? 0 : 1
+  } catch (error) {
+    const bad = seen.filter((r) => r.faults.length > 0)
+    const kinds = [...new Set(seen.map((r) => r.what.split(',')[0]))]
+    if (seen.length > 0)
+      writeFigures('kills', `Seed ${seed}: ended early (${(error as Error).message}). Until then ${seen.length} processes killed, ${bad.length} faults: ${kinds.map((k) => `${seen.filter((r) => r.what.startsWith(k)).length} while ${k}`).join(', ')}; ${seen.filter((r) => r.done).length} found after, ${seen.filter((r) => !r.done).length} before.`, new Date())
+    throw error
   } finally {
     bench.clear()
   }
