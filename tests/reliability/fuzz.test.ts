@@ -132,4 +132,4 @@ it(`answers ${wanted} requests of every route, fitting, nearly fitting and hosti
   expect(share(200) / sent).toBeGreaterThan(0.1)
   if (process.env.DETENT_FUZZ)
     writeFigures('fuzz', `Seed ${seed}: ${sent} requests over ${routeTable.length} routes, no failure of the server.\n\n| status | answers |\n| --- | ---: |\n${[...statuses].sort((a, b) => a[0] - b[0]).map(([s, c]) => `| ${s} | ${c} |`).join('\n')}`, new Date())
-}, Math.max(120_000, wanted * 60))
+}, Math.max(120_000, wanted * 300))
