@@ -110,6 +110,7 @@ const rows: [kind: string, what: string, situation: Situation, loop: string | un
   // ½·(0.004 + 150²·6e-7)·16 = 0.14 J into 1 mF from 12 V: 20.59 V
   ['braking', 'borne', { driveTrain: { V_bus_max: 20.6, C_bus: 0.001 } }, undefined, 'pass'],
   ['braking', 'not borne', { driveTrain: { V_bus_max: 20.5, C_bus: 0.001 } }, undefined, 'advise'],
+  ['braking', 'an inertia beyond every number', { driveTrain: { V_bus_max: 20.5, C_bus: 0.001, J_load: 1.7e308 } }, undefined, 'block'],
 
   ['bus watchdog', 'on', {}, undefined, 'pass'],
   ['bus watchdog', 'off', { roles: { 'bus.watchdog': 0 } }, undefined, 'concession needed'],

@@ -18,4 +18,12 @@ const subjects: readonly ((c: JointContext) => RawFinding[])[] = [
   windingFindings, peakTimeFindings, speedFindings, stepFindings, limitCycleFindings, brakingFindings, guardFindings, roundingFindings,
 ]
 
-export const jointFindings = (c: JointContext): RawFinding[] => subjects.flatMap((subject) => subject(c))
+const overflows = ({ value, limit, text }: RawFinding) => [value, limit].some((v) => v !== null && !Number.isFinite(v)) || /\b(NaN|Infinity)\b/.test(text)
+
+/** A figure that overflowed is none: the finding then says so, and stands in the way. */
+const told = (f: RawFinding): RawFinding =>
+  overflows(f)
+    ? { ...f, level: 'block', value: null, limit: null, text: `The ${f.kind} could not be computed: values of the drive train lead beyond every number.`, remedy: 'Correct the values of the drive train; look at their units.' }
+    : f
+
+export const jointFindings = (c: JointContext): RawFinding[] => subjects.flatMap((subject) => subject(c)).map(told)
