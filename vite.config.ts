@@ -44,7 +44,7 @@ export default defineConfig(({ mode }) =>
     : {
         plugins: [react(), tailwindcss()],
         worker: { format: 'es' as const },
-        build: { outDir: '.build/client', emptyOutDir: true, chunkSizeWarningLimit: 4000 },
+        build: { outDir: '.build/client', emptyOutDir: true, manifest: true, chunkSizeWarningLimit: 4000 },
         test,
       },
 )

@@ -6,6 +6,7 @@ import { pinoHttp } from 'pino-http'
 import { acceptBenchKeys } from './http/bench-key.ts'
 import { errorHandler, notFound } from './http/error-handler.ts'
 import { requestInLog } from './http/log.ts'
+import { openApiRoute } from './http/openapi-route.ts'
 import { mount, type RouteSpec } from './http/route.ts'
 import { sameSite } from './http/same-site.ts'
 import type { Services } from './http/services.ts'
@@ -34,6 +35,7 @@ import { searchRoutes } from './modules/search/routes.ts'
 /** Every route of the API that a signed-in person reaches; tests walk it. */
 export const routeTable: readonly RouteSpec[] = [
   ...peopleRoutes, ...secondFactorRoutes, ...machineRoutes, ...firmwareRoutes, ...policyRoutes, ...changeRoutes, ...checkRoutes, ...reviewRoutes, ...commentRoutes, ...evidenceRoutes, ...deskRoutes, ...releaseRoutes, ...boardRoutes, ...benchKeyRoutes, ...keyRoutes, ...comparisonRoutes, ...ledgerRoutes, ...searchRoutes, ...backupRoutes, ...mailRoutes,
+  openApiRoute(() => routeTable),
 ]
 
 const contentSecurity = (secure: boolean) =>

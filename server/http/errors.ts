@@ -113,6 +113,10 @@ const titleOf: Record<ErrorCode, string> = {
   unexpected: 'Something failed inside Detent',
 }
 
+export const errorCodes = Object.keys(statusOf) as ErrorCode[]
+export const statusOfCode = (code: ErrorCode): number => statusOf[code]
+export const titleOfCode = (code: ErrorCode): string => titleOf[code]
+
 export interface Problem {
   type: string
   title: string

@@ -66,6 +66,10 @@ export interface RouteSpec<B extends TSchema = TSchema, P extends Place = Place>
   /** finds what the path names; a place that the person may not read is not found */
   place?: (em: EntityManager, params: Record<string, string>) => Promise<P>
   body?: B
+  /** what it reads of the query: told in the API's document */
+  query?: Record<string, { description: string; example?: string; required?: true }>
+  /** media type of its answer, where that is not JSON */
+  gives?: string
   ifMatch?: boolean
   /** a bench key may take it too; every other route refuses one */
   benchKey?: true

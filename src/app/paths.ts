@@ -39,6 +39,8 @@ export const paths = {
     const query = new URLSearchParams(Object.entries(sides).flatMap(([k, v]) => (v ? [[k, v]] : []))).toString()
     return `/compare${query && `?${query}`}`
   },
+  help: (topic?: string) => (topic ? `/help#${part(topic)}` : '/help'),
+  apiReference: () => '/api-reference',
   keys: () => '/keys',
   backups: () => '/backups',
   boards: (filter: { machine?: string; state?: string; release?: string } = {}) => {

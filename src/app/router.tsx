@@ -36,6 +36,8 @@ const pages: RouteObject[] = [
   { path: 'firmware/:line/:version', lazy: () => import('../routes/firmware-version.tsx') },
   { path: 'compare', lazy: () => import('../routes/compare.tsx') },
   { path: 'keys', lazy: () => import('../routes/keys.tsx') },
+  { path: 'help', lazy: () => import('../routes/help.tsx') },
+  { path: 'api-reference', lazy: () => import('../routes/api-reference.tsx') },
   { path: 'search', lazy: () => import('../routes/search.tsx') },
 ]
 

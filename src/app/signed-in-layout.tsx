@@ -1,6 +1,6 @@
 import { useQuery } from '@tanstack/react-query'
-import { Suspense, useEffect, useRef } from 'react'
-import { Outlet, redirect, ScrollRestoration, useLocation, useNavigation } from 'react-router'
+import { lazy, Suspense, useEffect, useRef } from 'react'
+import { Outlet, redirect, ScrollRestoration, useLocation, useNavigate, useNavigation } from 'react-router'
 import type { LoaderFunctionArgs } from 'react-router'
 import { CodeAsked } from '../features/people/components/code-asked.tsx'
 import { SignInAgain } from '../features/people/components/sign-in-again.tsx'
@@ -16,7 +16,11 @@ import { holds, meQuery, useMe } from '../lib/me.ts'
 import { queryClient } from '../lib/query-client.ts'
 import { paths } from './paths.ts'
 import { useTheme } from '../lib/theme.ts'
+import { useTour } from '../lib/tour-state.ts'
+import { helpBeside } from './help-key.ts'
 import { machineItems, machineOfPath, personItems, placesFor, rolesInWords } from './top-bar-places.ts'
+
+const TourPanel = lazy(() => import('../features/tour/components/tour-panel.tsx'))
 
 /** Whoever is not signed in goes to the sign-in page, and back here after it. */
 export async function signedInLoader({ request }: LoaderFunctionArgs) {
@@ -51,6 +55,20 @@ export function SignedInLayout() {
     main.current?.focus({ preventScroll: true })
   }, [pathname])
 
+  const navigate = useNavigate()
+  useEffect(() => {
+    const onKey = (event: KeyboardEvent) => {
+      if (event.key !== 'F1') return
+      event.preventDefault()
+      const beside = helpBeside(document.activeElement)
+      if (beside) beside.click()
+      else void navigate(paths.help())
+    }
+    document.addEventListener('keydown', onKey)
+    return () => document.removeEventListener('keydown', onKey)
+  }, [navigate])
+
+  const tour = useTour()
   const machineKey = machineOfPath(pathname)
   const machine = machines.data?.find((m) => m.key === machineKey)
   return (
@@ -75,6 +93,11 @@ export function SignedInLayout() {
           <Outlet />
         </Suspense>
       </main>
+      {tour.open && (
+        <Suspense fallback={null}>
+          <TourPanel step={tour.step} />
+        </Suspense>
+      )}
       <SignInAgain email={me.email} />
       <CodeAsked />
       <ScrollRestoration />

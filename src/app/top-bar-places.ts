@@ -3,6 +3,7 @@ import type { GrantView, Me } from '../../shared/contract/people.ts'
 import type { MenuItem } from '../components/ui/menu.tsx'
 import type { Place } from '../components/ui/top-bar.tsx'
 import { paths } from './paths.ts'
+import { openTour } from '../lib/tour-state.ts'
 import { setTheme, themes } from '../lib/theme.ts'
 import type { Theme } from '../lib/theme.ts'
 
@@ -43,6 +44,9 @@ export function personItems({ theme, mayKeepPeople, mayKeepMail, mayKeepBackups,
     { label: 'compare', to: paths.compare() },
     ...(mayKeepMail ? [{ label: 'mail', to: paths.mail() }] : []),
     ...(mayKeepBackups ? [{ label: 'backups', to: paths.backups() }] : []),
+    { label: 'help', to: paths.help() },
+    { label: 'tour', onSelect: openTour },
+    { label: 'API reference', to: paths.apiReference() },
     ...themes.map((t) => ({ label: t === 'system' ? 'light or dark by system' : t, current: t === theme, note: t === theme ? 'shown' : undefined, onSelect: () => setTheme(t) })),
     { label: 'sign out', onSelect: signOut },
   ]

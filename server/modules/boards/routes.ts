@@ -37,6 +37,7 @@ export const boardRoutes: readonly RouteSpec[] = [
   route({
     method: 'get',
     path: '/boards',
+    query: { machine: { description: 'one machine, by its key', example: 'dunlin' }, release: { description: 'version of the release held' }, retired: { description: 'yes: retired boards too' } },
     summary: 'list boards',
     access: 'signed-in',
     benchKey: true,
@@ -48,6 +49,7 @@ export const boardRoutes: readonly RouteSpec[] = [
   route({
     method: 'get',
     path: '/boards.csv',
+    query: { machine: { description: 'one machine, by its key', example: 'dunlin' }, release: { description: 'version of the release held' }, retired: { description: 'yes: retired boards too' } }, gives: 'text/csv',
     summary: 'export boards',
     access: 'signed-in',
     costly: true,

@@ -28,6 +28,7 @@ export const changeRoutes: readonly RouteSpec[] = [
   route({
     method: 'get',
     path: '/changes',
+    query: { machine: { description: 'one machine, by its key', example: 'dunlin' }, state: { description: 'states, with commas between', example: 'draft,submitted' } },
     summary: 'list changes',
     access: 'signed-in',
     handle: async ({ em, held, query }) => {

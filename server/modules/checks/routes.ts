@@ -31,6 +31,7 @@ export const checkRoutes: readonly RouteSpec[] = [
   route({
     method: 'get',
     path: '/changes/:change/check/events',
+    gives: 'text/event-stream',
     summary: 'follow the check of a change',
     access: 'read',
     place: onChange,

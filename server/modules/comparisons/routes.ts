@@ -30,6 +30,7 @@ export const comparisonRoutes: readonly RouteSpec[] = [
   route({
     method: 'get',
     path: '/compare',
+    query: { a: { description: 'one side', example: 'release:dunlin@1.0.0', required: true }, b: { description: 'the other side', example: 'release:dunlin@1.0.0', required: true } },
     summary: 'compare two releases, revisions, changes or read-backs',
     access: 'read',
     costly: true,

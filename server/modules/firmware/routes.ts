@@ -183,6 +183,7 @@ export const firmwareRoutes: readonly RouteSpec[] = [
   route({
     method: 'get',
     path: '/firmware/:line/:version/image',
+    gives: 'application/octet-stream',
     summary: 'download a firmware image',
     access: 'read',
     place: onVersion,
@@ -206,6 +207,7 @@ export const firmwareRoutes: readonly RouteSpec[] = [
   route({
     method: 'get',
     path: '/changes/:change/carry-over',
+    query: { to: { description: 'firmware version to carry over to', example: 'hinge 2.1.0', required: true }, joints: { description: 'joints, with commas between' }, family: { description: 'all joints of one family', example: 'knee' } },
     summary: 'read what carrying joints over to another firmware version alters',
     access: 'read',
     place: onChange,

@@ -17,6 +17,7 @@ export const ledgerRoutes: readonly RouteSpec[] = [
   route({
     method: 'get',
     path: '/ledger',
+    query: { before: { description: 'entries before this number in the chain', example: '5' }, act: { description: 'one kind of act' }, machine: { description: 'one machine, by its key', example: 'dunlin' }, person: { description: 'who acted, by name or number' } },
     summary: 'read the ledger',
     access: 'read',
     handle: async ({ em, held, query }) => ({ body: await readLedger(em, held, { before: readBefore(query), act: readWord(query, 'act'), machine: readWord(query, 'machine'), person: readWord(query, 'person') }) }),
@@ -25,6 +26,7 @@ export const ledgerRoutes: readonly RouteSpec[] = [
   route({
     method: 'get',
     path: '/ledger/export.jsonl',
+    gives: 'application/jsonl',
     summary: 'export the ledger',
     access: 'read',
     costly: true,
@@ -36,6 +38,7 @@ export const ledgerRoutes: readonly RouteSpec[] = [
   route({
     method: 'get',
     path: '/ledger/export.csv',
+    gives: 'text/csv',
     summary: 'export the ledger as a table',
     access: 'read',
     costly: true,
@@ -45,6 +48,7 @@ export const ledgerRoutes: readonly RouteSpec[] = [
   route({
     method: 'get',
     path: '/ledger/checkpoints.jsonl',
+    gives: 'application/jsonl',
     summary: 'export the checkpoints of the ledger',
     access: 'read',
     costly: true,

@@ -30,6 +30,7 @@ export const mailRoutes: readonly RouteSpec[] = [
   route({
     method: 'get',
     path: '/mail',
+    query: { before: { description: 'mails before this number' } },
     summary: 'read the mail queue',
     access: 'keep mail',
     async handle({ em, query, services }) {

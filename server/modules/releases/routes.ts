@@ -22,6 +22,7 @@ export const releaseRoutes: readonly RouteSpec[] = [
   route({
     method: 'get',
     path: '/releases',
+    query: { machine: { description: 'one machine, by its key', example: 'dunlin' } },
     summary: 'list releases',
     access: 'signed-in',
     benchKey: true,
@@ -43,6 +44,8 @@ export const releaseRoutes: readonly RouteSpec[] = [
   route({
     method: 'get',
     path: '/machines/:machine/releases/:version/joints/:joint/image.:format',
+    query: { reason: { description: 'why, for a release that is not current' }, board: { description: 'serial number of the board it is for' } },
+    gives: '*/*',
     summary: 'download an image',
     access: 'download',
     benchKey: true,
@@ -58,6 +61,8 @@ export const releaseRoutes: readonly RouteSpec[] = [
   route({
     method: 'get',
     path: '/machines/:machine/releases/:version/kit.zip',
+    query: { reason: { description: 'why, for a release that is not current' } },
+    gives: 'application/zip',
     summary: 'download the kit of a release',
     access: 'download',
     costly: true,
@@ -73,6 +78,12 @@ export const releaseRoutes: readonly RouteSpec[] = [
   route({
     method: 'get',
     path: '/changes/:change/bench-image',
+    query: {
+      joint: { description: 'joint it is tried at', example: 'l1-knee', required: true },
+      board: { description: 'serial number of the board it is for', example: 'H-0318', required: true },
+      format: { description: 'bin, hex …', example: 'bin' },
+    },
+    gives: '*/*',
     summary: 'take a bench image of a change',
     access: 'draft changes',
     place: onChange,

@@ -28,6 +28,7 @@ export const reviewRoutes: readonly RouteSpec[] = [
   route({
     method: 'get',
     path: '/changes/:change/events',
+    query: { page: { description: 'page that is open, so that others see it', example: 'values' } }, gives: 'text/event-stream',
     summary: 'follow who has a change open and what they save',
     access: 'read',
     place: onChange,

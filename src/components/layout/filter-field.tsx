@@ -1,4 +1,5 @@
 import { useEffect, useRef } from 'react'
+import { isTyping } from '../ui/is-typing.ts'
 import { Key } from '../ui/key.tsx'
 
 export interface FilterFieldProps {
@@ -15,9 +16,7 @@ export function FilterField({ label, value, onChange, hotkey = 'f', className = 
   const input = useRef<HTMLInputElement>(null)
   useEffect(() => {
     const onKey = (event: KeyboardEvent) => {
-      const at = event.target
-      const typing = at instanceof HTMLElement && (at.isContentEditable || at.closest('input, textarea, select, dialog, .monaco-editor') !== null)
-      if (event.key !== hotkey || event.ctrlKey || event.metaKey || event.altKey || typing) return
+      if (event.key !== hotkey || event.ctrlKey || event.metaKey || event.altKey || isTyping(event.target)) return
       event.preventDefault()
       input.current?.focus()
       input.current?.select()

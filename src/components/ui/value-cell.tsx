@@ -1,6 +1,7 @@
 import { useId } from 'react'
 import type { KeyboardEvent, ReactNode } from 'react'
 import { stepNumberText } from '../../lib/format.ts'
+import { HelpButton } from './help-button.tsx'
 import { OriginMark } from './origin-mark.tsx'
 import type { Origin } from './origin-mark.tsx'
 import { Ruler } from './ruler.tsx'
@@ -8,6 +9,8 @@ import type { RulerProps } from './ruler.tsx'
 
 export interface ValueCellProps {
   title: string
+  /** topic of its explanation, shared/help */
+  help?: string
   /** The value as typed; text, so that its digits stay. */
   value: string
   unit?: string
@@ -34,7 +37,7 @@ export interface ValueCellProps {
 }
 
 /** One value where it acts: name, change, number, unit, origin, and the ruler of what it may be. */
-export function ValueCell({ title, value, unit = '', origin, change, changed = false, ruler, onChange, onSettle, onCancel, write = toText, step, chosen = false, onFocus, error, note }: ValueCellProps) {
+export function ValueCell({ title, help, value, unit = '', origin, change, changed = false, ruler, onChange, onSettle, onCancel, write = toText, step, chosen = false, onFocus, error, note }: ValueCellProps) {
   const id = useId()
   const classes = ['value-cell', changed ? 'value-cell-changed' : '', chosen ? 'value-cell-chosen' : ''].filter(Boolean).join(' ')
   const onKey = (event: KeyboardEvent) => {
@@ -49,7 +52,10 @@ export function ValueCell({ title, value, unit = '', origin, change, changed = f
   return (
     <div className={classes} onFocus={onFocus}>
       <div className="flex justify-between gap-2 text-13">
-        <label htmlFor={onChange ? id : undefined}>{title}</label>
+        <span className="inline-flex items-baseline gap-[5px]">
+          <label htmlFor={onChange ? id : undefined}>{title}</label>
+          {help && <HelpButton topic={help} about={title} />}
+        </span>
         {change && (
           <span className="num text-12 whitespace-nowrap">
             {change}

@@ -1,6 +1,7 @@
 import { use, useRef } from 'react'
 import type { Edit } from '../../../../shared/parameters/edits.ts'
 import type { MachineSet } from '../../../../shared/parameters/machine-set.ts'
+import { HelpButton } from '../../../components/ui/help-button.tsx'
 import { OriginMark } from '../../../components/ui/origin-mark.tsx'
 import { ValueCell } from '../../../components/ui/value-cell.tsx'
 import { percentChange } from '../../../lib/format.ts'
@@ -25,6 +26,8 @@ export function EditableValue(props: EditableValueProps) {
   return parameter.choices || parameter.kind === 'boolean' ? <Choice {...props} /> : <Quantity {...props} />
 }
 
+const helpOf = ({ parameter }: ValueAt) => (parameter.role ? `role:${parameter.role}` : undefined)
+
 function Quantity({ at, set, onEdit, title }: EditableValueProps) {
   const typed = useTypedValue(at, onEdit ?? (() => {}))
   // The cell tells a move of the ruler and a key typed through the same call; the ruler writes its value first.
@@ -36,6 +39,7 @@ function Quantity({ at, set, onEdit, title }: EditableValueProps) {
   return (
     <ValueCell
       title={title ?? at.parameter.title}
+      help={helpOf(at)}
       value={onEdit ? typed.text : shownValue(at.value)}
       unit={at.parameter.unit ?? ''}
       origin={at.origin}
@@ -124,7 +128,10 @@ function Choice({ at, set, onEdit, title }: EditableValueProps) {
   return (
     <div className={`value-cell ${at.changed ? 'value-cell-changed' : ''}`}>
       <div className="flex justify-between gap-2 text-13">
-        <span>{name}</span>
+        <span className="inline-flex items-baseline gap-[5px]">
+          {name}
+          {at.parameter.role && <HelpButton topic={`role:${at.parameter.role}`} about={name} />}
+        </span>
         {at.changed && <span className="num text-12 text-ink-2">was {shownValue(at.released)}</span>}
       </div>
       <div className="flex items-baseline gap-[5px]">

@@ -2,6 +2,7 @@ import { use } from 'react'
 import type { Edit } from '../../../../shared/parameters/edits.ts'
 import type { MachineSet } from '../../../../shared/parameters/machine-set.ts'
 import { Button } from '../../../components/ui/button.tsx'
+import { HelpButton } from '../../../components/ui/help-button.tsx'
 import { OriginMark } from '../../../components/ui/origin-mark.tsx'
 import { Ruler } from '../../../components/ui/ruler.tsx'
 import { percentChange } from '../../../lib/format.ts'
@@ -36,7 +37,7 @@ export function ValueInspector({ at, set, onEdit }: ValueInspectorProps) {
     <section aria-label="chosen value" className="sheet grid items-start gap-x-6 gap-y-2 px-4 py-3 md:grid-cols-[minmax(180px,auto)_minmax(160px,1fr)_auto]">
       <div>
         <p className="text-13">
-          <b>{parameter.title}</b> <span className="text-ink-2">{where}</span>
+          <b>{parameter.title}</b> {parameter.role && <HelpButton topic={`role:${parameter.role}`} about={parameter.title} ofChosen />} <span className="text-ink-2">{where}</span>
         </p>
         <p className="flex items-baseline gap-[6px]">
           <span className={`num text-20 font-medium ${at.changed ? 'text-brass' : ''}`}>{shownValue(at.value)}</span>

@@ -1,9 +1,13 @@
 import { EffectRuler } from '../../../components/ui/effect-ruler.tsx'
+import { HelpButton } from '../../../components/ui/help-button.tsx'
 import { Arrow } from '../../../components/ui/arrow.tsx'
 import { formatNumber } from '../../../lib/format.ts'
 import type { Figure } from '../figures.ts'
 
 const shown = (value: number | null, reads: string, unit: string) => (value === null ? reads || '–' : unit === 'Hz' || unit === '' ? formatNumber(value) : value.toFixed(1))
+
+/** Each figure is explained where it comes first, not once for every loop. */
+const firstOf = (figures: readonly Figure[], i: number) => figures.findIndex((f) => f.name === figures[i].name) === i
 
 /** Margins and bandwidth of each loop, before and after, with policy on the ruler. */
 export function FigureRows({ figures, label, oneLoop = false }: { figures: readonly Figure[]; label: string; oneLoop?: boolean }) {
@@ -23,7 +27,9 @@ export function FigureRows({ figures, label, oneLoop = false }: { figures: reado
               <Arrow />
             </td>
             <td className={`end num !px-0 text-13 font-medium ${f.after === null && f.afterReads === 'unstable' ? 'text-oxide' : f.missed ? 'text-plum' : ''}`}>{shown(f.after, f.afterReads, f.unit)}</td>
-            <td className="unit !px-1 text-13">{f.after !== null && f.unit}</td>
+            <td className="unit !px-1 text-13 whitespace-nowrap">
+              {f.after !== null && f.unit} {(oneLoop || firstOf(figures, i)) && <HelpButton topic={`figure:${f.name}`} about={f.name} />}
+            </td>
             <td className="!pr-0 !pl-1">
               {f.after !== null && (
                 <EffectRuler

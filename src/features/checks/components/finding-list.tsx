@@ -2,6 +2,7 @@ import { useState } from 'react'
 import type { ReactNode } from 'react'
 import type { Finding } from '../../../../shared/contract/checks.ts'
 import { FindingMark } from '../../../components/ui/finding-mark.tsx'
+import { HelpButton } from '../../../components/ui/help-button.tsx'
 import { Num } from '../../../components/ui/num.tsx'
 import { count } from '../../../lib/format.ts'
 
@@ -55,7 +56,7 @@ function FindingRow({ finding, nameOf, narrow, sources, note }: { finding: Findi
           <span className="sr-only">{finding.level}</span>
         </FindingMark>
         <div>
-          <b>{finding.level}</b> {finding.text}
+          <b>{finding.level}</b> {finding.text} <HelpButton topic={`finding:${finding.kind}`} about={finding.kind} />
           {finding.remedy && <p className="text-ink-2">{finding.remedy}</p>}
           {joints && !sources && <p className="text-12 text-ink-2">{joints}</p>}
           {sources && (limit || finding.source) && (
@@ -73,7 +74,7 @@ function FindingRow({ finding, nameOf, narrow, sources, note }: { finding: Findi
     <li className="grid gap-x-4 gap-y-1 border-t border-hairline py-[7px] md:grid-cols-[150px_minmax(0,1fr)_minmax(0,260px)]">
       <FindingMark level={finding.level} className="self-start" />
       <div>
-        {finding.text}
+        {finding.text} <HelpButton topic={`finding:${finding.kind}`} about={finding.kind} />
         {finding.remedy && <p className="text-13 text-ink-2">{finding.remedy}</p>}
         {joints && <p className="text-12 text-ink-2">{joints}</p>}
       </div>

@@ -1,5 +1,6 @@
 import type { ReactNode } from 'react'
 import type { Finding, StepFigures } from '../../../../shared/contract/checks.ts'
+import { HelpButton } from '../../../components/ui/help-button.tsx'
 import { Num } from '../../../components/ui/num.tsx'
 import { SectionHeading } from '../../../components/ui/section-heading.tsx'
 
@@ -65,7 +66,9 @@ export function StepMetrics({ candidate, released, worst, findings, base }: Step
               const judged = findings.find((f) => f.kind === m.kind && f.limit !== null)
               return (
                 <tr key={m.name}>
-                  <td role="rowheader" className="!px-0">{m.name}</td>
+                  <td role="rowheader" className="!px-0">
+                    {m.name} <HelpButton topic={`figure:${m.name}`} about={m.name} />
+                  </td>
                   {released && <td className="end !px-1">{cell(released, m)}</td>}
                   {candidate && <td className={`end !px-1 font-medium ${judged && judged.level !== 'pass' ? 'text-plum' : ''}`}>{cell(candidate, m)}</td>}
                   {worst && <td className="end !px-1">{cell(worst, m)}</td>}

@@ -2,6 +2,7 @@ import type { FamilyView } from '../../../../shared/contract/machines.ts'
 import { paths } from '../../../app/paths.ts'
 import { useUrlSort } from '../../../components/layout/use-url-state.ts'
 import { valueText } from '../../../components/layout/value-text.ts'
+import { HelpButton } from '../../../components/ui/help-button.tsx'
 import { OriginMark } from '../../../components/ui/origin-mark.tsx'
 import { Table } from '../../../components/ui/table.tsx'
 import type { Column } from '../../../components/ui/table.tsx'
@@ -14,7 +15,7 @@ export function FamilyValues({ machine, values, joints }: { machine: string; val
   const [sort, setSort] = useUrlSort()
   const nameOf = new Map(joints.map((j) => [j.key, j.name]))
   const columns: Column<FamilyValue>[] = [
-    { key: 'parameter', head: 'Parameter', className: 'whitespace-nowrap', sortBy: (v) => v.title, cell: (v) => v.title },
+    { key: 'parameter', head: 'Parameter', className: 'whitespace-nowrap', sortBy: (v) => v.title, cell: (v) => <>{v.title} {v.role && <HelpButton topic={`role:${v.role}`} about={v.title} />}</> },
     { key: 'value', head: 'Value', align: 'end', className: 'num', cell: (v) => valueText(v.familyValue ?? v.firmwareDefault) },
     { key: 'unit', head: 'Unit', className: 'text-ink-2', cell: (v) => v.unit },
     { key: 'origin', head: 'Origin', sortBy: (v) => (v.familyValue === null ? 0 : 1), cell: (v) => <OriginMark origin={v.familyValue === null ? 'firmware' : 'family'} /> },

@@ -2,6 +2,7 @@ import type { ParameterValue } from '../../../../shared/contract/machines.ts'
 import { valueText } from '../../../components/layout/value-text.ts'
 import { useUrlSort } from '../../../components/layout/use-url-state.ts'
 import { HexAddress } from '../../../components/ui/hex-address.tsx'
+import { HelpButton } from '../../../components/ui/help-button.tsx'
 import { Num } from '../../../components/ui/num.tsx'
 import { OriginMark } from '../../../components/ui/origin-mark.tsx'
 import { Table } from '../../../components/ui/table.tsx'
@@ -27,7 +28,7 @@ const columns: Column<ParameterValue>[] = [
     sortBy: (v) => v.title,
     cell: (v) => (
       <span title={v.description}>
-        {v.title}
+        {v.title} {v.role && <HelpButton topic={`role:${v.role}`} about={v.title} />}
         {v.boardBound && <span className="text-12 font-normal text-ink-2"> board-bound</span>}
       </span>
     ),
