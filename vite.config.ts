@@ -1,3 +1,4 @@
+import { fileURLToPath } from 'node:url'
 import { defineConfig } from 'vite'
 import type { ViteUserConfig } from 'vitest/config'
 import react from '@vitejs/plugin-react'
@@ -28,6 +29,8 @@ const test: ViteUserConfig['test'] = {
   ],
 }
 
+const production = (file: string) => fileURLToPath(new URL(`node_modules/react-router/dist/production/${file}`, import.meta.url))
+
 /** `vite build` makes the client; `vite build --mode server` bundles the server, its worker and the command line for plain node. */
 export default defineConfig(({ mode }) =>
   mode === 'server'
@@ -43,6 +46,8 @@ export default defineConfig(({ mode }) =>
       }
     : {
         plugins: [react(), tailwindcss()],
+        // The package points every bundler at its development build, checks and messages included.
+        resolve: { alias: [{ find: /^react-router$/, replacement: production('index.mjs') }, { find: /^react-router\/dom$/, replacement: production('dom-export.mjs') }] },
         worker: { format: 'es' as const },
         build: { outDir: '.build/client', emptyOutDir: true, manifest: true, chunkSizeWarningLimit: 4000 },
         test,

@@ -1,4 +1,5 @@
 import { Type, type Static } from '@sinclair/typebox'
+import { loopNames, type LoopName } from './loop-names.ts'
 import type { Edit } from '../parameters/edits.ts'
 
 const strict = { additionalProperties: false }
@@ -7,8 +8,7 @@ const strict = { additionalProperties: false }
 export const findingLevels = ['pass', 'advise', 'concession needed', 'block'] as const
 export type FindingLevel = (typeof findingLevels)[number]
 
-export const loopNames = ['current', 'velocity', 'position'] as const
-export type LoopName = (typeof loopNames)[number]
+export { loopNames, type LoopName }
 
 export interface Finding {
   /** stable within a check: kind, loop, joints; a concession names it */

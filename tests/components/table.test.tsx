@@ -1,6 +1,6 @@
 // @vitest-environment jsdom
 import './setup-dom.ts'
-import { fireEvent, render, screen, within } from '@testing-library/react'
+import { fireEvent, render, screen, waitFor, within } from '@testing-library/react'
 import { MemoryRouter, Route, Routes } from 'react-router'
 import { describe, expect, it, vi } from 'vitest'
 import { Table } from '../../src/components/ui/table.tsx'
@@ -115,8 +115,9 @@ describe('a long table', () => {
   const many: Joint[] = Array.from({ length: 2000 }, (_, i) => ({ name: `joint ${i + 1}`, gain: i }))
   const show = () => render(<Table label="joints" rows={many} columns={COLUMNS} rowKey={(j) => j.name} />)
 
-  it('keeps the rows near the window in the page, and tells of all', () => {
+  it('keeps the rows near the window in the page, and tells of all', async () => {
     show()
+    await waitFor(() => expect(document.querySelector('.table-gap')).not.toBeNull(), { timeout: 15_000 })
     const table = screen.getByRole('table', { name: 'joints' })
     expect(table.getAttribute('aria-rowcount')).toBe('2001')
     const rows = within(table).getAllByRole('row').filter((r) => r.hasAttribute('aria-rowindex'))
@@ -128,8 +129,9 @@ describe('a long table', () => {
     expect(Number.parseFloat(gap.style.height)).toBe((2000 - rows.length) * 33)
   })
 
-  it('sorts all rows, not only those in the page', () => {
+  it('sorts all rows, not only those in the page', async () => {
     show()
+    await waitFor(() => expect(document.querySelector('.table-gap')).not.toBeNull(), { timeout: 15_000 })
     fireEvent.click(screen.getByRole('button', { name: /Gain/ }))
     fireEvent.click(screen.getByRole('button', { name: /Gain/ }))
     expect(screen.getAllByRole('row').find((r) => r.getAttribute('aria-rowindex') === '2')!.textContent).toContain('joint 2000')

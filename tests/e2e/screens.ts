@@ -29,6 +29,7 @@ export const screens: Record<keyof typeof paths, Screen> = {
   machine: { by: yuna, at: paths.machine('dunlin') },
   bus: { by: yuna, at: paths.bus('dunlin', 'aft') },
   joint: { by: yuna, at: paths.joint('dunlin', 'r3-knee') },
+  evidence: { by: yuna, at: paths.evidence('dunlin', 1) },
   family: { by: yuna, at: paths.family('dunlin', 'knee') },
   firmware: { by: mirela, at: paths.firmware() },
   firmwareComparison: { by: mirela, at: paths.firmwareComparison('hinge', { from: '2.0.0', to: '2.1.0' }) },

@@ -55,8 +55,8 @@ describe('the document of the API', () => {
     const modules = new URL('../../server/modules/', import.meta.url)
     for (const module of readdirSync(modules)) {
       const text = readFileIfThere(new URL(`${module}/routes.ts`, modules))
-      const reads = [...text.matchAll(/\bquery\.(?!ts\b)(\w+)/g), ...text.matchAll(/readWord\(query, '(\w+)'\)/g)].map((m) => m[1])
-      const told = [...text.matchAll(/\bquery: \{([\s\S]*?)\},\n/g)].map((m) => m[1]).join(' ')
+      const reads = [...text.matchAll(/\bquery\.(?!ts\b)(\w+)/g), ...text.matchAll(/(?:readWord|numberIn)\(query, '(\w+)'\)/g)].map((m) => m[1])
+      const told = queriesToldIn(text)
       for (const name of reads) expect(told, `${module} reads ${name}`).toMatch(new RegExp(`\\b${name}: \\{`))
     }
   })
@@ -69,6 +69,20 @@ describe('the document of the API', () => {
     for (const { path, schema, example } of given) expect(ajv.validate(schema, example), `${path}: ${ajv.errorsText()}`).toBe(true)
   })
 })
+
+/** Everything that stands in the braces after `query:`. */
+function queriesToldIn(text: string): string {
+  const told: string[] = []
+  for (const { index } of text.matchAll(/\bquery: \{/g)) {
+    let [depth, end] = [0, text.indexOf('{', index)]
+    do {
+      depth += text[end] === '{' ? 1 : text[end] === '}' ? -1 : 0
+      end += 1
+    } while (depth > 0)
+    told.push(text.slice(index, end))
+  }
+  return told.join(' ')
+}
 
 const readFileIfThere = (url: URL) => {
   try {

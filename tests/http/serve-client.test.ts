@@ -1,6 +1,7 @@
 import { mkdirSync, mkdtempSync, writeFileSync } from 'node:fs'
 import { tmpdir } from 'node:os'
 import { join } from 'node:path'
+import { brotliDecompressSync } from 'node:zlib'
 import express from 'express'
 import supertest from 'supertest'
 import { describe, expect, it } from 'vitest'
@@ -19,6 +20,16 @@ describe('the client’s files', () => {
     const { headers, text } = await supertest(app).get('/assets/desk-1a2b.js').set('Accept-Encoding', 'gzip').expect(200)
     expect(headers).toMatchObject({ 'content-encoding': 'gzip', vary: 'Accept-Encoding', 'content-type': 'text/javascript; charset=utf-8', 'cache-control': 'public, max-age=31536000, immutable' })
     expect(text).toBe(script)
+  })
+
+  it('are sent in Brotli to whoever takes that too', async () => {
+    const { headers, body } = await supertest(app).get('/assets/desk-1a2b.js').set('Accept-Encoding', 'gzip, br').buffer(true).parse((res, done) => {
+      const parts: Buffer[] = []
+      res.on('data', (part: Buffer) => parts.push(part))
+      res.on('end', () => done(null, Buffer.concat(parts)))
+    }).expect(200)
+    expect(headers['content-encoding']).toBe('br')
+    expect(String(brotliDecompressSync(body as Buffer))).toBe(script)
   })
 
   it('are sent as they are to whoever does not, and where they are compressed already', async () => {

@@ -50,7 +50,7 @@ const temperatureIn = (query: Record<string, string>) => {
 
 export const evidenceRoutes: readonly RouteSpec[] = [
   route<never, OnMachine>({
-    method: 'get', path: '/machines/:machine/evidence', summary: 'bench logs of a machine', access: 'read', place: onMachine,
+    method: 'get', path: '/machines/:machine/evidence', query: { joint: { description: 'logs of one joint', example: 'l1-knee' } }, summary: 'bench logs of a machine', access: 'read', place: onMachine,
     handle: async ({ em, place, query }) => ({ body: await presentEvidenceList(em, place.found, { joint: query.joint }) }),
   }),
   route<never, OnChange>({
@@ -109,7 +109,7 @@ export const evidenceRoutes: readonly RouteSpec[] = [
     },
   }),
   route<never, OnEvidence>({
-    method: 'get', path: '/machines/:machine/evidence/:evidence/file', summary: 'a bench log as it was sent, gzipped', access: 'read', place: onEvidence,
+    method: 'get', path: '/machines/:machine/evidence/:evidence/file', gives: 'application/gzip', summary: 'a bench log as it was sent, gzipped', access: 'read', place: onEvidence,
     async handle({ services, place: { evidence } }) {
       const bytes = await services.files.read(evidence.storedSha256).catch((error: unknown) => {
         if (!(error instanceof StoredFileProblem)) throw error
@@ -119,15 +119,15 @@ export const evidenceRoutes: readonly RouteSpec[] = [
     },
   }),
   route<never, OnEvidence>({
-    method: 'get', path: '/machines/:machine/evidence/:evidence/series', summary: 'a stretch of a bench log, drawn', access: 'read', place: onEvidence,
+    method: 'get', path: '/machines/:machine/evidence/:evidence/series', query: { from: { description: 'begin, s' }, to: { description: 'end, s' }, pieces: { description: 'pieces that the stretch is cut into' } }, summary: 'a stretch of a bench log, drawn', access: 'read', place: onEvidence,
     handle: async ({ services, place, query }) => ({ body: await drawLog(services, place.evidence, { from: numberIn(query, 'from'), to: numberIn(query, 'to'), pieces: numberIn(query, 'pieces') ?? 700 }) }),
   }),
   route<never, OnEvidence>({
-    method: 'get', path: '/machines/:machine/evidence/:evidence/comparison', summary: 'a bench log beside its prediction', access: 'read', place: onEvidence, costly: true,
+    method: 'get', path: '/machines/:machine/evidence/:evidence/comparison', query: { change: { description: 'values of this change, instead of the current release' }, from: { description: 'begin, s' } }, summary: 'a bench log beside its prediction', access: 'read', place: onEvidence, costly: true,
     handle: async ({ services, em, place, query }) => ({ body: await compare(services, em, place.evidence, { change: query.change, from: numberIn(query, 'from') }) }),
   }),
   route<never, OnEvidence>({
-    method: 'get', path: '/machines/:machine/evidence/:evidence/identification', summary: 'drive train values identified from a bench log', access: 'read', place: onEvidence, costly: true,
+    method: 'get', path: '/machines/:machine/evidence/:evidence/identification', query: { change: { description: 'with the registers of this change' }, T_winding: { description: 'winding temperature, °C; 25 when absent' } }, summary: 'drive train values identified from a bench log', access: 'read', place: onEvidence, costly: true,
     handle: async ({ services, em, place, query }) => ({ body: await identifyFrom(services, em, place.evidence, { change: query.change, T_winding: temperatureIn(query) }) }),
   }),
   route<typeof UseIdentified, OnEvidence>({

@@ -1,11 +1,25 @@
-import { useRef, useState } from 'react'
-import type { KeyboardEvent, ReactNode } from 'react'
+import { lazy, Suspense, useRef, useState } from 'react'
+import type { KeyboardEvent, ReactNode, RefObject } from 'react'
 import type { Column, Sort } from './table-column.ts'
 import { TableHead } from './table-head.tsx'
 import { TableRow } from './table-row.tsx'
-import { useRowWindow } from './use-row-window.ts'
+import { usePrinting } from './use-printing.ts'
 
 export type { Column, Sort } from './table-column.ts'
+
+/** A table with more rows than this keeps only those near the window in the page. */
+const mostRowsInPage = 120
+const LongTable = lazy(() => import('./long-table.tsx'))
+
+/** Which rows are in the page: places of those, and who measures them; heights of what is left out, px; widths that the columns keep. */
+export interface RowWindow {
+  shown: { index: number; ref?: (row: HTMLTableRowElement | null) => void }[]
+  before: number
+  after: number
+  widths: readonly number[] | null
+  /** brings a row into the page and gives it the focus; null: they are all in it */
+  goTo: ((index: number) => void) | null
+}
 
 export interface TableProps<Row> {
   /** Named for a screen reader; not shown. */
@@ -41,54 +55,63 @@ export function Table<Row>({ label, rows, columns, rowKey, rowTo, onOpen, chosen
   const places = new Map(columns.filter((c) => c.decimal).map((c) => [c.key, decimalPlaces(rows, c)]))
 
   const frame = useRef<HTMLDivElement>(null)
-  const view = useRowWindow(frame, { count: sorted.length, columns: columns.length, rowHeight: dense ? 27 : 33 })
-  const shown = view.shown ?? sorted.map((_, index) => ({ index, ref: undefined }))
+  const printing = usePrinting()
+  const long = sorted.length > mostRowsInPage && !printing
+  const first = (count: number): RowWindow => ({ shown: Array.from({ length: Math.min(count, sorted.length) }, (_, index) => ({ index })), before: 0, after: 0, widths: null, goTo: null })
 
-  const inPage = shown.map(({ index }) => rowKey(sorted[index]))
-  const tabKey = at !== null && inPage.includes(at) ? at : (inPage[0] ?? null)
-
-  const onKeyDown = (event: KeyboardEvent<HTMLTableSectionElement>) => {
-    const end = event.key === 'Home' ? 0 : event.key === 'End' ? sorted.length - 1 : null
-    if (view.shown === null || end === null || isEdited(event.target as HTMLElement)) return moveByRow(event)
-    event.preventDefault()
-    view.goTo(end)
+  const draw = (holder: RefObject<HTMLDivElement | null>, { shown: given, before, after, widths, goTo }: RowWindow) => {
+    // A filter may have shortened the table since its rows were placed.
+    const shown = given.filter(({ index }) => index < sorted.length)
+    const inPage = shown.map(({ index }) => rowKey(sorted[index]))
+    const tabKey = at !== null && inPage.includes(at) ? at : (inPage[0] ?? null)
+    const onKeyDown = (event: KeyboardEvent<HTMLTableSectionElement>) => {
+      const end = event.key === 'Home' ? 0 : event.key === 'End' ? sorted.length - 1 : null
+      if (goTo === null || end === null || isEdited(event.target as HTMLElement)) return moveByRow(event)
+      event.preventDefault()
+      goTo(end)
+    }
+    return (
+      <div ref={holder} className={`table-frame ${className}`}>
+        <table className={dense ? 'table table-dense' : 'table'} aria-label={label} aria-rowcount={long ? sorted.length + 1 : undefined} style={widths ? { tableLayout: 'fixed' } : undefined}>
+          <TableHead columns={columns} widths={widths} sort={sort} onSort={setSort} />
+          <tbody onKeyDown={onKeyDown}>
+            {before > 0 && <Gap height={before} columns={columns.length} />}
+            {shown.map(({ index, ref }) => {
+              const row = sorted[index]
+              const key = rowKey(row)
+              return (
+                <TableRow
+                  key={key}
+                  row={row}
+                  columns={columns}
+                  places={places}
+                  to={rowTo?.(row)}
+                  onOpen={onOpen && (() => onOpen(row))}
+                  chosen={chosen?.(row) ?? false}
+                  inTabOrder={key === tabKey}
+                  onFocus={() => setAt(key)}
+                  inWindow={ref && { index, ref }}
+                />
+              )
+            })}
+            {after > 0 && <Gap height={after} columns={columns.length} />}
+            {sorted.length === 0 && (
+              <tr>
+                <td colSpan={columns.length} className="py-4 text-center text-ink-2">
+                  {empty ?? 'Nothing here.'}
+                </td>
+              </tr>
+            )}
+          </tbody>
+        </table>
+      </div>
+    )
   }
-
+  if (!long) return draw(frame, first(sorted.length))
   return (
-    <div ref={frame} className={`table-frame ${className}`}>
-      <table className={dense ? 'table table-dense' : 'table'} aria-label={label} aria-rowcount={view.shown ? sorted.length + 1 : undefined} style={view.widths ? { tableLayout: 'fixed' } : undefined}>
-        <TableHead columns={columns} widths={view.widths} sort={sort} onSort={setSort} />
-        <tbody onKeyDown={onKeyDown}>
-          {view.before > 0 && <Gap height={view.before} columns={columns.length} />}
-          {shown.map(({ index, ref }) => {
-            const row = sorted[index]
-            const key = rowKey(row)
-            return (
-              <TableRow
-                key={key}
-                row={row}
-                columns={columns}
-                places={places}
-                to={rowTo?.(row)}
-                onOpen={onOpen && (() => onOpen(row))}
-                chosen={chosen?.(row) ?? false}
-                inTabOrder={key === tabKey}
-                onFocus={() => setAt(key)}
-                inWindow={ref && { index, ref }}
-              />
-            )
-          })}
-          {view.after > 0 && <Gap height={view.after} columns={columns.length} />}
-          {sorted.length === 0 && (
-            <tr>
-              <td colSpan={columns.length} className="py-4 text-center text-ink-2">
-                {empty ?? 'Nothing here.'}
-              </td>
-            </tr>
-          )}
-        </tbody>
-      </table>
-    </div>
+    <Suspense fallback={draw(frame, first(40))}>
+      <LongTable count={sorted.length} columns={columns.length} rowHeight={dense ? 27 : 33} draw={draw} />
+    </Suspense>
   )
 }
 

@@ -3,7 +3,6 @@ import type { ChangeSummary, ChangeView, DraftPointView } from '../../../shared/
 import type { FirmwareLineView } from '../../../shared/contract/firmware.ts'
 import type { MachineSet } from '../../../shared/parameters/machine-set.ts'
 import type { Conflict } from '../../../shared/parameters/three-way.ts'
-import { readParameterSchema } from '../../../shared/registers/read-parameter-schema.ts'
 import { get, withQuery } from '../../lib/api-client.ts'
 import type { Schemas } from './value-cells.ts'
 
@@ -36,14 +35,15 @@ export const firmwareNames = (...sets: MachineSet[]): string[] => [...new Set(se
 export const schemasQuery = (change: string, names: readonly string[]) =>
   queryOptions({
     queryKey: [...all, 'schemas', change, names],
-    queryFn: ({ signal }) => get<Record<string, unknown>>(`${at(change)}/schemas`, { signal }),
-    select: readSchemas,
+    queryFn: async ({ signal }) => readSchemas(await get<Record<string, unknown>>(`${at(change)}/schemas`, { signal })),
     staleTime: 300_000,
     placeholderData: (before) => before,
   })
 
 /** A version that can't be read is left out; its joints then show no parameters, and the check says why. */
-function readSchemas(raw: Record<string, unknown>): Schemas {
+async function readSchemas(raw: Record<string, unknown>): Promise<Schemas> {
+  // The reader comes with the first change that is opened; lists need none.
+  const { readParameterSchema } = await import('../../../shared/registers/read-parameter-schema.ts')
   return Object.fromEntries(
     Object.entries(raw).flatMap(([name, json]) => {
       const reading = readParameterSchema(json)

@@ -1,4 +1,5 @@
-import { loopNames, type CheckResult, type Finding, type JointCheck, type LoopFigures, type LoopName, type Verdict } from '../../../shared/contract/checks.ts'
+import type { CheckResult, Finding, JointCheck, LoopFigures, Verdict } from '../../../shared/contract/checks.ts'
+import { loopNames, type LoopName } from '../../../shared/contract/loop-names.ts'
 
 export interface Figure {
   loop: LoopName

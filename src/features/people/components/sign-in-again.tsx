@@ -1,8 +1,11 @@
 import { useQueryClient } from '@tanstack/react-query'
-import { useEffect, useState } from 'react'
+import { lazy, Suspense, useEffect, useState } from 'react'
+import { Waiting } from '../../../components/ui/waiting.tsx'
 import { Dialog } from '../../../components/ui/dialog.tsx'
 import { onSignedOut } from '../../../lib/api-client.ts'
-import { SignInForm } from './sign-in-form.tsx'
+
+// Needed when a session ends, not before.
+const SignInForm = lazy(() => import('./sign-in-form.tsx').then((m) => ({ default: m.SignInForm })))
 
 /** Comes over the page when the session has ended, so that what was typed there is not lost. */
 export function SignInAgain({ email }: { email: string }) {
@@ -13,7 +16,8 @@ export function SignInAgain({ email }: { email: string }) {
   return (
     <Dialog open={open} onClose={() => setOpen(false)} title="Sign in again">
       <p>Your session has ended. What you typed is still on the page behind; after signing in, do the act again.</p>
-      <SignInForm
+      <Suspense fallback={<Waiting what="the form" lines={2} />}>
+        <SignInForm
         email={email}
         fixedEmail
         onEmail={() => {}}
@@ -25,6 +29,7 @@ export function SignInAgain({ email }: { email: string }) {
           void client.invalidateQueries()
         }}
       />
+      </Suspense>
     </Dialog>
   )
 }
