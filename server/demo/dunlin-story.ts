@@ -34,7 +34,7 @@ export async function dunlinStory(story: Story, services: Services, set: Machine
 
   story.day(54)
   await story.through(
-    { machine, title: 'Current task back to full rate', reason: 'Takes back the half rate of the withdrawn release.', author: mirela, content: [[value('hip', 'currentRate'), 16000], [value('hip', 'currentGain'), 1.2], [value('hip', 'currentIntegralGain'), 3400]] },
+    { machine, title: 'Current task back to full rate', reason: 'Takes back the half rate of the withdrawn release. For the August survey the tether controller alone stops the winch.', author: mirela, content: [[value('hip', 'currentRate'), 16000], [value('hip', 'currentGain'), 1.2], [value('hip', 'currentIntegralGain'), 3400], [value('winch', 'busTimeout'), 0]], concession: { reason: 'The tether controller cuts the winch’s supply when the bus falls silent; tried on the quay with the cable pulled. Until the survey is over.', days: 30 } },
     rafiq, hedda,
   )
   await afterRelease(story, '1.3.0')
@@ -48,7 +48,7 @@ export async function dunlinStory(story: Story, services: Services, set: Machine
 
   story.day(131)
   await story.through(
-    { machine, title: 'Knee current limit after the gear train of October', reason: 'The new gear train is rated for 6.6 N·m; 2.80 A stays under it with 15 % in hand.', author: mirela, content: [[value('knee', 'currentLimit'), 2.8]] },
+    { machine, title: 'Knee current limit after the gear train of October', reason: 'The new gear train is rated for 6.6 N·m; 2.80 A stays under it with 15 % in hand. The winch watches its bus itself again.', author: mirela, content: [[value('knee', 'currentLimit'), 2.8], [value('winch', 'busTimeout'), 0.5]] },
     rafiq, hedda,
   )
   await afterRelease(story, '1.4.0')

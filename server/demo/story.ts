@@ -38,6 +38,8 @@ export interface Proposal {
   author: string
   /** a whole set for the first change of a machine, else single values */
   content: MachineSet | Alteration[]
+  /** for what the check finds outside policy: why, and for how many days; usual ones where it is left out */
+  concession?: { reason: string; days: number }
 }
 
 /** Tells the demo's history with the program's own acts, each at its own time and by its own person. */
@@ -94,13 +96,13 @@ export class Story {
   }
 
   /** Submits; what the check wants a concession for is requested with the reason given. */
-  async submit(change: Change, by: string, concession = '') {
+  async submit(change: Change, by: string, { reason = '', days = 120 }: { reason?: string; days?: number } = {}) {
     const em = this.services.orm.em.fork()
     const { result } = await checkChange(this.then, em, await again(em, change))
     const wanted = result.findings.filter((f) => f.level === 'concession needed')
     if (wanted.length > 0)
       await this.act(async (tx, now) =>
-        describe(await again(tx, change), { concessions: wanted.map((f) => ({ finding: f.key, characteristic: f.kind, limit: `${f.limit ?? ''} ${f.unit}`.trim() || f.kind, reason: concession || `${f.text} Agreed at the bench until the next release.`, until: new Date(now.getTime() + 120 * 86_400_000).toISOString().slice(0, 10), count: null })) }, now),
+        describe(await again(tx, change), { concessions: wanted.map((f) => ({ finding: f.key, characteristic: f.kind, limit: `${f.limit ?? ''} ${f.unit}`.trim() || f.kind, reason: reason || `${f.text} Agreed at the bench until the next release.`, until: new Date(now.getTime() + days * 86_400_000).toISOString().slice(0, 10), count: null })) }, now),
       )
     const prepared = await prepareSubmission(this.then, em.fork(), await again(em, change), { held: await heldRoles(em, await this.person(em, by)), now: this.then.now() })
     await this.act(async (tx, now) => submitChange(tx, await again(tx, change), prepared, { person: await this.person(tx, by), now }))
@@ -156,7 +158,7 @@ export class Story {
   /** From draft to release in the usual four steps. */
   async through(proposal: Proposal, reviewer: string, manager: string, version?: string) {
     const change = await this.draft(proposal)
-    await this.submit(change, proposal.author)
+    await this.submit(change, proposal.author, proposal.concession)
     await this.review(change, reviewer)
     await this.release(change, manager, version)
     return change

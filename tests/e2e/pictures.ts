@@ -1,7 +1,7 @@
 import { mkdirSync } from 'node:fs'
 import { join } from 'node:path'
-import { demoSignIns } from '../../server/modules/people/demo-sign-ins.ts'
 import { openBrowser } from './chromium.ts'
+import { show, signInAs } from './screens.ts'
 import { startServer } from './server.ts'
 
 /** Screens kept as pictures: who looks, where, and under which name. `npm run pictures` makes them anew from the demo workplace. */
@@ -25,13 +25,10 @@ try {
   for (const dark of [false, true])
     for (const [person, path, name, width = 1440] of screens) {
       const browser = await openBrowser({ width, height: width < 600 ? 740 : 1000, dark })
-      const { email, password } = demoSignIns.find((d) => d.name === person)!
-      await browser.request.post(`${server.url}/api/session`, { data: { email, password } })
+      await signInAs(browser, server.url, person)
       const page = browser.pages()[0]
-      await page.goto(`${server.url}${path}`)
-      await page.waitForLoadState('networkidle')
-      await page.evaluate(() => document.fonts.ready.then(() => true))
-      await page.waitForTimeout(1500)
+      await show(page, `${server.url}${path}`)
+      await page.waitForTimeout(800)
       await page.screenshot({ path: join(folder, `${name}${dark ? '-dark' : ''}.png`) })
       await browser.close()
     }

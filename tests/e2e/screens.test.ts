@@ -1,30 +1,15 @@
-import { readFileSync } from 'node:fs'
-import { createRequire } from 'node:module'
 import type { BrowserContext, Page } from 'playwright-core'
 import { afterAll, beforeAll, describe, expect, it } from 'vitest'
+import { faultsOf } from './axe.ts'
 import { openBrowser } from './chromium.ts'
 import { dialogs, screens, show, signInAs } from './screens.ts'
 import { startServer, type RunningServer } from './server.ts'
-
-const axeSource = readFileSync(createRequire(import.meta.url).resolve('axe-core/axe.min.js'), 'utf8')
 
 let server: RunningServer
 let browser: BrowserContext
 let page: Page
 let who: string | null = null
 const errors: string[] = []
-
-interface AxeResults {
-  violations: { id: string; help: string; nodes: { target: string[]; failureSummary: string }[] }[]
-}
-type Axe = { run(context: unknown, options: object): Promise<AxeResults> }
-
-/** What axe finds wrong (WCAG 2.2 A and AA, and its good practices), in lines that name the place. */
-async function axe(scope: string, only?: string[]): Promise<string[]> {
-  const runs = only ? { runOnly: { type: 'rule', values: only } } : { runOnly: { type: 'tag', values: ['wcag2a', 'wcag2aa', 'wcag21a', 'wcag21aa', 'wcag22aa', 'best-practice'] } }
-  const { violations } = await page.evaluate(([at, options]) => (window as unknown as { axe: Axe }).axe.run(at, options as object), [scope, { resultTypes: ['violations'], ...runs }] as const)
-  return violations.flatMap((v) => v.nodes.map((n) => `${v.id}: ${v.help}: ${n.target.join(' ')}: ${n.failureSummary.replaceAll('\n', ' ')}`))
-}
 
 /** Elements that reach past the window's right edge and make the page scroll sideways. */
 const overflow = () =>
@@ -48,7 +33,6 @@ async function widthsThat(widths: readonly number[]) {
 beforeAll(async () => {
   server = await startServer()
   browser = await openBrowser()
-  await browser.addInitScript(axeSource)
   page = browser.pages()[0]
   page.setDefaultTimeout(20_000)
   page.on('pageerror', (error) => errors.push(error.message))
@@ -75,11 +59,9 @@ describe('every screen', () => {
   // Sorted by reader, so that each signs in once.
   const list = Object.entries(screens).sort(([, a], [, b]) => String(a.by).localeCompare(String(b.by)))
 
-  it.each(list)('%s: clean for axe in light and dark, within its width at 1440, 720 (200 % zoom), 360 and 320, no error', async (_name, { by, at }) => {
+  it.each(list)('%s: clean for axe in light and dark, within its width at 1440, 720 (200 % zoom), 360 and 320, no error', async (name, { by, at }) => {
     await open(by, at)
-    expect(await axe('body')).toEqual([])
-    await page.emulateMedia({ colorScheme: 'dark' })
-    expect(await axe('body', ['color-contrast'])).toEqual([])
+    expect(await faultsOf(page, name)).toEqual([])
     expect(await widthsThat([1440, 720, 360, 320])).toEqual([])
     expect(errors).toEqual([])
   })
@@ -91,7 +73,7 @@ describe('every dialog', () => {
     const button = page.getByRole('button', { name: new RegExp(`^${press}`) }).first()
     await button.click()
     await page.locator('dialog[open]').waitFor()
-    expect(await axe('dialog[open]')).toEqual([])
+    expect(await faultsOf(page, press)).toEqual([])
     await page.setViewportSize({ width: 360, height: 740 })
     expect(await overflow()).toEqual([])
     await page.keyboard.press('Escape')
@@ -109,7 +91,7 @@ describe('help and search, by keyboard in a real browser', () => {
     await page.keyboard.press('F1')
     const dialog = page.getByRole('dialog', { name: 'Velocity gain' })
     await dialog.waitFor()
-    expect(await axe('.help-popover')).toEqual([])
+    expect(await faultsOf(page, 'help')).toEqual([])
     await page.keyboard.press('Escape')
     await dialog.waitFor({ state: 'detached' })
     expect(await page.evaluate(() => document.activeElement?.getAttribute('aria-label'))).toBe('what is Speed gain?')
@@ -120,7 +102,7 @@ describe('help and search, by keyboard in a real browser', () => {
     await page.keyboard.press('/')
     await page.keyboard.type('r3 knee')
     await page.getByRole('option', { name: /^R3 knee/ }).first().waitFor()
-    expect(await axe('form[role=search]')).toEqual([])
+    expect(await faultsOf(page, 'search')).toEqual([])
     await page.keyboard.press('ArrowDown')
     await page.keyboard.press('Enter')
     await page.waitForURL('**/machines/dunlin/joints/r3-knee')

@@ -46,7 +46,7 @@ export const screens: Record<keyof typeof paths, Screen> = {
   keys: { by: silvan, at: paths.keys() },
   backups: { by: silvan, at: paths.backups() },
   boards: { by: pascoe, at: paths.boards() },
-  board: { by: pascoe, at: paths.board('H-0325') },
+  board: { by: pascoe, at: paths.board('H-0310') },
   audit: { by: pascoe, at: paths.audit('dunlin') },
   bench: { by: pascoe, at: paths.bench('dunlin', { joint: 'l1-knee' }) },
   benchCard: { by: pascoe, at: paths.benchCard('dunlin', '1.4.0', 'l1-knee') },

@@ -47,6 +47,12 @@ describe('the help', () => {
       }
   })
 
+  it('is written with glyphs of the fonts that are shipped', () => {
+    const ranges = [...file('src/styles/fonts.css').matchAll(/unicode-range: ([^;]+);/g)].flatMap((m) => m[1].split(',').map((r) => r.replace('U+', '').split('-').map((h) => Number.parseInt(h, 16))))
+    const shipped = (c: string) => ranges.some(([from, to = from]) => c.codePointAt(0)! >= from && c.codePointAt(0)! <= to)
+    for (const { topics } of Object.values(helpGroups)) for (const topic of Object.values(topics)) expect([...`${topic.title}${topic.text}${topic.formula ?? ''}${topic.source}`].filter((c) => !shipped(c)), topic.title).toEqual([])
+  })
+
   it('has nothing to say about what it does not know', () => {
     for (const name of ['role:velocity.kd', 'finding:colour', 'figure:weight', 'velocity.kp']) expect(findHelp(name)).toBeNull()
   })

@@ -45,7 +45,7 @@ export function TopBar({ home, places, machines, machine, search, person, person
           <span className="max-[419px]:sr-only">Detent</span>
         </Link>
         <Menu label="machine" items={machines}>
-          <span className="max-w-[9rem] truncate">{machine ?? 'All machines'}</span>
+          <span className="max-w-[9rem] truncate max-[359px]:max-w-[4rem]">{machine ?? 'All machines'}</span>
           <Chevron />
         </Menu>
         <nav aria-label="main" className="bar-nav">

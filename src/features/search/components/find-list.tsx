@@ -1,7 +1,7 @@
 import { useEffect, useRef } from 'react'
 import type { Find } from '../../../../shared/contract/search.ts'
 import { Key } from '../../../components/ui/key.tsx'
-import { kindWords } from '../find-words.ts'
+import { kindWords } from '../kind-words.ts'
 import type { Finds } from '../use-finds.ts'
 
 export interface FindListProps {

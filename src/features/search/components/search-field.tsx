@@ -1,12 +1,13 @@
-import { useEffect, useId, useRef, useState } from 'react'
+import { lazy, Suspense, useEffect, useId, useRef, useState } from 'react'
 import type { KeyboardEvent } from 'react'
 import { useNavigate } from 'react-router'
 import { paths } from '../../../app/paths.ts'
 import { Key } from '../../../components/ui/key.tsx'
 import { isTyping } from '../../../components/ui/is-typing.ts'
-import { pathOf } from '../find-words.ts'
+import { pathOf } from '../find-path.ts'
 import { useFinds } from '../use-finds.ts'
-import { FindList } from './find-list.tsx'
+
+const FindList = lazy(() => import('./find-list.tsx').then((m) => ({ default: m.FindList })))
 
 /**
  * The search of the top bar (WAI-ARIA APG, combobox with a listbox): `/` brings the focus here from anywhere on the page, arrows walk the
@@ -104,7 +105,11 @@ export function SearchField({ className = '' }: { className?: string }) {
       <span role="status" className="sr-only">
         {shown ? finds.told : ''}
       </span>
-      {shown && <FindList id={id} finds={finds} active={active} onPick={(find) => go(pathOf(find.at))} />}
+      {shown && (
+        <Suspense fallback={null}>
+          <FindList id={id} finds={finds} active={active} onPick={(find) => go(pathOf(find.at))} />
+        </Suspense>
+      )}
     </form>
   )
 }

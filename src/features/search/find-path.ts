@@ -1,9 +1,5 @@
-import type { FindKind, FindPlace } from '../../../shared/contract/search.ts'
+import type { FindPlace } from '../../../shared/contract/search.ts'
 import { paths } from '../../app/paths.ts'
-
-export const kindWords: Record<FindKind, string> = {
-  machine: 'Machines', joint: 'Joints', family: 'Families', bus: 'Buses', value: 'Values', register: 'Registers', board: 'Boards', change: 'Changes', release: 'Releases', firmware: 'Firmware', hash: 'Hashes', person: 'People',
-}
 
 /** The address that a find leads to. A draft is opened where it is edited, every other change where it is read. */
 export function pathOf(at: FindPlace): string {
