@@ -21,7 +21,7 @@ function compressed(folder: string): RequestHandler {
   const kept = new Map<string, Promise<Buffer>>()
   return (req, res, next) => {
     const [, name, ending] = /^\/([\w.-]+\.(js|css))$/.exec(req.path) ?? []
-    const encoding = req.acceptsEncodings(['br', 'gzip']) as 'br' | 'gzip' | false
+    const encoding = (['br', 'gzip'] as const).find((e) => req.acceptsEncodings(e))
     if (!name || req.method !== 'GET' || !encoding) return next()
     const key = `${encoding} ${name}`
     const bytes = kept.get(key) ?? readFile(join(folder, name)).then(encodings[encoding])

@@ -32,9 +32,12 @@ async function typed(groups: FindGroup[], text = 'knee') {
   const server = fakeServer(frame(groups))
   const app = openApp('/search')
   await screen.findByText('Nothing is asked for.')
-  fireEvent.keyDown(document.body, { key: '/' })
-  field = document.activeElement as HTMLInputElement
-  expect(screen.getAllByRole('combobox', { name: 'search' })).toContain(field)
+  // A page that has just come takes the focus; the key is pressed after that.
+  await waitFor(() => {
+    fireEvent.keyDown(document.body, { key: '/' })
+    field = document.activeElement as HTMLInputElement
+    expect(screen.getAllByRole('combobox', { name: 'search' })).toContain(field)
+  })
   fireEvent.change(box(), { target: { value: text } })
   return { server, app }
 }

@@ -1,6 +1,7 @@
 import type { FindKind, FindPlace } from '../../../shared/contract/search.ts'
 import type { MachineSet, Value } from '../../../shared/parameters/machine-set.ts'
 import type { Parameter, ParameterSchema } from '../../../shared/registers/parameter-schema.ts'
+import { formatExact } from '../../../shared/units/format.ts'
 import type { Machine } from '../machines/machine.entity.ts'
 import type { Findable } from './words.ts'
 
@@ -19,7 +20,7 @@ type Schemas = Readonly<Record<string, ParameterSchema>>
 
 const text = (...parts: (string | number | null | undefined)[]) => parts.filter((p) => p !== null && p !== undefined).join(' ').toLowerCase()
 
-const shown = (value: Value, unit: string | null) => `${String(value)}${unit ? ` ${unit}` : ''}`
+const shown = (value: Value, unit: string | null) => `${typeof value === 'boolean' ? (value ? 'on' : 'off') : formatExact(value)}${unit ? ` ${unit}` : ''}`
 
 function valueRows({ machine, owner, values, parameters, at }: { machine: Named; owner: string; values: Readonly<Record<string, Value>>; parameters: ReadonlyMap<string, Parameter>; at: FindPlace }): Row[] {
   return Object.entries(values).map(([name, value]) => {

@@ -3,7 +3,6 @@ import { useUrlSort } from '../../../components/layout/use-url-state.ts'
 import { valueText } from '../../../components/layout/value-text.ts'
 import { HexAddress } from '../../../components/ui/hex-address.tsx'
 import { HelpButton } from '../../../components/ui/help-button.tsx'
-import { Num } from '../../../components/ui/num.tsx'
 import { Table } from '../../../components/ui/table.tsx'
 import type { Column } from '../../../components/ui/table.tsx'
 
@@ -44,7 +43,7 @@ const columns: Column<FirmwareParameter>[] = [
   },
   { key: 'encoding', head: 'Encoding', className: 'num text-13', sortBy: (p) => p.register?.encoding ?? null, cell: (p) => p.register?.encoding ?? '' },
   { key: 'access', head: 'Access', className: 'text-13', sortBy: (p) => p.register?.access ?? null, cell: (p) => p.register && { rw: '', ro: 'read only', wo: 'written only' }[p.register.access] },
-  { key: 'default', head: 'Default', align: 'end', className: 'num', cell: (p) => (p.default === null ? <Num value={null} /> : valueText(p.default)) },
+  { key: 'default', head: 'Default', decimal: (p) => (p.default === null ? null : valueText(p.default)) },
   { key: 'unit', head: 'Unit', className: 'text-ink-2', cell: (p) => p.unit },
   { key: 'allowed', head: 'Allowed', className: 'num text-13 whitespace-nowrap text-ink-2', cell: (p) => <span title={p.choices?.join(', ')}>{allowed(p)}</span> },
   { key: 'role', head: 'Role', className: 'num text-13 whitespace-nowrap', sortBy: (p) => p.role, cell: (p) => <>{p.role} {p.role && <HelpButton topic={`role:${p.role}`} about={p.title || p.name} />}{p.boardBound && <span className="font-sans text-ink-2"> board-bound</span>}</> },

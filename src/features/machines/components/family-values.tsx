@@ -16,10 +16,10 @@ export function FamilyValues({ machine, values, joints }: { machine: string; val
   const nameOf = new Map(joints.map((j) => [j.key, j.name]))
   const columns: Column<FamilyValue>[] = [
     { key: 'parameter', head: 'Parameter', className: 'whitespace-nowrap', sortBy: (v) => v.title, cell: (v) => <>{v.title} {v.role && <HelpButton topic={`role:${v.role}`} about={v.title} />}</> },
-    { key: 'value', head: 'Value', align: 'end', className: 'num', cell: (v) => valueText(v.familyValue ?? v.firmwareDefault) },
+    { key: 'value', head: 'Value', decimal: (v) => valueText(v.familyValue ?? v.firmwareDefault) },
     { key: 'unit', head: 'Unit', className: 'text-ink-2', cell: (v) => v.unit },
     { key: 'origin', head: 'Origin', sortBy: (v) => (v.familyValue === null ? 0 : 1), cell: (v) => <OriginMark origin={v.familyValue === null ? 'firmware' : 'family'} /> },
-    { key: 'default', head: 'Firmware default', align: 'end', className: 'num text-13 text-ink-2', cell: (v) => valueText(v.firmwareDefault) },
+    { key: 'default', head: 'Firmware default', className: 'text-13 text-ink-2', decimal: (v) => (v.firmwareDefault === null ? null : valueText(v.firmwareDefault)) },
     {
       key: 'own',
       head: 'Joints that depart',

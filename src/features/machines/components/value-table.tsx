@@ -7,7 +7,7 @@ import { Num } from '../../../components/ui/num.tsx'
 import { OriginMark } from '../../../components/ui/origin-mark.tsx'
 import { Table } from '../../../components/ui/table.tsx'
 import type { Column } from '../../../components/ui/table.tsx'
-import { formatNumber } from '../../../lib/format.ts'
+import { formatHex, formatNumber } from '../../../lib/format.ts'
 
 const range = (v: ParameterValue) => (v.minimum === null && v.maximum === null ? null : `${v.minimum === null ? '' : valueText(v.minimum)} … ${v.maximum === null ? '' : valueText(v.maximum)}`)
 
@@ -33,7 +33,7 @@ const columns: Column<ParameterValue>[] = [
       </span>
     ),
   },
-  { key: 'value', head: 'Value', align: 'end', className: 'num whitespace-nowrap', cell: (v) => (isAddress(v) && typeof v.value === 'number' ? <HexAddress address={v.value} /> : valueText(v.value)) },
+  { key: 'value', head: 'Value', decimal: (v) => (isAddress(v) && typeof v.value === 'number' ? formatHex(v.value) : valueText(v.value)) },
   { key: 'unit', head: 'Unit', className: 'text-ink-2', cell: (v) => v.unit },
   {
     key: 'origin',
