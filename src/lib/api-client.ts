@@ -57,7 +57,8 @@ export function onCodeAsked(listener: () => void): () => void {
 
 const isRecord = (v: unknown): v is Record<string, unknown> => typeof v === 'object' && v !== null && !Array.isArray(v)
 
-async function problemOf(response: Response): Promise<ApiProblem> {
+/** What a refused request was answered. */
+export async function problemOf(response: Response): Promise<ApiProblem> {
   const body: unknown = await response.json().catch(() => null)
   if (!isRecord(body) || typeof body.detail !== 'string')
     return new ApiProblem({ code: 'unexpected', status: response.status, title: 'Something failed', detail: `The server answered ${response.status} without a reason. What you typed is still here; try again, and tell an administrator if it stays.` })

@@ -1,4 +1,4 @@
-import { ApiProblem } from './api-client.ts'
+import { ApiProblem, problemOf } from './api-client.ts'
 
 export interface TakenFile {
   name: string
@@ -23,10 +23,7 @@ const hexOf = (buffer: ArrayBuffer) => Array.from(new Uint8Array(buffer), (b) =>
 export async function takeFile(href: string, otherwise: string): Promise<TakenFile> {
   const response = await fetch(href, { credentials: 'same-origin' }).catch(() => null)
   if (!response) throw new ApiProblem({ code: 'network', status: 0, title: 'No answer', detail: 'Detent did not answer; nothing was downloaded. Check the network and try again.' })
-  if (!response.ok) {
-    const body = (await response.json().catch(() => ({}))) as { title?: string; detail?: string; type?: string }
-    throw new ApiProblem({ code: String(body.type ?? 'unexpected').split('/').at(-1)!, status: response.status, title: body.title ?? 'Nothing was downloaded', detail: body.detail ?? `The server answered ${response.status}. Nothing was downloaded.` })
-  }
+  if (!response.ok) throw await problemOf(response)
   const bytes = new Uint8Array(await response.arrayBuffer())
   const sha256 = hexOf(await crypto.subtle.digest('SHA-256', bytes))
   const stated = response.headers.get('X-Detent-SHA256')

@@ -1,7 +1,8 @@
-import { lazy, Suspense, useRef, useState } from 'react'
-import type { KeyboardEvent, ReactNode, RefObject } from 'react'
+import { lazy, Suspense, useState } from 'react'
+import type { KeyboardEvent, ReactNode, Ref } from 'react'
 import type { Column, Sort } from './table-column.ts'
 import { TableHead } from './table-head.tsx'
+import type { RowWindow } from './row-window.ts'
 import { TableRow } from './table-row.tsx'
 import { usePrinting } from './use-printing.ts'
 
@@ -10,16 +11,6 @@ export type { Column, Sort } from './table-column.ts'
 /** A table with more rows than this keeps only those near the window in the page. */
 const mostRowsInPage = 120
 const LongTable = lazy(() => import('./long-table.tsx'))
-
-/** Which rows are in the page: places of those, and who measures them; heights of what is left out, px; widths that the columns keep. */
-export interface RowWindow {
-  shown: { index: number; ref?: (row: HTMLTableRowElement | null) => void }[]
-  before: number
-  after: number
-  widths: readonly number[] | null
-  /** brings a row into the page and gives it the focus; null: they are all in it */
-  goTo: ((index: number) => void) | null
-}
 
 export interface TableProps<Row> {
   /** Named for a screen reader; not shown. */
@@ -54,12 +45,11 @@ export function Table<Row>({ label, rows, columns, rowKey, rowTo, onOpen, chosen
   const sorted = sortRows(rows, columns, sort)
   const places = new Map(columns.filter((c) => c.decimal).map((c) => [c.key, decimalPlaces(rows, c)]))
 
-  const frame = useRef<HTMLDivElement>(null)
   const printing = usePrinting()
   const long = sorted.length > mostRowsInPage && !printing
   const first = (count: number): RowWindow => ({ shown: Array.from({ length: Math.min(count, sorted.length) }, (_, index) => ({ index })), before: 0, after: 0, widths: null, goTo: null })
 
-  const draw = (holder: RefObject<HTMLDivElement | null>, { shown: given, before, after, widths, goTo }: RowWindow) => {
+  const draw = (holder: Ref<HTMLDivElement>, { shown: given, before, after, widths, goTo }: RowWindow) => {
     // A filter may have shortened the table since its rows were placed.
     const shown = given.filter(({ index }) => index < sorted.length)
     const inPage = shown.map(({ index }) => rowKey(sorted[index]))
@@ -107,9 +97,9 @@ export function Table<Row>({ label, rows, columns, rowKey, rowTo, onOpen, chosen
       </div>
     )
   }
-  if (!long) return draw(frame, first(sorted.length))
+  if (!long) return draw(null, first(sorted.length))
   return (
-    <Suspense fallback={draw(frame, first(40))}>
+    <Suspense fallback={draw(null, first(40))}>
       <LongTable count={sorted.length} columns={columns.length} rowHeight={dense ? 27 : 33} draw={draw} />
     </Suspense>
   )

@@ -1,4 +1,4 @@
-import supertest from 'supertest'
+import type supertest from 'supertest'
 import type { EvidenceView } from '../../../shared/contract/evidence.ts'
 import { backAndForth } from '../../../server/demo/evidence-story.ts'
 import { benchLogOfRun, csvOf, positionColumns, type BenchRun } from '../../../server/demo/bench-log-text.ts'
