@@ -85,8 +85,8 @@ async function makeFile(em: EntityManager, change: Change, { joint, board, forma
 export async function takeBenchImage(services: Services, em: EntityManager, change: Change, wish: BenchWish, speaker: Speaker): Promise<TakenFile> {
   mustBeAuthors(change, speaker)
   const want = wanted(change, wish)
-  await mustNotBlock(services, em, change)
   const { imageSha256, ...file } = await makeFile(em, change, want)
+  await mustNotBlock(services, em, change)
   await services.orm.em.fork().transactional(async (tx) => {
     const { name } = setOf(change.text).joints[want.joint]
     const machine = await tx.findOneOrFail(Machine, { id: change.machine.id })
