@@ -9,6 +9,7 @@ import { fileStore } from './db/file-store.ts'
 import { secretFile } from './db/secret-file.ts'
 import { holdDatabase } from './db/only-process.ts'
 import { assertTerms } from './db/terms.ts'
+import { clearCutOff, underMark } from './demo/cut-off.ts'
 import { demoBegins, makeDemo } from './demo/make-demo.ts'
 import { makeLog } from './http/log.ts'
 import { serveClient } from './http/serve-client.ts'
@@ -32,6 +33,7 @@ async function start(clientBuilt: Promise<unknown>) {
   mkdirSync(config.dataDir, { recursive: true, mode: 0o700 })
   const places = placesOf(config)
   const release = holdDatabase(places.database)
+  if (config.mode === 'demo') clearCutOff(config.dataDir, places)
   const orm = await openWorkplaceDatabase(config)
   log.info(await assertTerms(orm, places.database), 'the database is open')
   const { secret: sessionKey } = secretFile(join(config.dataDir, 'session.key'), 'the key that signs session cookies')
@@ -48,7 +50,7 @@ async function start(clientBuilt: Promise<unknown>) {
   if (made && (await orm.em.fork().count(Person, { secondFactorAt: { $ne: null } })) > 0)
     log.error(`The key of the second factors was missing and made anew: the ones set up before are good no more. Put ${sealKeyName} back, or let people sign in with recovery codes.`)
   const services: Services = { config, orm, now: () => new Date(), checks, files: fileStore(places.files), keys, seals, mailQueued: () => wake() }
-  if (toldFirst) await makeDemo(services)
+  if (toldFirst) await underMark(config.dataDir, () => makeDemo(services))
   const sender = startMailSender(services, log)
   wake = () => sender.wake()
   const backups = startDailyBackups(services, log)
