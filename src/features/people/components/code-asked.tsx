@@ -1,49 +1,16 @@
-import { useEffect, useState } from 'react'
-import { ProblemPanel } from '../../../components/problem/problem-panel.tsx'
-import { Button } from '../../../components/ui/button.tsx'
-import { Dialog } from '../../../components/ui/dialog.tsx'
-import { fieldError, onCodeAsked } from '../../../lib/api-client.ts'
-import { useEnterCode } from '../mutations.ts'
-import { CodeField } from './code-field.tsx'
+import { lazy, Suspense, useEffect, useState } from 'react'
+import { onCodeAsked } from '../../../lib/api-client.ts'
+
+// Needed before a signature, where the workplace asks for it, and not before.
+const EnterCode = lazy(() => import('./enter-code.tsx'))
 
 /** Comes over the page when the workplace asks for a code before a signature; what was typed stays behind it. */
 export function CodeAsked() {
   const [open, setOpen] = useState(false)
   useEffect(() => onCodeAsked(() => setOpen(true)), [])
-  return open ? <EnterCode onClose={() => setOpen(false)} /> : null
-}
-
-function EnterCode({ onClose }: { onClose: () => void }) {
-  const enter = useEnterCode()
-  const [code, setCode] = useState('')
-  const send = () => enter.mutate(code.trim(), { onSuccess: onClose, onError: () => setCode('') })
-  return (
-    <Dialog
-      open
-      onClose={onClose}
-      busy={enter.isPending}
-      title="Enter a code before you sign"
-      actions={
-        <>
-          <Button kind="primary" unavailable={code.trim() === '' ? 'Enter a code first.' : null} pending={enter.isPending} onClick={send}>
-            Enter it
-          </Button>
-          <Button onClick={onClose}>Cancel</Button>
-        </>
-      }
-    >
-      <form
-        noValidate
-        className="grid gap-3"
-        onSubmit={(event) => {
-          event.preventDefault()
-          if (code.trim() !== '' && !enter.isPending) send()
-        }}
-      >
-        <p>This workplace asks for a code of your second factor before each signature. Nothing was signed; after this, sign again.</p>
-        <CodeField value={code} onChange={setCode} error={fieldError(enter.error, '/code')} />
-        <ProblemPanel problem={enter.error} shown={['/code']} />
-      </form>
-    </Dialog>
-  )
+  return open ? (
+    <Suspense>
+      <EnterCode onClose={() => setOpen(false)} />
+    </Suspense>
+  ) : null
 }

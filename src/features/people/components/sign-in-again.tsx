@@ -18,17 +18,17 @@ export function SignInAgain({ email }: { email: string }) {
       <p>Your session has ended. What you typed is still on the page behind; after signing in, do the act again.</p>
       <Suspense fallback={<Waiting what="the form" lines={2} />}>
         <SignInForm
-        email={email}
-        fixedEmail
-        onEmail={() => {}}
-        password={password}
-        onPassword={setPassword}
-        onSignedIn={() => {
-          setPassword('')
-          setOpen(false)
-          void client.invalidateQueries()
-        }}
-      />
+          email={email}
+          fixedEmail
+          onEmail={() => {}}
+          password={password}
+          onPassword={setPassword}
+          onSignedIn={() => {
+            setPassword('')
+            setOpen(false)
+            void client.invalidateQueries()
+          }}
+        />
       </Suspense>
     </Dialog>
   )
