@@ -109,7 +109,7 @@ describe('a session that ends', () => {
     tokens = []
     press('Send the invitation')
     const again = await screen.findByRole('dialog', { name: 'Sign in again' })
-    fireEvent.change(within(again).getByLabelText('Password'), { target: { value: 'a long enough password' } })
+    fireEvent.change(await within(again).findByLabelText('Password'), { target: { value: 'a long enough password' } })
     fireEvent.click(within(again).getByRole('button', { name: 'Sign in' }))
     await waitFor(() => expect(screen.queryByRole('dialog', { name: 'Sign in again' })).toBeNull())
     expect(screen.getByLabelText<HTMLInputElement>('Name').value).toBe('Wren Halloran')
