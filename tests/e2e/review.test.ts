@@ -77,8 +77,8 @@ async function grave(at = page): Promise<string[]> {
   const found: string[] = []
   for (const colorScheme of ['light', 'dark'] as const) {
     await at.emulateMedia({ colorScheme, reducedMotion: 'reduce' })
-    // The new colours have to be painted before they are measured.
-    await at.evaluate(() => new Promise((painted) => requestAnimationFrame(() => requestAnimationFrame(painted))))
+    // Chromium brings a new theme's colours to parts that a container query sizes up to a quarter of a second late.
+    await at.waitForTimeout(500)
     await at.evaluate(axe)
     const results = await at.evaluate(async () => {
       const { run } = (window as unknown as { axe: { run(): Promise<{ violations: { id: string; impact: string; nodes: { target: string[]; failureSummary: string }[] }[] }> } }).axe
