@@ -176,9 +176,9 @@ describe('a kit whose stored parts were meddled with', () => {
     ['a stored value', "update revision set content = replace(content, '3.2', '3.4')", 'revision', /image of l1-knee .* encode to other bytes/],
     ["a joint's address", "update revision set content = replace(content, '\"address\":51', '\"address\":52')", 'revision', /not what was signed/],
     ['the manifest', "update release_kit set manifest = replace(manifest, '1.0.0', '1.0.9')", 'release_kit', /The manifest .* SHA-256/],
-    ["the manifest's signature", "update release_kit set signature = cast(x'00' || substr(signature, 2) as blob)", 'release_kit', /The manifest .* signature does not hold/],
+    ["the manifest's signature", "update release_kit set signature = cast(case substr(signature, 1, 1) when x'00' then x'01' else x'00' end || substr(signature, 2) as blob)", 'release_kit', /The manifest .* signature does not hold/],
     ['the envelope', "update release_kit set envelope = replace(envelope, 'payload', 'pay1oad')", 'release_kit', /The kit .* envelope/],
-    ["the list's signature", "update release_kit set sums_signature = cast(x'00' || substr(sums_signature, 2) as blob)", 'release_kit', /The kit .* SHA256SUMS/],
+    ["the list's signature", "update release_kit set sums_signature = cast(case substr(sums_signature, 1, 1) when x'00' then x'01' else x'00' end || substr(sums_signature, 2) as blob)", 'release_kit', /The kit .* SHA256SUMS/],
     ['the key it names', `update release_kit set key_id = '${'a'.repeat(64)}'`, 'release_kit', /none of the workplace/],
     ['the content that was signed', "update `release` set content = replace(content, 'knee', 'hip')", 'release', /The content .* signatures bind to/],
   ]
