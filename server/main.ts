@@ -50,7 +50,7 @@ async function start(clientBuilt: Promise<unknown>) {
   if (made && (await orm.em.fork().count(Person, { secondFactorAt: { $ne: null } })) > 0)
     log.error(`The key of the second factors was missing and made anew: the ones set up before are good no more. Put ${sealKeyName} back, or let people sign in with recovery codes.`)
   const services: Services = { config, orm, now: () => new Date(), checks, files: fileStore(places.files), keys, seals, mailQueued: () => wake() }
-  if (toldFirst) await underMark(config.dataDir, () => makeDemo(services))
+  if (toldFirst) await underMark(config.dataDir, (sql) => orm.em.getConnection().execute(sql), () => makeDemo(services))
   const sender = startMailSender(services, log)
   wake = () => sender.wake()
   const backups = startDailyBackups(services, log)

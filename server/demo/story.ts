@@ -4,6 +4,7 @@ import type { Edit } from '../../shared/parameters/edits.ts'
 import type { MachineSet } from '../../shared/parameters/machine-set.ts'
 import { valueAt } from '../../shared/parameters/paths.ts'
 import { editText, printSet } from '../../shared/parameters/set-text.ts'
+import { DomainError } from '../http/errors.ts'
 import type { Services } from '../http/services.ts'
 import { describe, type Change } from '../modules/changes/change.entity.ts'
 import { draftChange } from '../modules/changes/draft-change.ts'
@@ -95,16 +96,28 @@ export class Story {
       })
   }
 
-  /** Submits; what the check wants a concession for is requested with the reason given. */
-  async submit(change: Change, by: string, { reason = '', days = 120 }: { reason?: string; days?: number } = {}) {
+  private async prepareSubmission(change: Change, by: string) {
+    const em = this.services.orm.em.fork()
+    return prepareSubmission(this.then, em, await again(em, change), { held: await heldRoles(em, await this.person(em, by)), now: this.now })
+  }
+
+  /** Requests a concession for everything that the check wants one for. */
+  private async requestConcessions(change: Change, reason: string, days: number) {
     const em = this.services.orm.em.fork()
     const { result } = await checkChange(this.then, em, await again(em, change))
     const wanted = result.findings.filter((f) => f.level === 'concession needed')
-    if (wanted.length > 0)
-      await this.act(async (tx, now) =>
-        describe(await again(tx, change), { concessions: wanted.map((f) => ({ finding: f.key, characteristic: f.kind, limit: `${f.limit ?? ''} ${f.unit}`.trim() || f.kind, reason: reason || `${f.text} Agreed at the bench until the next release.`, until: new Date(now.getTime() + days * 86_400_000).toISOString().slice(0, 10), count: null })) }, now),
-      )
-    const prepared = await prepareSubmission(this.then, em.fork(), await again(em, change), { held: await heldRoles(em, await this.person(em, by)), now: this.then.now() })
+    await this.act(async (tx, now) =>
+      describe(await again(tx, change), { concessions: wanted.map((f) => ({ finding: f.key, characteristic: f.kind, limit: `${f.limit ?? ''} ${f.unit}`.trim() || f.kind, reason: reason || `${f.text} Agreed at the bench until the next release.`, until: new Date(now.getTime() + days * 86_400_000).toISOString().slice(0, 10), count: null })) }, now),
+    )
+  }
+
+  /** Submits; what the check wants a concession for is requested with the reason given. */
+  async submit(change: Change, by: string, { reason = '', days = 120 }: { reason?: string; days?: number } = {}) {
+    const prepared = await this.prepareSubmission(change, by).catch(async (error: unknown) => {
+      if (!(error instanceof DomainError) || !error.fields.some((f) => f.pointer === '/concessions')) throw error
+      await this.requestConcessions(change, reason, days)
+      return this.prepareSubmission(change, by)
+    })
     await this.act(async (tx, now) => submitChange(tx, await again(tx, change), prepared, { person: await this.person(tx, by), now }))
   }
 
