@@ -5,26 +5,10 @@
  * matrix; an interval in which something switches is walked by its Taylor series, whose polynomials give the instants.
  * control-model.md §1, §6.
  */
-import type { Plant } from '../model.ts'
+import type { DriveOptions, Guard, Mode } from './drive-mode.ts'
 import { firstExit } from './first-exit.ts'
 import { COMPLIANT, INPUTS, RIGID, structure, transition } from './structure.ts'
 import type { StateIndex, Structure } from './structure.ts'
-
-export interface DriveOptions {
-  plant: Plant
-  /** Winding temperature, °C. */
-  T_winding: number
-  theta_0: number
-  /** N·m at the output, opposing positive motion. */
-  tau_load: number
-  /** Friction moving and at rest, N·m. */
-  tau_c: number
-  tau_s: number
-  /** Whole gap between the teeth, rad; 0 when there is none. */
-  backlash: number
-  /** Length of one unit of `advance`, s. */
-  unit: number
-}
 
 const DEGREE = 18
 /** Dips of a switching function that are rounding, not motion: rad/s, rad or N·m, all of order one here. */
@@ -39,30 +23,6 @@ const HALVINGS = 40
 
 /** Pieces tried in one stiff interval while switchings are still located. */
 const MAX_TRIES = 5000
-
-/** A linear function of the state that is ≥ 0 while its mode lasts, and its rate for that mode. */
-interface Guard {
-  row: Float64Array
-  constant: number
-  rateRow: Float64Array
-  rateV: number
-  rateConstant: number
-  crossed: 'friction' | 'contact'
-  /** The mode entered: sliding direction to try, or contact side. */
-  next: number
-}
-
-interface Mode {
-  system: Structure
-  /** Held torque and spring offset of this mode. */
-  tau: number
-  offset: number
-  guards: Guard[]
-  /** By interval length in units: Ad, the column of v, the constant part. */
-  Ad: (Float64Array | undefined)[]
-  bv: (Float64Array | undefined)[]
-  b0: (Float64Array | undefined)[]
-}
 
 export class Drive {
   readonly x: Float64Array

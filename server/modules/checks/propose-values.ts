@@ -1,4 +1,5 @@
-import type { Finding, JointFigures, MapParameter, Proposal, RetuneGain } from '../../../shared/contract/checks.ts'
+import type { Finding, JointFigures, MapParameter } from '../../../shared/contract/checks.ts'
+import type { Proposal, RetuneGain } from '../../../shared/contract/proposals.ts'
 import { applyEdits, type Edit } from '../../../shared/parameters/edits.ts'
 import { valueAt } from '../../../shared/parameters/paths.ts'
 import type { Parameter } from '../../../shared/registers/parameter-schema.ts'

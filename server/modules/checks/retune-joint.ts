@@ -1,5 +1,6 @@
 import type { EntityManager } from '@mikro-orm/core'
-import type { AskRetune, LoopName, RetuneView } from '../../../shared/contract/checks.ts'
+import type { LoopName } from '../../../shared/contract/checks.ts'
+import type { AskRetune, RetuneView } from '../../../shared/contract/proposals.ts'
 import { DomainError } from '../../http/errors.ts'
 import type { Services } from '../../http/services.ts'
 import { request, type RetuneInputs } from '../../jobs/analyses/requests.ts'

@@ -1,4 +1,5 @@
-import { AskMap, AskQuick, AskRetune, AskStartingValues, AskStretches, type CheckView, type StoppedView } from '../../../shared/contract/checks.ts'
+import { AskMap, AskQuick, AskStretches, type CheckView, type StoppedView } from '../../../shared/contract/checks.ts'
+import { AskRetune, AskStartingValues } from '../../../shared/contract/proposals.ts'
 import { route, type RouteSpec } from '../../http/route.ts'
 import type { JobBoard } from '../../jobs/job-board.ts'
 import type { Change } from '../changes/change.entity.ts'

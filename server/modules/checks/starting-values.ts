@@ -1,5 +1,5 @@
 import type { EntityManager } from '@mikro-orm/core'
-import type { AskStartingValues, Proposal, RetuneGain, StartingValuesView } from '../../../shared/contract/checks.ts'
+import type { AskStartingValues, Proposal, RetuneGain, StartingValuesView } from '../../../shared/contract/proposals.ts'
 import { NumericError } from '../../control/errors.ts'
 import type { JointModel } from '../../control/model.ts'
 import { startingValues, type Step, type StartingValues, type Wanted } from '../../control/tuning/starting-values.ts'

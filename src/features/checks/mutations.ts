@@ -1,5 +1,6 @@
 import { useMutation, useQueryClient } from '@tanstack/react-query'
-import type { AskStartingValues, StartingValuesView, StoppedView } from '../../../shared/contract/checks.ts'
+import type { StoppedView } from '../../../shared/contract/checks.ts'
+import type { AskStartingValues, StartingValuesView } from '../../../shared/contract/proposals.ts'
 import { act } from '../../lib/api-client.ts'
 
 const at = (change: string) => `/changes/${encodeURIComponent(change)}/check`

@@ -1,5 +1,6 @@
 import { queryOptions } from '@tanstack/react-query'
-import type { AskMap, AskRetune, AskStretches, CheckView, JointReportView, MapView, Progress, QuickView, RetuneView, StretchesView } from '../../../shared/contract/checks.ts'
+import type { AskMap, AskStretches, CheckView, JointReportView, MapView, Progress, QuickView, StretchesView } from '../../../shared/contract/checks.ts'
+import type { AskRetune, RetuneView } from '../../../shared/contract/proposals.ts'
 import type { Edit } from '../../../shared/parameters/edits.ts'
 import { act, get } from '../../lib/api-client.ts'
 import { isStreamed } from './streamed.ts'

@@ -1,6 +1,6 @@
 /** Joints for the simulation's tests. */
 import type { Firmware, JointModel, Plant } from '../../../server/control/model.ts'
-import type { DriveOptions } from '../../../server/control/simulation/drive.ts'
+import type { DriveOptions } from '../../../server/control/simulation/drive-mode.ts'
 import type { SimulationOptions } from '../../../server/control/simulation/simulate.ts'
 
 const RIGID_PLANT: Plant = {

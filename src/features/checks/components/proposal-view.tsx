@@ -1,4 +1,5 @@
-import { loopNames, type JointCheck, type Proposal } from '../../../../shared/contract/checks.ts'
+import { loopNames, type JointCheck } from '../../../../shared/contract/checks.ts'
+import { type Proposal } from '../../../../shared/contract/proposals.ts'
 import type { Edit } from '../../../../shared/parameters/edits.ts'
 import { fromPointer } from '../../../../shared/parameters/paths.ts'
 import { Num } from '../../../components/ui/num.tsx'

@@ -1,6 +1,7 @@
 import { useQuery } from '@tanstack/react-query'
 import { useState } from 'react'
-import { retuneGains, type AskRetune, type LoopName, type RetuneGain } from '../../../../shared/contract/checks.ts'
+import { type LoopName } from '../../../../shared/contract/checks.ts'
+import { retuneGains, type AskRetune, type RetuneGain } from '../../../../shared/contract/proposals.ts'
 import { ProblemPanel } from '../../../components/problem/problem-panel.tsx'
 import { Button } from '../../../components/ui/button.tsx'
 import { Checkbox } from '../../../components/ui/checkbox.tsx'

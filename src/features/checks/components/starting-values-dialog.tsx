@@ -1,5 +1,6 @@
 import { useState } from 'react'
-import { loopNames, type AskStartingValues, type JointCheck, type LoopName } from '../../../../shared/contract/checks.ts'
+import { loopNames, type JointCheck, type LoopName } from '../../../../shared/contract/checks.ts'
+import { type AskStartingValues } from '../../../../shared/contract/proposals.ts'
 import type { Edit } from '../../../../shared/parameters/edits.ts'
 import { ProblemPanel } from '../../../components/problem/problem-panel.tsx'
 import { Button } from '../../../components/ui/button.tsx'
