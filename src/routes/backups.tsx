@@ -42,7 +42,7 @@ export function Component() {
         backups.isError ? <ProblemPanel problem={backups.error} onRetry={() => void backups.refetch()} /> : <Waiting what="the backups" lines={6} />
       ) : (
         <>
-          {page.failed && <ErrorPanel className="mb-4" title="The last backup failed" happened={<><Time at={page.failed.at} style="long" />: {page.failed.why}</>} kept="The backups below are kept." todo="Look at the disk, then make one now." />}
+          {page.failed && <ErrorPanel className="mb-4" title="The last backup failed" happened={<><Time at={page.failed.at} style="long" />: {page.failed.why}</>} kept="The backups below are kept." whatToDo="Look at the disk, then make one now." />}
           <BackupTable backups={page.backups} />
           <p className="mt-3 text-13 text-ink-2">
             {count(page.backups.length, 'backup')} in <span className="num [overflow-wrap:anywhere]">{page.folder}</span> on the server

@@ -113,7 +113,7 @@ function VersionPage(params: { line: string; version: string }) {
           )
         ) : (
           <>
-            {draft.dirty && <ErrorPanel className="mb-4" title="The map shows what you typed, the table what is saved" todo="Save the draft in the schema view." />}
+            {draft.dirty && <ErrorPanel className="mb-4" title="The map shows what you typed, the table what is saved" whatToDo="Save the draft in the schema view." />}
             {reading.schema ? (
               <section aria-labelledby="map" className="mb-8">
                 <SectionHeading id="map" className="mb-2" aux={`${count(version.image.length, 'byte')} from 0x${version.image.base.toString(16).toUpperCase().padStart(2, '0')}`}>
@@ -122,7 +122,7 @@ function VersionPage(params: { line: string; version: string }) {
                 <AddressMap schema={reading.schema} chosen={chosen} onChoose={setChosen} />
               </section>
             ) : (
-              <ErrorPanel className="mb-4" title="The map cannot be drawn" happened={`The schema has ${count(reading.marks.length, 'place')} to correct.`} todo="They are marked in the schema view." />
+              <ErrorPanel className="mb-4" title="The map cannot be drawn" happened={`The schema has ${count(reading.marks.length, 'place')} to correct.`} whatToDo="They are marked in the schema view." />
             )}
             <section aria-labelledby="parameters">
               <SectionHeading id="parameters" actions={<FilterField label="filter parameters" value={filter} onChange={setFilter} />}>

@@ -75,7 +75,7 @@ export function Component() {
       />
       <MachineFrame machine={machine} boards={boards} bus={joint.bus} joint={joint.key}>
         {joint.problems.length > 0 && (
-          <ErrorPanel className="mb-5" title="These values can't be encoded" todo="Draft a change that mends them, or that moves the joint to another firmware version." pointers={joint.problems.map((p) => ({ pointer: p.pointer, message: p.detail }))} />
+          <ErrorPanel className="mb-5" title="These values can't be encoded" whatToDo="Draft a change that mends them, or that moves the joint to another firmware version." pointers={joint.problems.map((p) => ({ pointer: p.pointer, message: p.detail }))} />
         )}
         {waiting.length > 0 && (
           <section aria-labelledby="waiting" className="mb-8">

@@ -16,7 +16,7 @@ export interface ProblemPanelProps {
 export function ProblemPanel({ problem, shown = [], onRetry, className, children }: ProblemPanelProps) {
   if (!problem) return null
   if (!(problem instanceof ApiProblem))
-    return <ErrorPanel className={className} title="This part of the page failed" happened={problem instanceof Error ? problem.message : String(problem)} todo="What you typed elsewhere is kept. Load the page again; tell an administrator if it stays." onRetry={onRetry} />
+    return <ErrorPanel className={className} title="This part of the page failed" happened={problem instanceof Error ? problem.message : String(problem)} whatToDo="What you typed elsewhere is kept. Load the page again; tell an administrator if it stays." onRetry={onRetry} />
   const rest = problem.errors.filter((e) => !shown.includes(e.pointer))
-  return <ErrorPanel className={className} title={problem.title} happened={problem.detail} todo={children} pointers={rest.map((e) => ({ pointer: e.pointer, message: e.detail }))} onRetry={onRetry} />
+  return <ErrorPanel className={className} title={problem.title} happened={problem.detail} whatToDo={children} pointers={rest.map((e) => ({ pointer: e.pointer, message: e.detail }))} onRetry={onRetry} />
 }

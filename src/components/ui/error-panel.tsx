@@ -13,20 +13,20 @@ export interface ErrorPanelProps {
   title: string
   happened?: ReactNode
   kept?: ReactNode
-  todo?: ReactNode
+  whatToDo?: ReactNode
   pointers?: readonly ErrorPointer[]
   onRetry?: () => void
   className?: string
 }
 
 /** An error in full: what happened, what was kept, what to do, and where. Announced when it appears. */
-export function ErrorPanel({ title, happened, kept, todo, pointers = [], onRetry, className = '' }: ErrorPanelProps) {
+export function ErrorPanel({ title, happened, kept, whatToDo, pointers = [], onRetry, className = '' }: ErrorPanelProps) {
   return (
     <div role="alert" className={`error-panel ${className}`}>
       <p className="font-medium text-oxide">{title}</p>
       {happened && <p>{happened}</p>}
       {kept && <p>{kept}</p>}
-      {todo && <p>{todo}</p>}
+      {whatToDo && <p>{whatToDo}</p>}
       {pointers.length > 0 && (
         <ul className="mt-1 grid gap-1">
           {pointers.map((p, i) => (

@@ -1,6 +1,7 @@
 import { useEffect } from 'react'
 import { useQueryClient, type Query, type QueryClient } from '@tanstack/react-query'
 import type { CheckEvent, Progress } from '../../../shared/contract/checks.ts'
+import { listenInView } from '../../lib/listen-in-view.ts'
 import { isStreamed, setStreamed } from './streamed.ts'
 
 /** A stream that the server closed for good is opened again after this, ms. */
@@ -28,43 +29,24 @@ function take(client: QueryClient, change: string, event: CheckEvent, more: bool
 
 /** Opens a change's stream while the page is in view; returns the way to close it. */
 function openStream(client: QueryClient, change: string): () => void {
-  let source: EventSource | null = null
-  let timer: ReturnType<typeof setTimeout> | undefined
   let finished = -1
-  const drop = () => {
-    if (!isStreamed(change)) return
-    setStreamed(change, false)
-    // Answers that wait are read anew, and from then on at intervals, until the stream is back.
-    void client.invalidateQueries({ queryKey: ['checks', change], predicate: ({ state }) => (state.data as Partly | undefined)?.progress?.state === 'running' })
-  }
-  const close = () => {
-    clearTimeout(timer)
-    source?.close()
-    source = null
-    setStreamed(change, false)
-  }
-  const open = () => {
-    close()
-    source = new EventSource(`/api/changes/${encodeURIComponent(change)}/check/events`)
-    source.onopen = () => setStreamed(change, true)
-    source.onmessage = ({ data }) => {
-      const event = JSON.parse(data as string) as CheckEvent
+  return listenInView(`/api/changes/${encodeURIComponent(change)}/check/events`, {
+    tryAgain: TRY_AGAIN,
+    onOpen: () => setStreamed(change, true),
+    onData: (data) => {
+      const event = JSON.parse(data) as CheckEvent
       const more = event.progress.state !== 'running' || (event.kind === 'check' && finished >= 0 && event.finished !== finished)
       if (event.kind === 'check') finished = event.finished
       take(client, change, event, more)
-    }
-    source.onerror = () => {
-      drop()
-      if (source?.readyState === EventSource.CLOSED) timer = setTimeout(open, TRY_AGAIN)
-    }
-  }
-  const look = () => (document.visibilityState === 'visible' ? open() : close())
-  look()
-  document.addEventListener('visibilitychange', look)
-  return () => {
-    document.removeEventListener('visibilitychange', look)
-    close()
-  }
+    },
+    onBroken: () => {
+      if (!isStreamed(change)) return
+      setStreamed(change, false)
+      // Answers that wait are read anew, and from then on at intervals, until the stream is back.
+      void client.invalidateQueries({ queryKey: ['checks', change], predicate: ({ state }) => (state.data as Partly | undefined)?.progress?.state === 'running' })
+    },
+    onClosed: () => setStreamed(change, false),
+  })
 }
 
 const held = new Map<string, { users: number; close: () => void }>()

@@ -1,5 +1,6 @@
 import { useEffect, useEffectEvent, useState } from 'react'
 import type { ChangeNews, PresencePage, Present } from '../../../shared/contract/presence.ts'
+import { listenInView } from '../../lib/listen-in-view.ts'
 
 type News = Exclude<ChangeNews, { kind: 'present' }>
 
@@ -25,35 +26,18 @@ export function useChangeEvents(change: string, page: PresencePage, { onNews, on
   useEffect(() => {
     // Old browsers and tests of the page know no such streams; the page then reads anew as it always does.
     if (typeof EventSource === 'undefined') return
-    let source: EventSource | null = null
-    let timer: ReturnType<typeof setTimeout> | undefined
     let opened = false
-    const close = () => {
-      clearTimeout(timer)
-      source?.close()
-      source = null
-      setPresent([])
-    }
-    const open = () => {
-      close()
-      source = new EventSource(`/api/changes/${encodeURIComponent(change)}/events?page=${page}`)
-      source.onopen = () => {
+    const alone = () => setPresent([])
+    return listenInView(`/api/changes/${encodeURIComponent(change)}/events?page=${page}`, {
+      tryAgain: TRY_AGAIN,
+      onOpen: () => {
         if (opened) missed()
         opened = true
-      }
-      source.onmessage = ({ data }) => hear(JSON.parse(data as string) as ChangeNews)
-      source.onerror = () => {
-        setPresent([])
-        if (source?.readyState === EventSource.CLOSED) timer = setTimeout(open, TRY_AGAIN)
-      }
-    }
-    const look = () => (document.visibilityState === 'visible' ? open() : close())
-    look()
-    document.addEventListener('visibilitychange', look)
-    return () => {
-      document.removeEventListener('visibilitychange', look)
-      close()
-    }
+      },
+      onData: (data) => hear(JSON.parse(data) as ChangeNews),
+      onBroken: alone,
+      onClosed: alone,
+    })
   }, [change, page])
   return present
 }

@@ -77,7 +77,7 @@ export function BenchJoint({ card, boards, serial: given, takeFile }: BenchJoint
         <TapDrawing state={card.board?.state ?? 'unknown'} />
       </header>
       <Caution className="mt-2" />
-      {card.state === 'withdrawn' && <ErrorPanel className="mt-3" title={`${card.version} is withdrawn`} happened="It must not be flashed, and no board may run with it." todo="If it was flashed all the same, record it: the board is marked, and the release managers are told." />}
+      {card.state === 'withdrawn' && <ErrorPanel className="mt-3" title={`${card.version} is withdrawn`} happened="It must not be flashed, and no board may run with it." whatToDo="If it was flashed all the same, record it: the board is marked, and the release managers are told." />}
       <ol className="mt-3">
         <Step at={inHand === '' ? 'now' : 'done'} title={inHand === '' ? 'Which board?' : <>Board <span className="num">{inHand}</span></>}>
           {another ? (
@@ -180,7 +180,7 @@ function Recorded({ board, boards, joint, onAgain }: { board: BoardView; boards:
         <span className="num">{board.serial}</span>: {board.why}
       </p>
       <BoardMark state={board.state} className="mt-1" />
-      {board.state === 'withdrawn release on board' && <ErrorPanel className="mt-3" title="This board holds a withdrawn release" happened="It is on record, and the release managers were told." todo="Keep its joint from running until it is flashed with a release that stands, and read back." />}
+      {board.state === 'withdrawn release on board' && <ErrorPanel className="mt-3" title="This board holds a withdrawn release" happened="It is on record, and the release managers were told." whatToDo="Keep its joint from running until it is flashed with a release that stands, and read back." />}
       <div className="mt-4 grid gap-2 sm:flex">
         {next && (
           <LinkButton kind="primary" className="min-h-[44px]" to={paths.bench(board.machine, { joint: next.joint, withdrawn: boards.current === null })}>

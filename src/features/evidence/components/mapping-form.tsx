@@ -49,7 +49,7 @@ export function MappingForm({ log }: { log: EvidenceView }) {
         Which column is which
       </SectionHeading>
       {notes.length > 0 && <ul className="mt-1 text-13 text-ink-2">{notes.map((n) => <li key={n}>{n}</li>)}</ul>}
-      {progress.state === 'failed' && <ErrorPanel className="mt-3" title="The log could not be read" happened={progress.problem} kept="The file is kept as it was sent." todo="Choose other columns or units and read it again, or remove it." />}
+      {progress.state === 'failed' && <ErrorPanel className="mt-3" title="The log could not be read" happened={progress.problem} kept="The file is kept as it was sent." whatToDo="Choose other columns or units and read it again, or remove it." />}
       {progress.state === 'stopped' && <p role="status" className="mt-3 text-13">Stopped. The file is kept as it was sent; read it again when you like.</p>}
       <form
         className="mt-3 grid gap-y-2"

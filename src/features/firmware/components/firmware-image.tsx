@@ -1,13 +1,10 @@
 import { useMutation } from '@tanstack/react-query'
-import { useRef, useState } from 'react'
 import { firmwareImageLimit, type FirmwareVersionView } from '../../../../shared/contract/firmware.ts'
 import { ProblemPanel } from '../../../components/problem/problem-panel.tsx'
 import { Button } from '../../../components/ui/button.tsx'
-import { ErrorPanel } from '../../../components/ui/error-panel.tsx'
+import { FileDrop } from '../../../components/ui/file-drop.tsx'
 import { Hash } from '../../../components/ui/hash.tsx'
-import { Progress } from '../../../components/ui/progress.tsx'
 import { SectionHeading } from '../../../components/ui/section-heading.tsx'
-import { ApiProblem } from '../../../lib/api-client.ts'
 import { formatBytes } from '../../../lib/format.ts'
 import { takeFile } from '../../../lib/take-file.ts'
 import { useAttachImage, useDetachImage } from '../mutations.ts'
@@ -56,76 +53,31 @@ export function FirmwareImage({ version, hold }: FirmwareImageProps) {
   )
 }
 
-interface Sending {
-  name: string
-  sent: number
-  total: number
-  stop: () => void
-}
-
 function Attach({ version, hold }: FirmwareImageProps) {
   const attach = useAttachImage(version.line, version.version)
   const detach = useDetachImage(version.line, version.version)
-  const input = useRef<HTMLInputElement>(null)
-  const [sending, setSending] = useState<Sending | null>(null)
-  const [tooLarge, setTooLarge] = useState<string | null>(null)
-  const [over, setOver] = useState(false)
-  const send = (file: File | undefined) => {
-    if (!file || hold || sending) return
-    setTooLarge(file.size > firmwareImageLimit ? `${file.name} has ${formatBytes(file.size)}; at most ${formatBytes(firmwareImageLimit)} are taken.` : null)
-    if (file.size > firmwareImageLimit) return
-    const stopper = new AbortController()
-    setSending({ name: file.name, sent: 0, total: file.size, stop: () => stopper.abort() })
-    attach.mutate(
-      { file, revision: version.revision, signal: stopper.signal, onProgress: (sent, total) => setSending((s) => s && { ...s, sent, total }) },
-      { onSettled: () => setSending(null) },
-    )
-  }
-  const stopped = attach.error instanceof ApiProblem && attach.error.code === 'stopped'
   return (
-    <div
-      className={`mt-3 border border-dashed px-4 py-3 ${over ? 'border-brass bg-brass-wash' : 'border-rule'}`}
-      onDragOver={(e) => {
-        e.preventDefault()
-        setOver(true)
-      }}
-      onDragLeave={() => setOver(false)}
-      onDrop={(e) => {
-        e.preventDefault()
-        setOver(false)
-        send(e.dataTransfer.files[0])
-      }}
-    >
-      <input
-        ref={input}
-        type="file"
-        className="sr-only"
-        tabIndex={-1}
-        aria-label="firmware image file"
+    <>
+      <FileDrop
+        className="mt-3"
+        label="firmware image file"
         accept=".bin,.hex,.ihex,.ihx,application/octet-stream"
-        onChange={(e) => {
-          send(e.target.files?.[0])
-          e.target.value = ''
-        }}
-      />
-      {sending ? (
-        <Progress label={`Sending ${sending.name}`} done={sending.sent} total={sending.total} noun="bytes" onStop={sending.stop} note={sending.sent >= sending.total ? 'hashing and looking at it' : 'stops if you leave'} />
-      ) : (
-        <div className="flex flex-wrap items-center gap-3">
-          <Button unavailable={hold} onClick={() => input.current?.click()}>
-            {version.firmwareImage ? 'Attach another…' : 'Attach a firmware image…'}
+        limit={firmwareImageLimit}
+        hold={hold}
+        afterwards="hashing and looking at it"
+        send={(sent, onSettled) => attach.mutate({ ...sent, revision: version.revision }, { onSettled })}
+        problem={attach.error}
+        shown={['/image']}
+        choose={version.firmwareImage ? 'Attach another…' : 'Attach a firmware image…'}
+      >
+        {version.firmwareImage && (
+          <Button kind="link" unavailable={hold} pending={detach.isPending} onClick={() => detach.mutate(version.revision)}>
+            take it away
           </Button>
-          {version.firmwareImage && (
-            <Button kind="link" unavailable={hold} pending={detach.isPending} onClick={() => detach.mutate(version.revision)}>
-              take it away
-            </Button>
-          )}
-          <span className="text-12 text-ink-2">or drop it here: .bin or Intel HEX, at most {formatBytes(firmwareImageLimit)}; you then count as one of its writers</span>
-        </div>
-      )}
-      {tooLarge && <ErrorPanel className="mt-2" title="The file is too large" happened={tooLarge} kept="Nothing was sent." />}
-      {stopped ? <p className="mt-2 text-13 text-ink-2">Stopped; nothing was kept.</p> : <ProblemPanel className="mt-2" problem={attach.error} shown={['/image']} />}
+        )}
+        <span className="text-12 text-ink-2">or drop it here: .bin or Intel HEX, at most {formatBytes(firmwareImageLimit)}; you then count as one of its writers</span>
+      </FileDrop>
       <ProblemPanel className="mt-2" problem={detach.error} />
-    </div>
+    </>
   )
 }

@@ -29,7 +29,7 @@ export function SchemaEditor({ version, draft, reading }: SchemaEditorProps) {
   return (
     <div>
       {draft.overtaken && (
-        <ErrorPanel className="mb-3" title="Somebody saved this draft while you typed" kept="Your text stays here." todo="Copy what you want to keep, then load the page again to see theirs; saving over it is refused." />
+        <ErrorPanel className="mb-3" title="Somebody saved this draft while you typed" kept="Your text stays here." whatToDo="Copy what you want to keep, then load the page again to see theirs; saving over it is refused." />
       )}
       <JsonEditor
         label={`parameter schema of ${version.line} ${version.version}`}

@@ -26,7 +26,7 @@ export function BusAddresses({ bus }: { bus: BusView }) {
               {c.holder && <>, where {c.holder} is</>}.
             </>
           }
-          todo="Give one of them another address before both are released."
+          whatToDo="Give one of them another address before both are released."
         />
       ))}
       {bus.claims.length > 0 && (

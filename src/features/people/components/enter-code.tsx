@@ -1,7 +1,6 @@
 import { useState } from 'react'
 import { ProblemPanel } from '../../../components/problem/problem-panel.tsx'
-import { Button } from '../../../components/ui/button.tsx'
-import { Dialog } from '../../../components/ui/dialog.tsx'
+import { FormDialog } from '../../../components/ui/form-dialog.tsx'
 import { fieldError } from '../../../lib/api-client.ts'
 import { useEnterCode } from '../mutations.ts'
 import { CodeField } from './code-field.tsx'
@@ -12,32 +11,10 @@ export default function EnterCode({ onClose }: { onClose: () => void }) {
   const [code, setCode] = useState('')
   const send = () => enter.mutate(code.trim(), { onSuccess: onClose, onError: () => setCode('') })
   return (
-    <Dialog
-      open
-      onClose={onClose}
-      busy={enter.isPending}
-      title="Enter a code before you sign"
-      actions={
-        <>
-          <Button kind="primary" unavailable={code.trim() === '' ? 'Enter a code first.' : null} pending={enter.isPending} onClick={send}>
-            Enter it
-          </Button>
-          <Button onClick={onClose}>Cancel</Button>
-        </>
-      }
-    >
-      <form
-        noValidate
-        className="grid gap-3"
-        onSubmit={(event) => {
-          event.preventDefault()
-          if (code.trim() !== '' && !enter.isPending) send()
-        }}
-      >
-        <p>This workplace asks for a code of your second factor before each signature. Nothing was signed; after this, sign again.</p>
-        <CodeField value={code} onChange={setCode} error={fieldError(enter.error, '/code')} />
-        <ProblemPanel problem={enter.error} shown={['/code']} />
-      </form>
-    </Dialog>
+    <FormDialog title="Enter a code before you sign" act="Enter it" missing={code.trim() === '' ? 'Enter a code first.' : null} pending={enter.isPending} onSend={send} onClose={onClose}>
+      <p>This workplace asks for a code of your second factor before each signature. Nothing was signed; after this, sign again.</p>
+      <CodeField value={code} onChange={setCode} error={fieldError(enter.error, '/code')} />
+      <ProblemPanel problem={enter.error} shown={['/code']} />
+    </FormDialog>
   )
 }

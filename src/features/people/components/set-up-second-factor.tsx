@@ -1,8 +1,7 @@
 import { useState } from 'react'
 import type { SecondFactorBegun } from '../../../../shared/contract/second-factor.ts'
 import { ProblemPanel } from '../../../components/problem/problem-panel.tsx'
-import { Button } from '../../../components/ui/button.tsx'
-import { Dialog } from '../../../components/ui/dialog.tsx'
+import { FormDialog } from '../../../components/ui/form-dialog.tsx'
 import { PasswordField } from '../../../components/ui/password-field.tsx'
 import { fieldError } from '../../../lib/api-client.ts'
 import { useBeginSecondFactor, useConfirmSecondFactor } from '../mutations.ts'
@@ -15,33 +14,11 @@ export function SetUpSecondFactor({ onDone, onClose }: { onDone: (codes: string[
   if (begin.data) return <ConfirmStep begun={begin.data} onDone={onDone} onClose={onClose} />
   const send = () => begin.mutate(password, { onError: () => setPassword('') })
   return (
-    <Dialog
-      open
-      onClose={onClose}
-      busy={begin.isPending}
-      title="Set up a second factor"
-      actions={
-        <>
-          <Button kind="primary" unavailable={password === '' ? 'Write your password first.' : null} pending={begin.isPending} onClick={send}>
-            Go on
-          </Button>
-          <Button onClick={onClose}>Not now</Button>
-        </>
-      }
-    >
-      <form
-        noValidate
-        className="grid gap-3"
-        onSubmit={(event) => {
-          event.preventDefault()
-          if (password !== '' && !begin.isPending) send()
-        }}
-      >
-        <p>An authenticator app on your phone, or in your password store, then shows a code that Detent asks for when you sign in.</p>
-        <PasswordField label="Your password" purpose="present" value={password} onChange={setPassword} error={fieldError(begin.error, '/password')} />
-        <ProblemPanel problem={begin.error} shown={['/password']} />
-      </form>
-    </Dialog>
+    <FormDialog title="Set up a second factor" act="Go on" missing={password === '' ? 'Write your password first.' : null} pending={begin.isPending} onSend={send} onClose={onClose} leave="Not now">
+      <p>An authenticator app on your phone, or in your password store, then shows a code that Detent asks for when you sign in.</p>
+      <PasswordField label="Your password" purpose="present" value={password} onChange={setPassword} error={fieldError(begin.error, '/password')} />
+      <ProblemPanel problem={begin.error} shown={['/password']} />
+    </FormDialog>
   )
 }
 
@@ -50,41 +27,19 @@ function ConfirmStep({ begun, onDone, onClose }: { begun: SecondFactorBegun; onD
   const [code, setCode] = useState('')
   const send = () => confirm.mutate(code.trim(), { onSuccess: ({ recoveryCodes }) => onDone(recoveryCodes), onError: () => setCode('') })
   return (
-    <Dialog
-      open
-      onClose={onClose}
-      busy={confirm.isPending}
-      title="Set up a second factor"
-      actions={
-        <>
-          <Button kind="primary" unavailable={code.trim() === '' ? 'Enter the code first.' : null} pending={confirm.isPending} onClick={send}>
-            Set it up
-          </Button>
-          <Button onClick={onClose}>Not now</Button>
-        </>
-      }
-    >
-      <form
-        noValidate
-        className="grid gap-3"
-        onSubmit={(event) => {
-          event.preventDefault()
-          if (code.trim() !== '' && !confirm.isPending) send()
-        }}
-      >
-        <p>Let the app read the picture, or type the secret into it. Then enter the code that it shows.</p>
-        {/* Black on white in both themes: cameras read it so. */}
-        <img className="h-[200px] w-[200px] border border-rule bg-white" alt="QR code of the secret below" src={`data:image/svg+xml;charset=utf-8,${encodeURIComponent(begun.picture)}`} />
-        <div>
-          <span className="label" id="secret-label">Secret</span>
-          <output aria-labelledby="secret-label" className="num block rounded-[3px] border border-ink bg-brass-wash px-3 py-2 text-13 select-all">
-            {begun.secret}
-          </output>
-          <p className="help">time based, six digits, 30 s; shown this once</p>
-        </div>
-        <CodeField appOnly value={code} onChange={setCode} error={fieldError(confirm.error, '/code')} />
-        <ProblemPanel problem={confirm.error} shown={['/code']} />
-      </form>
-    </Dialog>
+    <FormDialog title="Set up a second factor" act="Set it up" missing={code.trim() === '' ? 'Enter the code first.' : null} pending={confirm.isPending} onSend={send} onClose={onClose} leave="Not now">
+      <p>Let the app read the picture, or type the secret into it. Then enter the code that it shows.</p>
+      {/* Black on white in both themes: cameras read it so. */}
+      <img className="h-[200px] w-[200px] border border-rule bg-white" alt="QR code of the secret below" src={`data:image/svg+xml;charset=utf-8,${encodeURIComponent(begun.picture)}`} />
+      <div>
+        <span className="label" id="secret-label">Secret</span>
+        <output aria-labelledby="secret-label" className="num block rounded-[3px] border border-ink bg-brass-wash px-3 py-2 text-13 select-all">
+          {begun.secret}
+        </output>
+        <p className="help">time based, six digits, 30 s; shown this once</p>
+      </div>
+      <CodeField appOnly value={code} onChange={setCode} error={fieldError(confirm.error, '/code')} />
+      <ProblemPanel problem={confirm.error} shown={['/code']} />
+    </FormDialog>
   )
 }
