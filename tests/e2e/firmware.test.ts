@@ -95,6 +95,7 @@ describe('a firmware version, from its schema to a board', () => {
     await page.getByText('reads well; not saved yet').waitFor()
     await button('Save the draft').click()
     await page.getByText(/^saved \d/).waitFor()
+    expect(await faults()).toEqual([])
   })
 
   it('is given its firmware image; its map is walked with the keyboard alone', async () => {

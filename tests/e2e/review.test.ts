@@ -1,12 +1,9 @@
-import { readFileSync } from 'node:fs'
-import { createRequire } from 'node:module'
 import type { BrowserContext, Cookie, Page } from 'playwright-core'
 import { afterAll, afterEach, beforeAll, describe, expect, it } from 'vitest'
 import { demoSignIns } from '../../server/modules/people/demo-sign-ins.ts'
+import { axe, showTheme } from './axe.ts'
 import { openBrowser } from './chromium.ts'
 import { startServer, type RunningServer } from './server.ts'
-
-const axe = readFileSync(createRequire(import.meta.url).resolve('axe-core/axe.min.js'), 'utf8')
 
 let server: RunningServer
 let browser: BrowserContext
@@ -76,9 +73,7 @@ async function submit() {
 async function grave(at = page): Promise<string[]> {
   const found: string[] = []
   for (const colorScheme of ['light', 'dark'] as const) {
-    await at.emulateMedia({ colorScheme, reducedMotion: 'reduce' })
-    // Chromium brings a new theme's colours to parts that a container query sizes up to a quarter of a second late.
-    await at.waitForTimeout(500)
+    await showTheme(at, colorScheme)
     await at.evaluate(axe)
     const results = await at.evaluate(async () => {
       const { run } = (window as unknown as { axe: { run(): Promise<{ violations: { id: string; impact: string; nodes: { target: string[]; failureSummary: string }[] }[] }> } }).axe
