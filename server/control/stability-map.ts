@@ -2,7 +2,6 @@ import { NumericError } from './errors.ts'
 import { guardInteger, guardNumber, type JointModel } from './model.ts'
 import { parameterNamed, valueOf, type ParameterName } from './parameters.ts'
 import { pointEvaluator, type PointEvaluator, type PointResult } from './point.ts'
-import type { Verdict } from './stability.ts'
 
 /** Cells of the largest map. */
 export const CELLS_LIMIT = 65_536
@@ -19,15 +18,6 @@ export type CellMargin =
   /** No loop has a margin within the search's limits. */
   | { readonly kind: 'none' }
   | { readonly kind: 'margin'; readonly value: number }
-
-export interface MapCell {
-  readonly x: number
-  readonly y: number
-  readonly rho: number
-  readonly verdict: Verdict
-  readonly phaseMarginDeg: CellMargin
-  readonly gainMarginDb: CellMargin
-}
 
 /** Codes of `MapReport.verdicts`. */
 export const MAP_VERDICTS = ['stable', 'boundary', 'unstable'] as const

@@ -8,7 +8,6 @@ const percent = () => limit('percent', 1000)
 
 /** Roles that a policy may ask of whoever submits a change, besides the right to draft it. */
 export const proposerRoles = ['controls engineer', 'peer reviewer', 'release manager'] as const
-export type ProposerRole = (typeof proposerRoles)[number]
 const Proposer = Type.Union(proposerRoles.map((role) => Type.Literal(role)))
 
 /** Limits of the findings, the count of peer reviews, what a concession may ask, who may propose what; one version of a machine's policy. Units in the names. */

@@ -39,11 +39,3 @@ export function effectiveValues(set: MachineSet, jointKey: string, parameters: r
 
 /** Effective values as a plain record, for the register codec. */
 export const asRecord = (values: readonly EffectiveValue[]): Record<string, Value> => Object.fromEntries(values.map((v) => [v.name, v.value]))
-
-/** Values given in the joint or its family that no parameter of the firmware version takes, as pointers into the set. */
-export function unknownValues(set: MachineSet, jointKey: string, parameters: readonly ResolvedParameter[]): string[] {
-  const taken = new Set(parameters.filter((p) => p.role !== 'bus.address').map((p) => p.name))
-  const joint = set.joints[jointKey]
-  const of = (base: string, values: Record<string, unknown>) => Object.keys(values).filter((n) => !taken.has(n)).map((n) => `${base}/values/${n}`)
-  return [...of(`/families/${joint.family}`, set.families[joint.family]?.values ?? {}), ...of(`/joints/${jointKey}`, joint.values)]
-}

@@ -1,6 +1,6 @@
 import { orderOf, type NumberCodec } from './encoding.ts'
 import { targetOf } from './local-refs.ts'
-import type { Bound, Bounds, Parameter, ParameterKind, ParameterValue, Register } from './parameter-schema.ts'
+import type { Bound, Bounds, Parameter, ParameterKind, ParameterValue } from './parameter-schema.ts'
 import { isObject, shown, under, type Json, type ProblemList } from './problem-list.ts'
 import { compare, exactly } from './rational.ts'
 import { readRegister, type LeafShape } from './read-register.ts'
@@ -164,10 +164,4 @@ function readBounds(leaf: Json, pointer: string, kind: ParameterKind, codec: Num
     list.add(under(pointer, 'maximum'), 'empty-range', `The maximum ${high.text} lies below the minimum ${low.text}.`)
   }
   return bounds
-}
-
-/** A register that a parameter is known to have. */
-export const registerOf = (parameter: Parameter): Register => {
-  if (!parameter.register) throw new Error(`${parameter.name} has no register`)
-  return parameter.register
 }
